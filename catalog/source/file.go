@@ -1,0 +1,107 @@
+package source
+
+import (
+	"sort"
+	"unicode/utf8"
+)
+
+// File is one file of a tree with its bytes. Src has no byte order mark.
+type File struct {
+	Path string // slash-separated, relative to the root of the tree
+	Src  []byte
+
+	lines []int32 // offset of the first byte of each line, filled on first use
+}
+
+// Place is a stretch of bytes in a file. The zero Place is nowhere.
+type Place struct {
+	File     *File
+	From, To int32
+}
+
+// IsZero reports whether the place is nowhere.
+func (p Place) IsZero() bool { return p.File == nil }
+
+// Text is the bytes at the place.
+func (p Place) Text() string {
+	if p.File == nil {
+		return ""
+	}
+	return string(p.File.Src[p.From:p.To])
+}
+
+// Path is the file's path, or "" for nowhere.
+func (p Place) Path() string {
+	if p.File == nil {
+		return ""
+	}
+	return p.File.Path
+}
+
+// Line is the 1-based line on which the place starts, or 0 for nowhere.
+func (p Place) Line() int {
+	if p.File == nil {
+		return 0
+	}
+	return p.File.line(p.From)
+}
+
+// Col is the 1-based column on which the place starts, counted in characters
+// (Unicode code points), or 0 for nowhere.
+func (p Place) Col() int {
+	if p.File == nil {
+		return 0
+	}
+	start := p.File.lineStart(p.Line())
+	return utf8.RuneCount(p.File.Src[start:p.From]) + 1
+}
+
+// Before orders places by file and offset; nowhere comes first.
+func (p Place) Before(q Place) bool {
+	if a, b := p.Path(), q.Path(); a != b {
+		return a < b
+	}
+	return p.From < q.From
+}
+
+// Start is the very beginning of the file, for what has no better place.
+func (f *File) Start() Place { return Place{f, 0, 0} }
+
+// LineText is the text of the 1-based line n without its line end.
+func (f *File) LineText(n int) string {
+	f.index()
+	if n < 1 || n > len(f.lines) {
+		return ""
+	}
+	from := int(f.lines[n-1])
+	to := len(f.Src)
+	if n < len(f.lines) {
+		to = int(f.lines[n]) - 1
+	}
+	if to > from && f.Src[to-1] == '\r' {
+		to--
+	}
+	return string(f.Src[from:to])
+}
+
+func (f *File) line(at int32) int {
+	f.index()
+	return sort.Search(len(f.lines), func(i int) bool { return f.lines[i] > at })
+}
+
+func (f *File) lineStart(n int) int32 {
+	f.index()
+	return f.lines[n-1]
+}
+
+func (f *File) index() {
+	if f.lines != nil {
+		return
+	}
+	f.lines = append(f.lines, 0)
+	for i, b := range f.Src {
+		if b == '\n' {
+			f.lines = append(f.lines, int32(i+1))
+		}
+	}
+}

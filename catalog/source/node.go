@@ -1,0 +1,65 @@
+package source
+
+import "time"
+
+// NodeKind is the TOML type of a node.
+type NodeKind int
+
+const (
+	Table NodeKind = iota + 1 // [table], dotted key, or {inline = "table"}
+	Array                     // [1, 2], or the [[rows]] of an array of tables
+	String
+	Integer
+	Float
+	Bool
+	DateTime // with an offset
+	LocalDateTime
+	LocalDate
+	LocalTime
+)
+
+// Node is one value of a document with its place.
+type Node struct {
+	Kind NodeKind
+	// At is the value's place: all of a scalar, array or inline table with its
+	// brackets, and the header of a [table] or [[row]].
+	At Place
+
+	Keys  []*KeyNode // of a Table, in document order
+	Items []*Node    // of an Array, in document order
+
+	Str   string    // of a String
+	Int   int64     // of an Integer
+	Float float64   // of a Float; never nan or inf
+	Bool  bool      // of a Bool
+	Time  time.Time // of the four kinds of date and time; local ones in UTC
+
+	byName map[string]*KeyNode
+}
+
+// KeyNode is one key of a table.
+type KeyNode struct {
+	Name  string
+	At    Place // the key itself, its last part where it is dotted or in a header
+	Value *Node
+}
+
+// Get finds the key of a table, or nil.
+func (n *Node) Get(name string) *KeyNode {
+	if n == nil || n.Kind != Table {
+		return nil
+	}
+	if n.byName == nil {
+		n.byName = make(map[string]*KeyNode, len(n.Keys))
+		for _, k := range n.Keys {
+			n.byName[k.Name] = k
+		}
+	}
+	return n.byName[name]
+}
+
+// Doc is one parsed file.
+type Doc struct {
+	File *File
+	Root *Node // always a Table
+}

@@ -1,0 +1,280 @@
+package source
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"strings"
+
+	"driploop/catalog/unit"
+)
+
+// Type reads one kind of value. Its zero value reads nothing.
+type Type[T any] struct {
+	Shape TypeDoc
+	parse func(*Node) (T, []bad)
+}
+
+// bad is one thing wrong inside a value, at the element at fault.
+type bad struct {
+	kind     ProblemKind
+	at       Place
+	says, do string
+}
+
+func refuse(at Place, says, do string) []bad { return []bad{{Value, at, says, do}} }
+
+func expected(n *Node, want, example string) []bad {
+	return refuse(n.At, fmt.Sprintf("%s was read, %s is expected", n.describe(), want), "write "+example)
+}
+
+// Text is any string.
+var Text = Type[string]{TypeDoc{Name: "text", Example: `"…"`}, parseText}
+
+func parseText(n *Node) (string, []bad) {
+	if n.Kind != String {
+		return "", expected(n, "text", "it in quotes")
+	}
+	return n.Str, nil
+}
+
+// Flag is true or false.
+var Flag = Type[bool]{TypeDoc{Name: "true or false", Example: "true"}, func(n *Node) (bool, []bad) {
+	if n.Kind != Bool {
+		return false, expected(n, "true or false", "true or false without quotes")
+	}
+	return n.Bool, nil
+}}
+
+// Name is an ID as parts, devices and places carry it.
+var Name = Checked("name", `"amp-1"`, func(s string) (string, error) {
+	if !ValidID(s) {
+		return "", fmt.Errorf("%s is no name: letters, digits, - and _, 64 at most", Quote(s))
+	}
+	return s, nil
+})
+
+// Quantities that carry their unit in the string.
+var (
+	Length      = Checked("length", `"18.5 m"`, unit.ParseLength)
+	Temperature = Checked("temperature", `"45 C"`, unit.ParseTemperature)
+	Speed       = Checked("speed", `"44 m/s"`, unit.ParseSpeed)
+	Size        = Checked("conductor size", `"10 AWG"`, unit.ParseGauge)
+	Price       = Checked("amount", `"318.00"`, unit.ParseMoney)
+)
+
+// Checked is a string that a function reads or refuses.
+func Checked[T any](name, example string, read func(string) (T, error)) Type[T] {
+	return Type[T]{TypeDoc{Name: name, Example: example}, func(n *Node) (T, []bad) {
+		var none T
+		if n.Kind != String {
+			return none, expected(n, "a "+name, "it like "+example)
+		}
+		v, err := read(n.Str)
+		if err != nil {
+			return none, refuse(n.At, err.Error(), "write it like "+example)
+		}
+		return v, nil
+	}}
+}
+
+// Day is a local date.
+var Day = Type[unit.Date]{TypeDoc{Name: "date", Example: "2026-12-01"}, func(n *Node) (unit.Date, []bad) {
+	if n.Kind != LocalDate {
+		return unit.Date{}, expected(n, "a date", "it like 2026-12-01, without quotes")
+	}
+	return unit.DateOf(n.Time), nil
+}}
+
+// Number is any finite number.
+var Number = number("number", nil, nil)
+
+// Between is a number from lo to hi, both inside, in the unit that is named.
+func Between(lo, hi float64, unit string) Type[float64] { return number(unit, &lo, &hi) }
+
+// AtLeast is a number from lo on, in the unit that is named.
+func AtLeast(lo float64, unit string) Type[float64] { return number(unit, &lo, nil) }
+
+func number(name string, lo, hi *float64) Type[float64] {
+	return Type[float64]{TypeDoc{Name: name, Min: lo, Max: hi}, func(n *Node) (float64, []bad) {
+		v, ok := n.number()
+		if !ok {
+			return 0, expected(n, "a number ("+name+")", "it without quotes and without unit")
+		}
+		if lo != nil && v < *lo || hi != nil && v > *hi {
+			return 0, refuse(n.At, fmt.Sprintf("%s is outside %s", plain(v), bounds(lo, hi, name)), "check the figure and its unit")
+		}
+		return v, nil
+	}}
+}
+
+func bounds(lo, hi *float64, unit string) string {
+	if unit = " " + unit; unit == " number" {
+		unit = ""
+	}
+	switch {
+	case lo != nil && hi != nil:
+		return plain(*lo) + " to " + plain(*hi) + unit
+	case lo != nil:
+		return "what begins at " + plain(*lo) + unit
+	}
+	return "what ends at " + plain(*hi) + unit
+}
+
+func plain(v float64) string { return strconv.FormatFloat(v, 'f', -1, 64) }
+
+// Count is a whole number from lo to hi.
+func Count(lo, hi int) Type[int] {
+	l, h := float64(lo), float64(hi)
+	return Type[int]{TypeDoc{Name: "whole number", Min: &l, Max: &h}, func(n *Node) (int, []bad) {
+		if n.Kind != Integer {
+			return 0, expected(n, "a whole number", "it without quotes and without decimals")
+		}
+		if n.Int < int64(lo) || n.Int > int64(hi) {
+			return 0, refuse(n.At, fmt.Sprintf("%d is outside %d to %d", n.Int, lo, hi), "check the figure")
+		}
+		return int(n.Int), nil
+	}}
+}
+
+// OneOf is one word of a fixed list.
+func OneOf(words ...string) Type[string] {
+	return Type[string]{TypeDoc{Name: "one of", OneOf: words}, func(n *Node) (string, []bad) {
+		all := strings.Join(words, ", ")
+		if n.Kind != String {
+			return "", expected(n, "one of "+all, "one of them in quotes")
+		}
+		if contains(words, n.Str) {
+			return n.Str, nil
+		}
+		do := "write one of them"
+		if near := Nearest(n.Str, words); near != "" {
+			do = "did you mean " + near + "?"
+		}
+		return "", refuse(n.At, fmt.Sprintf("%s is not one of %s", Quote(n.Str), all), do)
+	}}
+}
+
+// ListOf is a list whose items are all of one type; every item keeps its place.
+func ListOf[T any](t Type[T]) Type[[]Val[T]] {
+	item := t.Shape
+	return Type[[]Val[T]]{TypeDoc{Name: "list", List: &item}, func(n *Node) ([]Val[T], []bad) {
+		if n.Kind != Array {
+			return nil, expected(n, "a list", "it in brackets")
+		}
+		var out []Val[T]
+		var all []bad
+		for _, i := range n.Items {
+			v, b := t.parse(i)
+			all = append(all, b...)
+			out = append(out, Val[T]{v, i.At, len(b) == 0})
+		}
+		return out, all
+	}}
+}
+
+// Pair is a list of exactly two values.
+func Pair[T any](t Type[T], example string) Type[[2]T] {
+	item := t.Shape
+	return Type[[2]T]{TypeDoc{Name: "pair", Example: example, List: &item}, func(n *Node) ([2]T, []bad) {
+		var out [2]T
+		if n.Kind != Array || len(n.Items) != 2 {
+			return out, expected(n, "a pair", "it like "+example)
+		}
+		var all []bad
+		for i, item := range n.Items {
+			v, b := t.parse(item)
+			out[i], all = v, append(all, b...)
+		}
+		return out, all
+	}}
+}
+
+// Either reads a value by the first type if its kind fits, else by the second.
+func Either[T any](fits func(*Node) bool, a, b Type[T], name string) Type[T] {
+	return Type[T]{TypeDoc{Name: name, Example: a.Shape.Example}, func(n *Node) (T, []bad) {
+		if fits(n) {
+			return a.parse(n)
+		}
+		return b.parse(n)
+	}}
+}
+
+// Map changes what a type yields, or refuses it after all.
+func Map[A, B any](t Type[A], convert func(A) (B, error)) Type[B] {
+	return Type[B]{t.Shape, func(n *Node) (B, []bad) {
+		var none B
+		a, bads := t.parse(n)
+		if len(bads) > 0 {
+			return none, bads
+		}
+		v, err := convert(a)
+		if err != nil {
+			return none, refuse(n.At, err.Error(), "check the figure")
+		}
+		return v, nil
+	}}
+}
+
+// IsArray, IsTable and IsString tell the shapes that Either chooses by.
+func IsArray(n *Node) bool { return n.Kind == Array }
+
+// IsTable reports an inline or other table.
+func IsTable(n *Node) bool { return n.Kind == Table }
+
+// IsString reports a string.
+func IsString(n *Node) bool { return n.Kind == String }
+
+// Inline is a table read by a bind function, as a value inside lists and pairs.
+func Inline[R any](bind func(*R, *Keys)) Type[R] {
+	return Type[R]{TypeDoc{Name: "table"}, func(n *Node) (R, []bad) {
+		var row R
+		if n.Kind != Table {
+			return row, expected(n, "a table", "it in braces")
+		}
+		r := &reading{}
+		k := &Keys{at: n.At, table: n, read: r}
+		bind(&row, k)
+		k.finish()
+		var all []bad
+		for _, p := range r.problems {
+			all = append(all, bad{p.Kind, p.At, p.Says, p.Do})
+		}
+		return row, all
+	}}
+}
+
+func (n *Node) number() (float64, bool) {
+	switch n.Kind {
+	case Integer:
+		return float64(n.Int), true
+	case Float:
+		return n.Float, !math.IsNaN(n.Float) && !math.IsInf(n.Float, 0)
+	}
+	return 0, false
+}
+
+// describe names a value in a message.
+func (n *Node) describe() string {
+	switch n.Kind {
+	case String:
+		return "the text " + Quote(n.Str)
+	case Integer:
+		return "the number " + strconv.FormatInt(n.Int, 10)
+	case Float:
+		return "the number " + plain(n.Float)
+	case Bool:
+		return strconv.FormatBool(n.Bool)
+	case Table:
+		return "a table"
+	case Array:
+		return "a list"
+	case LocalDate:
+		return "the date " + n.Time.Format("2006-01-02")
+	case LocalDateTime, DateTime:
+		return "the time " + n.Time.Format("2006-01-02 15:04:05")
+	case LocalTime:
+		return "the time " + n.Time.Format("15:04:05")
+	}
+	return "nothing"
+}
