@@ -178,6 +178,32 @@ func Named[R any](k *Keys, to *[]R, name string, bind func(*R, *Keys), doc strin
 	}
 }
 
+// Pick is one key of a table whose keys are not fixed, with its value.
+type Pick[T any] struct {
+	Name string
+	At   Place // the key
+	Val  Val[T]
+}
+
+// Each reads a table whose keys the file chooses, in document order; name says
+// whether a key may stand there.
+func Each[T any](k *Keys, to *[]Pick[T], key string, name func(string) error, t Type[T], doc string) {
+	shape := t.Shape
+	n := k.take(KeyDoc{Name: key, Type: TypeDoc{Name: "table", Each: &shape}, Doc: doc})
+	if n == nil || !k.isTable(key, n.Value) {
+		return
+	}
+	for _, e := range n.Value.Keys {
+		if err := name(e.Name); err != nil {
+			k.Fault(e.At, key+": "+err.Error(), "check the name")
+			continue
+		}
+		row := Pick[T]{Name: e.Name, At: e.At}
+		accept(k, &row.Val, e, t)
+		*to = append(*to, row)
+	}
+}
+
 func (k *Keys) idStands(e *KeyNode, seen map[string]Place) bool {
 	if !ValidID(e.Name) {
 		k.Fault(e.At, "the name "+Quote(e.Name)+" cannot be referred to", "use letters, digits, - and _, starting with a letter or digit, 64 at most")

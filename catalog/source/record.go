@@ -27,6 +27,7 @@ type TypeDoc struct {
 	OneOf    []string
 	Min, Max *float64
 	List     *TypeDoc // of the items of a list
+	Each     *TypeDoc // of the values of a table whose keys are free
 }
 
 // Record documents one table format in the order of its declaration.
