@@ -6,8 +6,9 @@ import "time"
 type NodeKind int
 
 const (
-	Table NodeKind = iota + 1 // [table], dotted key, or {inline = "table"}
-	Array                     // [1, 2], or the [[rows]] of an array of tables
+	Refused NodeKind = iota // a value that Parse has refused and reported: nan, inf, out of range
+	Table                   // [table], dotted key, or {inline = "table"}
+	Array                   // [1, 2], or the [[rows]] of an array of tables
 	String
 	Integer
 	Float
@@ -34,7 +35,8 @@ type Node struct {
 	Bool  bool      // of a Bool
 	Time  time.Time // of the four kinds of date and time; local ones in UTC
 
-	byName map[string]*KeyNode
+	made   made                // how a Table or Array came to be, while the file is read
+	byName map[string]*KeyNode // of a Table with many keys
 }
 
 // KeyNode is one key of a table.
@@ -49,17 +51,40 @@ func (n *Node) Get(name string) *KeyNode {
 	if n == nil || n.Kind != Table {
 		return nil
 	}
-	if n.byName == nil {
-		n.byName = make(map[string]*KeyNode, len(n.Keys))
+	if n.byName != nil {
+		return n.byName[name]
+	}
+	for _, k := range n.Keys {
+		if k.Name == name {
+			return k
+		}
+	}
+	return nil
+}
+
+// fewKeys is up to how many keys a search one by one beats a map.
+const fewKeys = 12
+
+// add puts a new key into a table. A Doc that is read no longer changes, so that
+// many may read it at once.
+func (n *Node) add(k *KeyNode) {
+	n.Keys = append(n.Keys, k)
+	if n.byName == nil && len(n.Keys) > fewKeys {
+		n.byName = make(map[string]*KeyNode, 2*len(n.Keys))
 		for _, k := range n.Keys {
 			n.byName[k.Name] = k
 		}
 	}
-	return n.byName[name]
+	if n.byName != nil {
+		n.byName[k.Name] = k
+	}
 }
 
 // Doc is one parsed file.
 type Doc struct {
 	File *File
 	Root *Node // always a Table
+	// Partial: a syntax problem or a double definition left something out of the
+	// tree, so a key that seems missing may well be there.
+	Partial bool
 }
