@@ -60,12 +60,12 @@ func longLines(f *File) []Problem {
 	for i, from := range f.lines {
 		to := len(f.Src)
 		if i+1 < len(f.lines) {
-			to = int(f.lines[i+1])
+			to = int(f.lines[i+1]) - len("\n")
 		}
 		if n := to - int(from); n > MaxLine {
 			found = append(found, Problem{Kind: Syntax, At: f.stretch(int(from), int(from)+1),
 				Says: fmt.Sprintf("the line has %d bytes, more than the %d that a line may have", n, MaxLine),
-				Do:   "break the array or the text over several lines"})
+				Do:   "break the list or the text over several lines"})
 		}
 	}
 	return found

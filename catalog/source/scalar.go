@@ -59,7 +59,7 @@ func (x *indexer) float(n *Node, text []byte) {
 func (x *indexer) time(n *Node, kind NodeKind, text []byte) {
 	v, fault := readTime(kind, string(text))
 	if fault != "" {
-		x.refuse(n, Syntax, fault, "write a date like 2026-12-01, a time like 14:30:00, both joined by T or a blank")
+		x.refuse(n, Syntax, fault, "write a date like 2026-12-01, a time like 14:30:00, both joined by T, and an offset like +01:00")
 		return
 	}
 	n.Kind, n.Time = kind, v
@@ -96,7 +96,10 @@ func readTime(kind NodeKind, text string) (t time.Time, fault string) {
 	if kind != LocalDate {
 		rest = cutFraction(rest)
 	}
-	if kind == DateTime && !offsetStands(rest) || kind != DateTime && rest != "" {
+	if kind == DateTime && !offsetStands(rest) {
+		return t, "the offset of the time is no time zone"
+	}
+	if kind != DateTime && rest != "" {
 		return t, "this is no date or time"
 	}
 	t, err := time.ParseInLocation(layouts[kind], text, time.UTC)
