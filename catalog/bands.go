@@ -107,10 +107,12 @@ func (t *bandTable) keys(k *source.Keys) {
 }
 
 // tableSource says where an embedded table comes from.
-type tableSource struct{ Document, Proof source.Val[string] }
+type tableSource struct{ LTE, NR, EARFCN, Proof source.Val[string] }
 
 func (s *tableSource) keys(k *source.Keys) {
-	source.Need(k, &s.Document, "document", source.Text, "document, table and edition")
+	source.Need(k, &s.LTE, "lte", source.Text, "edges of the bands: document, table and edition")
+	source.Need(k, &s.NR, "nr", source.Text, "the same for NR")
+	source.Need(k, &s.EARFCN, "earfcn", source.Text, "channel numbers")
 	source.Need(k, &s.Proof, "proof", proof, "how sure")
 }
 
@@ -131,5 +133,9 @@ func (b *Band) keys(k *source.Keys, head tableSource) {
 	source.Opt(k, &src, "source", source.Text, "where the row comes from, if not as the table")
 	source.Opt(k, &prf, "proof", proof, "how sure, if not as the table")
 	b.Uplink, b.Downlink, b.Duplex, b.NR = up.V, down.V, duplex.V, nr.Or("none")
-	b.Source, b.Proof = src.Or(head.Document.V), prf.Or(head.Proof.V)
+	table := head.LTE.V
+	if b.Name[0] == 'n' {
+		table = head.NR.V
+	}
+	b.Source, b.Proof = src.Or(table), prf.Or(head.Proof.V)
 }

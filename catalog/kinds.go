@@ -50,7 +50,8 @@ func init() {
 	}
 }
 
-func kindNames() []string {
+// KindNames lists the words for the kinds.
+func KindNames() []string {
 	var out []string
 	for _, k := range Kinds {
 		out = append(out, k.Name)

@@ -72,8 +72,8 @@ type Port struct {
 	Bands     source.Val[Words]
 	DCOut     *DCOut
 	Lead      *Lead
-	Side      source.Val[string]  // of an amplifier: donor or server
-	Polar     source.Val[string]  // of an antenna: vertical, horizontal, +45, -45
+	Side      source.Val[string] // of an amplifier: donor or server
+	Polar     source.Val[string] // of an antenna: vertical, horizontal, +45, -45
 }
 
 // RF reports whether the port carries radio signals and so is mated.
@@ -141,7 +141,7 @@ func (p *Part) Title() string { return p.Name.Or(p.ID) }
 
 func (p *Part) keys(k *source.Keys) {
 	p.ID, p.At = k.ID(), k.At()
-	source.Need(k, &p.Kind, "kind", source.OneOf(kindNames()...), "what sort of part it is")
+	source.Need(k, &p.Kind, "kind", source.OneOf(KindNames()...), "what sort of part it is")
 	source.Opt(k, &p.Name, "name", source.Text, "what a person calls it")
 	source.Opt(k, &p.Maker, "maker", source.Text, "who makes it")
 	source.Opt(k, &p.Code, "code", source.Text, "the maker's number")
@@ -221,4 +221,16 @@ func (w *Path) keys(k *source.Keys) {
 	source.Need(k, &w.To, "to", oneOrMore(source.Name), "the port or ports at the other end")
 	source.Opt(k, &w.MHz, "mhz", span, "where the figures hold; absent: everywhere")
 	source.Need(k, &w.Loss, "loss_db", points("dB"), "loss, one number or [MHz, dB] pairs")
+}
+
+// Between lists the rows that pass from one port to another, either way round.
+func (p *Part) Between(a, b string) []*Path {
+	var out []*Path
+	for i := range p.Paths {
+		w := &p.Paths[i]
+		if w.From.V == a && Has(w.To, b) || w.From.V == b && Has(w.To, a) {
+			out = append(out, w)
+		}
+	}
+	return out
 }

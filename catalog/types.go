@@ -57,3 +57,22 @@ func oneOrMore(t source.Type[string]) source.Type[Words] {
 	one := source.Map(t, func(s string) (Words, error) { return Words{{V: s, Set: true}}, nil })
 	return source.Either(source.IsArray, source.ListOf(t), one, "one or a list")
 }
+
+// Value types for other packages' formats.
+var (
+	BandName  = bandName
+	KindName  = source.Checked("kind", `"electrode"`, readKindName)
+	LossTable = points("dB")
+)
+
+func readKindName(s string) (string, error) {
+	for _, n := range KindNames() {
+		if n == s {
+			return s, nil
+		}
+	}
+	return "", fmt.Errorf("%s is no kind of part", source.Quote(s))
+}
+
+// IsBand refuses a name that is no 3GPP band.
+func IsBand(name string) error { return isBand(name) }

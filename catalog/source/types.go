@@ -47,12 +47,15 @@ var Flag = Type[bool]{TypeDoc{Name: "true or false", Example: "true"}, func(n *N
 }}
 
 // Name is an ID as parts, devices and places carry it.
-var Name = Checked("name", `"amp-1"`, func(s string) (string, error) {
+var Name = Checked("name", `"amp-1"`, NameOf)
+
+// NameOf returns s, or the reason why it is no name.
+func NameOf(s string) (string, error) {
 	if !ValidID(s) {
 		return "", fmt.Errorf("%s is no name: letters, digits, - and _, 64 at most", Quote(s))
 	}
 	return s, nil
-})
+}
 
 // Quantities that carry their unit in the string.
 var (

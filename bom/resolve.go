@@ -1,0 +1,323 @@
+package bom
+
+import (
+	"fmt"
+	"sort"
+	"strings"
+
+	"driploop/catalog"
+	"driploop/catalog/source"
+)
+
+// Resolve looks the parts of a plan up and ties its ends together. It always
+// returns a graph; what does not resolve is in Holes.
+func Resolve(p *Plan, c *catalog.Catalog) *Graph {
+	g := &Graph{
+		Plan: p, Catalog: c,
+		devices: map[string]*Device{}, cables: map[string]*Cable{}, places: map[string]*Place{},
+	}
+	for i := range p.Places {
+		g.places[p.Places[i].ID] = &p.Places[i]
+	}
+	g.addDevices()
+	g.stand()
+	g.addCables()
+	g.uniqueNames()
+	g.mate()
+	g.dressEnds()
+	g.addSupply()
+	g.addBonds()
+	g.checkRefs()
+	return g
+}
+
+func (g *Graph) hole(kind HoleKind, at source.Place, on, says, do string, also ...source.Place) {
+	g.Holes = append(g.Holes, Hole{kind, at, on, says, do, also})
+}
+
+// part looks up a part that must be of one of the kinds; a part of another kind
+// does not count as found.
+func (g *Graph) part(id source.Val[string], on string, kinds ...string) *catalog.Part {
+	if !id.Set {
+		return nil
+	}
+	p := g.Catalog.Look(id.V)
+	if p == nil {
+		do := "add it to the catalog, or correct the ID"
+		if near := g.Catalog.Nearest(id.V); near != "" {
+			do = "did you mean " + near + "?"
+		}
+		g.hole(NoPart, id.At, on, "the catalog has no part "+source.Quote(id.V), do)
+		return nil
+	}
+	if !p.Kind.Set {
+		return nil // the catalog file has a finding already
+	}
+	for _, k := range kinds {
+		if p.Kind.V == k {
+			return p
+		}
+	}
+	g.hole(WrongKind, id.At, on, fmt.Sprintf("%s is of kind %s; %s is expected here", p.ID, p.Kind.V, strings.Join(kinds, " or ")),
+		"name a part of that kind", p.At)
+	return nil
+}
+
+// deviceKinds are the kinds that are put up as devices: all but what comes by the
+// metre, on a cable end, or out of a box of consumables.
+var deviceKinds = []string{"antenna", "adapter", "splitter", "tap", "coupler", "diplexer", "filter", "attenuator",
+	"dc-block", "bias-tee", "load", "arrestor", "amplifier", "router", "supply", "injector", "switch", "battery",
+	"data-arrestor", "fuse", "bond-point", "electrode", "mount"}
+
+func (g *Graph) addDevices() {
+	for i := range g.Plan.Devices {
+		row := &g.Plan.Devices[i]
+		part := g.part(row.Part, "device."+row.ID, deviceKinds...)
+		g.addDevice(&Device{ID: row.ID, At: row.At, Row: row, Part: part, Place: g.place(row.Place, "device."+row.ID), Point: row.Point})
+		for _, c := range row.Copies {
+			d := &Device{ID: c.Name, At: c.At, Row: row, Part: part, Point: c.Val.V.Point}
+			d.Place = g.place(row.Place, d.On())
+			if c.Val.V.Place.Set {
+				d.Place = g.place(c.Val.V.Place, d.On())
+			}
+			g.addDevice(d)
+		}
+	}
+}
+
+func (g *Graph) addDevice(d *Device) {
+	if d.Part != nil {
+		for i := range d.Part.Ports {
+			p := &d.Part.Ports[i]
+			d.Nodes = append(d.Nodes, &Node{Device: d, Port: p, Face: p.Connector, Ohm: p.Impedance})
+		}
+	}
+	g.Devices = append(g.Devices, d)
+	if g.devices[d.ID] == nil {
+		g.devices[d.ID] = d
+	}
+}
+
+// place looks up a place that the plan names.
+func (g *Graph) place(id source.Val[string], on string) *Place {
+	if !id.Set {
+		return nil
+	}
+	p := g.places[id.V]
+	if p == nil {
+		g.hole(BadRef, id.At, on, "the plan has no place "+source.Quote(id.V), g.nearPlace(id.V))
+	}
+	return p
+}
+
+func (g *Graph) nearPlace(id string) string {
+	return didYouMean(source.Nearest(id, sortedKeys(g.places)), "add it under [place], or correct the name")
+}
+
+func didYouMean(near, otherwise string) string {
+	if near != "" {
+		return "did you mean " + near + "?"
+	}
+	return otherwise
+}
+
+// stand gives each device that stands on another that one's place, and its height
+// where both are known.
+func (g *Graph) stand() {
+	for _, d := range g.Devices {
+		if !d.Row.On.Set {
+			continue
+		}
+		base := g.devices[d.Row.On.V]
+		if base == nil {
+			g.hole(BadRef, d.Row.On.At, d.On(), "the plan has no device "+source.Quote(d.Row.On.V),
+				didYouMean(source.Nearest(d.Row.On.V, sortedKeys(g.devices)), "add it, or correct the name"))
+			continue
+		}
+		d.Stands = base
+	}
+	for _, d := range g.Devices {
+		if d.standsOnItself() {
+			g.hole(BadRef, d.Row.On.At, d.On(), "what "+d.ID+" stands on stands on "+d.ID+" again", "let the chain end at a place")
+			d.Stands = nil
+		}
+	}
+	for _, d := range g.Devices {
+		d.Place, d.Point = d.position()
+	}
+}
+
+func (d *Device) standsOnItself() bool {
+	seen := map[*Device]bool{}
+	for s := d; s != nil; s = s.Stands {
+		if seen[s] {
+			return true
+		}
+		seen[s] = true
+	}
+	return false
+}
+
+// position is the device's place, and its point where that is known: its own,
+// else that of what it stands on plus up, else its place's.
+func (d *Device) position() (*Place, source.Val[Point]) {
+	place, at := d.Place, d.Point
+	if d.Stands != nil {
+		basePlace, base := d.Stands.position()
+		if place == nil {
+			place = basePlace
+		}
+		if !at.Set && base.Set {
+			at = base
+			at.V.Up += d.Row.Up.V.Metres()
+		}
+	}
+	if !at.Set && place != nil {
+		at = place.Point
+	}
+	return place, at
+}
+
+func (g *Graph) addCables() {
+	for i := range g.Plan.Cables {
+		row := &g.Plan.Cables[i]
+		c := &Cable{ID: row.ID, At: row.At, Row: row}
+		g.Cables = append(g.Cables, c)
+		g.cables[row.ID] = c
+	}
+	for _, c := range g.Cables {
+		if c.Row.Like.Set {
+			g.takeAfter(c)
+		}
+		c.Part = g.part(c.Row.Part, c.On(), "cable", "jumper")
+		c.Length = c.Row.Length
+		if c.Part != nil && c.Part.Jumper != nil && !c.Length.Set {
+			c.Length = c.Part.Jumper.Length
+		}
+		c.Way = g.way(c.Row.Way, c.On())
+		for n := range c.Ends {
+			c.Ends[n] = g.cableEnd(c, n)
+		}
+	}
+}
+
+// takeAfter fills what the cable leaves out from the one that it is like. The row
+// is copied first, because the plan stays as it was read.
+func (g *Graph) takeAfter(c *Cable) {
+	model := g.cables[c.Row.Like.V]
+	switch {
+	case model == nil:
+		g.hole(BadRef, c.Row.Like.At, c.On(), "the plan has no cable "+source.Quote(c.Row.Like.V),
+			didYouMean(source.Nearest(c.Row.Like.V, sortedKeys(g.cables)), "correct the name"))
+		return
+	case model.Row.Like.Set || model == c:
+		g.hole(BadRef, c.Row.Like.At, c.On(), model.ID+" is itself like another cable", "name the cable that has the keys")
+		return
+	}
+	c.Like = model
+	own := *c.Row
+	fill(&own.Part, model.Row.Part)
+	fill(&own.Ends, model.Row.Ends)
+	fill(&own.Length, model.Row.Length)
+	fill(&own.Way, model.Row.Way)
+	c.Row = &own
+}
+
+func fill[T any](to *source.Val[T], from source.Val[T]) {
+	if !to.Set {
+		*to = from
+	}
+}
+
+func (g *Graph) way(w source.Val[[]source.Val[Stretch]], on string) []Section {
+	var out []Section
+	for _, s := range w.V {
+		if !s.Set {
+			continue
+		}
+		p := g.place(source.Val[string]{V: s.V.Place, At: s.At, Set: true}, on)
+		if p != nil {
+			out = append(out, Section{p, s.V.Length})
+		}
+	}
+	return out
+}
+
+// cableEnd is end n (0 or 1) with the face that the plan or the jumper gives it.
+func (g *Graph) cableEnd(c *Cable, n int) *Node {
+	e := &Node{Cable: c, End: n + 1, Ohm: g.cableOhm(c)}
+	if c.Part != nil && c.Part.Jumper != nil {
+		if ends := c.Part.Jumper.Ends; ends.Set {
+			e.Face = source.Val[catalog.Face]{V: ends.V[n], At: c.At, Set: true}
+		}
+		return e
+	}
+	if !c.Row.Ends.Set {
+		return e
+	}
+	written := c.Row.Ends.V[n]
+	if !written.Set {
+		return e
+	}
+	if written.V.Face.Set {
+		e.Face = source.Val[catalog.Face]{V: written.V.Face.V, At: written.At, Set: true}
+		return e
+	}
+	e.Fit = g.part(source.Val[string]{V: written.V.Part, At: written.At, Set: true}, c.On(), "connector")
+	if e.Fit != nil {
+		e.Face = e.Fit.Connector.Face
+		e.Ohm = e.Fit.Connector.Impedance
+	}
+	return e
+}
+
+// cableOhm is the impedance of the cable, or of the cable that a jumper is made of.
+func (g *Graph) cableOhm(c *Cable) source.Val[float64] {
+	if c.Part == nil {
+		return source.Val[float64]{}
+	}
+	if c.Part.Cable != nil {
+		return c.Part.Cable.Impedance
+	}
+	if j := c.Part.Jumper; j != nil && j.Cable.Set {
+		if of := g.Catalog.Look(j.Cable.V); of != nil && of.Cable != nil {
+			return of.Cable.Impedance
+		}
+	}
+	return source.Val[float64]{}
+}
+
+// uniqueNames holds that devices, copies, cables, data lines and wires, all of
+// which can be referred to, have names of their own.
+func (g *Graph) uniqueNames() {
+	seen := map[string]source.Place{}
+	claim := func(id string, at source.Place, on string) {
+		low := strings.ToLower(id)
+		if first, twice := seen[low]; twice {
+			g.hole(BadRef, at, on, "the name "+source.Quote(id)+" stands already in this plan", "give it a name of its own", first)
+			return
+		}
+		seen[low] = at
+	}
+	for _, d := range g.Devices {
+		claim(d.ID, d.At, d.On())
+	}
+	for _, c := range g.Cables {
+		claim(c.ID, c.At, c.On())
+	}
+	for i := range g.Plan.Data {
+		claim(g.Plan.Data[i].ID, g.Plan.Data[i].At, "data."+g.Plan.Data[i].ID)
+	}
+	for i := range g.Plan.Wires {
+		claim(g.Plan.Wires[i].ID, g.Plan.Wires[i].At, "wire."+g.Plan.Wires[i].ID)
+	}
+}
+
+func sortedKeys[V any](m map[string]V) []string {
+	out := make([]string, 0, len(m))
+	for k := range m {
+		out = append(out, k)
+	}
+	sort.Strings(out)
+	return out
+}

@@ -1,0 +1,178 @@
+package bom
+
+import (
+	"fmt"
+
+	"driploop/catalog"
+	"driploop/catalog/source"
+)
+
+// addSupply resolves Ethernet lines and direct current lines.
+func (g *Graph) addSupply() {
+	for i := range g.Plan.Data {
+		row := &g.Plan.Data[i]
+		d := &DataLine{Row: row, Part: g.part(row.Part, "data."+row.ID, "data-cable"), Way: g.way(row.Way, "data."+row.ID)}
+		d.From = g.occupy(g.plug(row.From, d.On(), "data"), d, row.From.At)
+		d.To = g.occupy(g.plug(row.To, d.On(), "data"), d, row.To.At)
+		g.Data = append(g.Data, d)
+	}
+	for i := range g.Plan.Wires {
+		row := &g.Plan.Wires[i]
+		w := &WireLine{Row: row, Part: g.part(row.Part, "wire."+row.ID, "wire"), Way: g.way(row.Way, "wire."+row.ID)}
+		w.Fuse = g.part(row.Fuse, w.On(), "fuse")
+		w.From = g.plug(row.From, w.On(), "power")
+		w.To = g.plug(row.To, w.On(), "power")
+		g.Wires = append(g.Wires, w)
+	}
+}
+
+// plug finds the data or power port of a reference. Unlike radio ports these are
+// not mated, and a power port may feed several wires.
+func (g *Graph) plug(r source.Val[Ref], on, use string) *Node {
+	if !r.Set {
+		return nil
+	}
+	d := g.devices[r.V.Name]
+	switch {
+	case d == nil:
+		g.hole(BadRef, r.At, on, "the plan has no device "+source.Quote(r.V.Name),
+			didYouMean(source.Nearest(r.V.Name, sortedKeys(g.devices)), "add it, or correct the name"))
+		return nil
+	case d.Part == nil:
+		return nil
+	case r.V.Port != "":
+		n := g.portOf(d, r, on)
+		if n != nil && n.Port.Use.Or("cellular") != use {
+			g.hole(NoPort, r.At, on, fmt.Sprintf("%s carries %s; a %s port is expected", n.Name(), n.Port.Use.Or("cellular"), use), "name a "+use+" port")
+			return nil
+		}
+		return n
+	}
+	return g.freePort(d, r, on, source.Val[catalog.Face]{}, source.Val[float64]{}, func(p *catalog.Port) bool { return p.Use.V == use })
+}
+
+// occupy marks a data port as taken by a line.
+func (g *Graph) occupy(n *Node, d *DataLine, at source.Place) *Node {
+	if n == nil {
+		return nil
+	}
+	if n.Data != nil {
+		g.hole(SharedPort, at, d.On(), n.Name()+" already takes the line "+n.Data.Row.ID, "a port takes one line", n.Data.Row.At)
+	} else {
+		n.Data = d
+	}
+	return n
+}
+
+// addBonds resolves the bonding conductors.
+func (g *Graph) addBonds() {
+	for i := range g.Plan.Bonds {
+		row := &g.Plan.Bonds[i]
+		b := &Bond{Row: row, Part: g.part(row.Part, "bond."+row.ID, "bond-conductor")}
+		b.From = g.bonded(row.From, b.On())
+		b.To = g.bonded(row.To, b.On())
+		g.Bonds = append(g.Bonds, b)
+	}
+}
+
+func (g *Graph) bonded(r source.Val[Ref], on string) *Device {
+	if !r.Set {
+		return nil
+	}
+	d := g.devices[r.V.Name]
+	if d == nil {
+		g.hole(BadRef, r.At, on, "the plan has no device "+source.Quote(r.V.Name),
+			didYouMean(source.Nearest(r.V.Name, sortedKeys(g.devices)), "add it, or correct the name"))
+	}
+	return d
+}
+
+// checkRefs follows the references of tables that only name things.
+func (g *Graph) checkRefs() {
+	for _, b := range g.Plan.Betweens {
+		g.place(b.A, "site")
+		g.place(b.B, "site")
+	}
+	for i := range g.Plan.Areas {
+		a := &g.Plan.Areas[i]
+		on := "area." + a.Name.V
+		for _, s := range a.ServedBy.V {
+			g.bonded(source.Val[Ref]{V: Ref{Name: s.V}, At: s.At, Set: s.Set}, on)
+		}
+		for _, o := range a.Operators.V {
+			g.operator(o, on)
+		}
+	}
+	for i := range g.Plan.Readings {
+		r := &g.Plan.Readings[i]
+		on := fmt.Sprintf("reading.%d", i+1)
+		g.readingRef(r.From, on)
+		g.readingRef(r.To, on)
+	}
+	for i := range g.Plan.Extras {
+		g.part(g.Plan.Extras[i].Part, "job", catalog.KindNames()...)
+	}
+	for _, r := range g.Plan.Reserves {
+		g.part(r.Part, "job", catalog.KindNames()...)
+		if r.Cable.Set && g.cables[r.Cable.V] == nil && !g.hasLine(r.Cable.V) {
+			g.hole(BadRef, r.Cable.At, "job", "the plan has no line "+source.Quote(r.Cable.V), "correct the name")
+		}
+	}
+}
+
+func (g *Graph) operator(o source.Val[string], on string) {
+	var known []string
+	for _, k := range g.Plan.Operators {
+		known = append(known, k.ID)
+	}
+	for i := range g.Plan.Signals {
+		known = append(known, g.Plan.Signals[i].Operator.V)
+	}
+	for _, k := range known {
+		if k == o.V {
+			return
+		}
+	}
+	g.hole(BadRef, o.At, on, "the plan has no operator "+source.Quote(o.V), didYouMean(source.Nearest(o.V, known), "add it, or correct the name"))
+}
+
+func (g *Graph) readingRef(r source.Val[Ref], on string) {
+	if !r.Set {
+		return
+	}
+	if d := g.devices[r.V.Name]; d != nil {
+		if r.V.Port != "" && d.Part != nil {
+			g.portOf(d, r, on)
+		}
+		return
+	}
+	if c := g.cables[r.V.Name]; c != nil {
+		if r.V.Port != "" {
+			g.endOf(c, r, on)
+		}
+		return
+	}
+	if !g.hasLine(r.V.Name) {
+		g.hole(BadRef, r.At, on, "the plan has nothing named "+source.Quote(r.V.Name), "correct the name")
+	}
+}
+
+// hasLine reports whether a data line, wire or bond has the name.
+func (g *Graph) hasLine(id string) bool {
+	for i := range g.Plan.Data {
+		if g.Plan.Data[i].ID == id {
+			return true
+		}
+	}
+	for i := range g.Plan.Wires {
+		if g.Plan.Wires[i].ID == id {
+			return true
+		}
+	}
+	for i := range g.Plan.Bonds {
+		if g.Plan.Bonds[i].ID == id {
+			return true
+		}
+	}
+	return false
+}
