@@ -39,7 +39,9 @@ a = {b = 2}
 		{"clock", func(t *testing.T, d *Doc) { later(at(t, d, "clock")) }, "7:10 07:30:00"},
 		{"joined", func(t *testing.T, d *Doc) { later(at(t, d, "joined")) }, "8:10 2026-12-01T07:30:00"},
 		{"offset", func(t *testing.T, d *Doc) { later(at(t, d, "offset")) }, "9:10 2026-12-01T07:30:00+01:00"},
-		{"kind of number", func(t *testing.T, d *Doc) { *at(t, d, "whole").Value = Node{Kind: Float, Float: 1, At: d.File.stretch(1, 2)} }, "2:1 w"},
+		{"kind of number", func(t *testing.T, d *Doc) {
+			*at(t, d, "whole").Value = Node{Kind: Float, Float: 1, At: d.File.stretch(1, 2)}
+		}, "2:1 w"},
 		{"kind of time", func(t *testing.T, d *Doc) { at(t, d, "joined").Value.Kind = DateTime }, "8:10 2026-12-01T07:30:00"},
 		{"item", func(t *testing.T, d *Doc) { at(t, d, "list 1 0").Value.Int = 3 }, "10:15 2"},
 		{"number of items", func(t *testing.T, d *Doc) { n := at(t, d, "list 1").Value; n.Items = append(n.Items, n.Items[0]) }, "10:14 [2]"},
