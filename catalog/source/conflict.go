@@ -13,7 +13,7 @@ var markers = []string{"<<<<<<<", "|||||||", "=======", ">>>>>>>"}
 func withConflicts(f *File, problems []Problem) []Problem {
 	stopped, marked := map[int]bool{}, map[int]bool{}
 	for _, p := range problems {
-		stopped[p.At.Line()] = stopped[p.At.Line()] || p.Kind == Syntax
+		stopped[p.At.Line()] = true
 	}
 	var kept, conflicts []Problem
 	open := false
@@ -40,7 +40,7 @@ func withConflicts(f *File, problems []Problem) []Problem {
 		marked[i+1] = true
 	}
 	for _, p := range problems {
-		if !(p.Kind == Syntax && marked[p.At.Line()]) {
+		if !marked[p.At.Line()] {
 			kept = append(kept, p)
 		}
 	}

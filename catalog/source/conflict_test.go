@@ -63,4 +63,7 @@ func TestSyntaxProblemBesideConflict(t *testing.T) {
 	if len(found) != 2 || found[0].Kind != Syntax || found[1].Kind != Merge {
 		t.Errorf("want what is wrong before the conflict, and the conflict:%s", listed(found))
 	}
+	if p := parseBad(t, "a = 1\n======= x"); p.Kind != Syntax {
+		t.Errorf("no merge writes that line: %s", listed([]Problem{p}))
+	}
 }

@@ -86,12 +86,18 @@ func (d *disk) Read(e Entry) ([]byte, error) {
 	if info.Size() > MaxFile {
 		return nil, &TooBig{e.Path, info.Size()}
 	}
-	src, err := io.ReadAll(io.LimitReader(f, MaxFile+1))
+	return readCapped(f, e.Path)
+}
+
+// readCapped reads a file that may be longer than it said, because it grows or
+// because the system makes it up.
+func readCapped(r io.Reader, path string) ([]byte, error) {
+	src, err := io.ReadAll(io.LimitReader(r, MaxFile+1))
 	if err != nil {
-		return nil, fmt.Errorf("reading %s: %w", e.Path, err)
+		return nil, fmt.Errorf("reading %s: %w", path, err)
 	}
 	if len(src) > MaxFile {
-		return nil, &TooBig{Path: e.Path}
+		return nil, &TooBig{Path: path}
 	}
 	return src, nil
 }

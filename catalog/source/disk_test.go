@@ -10,6 +10,7 @@ import (
 	"strings"
 	"syscall"
 	"testing"
+	"testing/iotest"
 	"time"
 )
 
@@ -98,6 +99,19 @@ func TestDiskRead(t *testing.T) {
 	var big *TooBig
 	if _, err := tree.Read(Entry{Path: "big.toml"}); !errors.As(err, &big) || big.Path != "big.toml" || big.Size != MaxFile+1 {
 		t.Errorf("big.toml: %v", err)
+	}
+}
+
+func TestReadCapped(t *testing.T) {
+	if src, err := readCapped(strings.NewReader(strings.Repeat("#", MaxFile)), "a.toml"); err != nil || len(src) != MaxFile {
+		t.Errorf("a file of the largest size: %d bytes, %v", len(src), err)
+	}
+	var big *TooBig
+	if _, err := readCapped(strings.NewReader(strings.Repeat("#", MaxFile+1)), "a.toml"); !errors.As(err, &big) {
+		t.Errorf("a file that grew while it was read: %v", err)
+	}
+	if _, err := readCapped(iotest.ErrReader(errors.New("disk fault")), "a.toml"); err == nil {
+		t.Error("a fault of the disk is not reported")
 	}
 }
 

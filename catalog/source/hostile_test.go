@@ -151,6 +151,7 @@ func TestCaps(t *testing.T) {
 			"a = " + strings.Repeat("[", MaxDepth) + "1" + strings.Repeat("]", MaxDepth), "1:21 1"},
 		{"depth below a header", header(MaxDepth-1) + "\na=1", header(MaxDepth) + "\na=1", "2:3 1"},
 		{"depth of rows", "[" + header(MaxDepth-2) + "]\na=1", "[" + header(MaxDepth-1) + "]\na=1", "2:3 1"},
+		{"depth below rows", "[[k]]\n" + header(MaxDepth-2) + "\na=1", "[[k]]\n" + header(MaxDepth-1) + "\na=1", "3:3 1"},
 		{"parts of a key", dots(MaxParts), dots(MaxParts + 1), "1:33 k"},
 		{"parts of a header", header(MaxParts), header(MaxParts + 1), "1:34 k"},
 		{"bytes of a key", strings.Repeat("k", MaxKey) + "=1", strings.Repeat("k", MaxKey+1) + "=1", "1:1 " + strings.Repeat("k", MaxKey+1)},
