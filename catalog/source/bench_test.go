@@ -38,7 +38,7 @@ a = "roof"
 b = "shop"
 loss_db = [[700, 4], [2100, 7]]
 `)
-	for i := range 10 {
+	for i := range 12 {
 		fmt.Fprintf(&b, `
 [device.dome-%d]
 part   = "DOME-NF"
