@@ -232,6 +232,10 @@ func (a Assessment) Exceeded(v float64) bool {
 // question has: there is a row, none is open, and no spectrum is left over.
 func (a Assessment) Whole() bool { return a.Row != nil && len(a.Open) == 0 && len(a.Left) == 0 }
 
+// None reports that the profile has no row for the question at all, which is
+// neither a pass nor a limit.
+func (a Assessment) None() bool { return a.Row == nil && len(a.Open) == 0 }
+
 // Split parts rows that follow from the band alone from those that depend on the
 // received level or a coupling loss.
 func Split(rows []*Row) (byBand, bySite []*Row) {

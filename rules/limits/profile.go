@@ -110,8 +110,11 @@ func (p *Profile) Permits(band string) Permission {
 	}
 	var up, down []unit.Span
 	for _, s := range p.Spectrum {
-		up = append(up, s.Uplink.V)
-		down = append(down, s.Downlink.V)
+		// A downlink counts only with the uplink it is paired with.
+		if b.Uplink.Empty() || !s.Uplink.V.Overlap(b.Uplink).Empty() {
+			up = append(up, s.Uplink.V)
+			down = append(down, s.Downlink.V)
+		}
 	}
 	left := Permission{Known: true, Downlink: b.Downlink.Minus(down...)}
 	if !b.Uplink.Empty() {
@@ -163,14 +166,15 @@ func (p *Profile) PapersFor(bands ...string) []*Paper {
 // of figures.
 func (p *Profile) NeedsOperatorPermission() bool { return p.OperatorPermission.V }
 
-// HeightsFor lists the height limits that hold where an antenna transmits on the
-// band.
-func (p *Profile) HeightsFor(band string) []*Height {
+// HeightsFor lists the height limits of an antenna that transmits on the band,
+// fixed or in a vehicle.
+func (p *Profile) HeightsFor(band string, fixed bool) []*Height {
 	span, known := bandSpan(band, "uplink")
 	var out []*Height
 	for i := range p.Heights {
-		if known && !p.Heights[i].MHz.V.Overlap(span).Empty() {
-			out = append(out, &p.Heights[i])
+		h := &p.Heights[i]
+		if known && !h.MHz.V.Overlap(span).Empty() && (fixed || !h.Fixed.V) {
+			out = append(out, h)
 		}
 	}
 	return out
