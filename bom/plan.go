@@ -74,13 +74,13 @@ func (e *Evidence) Counts() bool {
 // ReadPlan reads one plan file. The plan holds what could be read, whatever
 // problems there are.
 func ReadPlan(d *source.Doc) (*Plan, []source.Problem) {
-	p := &Plan{ID: jobOf(d.File.Path), File: d.File}
+	p := &Plan{ID: JobOf(d.File.Path), File: d.File}
 	problems := source.Read(d, p.keys)
 	return p, problems
 }
 
-// jobOf is the file's name without folder and ending.
-func jobOf(path string) string {
+// JobOf is the file's name without folder and ending.
+func JobOf(path string) string {
 	from := 0
 	for i := range len(path) {
 		if path[i] == '/' {

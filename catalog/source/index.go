@@ -46,7 +46,7 @@ func (x *indexer) run() {
 	}
 	var broken *unstable.ParserError
 	if errors.As(x.parser.Error(), &broken) {
-		x.partial = true
+		x.stopped, x.partial = true, true
 		x.report(x.syntaxProblem(broken))
 	}
 }

@@ -35,17 +35,20 @@ type Keys struct {
 }
 
 // reading collects what one file has to say.
-type reading struct{ problems []Problem }
+type reading struct {
+	problems []Problem
+	partial  bool // keys that seem missing may well be there
+}
 
 // Read runs a bind function over the root of a document and returns the
 // problems it met in the order of the document.
 func Read(d *Doc, bind func(*Keys)) []Problem {
-	r := &reading{}
+	r := &reading{partial: d.Partial}
 	k := &Keys{at: d.File.Start(), table: d.Root, read: r}
 	bind(k)
 	k.finish()
 	SortProblems(r.problems)
-	return r.problems
+	return firstOf(r.problems, 0)
 }
 
 // ID is the name under which the table stands in its parent, for Named records.
@@ -74,7 +77,7 @@ func (k *Keys) Fault(at Place, says, do string, also ...Place) {
 
 // Missing reports a key that the record needs and does not have.
 func (k *Keys) Missing(name, doc string) {
-	if k.read != nil {
+	if k.read != nil && !k.read.partial {
 		k.read.add(Problem{Key, k.at, fmt.Sprintf("%s has no %s: %s", k.called(), name, doc), "add " + name, nil})
 	}
 }
@@ -123,6 +126,9 @@ func Opt[T any](k *Keys, to *Val[T], name string, t Type[T], doc string) {
 func accept[T any](k *Keys, to *Val[T], n *KeyNode, t Type[T]) {
 	v, bad := t.parse(n.Value)
 	for _, b := range bad {
+		if b.kind == 0 {
+			continue // reported when the file was parsed
+		}
 		k.read.add(Problem{b.kind, b.at, n.Name + ": " + b.says, b.do, nil})
 	}
 	if len(bad) == 0 {
@@ -144,6 +150,9 @@ func One[R any](k *Keys, to *R, name string, bind func(*R, *Keys), doc string) b
 func Rows[R any](k *Keys, to *[]R, name string, bind func(*R, *Keys), doc string) {
 	n := k.take(k.sub(name, RowTables, doc, func(s *Keys) { bind(new(R), s) }))
 	if n == nil {
+		return
+	}
+	if n.Value.Kind == Refused {
 		return
 	}
 	if n.Value.Kind != Array {
@@ -227,6 +236,9 @@ func bindTable(k *Keys, name string, at Place, table *Node, bind func(*Keys)) {
 func (k *Keys) isTable(name string, v *Node) bool {
 	if v.Kind == Table {
 		return true
+	}
+	if v.Kind == Refused {
+		return false // reported when the file was parsed
 	}
 	k.Fault(v.At, fmt.Sprintf("%s: %s was read, a table is expected", name, v.describe()), "write it as a table")
 	return false

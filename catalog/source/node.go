@@ -87,4 +87,7 @@ type Doc struct {
 	// Partial: a syntax problem or a double definition left something out of the
 	// tree, so a key that seems missing may well be there.
 	Partial bool
+	// Ended: the tree ends where a syntax problem stands; what follows it was not
+	// read at all.
+	Ended bool
 }

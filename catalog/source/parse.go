@@ -31,12 +31,12 @@ func NewFile(path string, src []byte) (*File, []Problem) {
 func Parse(f *File) (*Doc, []Problem) {
 	f.index()
 	if found := unreadable(f); found != nil {
-		return &Doc{File: f, Root: &Node{Kind: Table, At: f.Start()}, Partial: true}, found
+		return &Doc{File: f, Root: &Node{Kind: Table, At: f.Start()}, Partial: true, Ended: true}, found
 	}
 	x := newIndexer(f)
 	x.run()
 	problems := append(longLines(f), withConflicts(f, x.problems)...)
-	doc := &Doc{File: f, Root: x.root, Partial: x.partial}
+	doc := &Doc{File: f, Root: x.root, Partial: x.partial, Ended: x.stopped}
 	if len(problems) == 0 {
 		problems = disagreement(doc)
 	}

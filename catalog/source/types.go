@@ -17,7 +17,7 @@ type Type[T any] struct {
 
 // bad is one thing wrong inside a value, at the element at fault.
 type bad struct {
-	kind     ProblemKind
+	kind     ProblemKind // 0: nothing more to say
 	at       Place
 	says, do string
 }
@@ -25,6 +25,9 @@ type bad struct {
 func refuse(at Place, says, do string) []bad { return []bad{{Value, at, says, do}} }
 
 func expected(n *Node, want, example string) []bad {
+	if n.Kind == Refused {
+		return []bad{{}} // reported when the file was parsed
+	}
 	return refuse(n.At, fmt.Sprintf("%s was read, %s is expected", n.describe(), want), "write "+example)
 }
 

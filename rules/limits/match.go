@@ -58,16 +58,33 @@ func (r *Row) Undecided(q Query) []string {
 	return open
 }
 
-// answer compares the selectors with the query: false where one rules the row
-// out, else the names of those that stay open.
+// answer compares the row with the query: false where something rules it out, else
+// the names of the selectors that stay open.
 func (r *Row) answer(q Query) (bool, []string) {
-	if !r.limits(q.Kind) || r.State.Or("on") != orOn(q.State) || r.Per.V != q.Per {
+	holds, open := r.selects(q)
+	if !holds || r.Per.V != q.Per {
+		return false, nil
+	}
+	if r.FFrom.Set || r.FBelow.Set {
+		span, known := bandSpan(q.Band, q.Direction)
+		switch {
+		case !known:
+			open = append(open, "band")
+		case r.Span().Overlap(span).Empty():
+			return false, nil
+		}
+	}
+	return true, open
+}
+
+// selects is answer without the spectrum and without what the figure is counted in.
+func (r *Row) selects(q Query) (bool, []string) {
+	if !r.limits(q.Kind) || r.State.Or("on") != orOn(q.State) {
 		return false, nil
 	}
 	if q.Class == Radio && q.Direction == "" {
 		q.Direction = "uplink" // the only way a radio transmits
 	}
-	var open []string
 	selectors := []struct {
 		name string
 		row  source.Val[string]
@@ -80,21 +97,13 @@ func (r *Row) answer(q Query) (bool, []string) {
 		{"source", r.Source, q.Source},
 		{"isolation_control", asWord(r.IsolationControl), asWord(q.IsolationControl).V},
 	}
+	var open []string
 	for _, s := range selectors {
 		switch {
 		case !s.row.Set || s.row.V == s.got:
 		case s.got == "":
 			open = append(open, s.name)
 		default:
-			return false, nil
-		}
-	}
-	if r.FFrom.Set || r.FBelow.Set {
-		span, known := bandSpan(q.Band, q.Direction)
-		switch {
-		case !known:
-			open = append(open, "band")
-		case r.Span().Overlap(span).Empty():
 			return false, nil
 		}
 	}
@@ -171,7 +180,7 @@ type Assessment struct {
 	Row   *Row        // the row that binds; nil where none could be computed
 	Value float64     // its value in the row's unit
 	Open  []Open      // rows not assessed
-	Left  []unit.Span // of a question about radios: the part of the band that no row covers
+	Left  []unit.Span // the part of the band for which no row answers
 }
 
 // Least computes the rows and keeps the least; of equal ones the first. A row that
@@ -196,27 +205,30 @@ func Least(q Query, in Inputs, rows ...*Row) Assessment {
 	return a
 }
 
-// Assess matches and computes in one go.
+// Assess matches and computes in one go, and looks which part of the band the rows
+// leave out.
 func (p *Profile) Assess(q Query, in Inputs) Assessment {
 	a := Least(q, in, p.Match(q)...)
-	if q.Class == Radio {
-		a.Left = p.withoutRadioRow(q)
-	}
+	a.Left = p.uncovered(q)
 	return a
 }
 
-// withoutRadioRow is the part of the band for which no radio row limits the
-// quantity, whatever its figure is counted in.
-func (p *Profile) withoutRadioRow(q Query) []unit.Span {
-	span, known := bandSpan(q.Band, "uplink")
+// uncovered is the part of the band for which no row answers, whatever its figure
+// is counted in. A profile that is silent on the question altogether leaves out
+// nothing.
+func (p *Profile) uncovered(q Query) []unit.Span {
+	span, known := bandSpan(q.Band, q.Direction)
 	if !known {
 		return nil
 	}
 	var covers []unit.Span
-	for _, r := range p.Radio {
-		if r.limits(q.Kind) {
+	for _, r := range p.rows(q.Class) {
+		if holds, _ := r.selects(q); holds {
 			covers = append(covers, r.Span())
 		}
+	}
+	if covers == nil {
+		return nil
 	}
 	return span.Minus(covers...)
 }
@@ -232,9 +244,9 @@ func (a Assessment) Exceeded(v float64) bool {
 // question has: there is a row, none is open, and no spectrum is left over.
 func (a Assessment) Whole() bool { return a.Row != nil && len(a.Open) == 0 && len(a.Left) == 0 }
 
-// None reports that the profile has no row for the question at all, which is
-// neither a pass nor a limit.
-func (a Assessment) None() bool { return a.Row == nil && len(a.Open) == 0 }
+// None reports that the profile is silent on the question: it has no row, in this
+// band or another. That is neither a pass nor a limit.
+func (a Assessment) None() bool { return a.Row == nil && len(a.Open) == 0 && len(a.Left) == 0 }
 
 // Split parts rows that follow from the band alone from those that depend on the
 // received level or a coupling loss.

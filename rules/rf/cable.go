@@ -122,13 +122,3 @@ func TemperatureFactor(t unit.Celsius) (float64, bool) {
 	}
 	return 1 + 0.002*(float64(t)-20), true
 }
-
-// Per100m turns points in dB per 100 ft into points in dB per 100 m, with the
-// international foot of 304.8 mm.
-func Per100m(per100ft []Point) []Point {
-	out := make([]Point, len(per100ft))
-	for i, p := range per100ft {
-		out[i] = Point{p.MHz, p.DB / 0.3048}
-	}
-	return out
-}

@@ -1,0 +1,407 @@
+package rules
+
+import (
+	"driploop/bom"
+	"driploop/catalog"
+	"driploop/catalog/source"
+	"driploop/catalog/unit"
+	"driploop/rules/limits"
+	"driploop/rules/rf"
+)
+
+// Chain is the radio chain of a plan: for each amplifier and each of its planned
+// bands what it receives, what it makes of it, and what it radiates.
+type Chain struct {
+	Bands []*BandChain // by device in the plan's order, then by band
+	sums  map[sumKey]LineSum
+}
+
+type sumKey struct {
+	line *bom.Line
+	f    unit.MHz
+}
+
+// BandChain is one amplifier in one planned band.
+type BandChain struct {
+	Amp    *bom.Device
+	Band   catalog.Band     // as planned
+	Row    *catalog.AmpBand // of the amplifier
+	Own    catalog.Band     // of that row
+	Feeds  []*bom.Line      // donor antennas
+	Legs   []*bom.Line      // server antennas
+	Up     Direction
+	Down   Direction
+	RSSI   Known[unit.DBm] // composite at the donor port over the amplifier's band
+	MSCL   Known[unit.DB]
+	BSCL   limits.Input
+	BSCLBy string
+	Apart  Isolated
+}
+
+// Direction is one direction of an amplifier in one band.
+type Direction struct {
+	Name     string // uplink, downlink
+	Span     unit.Span
+	Spec     *catalog.Gain // nil: the part does not say
+	Set      Known[unit.DB]
+	Input    Known[unit.DBm]
+	Runs     Known[rf.Running]
+	Antennas []Antenna // that it radiates from
+}
+
+// Antenna is one antenna that a direction radiates from, at the frequency of the
+// band where its EIRP is greatest.
+type Antenna struct {
+	Line  *bom.Line
+	Node  *bom.Node // the antenna's port
+	Worst Radiation
+	Mid   Radiation
+	Lacks []Lack
+}
+
+// Radiation is the rated output behind a line and an antenna at one frequency.
+type Radiation struct {
+	MHz  unit.MHz
+	Out  unit.DBm
+	Gain unit.DB
+	Line LineSum
+	EIRP rf.Radiated
+}
+
+// Known is a figure, or what it lacks.
+type Known[T any] struct {
+	V     T
+	OK    bool
+	Lacks []Lack
+}
+
+func known[T any](v T) Known[T] { return Known[T]{V: v, OK: true} }
+
+func unknown[T any](at source.Place, what string) Known[T] {
+	return Known[T]{Lacks: []Lack{{what, at}}}
+}
+
+// newChain computes the chain of a case.
+func newChain(c *Case) *Chain {
+	ch := &Chain{sums: map[sumKey]LineSum{}}
+	c.chain = ch
+	for _, d := range c.Graph.Devices {
+		if d.Part == nil || d.Part.Amplifier == nil {
+			continue
+		}
+		for _, b := range c.bands {
+			if row, own := ampRow(d.Part.Amplifier, b); row != nil {
+				ch.Bands = append(ch.Bands, c.bandChain(d, b, row, own))
+			}
+		}
+	}
+	return ch
+}
+
+// ampRow is the amplifier's row for a planned band: the one of that name, else one
+// whose band holds all of it.
+func ampRow(a *catalog.Amplifier, b catalog.Band) (*catalog.AmpBand, catalog.Band) {
+	if row := a.Band(b.Name); row != nil {
+		return row, b
+	}
+	for i := range a.Bands {
+		own, ok := catalog.LookBand(a.Bands[i].Band.V)
+		if ok && own.Uplink.Covers(b.Uplink) && own.Downlink.Covers(b.Downlink) {
+			return &a.Bands[i], own
+		}
+	}
+	return nil, catalog.Band{}
+}
+
+// Sum is the loss of a line at a frequency, added up once.
+func (c *Case) Sum(l *bom.Line, f unit.MHz) LineSum {
+	ch := c.Chain()
+	key := sumKey{l, f}
+	if s, ok := ch.sums[key]; ok {
+		return s
+	}
+	s := c.lineSum(l, f)
+	ch.sums[key] = s
+	return s
+}
+
+func (c *Case) bandChain(d *bom.Device, b catalog.Band, row *catalog.AmpBand, own catalog.Band) *BandChain {
+	x := &BandChain{Amp: d, Band: b, Row: row, Own: own}
+	for _, l := range c.Lines().All {
+		switch {
+		case l.Kind == bom.Feed && l.To.Device == d:
+			x.Feeds = append(x.Feeds, l)
+		case l.Kind == bom.Leg && l.From.Device == d:
+			x.Legs = append(x.Legs, l)
+		}
+	}
+	x.Up = c.direction(x, "uplink", b.Uplink, row.Uplink, x.Feeds)
+	x.Down = c.direction(x, "downlink", b.Downlink, row.Downlink, x.Legs)
+	x.RSSI = c.rssi(x)
+	x.MSCL = c.mscl(x)
+	x.BSCL, x.BSCLBy = c.bscl(x)
+	x.Apart = c.isolation(x)
+	x.Down.Input = x.RSSI
+	x.Up.Runs = c.gainRuns(x, &x.Up)
+	x.Down.Runs = c.gainRuns(x, &x.Down)
+	return x
+}
+
+func (c *Case) direction(x *BandChain, name string, span unit.Span, spec *catalog.Gain, lines []*bom.Line) Direction {
+	dir := Direction{Name: name, Span: span, Spec: spec}
+	dir.Set = setGain(x, spec)
+	for _, l := range lines {
+		dir.Antennas = append(dir.Antennas, c.radiates(l, span, spec, x.Row.At))
+	}
+	return dir
+}
+
+// setGain is the greatest gain less the installer's back-off.
+func setGain(x *BandChain, spec *catalog.Gain) Known[unit.DB] {
+	if spec == nil || !spec.GainDB.Set {
+		return unknown[unit.DB](x.Row.At, "gain_db of "+x.Amp.Part.ID+" in "+x.Own.Name)
+	}
+	g := unit.DB(spec.GainDB.V)
+	for _, s := range x.Amp.Row.Set {
+		if s.Name == x.Band.Name || s.Name == x.Own.Name {
+			g -= unit.DB(s.Val.V.BackOff.V)
+		}
+	}
+	return known(g)
+}
+
+// radiates is what an antenna radiates at the rated output, at the low edge, the
+// middle and the high edge of a band.
+func (c *Case) radiates(l *bom.Line, span unit.Span, spec *catalog.Gain, rowAt source.Place) Antenna {
+	node := l.From
+	if l.Kind == bom.Leg {
+		node = l.To
+	}
+	a := Antenna{Line: l, Node: node}
+	if span.Empty() {
+		return a
+	}
+	if spec == nil || !spec.MaxOut.Set {
+		a.Lacks = append(a.Lacks, Lack{"max_out_dbm of the amplifier", rowAt})
+		return a
+	}
+	for i, f := range []unit.MHz{span.Lo, span.Mid(), span.Hi} {
+		r, lacks := c.radiation(l, node, unit.DBmOf(spec.MaxOut.V), f)
+		if len(lacks) > 0 {
+			a.Lacks = lacks
+			return a
+		}
+		if i == 0 || a.Worst.EIRP.Most.Below(r.EIRP.Most) {
+			a.Worst = r
+		}
+		if i == 1 {
+			a.Mid = r
+		}
+	}
+	return a
+}
+
+func (c *Case) radiation(l *bom.Line, node *bom.Node, out unit.DBm, f unit.MHz) (Radiation, []Lack) {
+	r := Radiation{MHz: f, Out: out, Line: c.Sum(l, f)}
+	lacks := append([]Lack(nil), r.Line.Missing...)
+	rng := antennaAt(node, f)
+	if rng == nil || !rng.Gain.Set {
+		return r, append(lacks, Lack{"a gain of " + node.Name() + " at " + f.String(), node.At()})
+	}
+	r.Gain = unit.DB(rng.Gain.V)
+	if len(lacks) > 0 {
+		return r, lacks
+	}
+	var ok bool
+	if r.EIRP, ok = rf.EIRP(out, r.Line.Loss, r.Gain); !ok {
+		lacks = append(lacks, Lack{"figures that add up", node.At()})
+	}
+	return r, lacks
+}
+
+// antennaAt is the range of an antenna's port that holds a frequency, or nil.
+func antennaAt(n *bom.Node, f unit.MHz) *catalog.Range {
+	if n.Device == nil || n.Device.Part == nil || n.Device.Part.Antenna == nil {
+		return nil
+	}
+	return n.Device.Part.Antenna.RangeAt(n.Port.Name, f)
+}
+
+// rssi is the composite downlink power at the donor port over all signals in the
+// amplifier's band, each at full load, with the donor antenna's gain toward its
+// bearing and the least loss of the feed.
+func (c *Case) rssi(x *BandChain) Known[unit.DBm] {
+	if len(x.Feeds) == 0 {
+		return unknown[unit.DBm](x.Amp.At, "a feed")
+	}
+	var best Known[unit.DBm]
+	for i, feed := range x.Feeds {
+		k := c.rssiThrough(x, feed)
+		if !k.OK {
+			return k
+		}
+		if i == 0 || best.V.Below(k.V) {
+			best = k
+		}
+	}
+	return best
+}
+
+func (c *Case) rssiThrough(x *BandChain, feed *bom.Line) Known[unit.DBm] {
+	var signals []rf.Signal
+	for i := range c.Plan.Signals {
+		s := &c.Plan.Signals[i]
+		ch, ok := channel(s)
+		if !ok || ch.Overlap(x.Own.Downlink).Empty() {
+			if !ok && overlaps(s, x.Own) {
+				return unknown[unit.DBm](s.At, "width_mhz of the signal of "+s.Operator.V+" in "+s.Band.V)
+			}
+			continue
+		}
+		k := c.arriving(s, ch, feed)
+		if !k.OK {
+			return Known[unit.DBm]{Lacks: k.Lacks}
+		}
+		signals = append(signals, k.V)
+	}
+	if len(signals) == 0 {
+		return unknown[unit.DBm](c.JobAt(), "a survey in "+x.Own.Name+" ([[signal]])")
+	}
+	level, ok := rf.CompositeInput(x.Own.Downlink, signals)
+	if !ok {
+		return unknown[unit.DBm](c.JobAt(), "signals in "+x.Own.Name+" whose power can be added up")
+	}
+	return known(level)
+}
+
+// channel is what a surveyed signal occupies; false where its width is not given.
+func channel(s *bom.Signal) (unit.Span, bool) {
+	band, ok := catalog.LookBand(s.Band.V)
+	if !ok || !s.WidthMHz.Set {
+		return unit.Span{}, false
+	}
+	mid := unit.MHz(s.MHz.Or(float64(band.Downlink.Mid())))
+	half := unit.MHz(s.WidthMHz.V) / 2
+	return unit.Span{Lo: mid - half, Hi: mid + half}, true
+}
+
+func overlaps(s *bom.Signal, b catalog.Band) bool {
+	band, ok := catalog.LookBand(s.Band.V)
+	return ok && !band.Downlink.Overlap(b.Downlink).Empty()
+}
+
+// arriving is a surveyed signal as it comes in through a feed.
+func (c *Case) arriving(s *bom.Signal, ch unit.Span, feed *bom.Line) Known[rf.Signal] {
+	blocks, ok := blocksOf(s)
+	if !ok {
+		return unknown[rf.Signal](s.At, "a channel width of 3GPP, and scs_khz for NR, of the signal of "+s.Operator.V+" in "+s.Band.V)
+	}
+	sum := c.Sum(feed, ch.Mid())
+	rng := antennaAt(feed.From, ch.Mid())
+	switch {
+	case !sum.Known():
+		return Known[rf.Signal]{Lacks: sum.Missing}
+	case rng == nil:
+		return unknown[rf.Signal](feed.From.At(), "a gain of "+feed.From.Name()+" at "+ch.Mid().String())
+	}
+	level := unit.DBmOf(s.RSRP.V)
+	if t := s.Through; t != nil {
+		level, ok = rf.AtIsotropic(level, unit.DB(t.GainDBi.V), unit.DB(t.LossDB.V))
+	}
+	gain := unit.DB(rng.Gain.V) - offBeam(feed.From.Device, rng, s.Bearing)
+	return Known[rf.Signal]{V: rf.Signal{RSRP: level, Channel: ch, Blocks: blocks, Gain: gain, Feed: sum.Loss.Least}, OK: ok}
+}
+
+// blocksOf is the number of resource blocks of a signal: NR where the band's name
+// says so, else LTE.
+func blocksOf(s *bom.Signal) (int, bool) {
+	width := unit.MHz(s.WidthMHz.V)
+	if s.Band.V != "" && s.Band.V[0] == 'n' {
+		if !s.SCSkHz.Set {
+			return 0, false
+		}
+		return rf.NRBlocks(width, int(s.SCSkHz.V))
+	}
+	return rf.LTEBlocks(width)
+}
+
+// offBeam is how far the gain lies below the main beam toward a bearing; nothing
+// where the aim or the bearing is not given.
+func offBeam(d *bom.Device, r *catalog.Range, bearing source.Val[float64]) unit.DB {
+	if !d.Row.AimDeg.Set || !bearing.Set {
+		return 0
+	}
+	off, _ := pattern(r).Discrimination(bearing.V-d.Row.AimDeg.V, 0)
+	return off
+}
+
+func pattern(r *catalog.Range) rf.Pattern {
+	return rf.Pattern{Horizontal: r.Beam.V[0], Vertical: r.Beam.V[1], FrontToBack: unit.DB(r.FB.V)}
+}
+
+// mscl is the mobile station coupling loss, least over the server antennas; that
+// of a cradle is the part's own figure.
+func (c *Case) mscl(x *BandChain) Known[unit.DB] {
+	amp := x.Amp.Part.Amplifier
+	switch x.coupling() {
+	case "cradle":
+		if !amp.CouplingDB.Set {
+			return unknown[unit.DB](x.Amp.Part.At, "coupling_db of "+x.Amp.Part.ID)
+		}
+		return known(unit.DB(amp.CouplingDB.V))
+	case "wired":
+		return unknown[unit.DB](x.Amp.At, "a coupling loss of a wired phone")
+	}
+	if len(x.Legs) == 0 {
+		return unknown[unit.DB](x.Amp.At, "a leg to a server antenna")
+	}
+	metres := rf.BuildingPhoneMetres
+	if c.Vehicle() {
+		metres = rf.VehiclePhoneMetres
+	}
+	f := x.Own.Uplink.Mid()
+	var each []unit.DB
+	for _, l := range x.Legs {
+		sum, rng := c.Sum(l, f), antennaAt(l.To, f)
+		if !sum.Known() {
+			return Known[unit.DB]{Lacks: sum.Missing}
+		}
+		if rng == nil {
+			return unknown[unit.DB](l.To.At(), "a gain of "+l.To.Name()+" at "+f.String())
+		}
+		v, ok := rf.MSCL(f, metres, unit.DB(rng.Gain.V), sum.Loss.Least)
+		if !ok {
+			return unknown[unit.DB](l.To.At(), "a coupling loss to "+l.To.Name())
+		}
+		each = append(each, v)
+	}
+	v, ok := rf.LeastCoupling(each...)
+	return Known[unit.DB]{V: v, OK: ok}
+}
+
+// coupling is how phones are coupled: as the plan says, else by antenna.
+func (x *BandChain) coupling() string { return x.Amp.Row.Coupling.Or("antenna") }
+
+// bscl is the coupling loss to the base station as the profile has it found.
+func (c *Case) bscl(x *BandChain) (limits.Input, string) {
+	if c.Profile == nil {
+		return limits.Input{}, ""
+	}
+	return c.Profile.BSCLFrom(limits.Input{}, limits.Figure(x.RSSI.V.Value(), x.RSSI.OK))
+}
+
+// inputs are what limit formulas take in this band.
+func (x *BandChain) inputs() limits.Inputs {
+	in := limits.For(x.Own.Name)
+	in.RSSI = limits.Figure(x.RSSI.V.Value(), x.RSSI.OK)
+	in.MSCL = limits.Figure(float64(x.MSCL.V), x.MSCL.OK)
+	in.BSCL = x.BSCL
+	return in
+}
+
+// query asks for the limits of a kind in one direction of this band.
+func (x *BandChain) query(kind, direction string) limits.Query {
+	amp := x.Amp.Part.Amplifier
+	return limits.Query{Kind: kind, Direction: direction, Class: amp.Class.V, Mobility: amp.Mobility.V,
+		Coupling: x.coupling(), Source: x.BSCLBy, IsolationControl: amp.IsolationControl, Band: x.Own.Name}
+}

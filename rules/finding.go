@@ -1,0 +1,167 @@
+package rules
+
+import (
+	"fmt"
+	"math"
+	"sort"
+
+	"driploop/catalog/source"
+)
+
+// Finding is one thing that a rule has to say, at one place.
+type Finding struct {
+	Rule    *Rule
+	Outcome Outcome
+	Weight  Weight
+	On      string       // what it stands on: "cable.C1", "device.amp", "job"
+	At      source.Place // the key or value at fault
+	Says    string       // what was read and what was expected
+	Do      string       // what to do about it
+	Band    string       // where it is about one band
+	Basis   []string
+	Figures []Figure
+	Related []Related
+	Waived  *Settled // the waiver that covers it, or nil
+	Part    string   // of findings on the catalog: the part concerned
+
+	lighter  Weight  // weighs no more than this
+	override *Weight // of the workspace
+	worse    int     // +1: greater figures are worse; −1: smaller ones; 0: no figure to accept
+}
+
+// Figure is a named number of a finding; its name carries the unit.
+type Figure struct {
+	Name  string
+	Value float64
+}
+
+// Related is another place that belongs to a finding.
+type Related struct {
+	At   source.Place
+	Says string
+}
+
+// Report collects what one rule says about one case.
+type Report struct {
+	rule     *Rule
+	findings []*Finding
+}
+
+// Fails reports what stands against the rule.
+func (r *Report) Fails(at source.Place, on, says string, args ...any) *Finding {
+	return r.add(Fails, at, on, says, args)
+}
+
+// AtWorst reports what holds at nominal figures and not within their tolerance.
+func (r *Report) AtWorst(at source.Place, on, says string, args ...any) *Finding {
+	return r.add(AtWorst, at, on, says, args)
+}
+
+// Unknown reports what could not be assessed because an input is missing.
+func (r *Report) Unknown(at source.Place, on, says string, args ...any) *Finding {
+	return r.add(Unknown, at, on, says, args)
+}
+
+// Advice reports what is worth saying without standing against the rule.
+func (r *Report) Advice(at source.Place, on, says string, args ...any) *Finding {
+	return r.add(Advice, at, on, says, args)
+}
+
+func (r *Report) add(o Outcome, at source.Place, on, says string, args []any) *Finding {
+	f := &Finding{Rule: r.rule, Outcome: o, At: at, On: on, Says: fmt.Sprintf(says, args...)}
+	for _, b := range r.rule.Basis {
+		f.Basis = append(f.Basis, b.String())
+	}
+	r.findings = append(r.findings, f)
+	return f
+}
+
+// Then says what to do about the finding.
+func (f *Finding) Then(do string, args ...any) *Finding {
+	f.Do = fmt.Sprintf(do, args...)
+	return f
+}
+
+// With adds a figure; its name carries the unit.
+func (f *Finding) With(name string, v float64) *Finding {
+	if !math.IsNaN(v) && !math.IsInf(v, 0) {
+		f.Figures = append(f.Figures, Figure{name, v})
+	}
+	return f
+}
+
+// Over adds a figure and the limit above which it may not go. A waiver accepts
+// the figure up to a value.
+func (f *Finding) Over(name string, v float64, limitName string, limit float64) *Finding {
+	f.worse = +1
+	return f.With(name, v).With(limitName, limit)
+}
+
+// Under adds a figure and the limit below which it may not go. A waiver accepts
+// the figure down to a value.
+func (f *Finding) Under(name string, v float64, limitName string, limit float64) *Finding {
+	f.worse = -1
+	return f.With(name, v).With(limitName, limit)
+}
+
+// Beside adds another place that belongs to the finding.
+func (f *Finding) Beside(at source.Place, says string, args ...any) *Finding {
+	if !at.IsZero() {
+		f.Related = append(f.Related, Related{at, fmt.Sprintf(says, args...)})
+	}
+	return f
+}
+
+// Lighter lets the finding weigh no more than w.
+func (f *Finding) Lighter(w Weight) *Finding {
+	f.lighter = w
+	return f
+}
+
+// InBand says which band the finding is about.
+func (f *Finding) InBand(band string) *Finding {
+	f.Band = band
+	return f
+}
+
+// On that row of a document the finding stands, before the rule's own basis.
+func (f *Finding) By(basis string) *Finding {
+	f.Basis = append([]string{basis}, f.Basis...)
+	return f
+}
+
+// Replacing states the basis in place of the rule's own.
+func (f *Finding) Replacing(basis ...string) *Finding {
+	f.Basis = basis
+	return f
+}
+
+// sortFindings puts findings into one total order: file, place, rule, what they
+// stand on, what they say.
+func sortFindings(fs []*Finding) {
+	sort.SliceStable(fs, func(i, j int) bool {
+		a, b := fs[i], fs[j]
+		switch {
+		case a.At.Path() != b.At.Path():
+			return a.At.Path() < b.At.Path()
+		case a.At.From != b.At.From:
+			return a.At.From < b.At.From
+		case a.Rule.Name != b.Rule.Name:
+			return a.Rule.Name < b.Rule.Name
+		case a.On != b.On:
+			return a.On < b.On
+		case a.Band != b.Band:
+			return a.Band < b.Band
+		}
+		return a.Says < b.Says
+	})
+}
+
+// Round is the one rounding through which figures leave the tool: three decimals.
+func Round(v float64) float64 {
+	r := math.Round(v*1000) / 1000
+	if r == 0 {
+		return 0 // never minus zero
+	}
+	return r
+}

@@ -1,0 +1,173 @@
+package rules
+
+import (
+	"errors"
+	"fmt"
+	"sort"
+	"strings"
+	"sync"
+
+	"driploop/catalog"
+	"driploop/catalog/source"
+	"driploop/catalog/unit"
+	"driploop/rules/limits"
+)
+
+// Firm is a workspace without its plans: what all plans have in common, read once.
+type Firm struct {
+	Tree      source.Tree
+	Today     unit.Date
+	Workspace Workspace
+	Catalog   *catalog.Catalog
+	Offers    *catalog.Offers
+	Stock     *catalog.Stock
+	Limits    *limits.Set
+	Problems  []FileProblem // of the workspace's own files
+	PlanFiles []source.Entry
+	Skipped   []source.Entry // files that a pattern names and that are not read
+
+	weights map[string]*Override
+	fits    sync.Map // *catalog.Part to its fitted curve
+}
+
+// FileProblem is a problem of one of the workspace's own files, with the part in
+// whose table it stands, if any.
+type FileProblem struct {
+	source.Problem
+	On, Part string
+}
+
+// Options says how a workspace is read.
+type Options struct {
+	Today unit.Date
+}
+
+// ErrNoWorkspace is returned where a tree has no driploop.toml.
+var ErrNoWorkspace = errors.New("there is no " + WorkspaceFile + " here; a workspace begins with one")
+
+// Load reads a workspace. What is wrong with its files is in Problems; an error
+// means that the tree cannot be read or is no workspace.
+func Load(t source.Tree, o Options) (*Firm, error) {
+	entries, err := t.Files()
+	if err != nil {
+		return nil, err
+	}
+	f := &Firm{Tree: t, Today: o.Today, Offers: &catalog.Offers{}, weights: map[string]*Override{}}
+	if err := f.readWorkspace(entries); err != nil {
+		return nil, err
+	}
+	l := loader{firm: f, entries: entries}
+	l.parts()
+	l.limits()
+	l.offers()
+	l.stock()
+	l.plans()
+	f.checkNames()
+	return f, nil
+}
+
+func (f *Firm) readWorkspace(entries []source.Entry) error {
+	for _, e := range entries {
+		if e.Path != WorkspaceFile {
+			continue
+		}
+		if e.Skip != "" {
+			return fmt.Errorf("%s %s", WorkspaceFile, e.Skip)
+		}
+		src, err := f.Tree.Read(e)
+		if err != nil {
+			return err
+		}
+		doc, problems := parse(e.Path, src)
+		f.note(append(problems, source.Read(doc, f.Workspace.keys)...))
+		for i := range f.Workspace.Weights {
+			w := &f.Workspace.Weights[i]
+			f.weights[w.Rule] = w
+		}
+		return nil
+	}
+	return ErrNoWorkspace
+}
+
+// parse makes a document of the bytes of a file.
+func parse(path string, src []byte) (*source.Doc, []source.Problem) {
+	file, problems := source.NewFile(path, src)
+	doc, more := source.Parse(file)
+	return doc, append(problems, more...)
+}
+
+// note keeps problems of the workspace's own files.
+func (f *Firm) note(problems []source.Problem) {
+	for _, p := range problems {
+		f.Problems = append(f.Problems, FileProblem{Problem: p, On: "file"})
+	}
+}
+
+// checkNames holds that the profile and code that the workspace names exist.
+func (f *Firm) checkNames() {
+	w := &f.Workspace
+	f.checkName(w.Profile, "profile", f.Limits.ProfileIDs())
+	f.checkName(w.Code, "code", f.Limits.CodeIDs())
+}
+
+func (f *Firm) checkName(v source.Val[string], what string, known []string) {
+	if p, bad := unknownName(v, what, known); bad {
+		f.note([]source.Problem{p})
+	}
+}
+
+// unknownName is the problem of a name that none of the known ones is.
+func unknownName(v source.Val[string], what string, known []string) (source.Problem, bool) {
+	if !v.Set {
+		return source.Problem{}, false
+	}
+	for _, k := range known {
+		if k == v.V {
+			return source.Problem{}, false
+		}
+	}
+	do := "name one of " + strings.Join(known, ", ")
+	if near := source.Nearest(v.V, known); near != "" {
+		do = "did you mean " + near + "?"
+	}
+	return source.Problem{Kind: source.Value, At: v.At, Says: "there is no " + what + " " + source.Quote(v.V), Do: do}, true
+}
+
+// Override is the weight that the workspace gives a rule, or nil.
+func (f *Firm) Override(rule string) *Override { return f.weights[rule] }
+
+// Overrides lists what the workspace changes of what the tool brings along, in
+// words that every output prints.
+func (f *Firm) Overrides() []string {
+	var out []string
+	for _, w := range f.Workspace.Weights {
+		if w.Weight.Set {
+			out = append(out, fmt.Sprintf("%s weighs %s here: %s", w.Rule, w.Weight.V, w.Because.Or("no reason given")))
+		}
+	}
+	for _, name := range f.Limits.Overrides() {
+		out = append(out, name+" is the workspace's own, not the embedded one")
+	}
+	for _, id := range f.Catalog.Overridden() {
+		out = append(out, "part "+id+" is the workspace's own, not the generic one")
+	}
+	sort.Strings(out)
+	return out
+}
+
+func unknownRule(name string) error {
+	if near := source.Nearest(name, Names()); near != "" {
+		return fmt.Errorf("there is no rule %s; did you mean %s?", source.Quote(name), near)
+	}
+	return fmt.Errorf("there is no rule %s", source.Quote(name))
+}
+
+// OnHand is how many of a part lie on the shelf, in words for a finding: "NC-10-NM
+// (26 on hand)".
+func (f *Firm) OnHand(p *catalog.Part) string {
+	qty, _ := f.Stock.OnHand(p.ID)
+	if qty.IsZero() {
+		return p.ID + " (none on hand)"
+	}
+	return p.ID + " (" + qty.String() + " on hand)"
+}

@@ -1,0 +1,281 @@
+package rules
+
+import (
+	"context"
+	"fmt"
+	"runtime"
+	"sort"
+
+	"golang.org/x/sync/errgroup"
+
+	"driploop/bom"
+	"driploop/catalog/source"
+)
+
+// Result is what an inspection of a workspace found.
+type Result struct {
+	At        string // the tree: "worktree", ":index", or a revision
+	Today     string
+	Overrides []string
+	Notices   []string // what was left out, and why
+	Workspace []*Finding
+	Plans     []*PlanResult
+	Counts
+}
+
+// PlanResult is what an inspection of one plan found.
+type PlanResult struct {
+	Path, Job     string
+	Title, Stage  string
+	Profile, Code string
+	Findings      []*Finding
+	Runs          []Runs   // gain that runs, per band
+	Parts         []string // parts that the plan names, by ID
+	Cautions      []string
+	Counts
+}
+
+// Runs is the gain that runs in one band.
+type Runs struct {
+	Device, Band string
+	Up, Down     *float64 // dB; nil: not assessed
+	BoundBy      string
+}
+
+// Counts counts findings by weight; what a waiver covers is counted apart.
+type Counts struct {
+	Holds, Punch, Notes, Waived int
+	Unknown                     int // of all, how many are not assessed
+}
+
+func (n *Counts) count(f *Finding) {
+	if f.Outcome == Unknown {
+		n.Unknown++
+	}
+	switch {
+	case f.Waived != nil:
+		n.Waived++
+	case f.Weight == Hold:
+		n.Holds++
+	case f.Weight == Punch:
+		n.Punch++
+	default:
+		n.Notes++
+	}
+}
+
+func (n *Counts) add(m Counts) {
+	n.Holds += m.Holds
+	n.Punch += m.Punch
+	n.Notes += m.Notes
+	n.Waived += m.Waived
+	n.Unknown += m.Unknown
+}
+
+// sideBySide is how many files are worked on at a time.
+func sideBySide() int { return max(1, runtime.GOMAXPROCS(0)) }
+
+// Inspect runs the rules over the named plans, or over all where none is named.
+// The same workspace and day give the same result, in the same order.
+func (f *Firm) Inspect(ctx context.Context, plans []source.Entry) (*Result, error) {
+	whole := plans == nil
+	if whole {
+		plans = f.PlanFiles
+	}
+	r := &Result{At: f.Tree.Name(), Today: f.Today.String(), Overrides: f.Overrides()}
+	r.Plans = make([]*PlanResult, len(plans))
+	g, ctx := errgroup.WithContext(ctx)
+	g.SetLimit(sideBySide())
+	for i, e := range plans {
+		g.Go(func() error {
+			r.Plans[i] = f.inspectPlan(e)
+			return ctx.Err()
+		})
+	}
+	if err := g.Wait(); err != nil {
+		return nil, err
+	}
+	r.Workspace = f.inspectFiles()
+	if !whole {
+		r.keepTouched()
+	}
+	for _, e := range f.Skipped {
+		r.Notices = append(r.Notices, fmt.Sprintf("%s is not read: it %s", e.Path, e.Skip))
+	}
+	for _, w := range r.Workspace {
+		r.Counts.count(w)
+	}
+	for _, p := range r.Plans {
+		r.Counts.add(p.Counts)
+	}
+	return r, nil
+}
+
+// keepTouched drops the findings on the workspace's own files that stand on none
+// of the plans at hand, and says how many.
+func (r *Result) keepTouched() {
+	used, holes := map[string]bool{}, false
+	for _, p := range r.Plans {
+		for _, id := range p.Parts {
+			used[id] = true
+		}
+		for _, f := range p.Findings {
+			holes = holes || f.Rule.Name == "part/unknown"
+		}
+	}
+	var kept []*Finding
+	for _, f := range r.Workspace {
+		fileWide := f.Part == "" && (holes || f.At.Path() == WorkspaceFile)
+		if used[f.Part] || fileWide {
+			kept = append(kept, f)
+		}
+	}
+	if n := len(r.Workspace) - len(kept); n > 0 {
+		r.Notices = append(r.Notices, fmt.Sprintf("%d findings on the workspace's own files touch none of these plans and are left out; inspect without naming a plan shows them", n))
+	}
+	r.Workspace = kept
+}
+
+// inspectFiles runs the rules over the workspace's own files.
+func (f *Firm) inspectFiles() []*Finding {
+	var out []*Finding
+	for _, rule := range Rules {
+		if rule.CheckFiles == nil {
+			continue
+		}
+		r := &Report{rule: rule}
+		rule.CheckFiles(f, r)
+		out = append(out, f.weigh(r, "")...)
+	}
+	sortFindings(out)
+	return out
+}
+
+// inspectPlan runs the rules over one plan and lets go of it.
+func (f *Firm) inspectPlan(e source.Entry) *PlanResult {
+	c, broken := f.Case(e)
+	res := &PlanResult{Path: e.Path, Job: bom.JobOf(e.Path)}
+	if c.Plan != nil {
+		res.Title, res.Stage = c.Plan.Job.Title.V, c.Stage()
+		res.Profile, res.Code = c.ProfileName(), c.CodeName()
+	}
+	res.Findings = c.run(broken || c.Stage() == "cancelled")
+	for _, x := range res.Findings {
+		res.count(x)
+	}
+	if !broken {
+		res.Parts = c.parts()
+		res.Runs = c.runs()
+		res.Cautions = c.cautions(res.Findings)
+	}
+	return res
+}
+
+// Case reads one plan into a case. broken says that the file could not be read
+// whole; then only its own problems stand on it.
+func (f *Firm) Case(e source.Entry) (c *Case, broken bool) {
+	doc, problems := readDoc(f.Tree, e)
+	if doc == nil {
+		plan := &bom.Plan{ID: bom.JobOf(e.Path), File: &source.File{Path: e.Path}}
+		return &Case{Firm: f, Plan: plan, Problems: problems}, true
+	}
+	plan, more := bom.ReadPlan(doc)
+	problems = append(problems, more...)
+	if doc.Ended {
+		return &Case{Firm: f, Plan: plan, Problems: problems}, true
+	}
+	return newCase(f, plan, problems), false
+}
+
+// run lets every rule look at the case, settles the waivers, and returns the
+// findings in their order. filesOnly leaves all but the file rules out.
+func (c *Case) run(filesOnly bool) []*Finding {
+	var out []*Finding
+	check := func(rule *Rule) {
+		r := &Report{rule: rule}
+		rule.Check(c, r)
+		out = append(out, c.Firm.weigh(r, c.Stage())...)
+	}
+	for _, rule := range Rules {
+		if rule.Check != nil && rule != paperWaiver && (!filesOnly || rule.Area() == "file") {
+			check(rule)
+		}
+	}
+	sortFindings(out)
+	if !filesOnly {
+		c.Waivers = settle(c.Plan.Waivers, out, c.Today())
+		check(paperWaiver)
+		sortFindings(out)
+	}
+	return out
+}
+
+// weigh gives the findings of a report their weights; what weighs nothing drops out.
+func (f *Firm) weigh(r *Report, stage string) []*Finding {
+	var out []*Finding
+	own := f.Override(r.rule.Name)
+	for _, x := range r.findings {
+		if own != nil && own.Weight.Set {
+			w := weightNamed(own.Weight.V)
+			x.override = &w
+		}
+		if x.Weight = r.rule.weigh(x, stage); x.override != nil && *x.override == Off {
+			continue
+		}
+		out = append(out, x)
+	}
+	return out
+}
+
+func weightNamed(word string) Weight {
+	for w, s := range weightWords {
+		if s == word {
+			return Weight(w)
+		}
+	}
+	return Hold
+}
+
+// parts lists the parts that the plan names, by ID.
+func (c *Case) parts() []string {
+	seen := map[string]bool{}
+	note := func(v source.Val[string]) {
+		if v.Set {
+			seen[v.V] = true
+		}
+	}
+	g := c.Graph
+	for _, d := range g.Devices {
+		note(d.Row.Part)
+	}
+	for _, x := range g.Cables {
+		note(x.Row.Part)
+		for _, e := range x.Ends {
+			if e.Fit != nil {
+				seen[e.Fit.ID] = true
+			}
+		}
+		for _, t := range x.Row.Through.V {
+			note(t)
+		}
+	}
+	for _, d := range g.Data {
+		note(d.Row.Part)
+	}
+	for _, w := range g.Wires {
+		note(w.Row.Part)
+		note(w.Row.Fuse)
+	}
+	for _, b := range g.Bonds {
+		note(b.Row.Part)
+	}
+	for i := range c.Plan.Extras {
+		note(c.Plan.Extras[i].Part)
+	}
+	var out []string
+	for id := range seen {
+		out = append(out, id)
+	}
+	sort.Strings(out)
+	return out
+}

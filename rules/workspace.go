@@ -1,0 +1,106 @@
+package rules
+
+import (
+	"driploop/bom"
+	"driploop/catalog"
+	"driploop/catalog/source"
+)
+
+// WorkspaceFile is the name of the file at the root of every workspace.
+const WorkspaceFile = "driploop.toml"
+
+// Workspace is what driploop.toml says.
+type Workspace struct {
+	Name     source.Val[string]
+	Plans    source.Val[catalog.Words] // patterns of file names
+	Catalog  source.Val[catalog.Words]
+	Offers   source.Val[catalog.Words]
+	Stock    source.Val[catalog.Words]
+	Profiles source.Val[catalog.Words]
+	Profile  source.Val[string]
+	Code     source.Val[string]
+	Currency source.Val[string]
+	Lengths  source.Val[string]
+	House    House
+	Weights  []Override
+	Premises catalog.Premises
+}
+
+// House is what the firm asks of itself.
+type House struct {
+	bom.House
+	FeedLossDB        source.Val[float64]
+	LegLossDB         source.Val[float64]
+	CableLossDB       source.Val[float64]
+	IsolationMarginDB source.Val[float64]
+}
+
+// Override changes what a plain failure of a rule weighs.
+type Override struct {
+	Rule    string
+	At      source.Place
+	Weight  source.Val[string]
+	Because source.Val[string]
+}
+
+func (w *Workspace) keys(k *source.Keys) {
+	source.One(k, w, "workspace", (*Workspace).head, "what belongs to the workspace")
+	source.One(k, &w.House, "house", (*House).keys, "what the firm asks of itself")
+	rows := []source.Pick[Override]{}
+	source.Each(k, &rows, "rule", ruleName, source.Inline((*Override).keys), "what plain failures of a rule weigh")
+	for _, r := range rows {
+		r.Val.V.Rule, r.Val.V.At = r.Name, r.At
+		w.Weights = append(w.Weights, r.Val.V)
+	}
+	w.Premises.Keys(k)
+}
+
+func (w *Workspace) head(k *source.Keys) {
+	patterns := source.ListOf(source.Text)
+	source.Opt(k, &w.Name, "name", source.Text, "the firm")
+	source.Opt(k, &w.Plans, "plans", patterns, "plan files; absent: plans/**/*.toml")
+	source.Opt(k, &w.Catalog, "catalog", patterns, "catalog files, beside the generic catalog; absent: catalog/**/*.toml")
+	source.Opt(k, &w.Offers, "offers", patterns, "offer files; absent: offers/**/*.toml")
+	source.Opt(k, &w.Stock, "stock", patterns, "stock sheets and orders; absent: stock/**/*.toml")
+	source.Opt(k, &w.Profiles, "profiles", patterns, "limit profiles and codes of the firm; absent: profiles/**/*.toml")
+	source.Opt(k, &w.Profile, "profile", source.Name, "limit profile where a plan names none")
+	source.Opt(k, &w.Code, "code", source.Name, "grounding and safety code where a plan names none")
+	source.Opt(k, &w.Currency, "currency", source.Text, "currency of all prices")
+	source.Opt(k, &w.Lengths, "lengths", source.OneOf("m", "ft"), "unit in which lengths are printed; absent: m")
+}
+
+func (h *House) keys(k *source.Keys) {
+	h.House.Keys(k)
+	db := source.Between(0, 100, "dB")
+	source.Opt(k, &h.FeedLossDB, "feed_loss_db", db, "greatest loss of a feed; absent: 6")
+	source.Opt(k, &h.LegLossDB, "leg_loss_db", db, "greatest loss of a leg's cables and connectors, splitters left out; absent: 8")
+	source.Opt(k, &h.CableLossDB, "cable_loss_db", db, "greatest loss of one cable; absent: 5")
+	source.Opt(k, &h.IsolationMarginDB, "isolation_margin_db", db, "isolation above the gain that is set; absent: 15")
+}
+
+func (o *Override) keys(k *source.Keys) {
+	source.Need(k, &o.Weight, "weight", source.OneOf("hold", "punch", "note", "off"), "what a plain failure weighs")
+	source.Need(k, &o.Because, "because", source.Text, "why the firm weighs it so")
+}
+
+func ruleName(name string) error {
+	if Find(name) == nil {
+		return unknownRule(name)
+	}
+	return nil
+}
+
+// DescribeWorkspace documents driploop.toml.
+func DescribeWorkspace() *source.Record { return source.Describe((&Workspace{}).keys) }
+
+// patterns lists the patterns of one sort of file, or the default for it.
+func patterns(v source.Val[catalog.Words], sort string) []string {
+	if !v.Set {
+		return []string{sort + "/**/*.toml"}
+	}
+	var out []string
+	for _, p := range v.V {
+		out = append(out, p.V)
+	}
+	return out
+}
