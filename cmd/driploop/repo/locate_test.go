@@ -45,7 +45,7 @@ func TestReadForHook(t *testing.T) {
 }
 
 func TestHookSeesWhatIsCommitted(t *testing.T) {
-	prepare := func() work {
+	prepare := func(t *testing.T) work {
 		top := folder(t)
 		w := work{t, top.path("main")}
 		top.git("init", "-q", "main")
@@ -55,25 +55,25 @@ func TestHookSeesWhatIsCommitted(t *testing.T) {
 	hooksOf := func(w work) string { return w.path(".git/hooks") }
 
 	t.Run("staged in part", func(t *testing.T) {
-		w := prepare()
+		w := prepare(t)
 		w.write("demo/a.toml", "staged")
 		w.git("add", "demo/a.toml")
 		w.write("demo/a.toml", "later", "demo/b.toml", "later")
 		same(t, "index", inHook(t, w, hooksOf(w), "demo"), []string{"a.toml: staged", "b.toml: b"})
 	})
 	t.Run("commit all", func(t *testing.T) { // GIT_INDEX_FILE is index.lock
-		w := prepare()
+		w := prepare(t)
 		w.write("demo/a.toml", "new")
 		same(t, "index", inHook(t, w, hooksOf(w), "demo", "-a"), []string{"a.toml: new", "b.toml: b"})
 	})
 	t.Run("commit a path", func(t *testing.T) { // GIT_INDEX_FILE is next-index-N.lock
-		w := prepare()
+		w := prepare(t)
 		w.write("demo/a.toml", "new", "demo/b.toml", "staged, not committed")
 		w.git("add", "demo/b.toml")
 		same(t, "index", inHook(t, w, hooksOf(w), "demo", "demo/a.toml"), []string{"a.toml: new", "b.toml: b"})
 	})
 	t.Run("linked work tree", func(t *testing.T) { // GIT_DIR too
-		w := prepare()
+		w := prepare(t)
 		hooks := hooksOf(w)
 		w.git("worktree", "add", "-q", "../linked")
 		w = work{t, w.path("../linked")}
@@ -81,12 +81,12 @@ func TestHookSeesWhatIsCommitted(t *testing.T) {
 		same(t, "index", inHook(t, w, hooks, "demo", "-a"), []string{"a.toml: new", "b.toml: b"})
 	})
 	t.Run("workspace in another repository", func(t *testing.T) {
-		w, other := prepare(), repository(t, "o.toml", "o")
+		w, other := prepare(t), repository(t, "o.toml", "o")
 		w.write("demo/a.toml", "new")
 		same(t, "index", inHook(t, w, hooksOf(w), other.dir, "-a"), []string{"o.toml: o"})
 	})
 	t.Run("workspace in a submodule", func(t *testing.T) {
-		w, other := prepare(), repository(t, "s.toml", "s")
+		w, other := prepare(t), repository(t, "s.toml", "s")
 		w.git("submodule", "--quiet", "add", other.dir, "sub")
 		same(t, "index", inHook(t, w, hooksOf(w), "sub"), []string{"s.toml: s"})
 	})
