@@ -8,9 +8,9 @@ type Kind struct {
 	Means  string
 }
 
-// Kinds lists what rows can limit, in the order of their documentation. The last
-// three are shown by certification and not by a plan; their rows are there to be
-// read beside the others.
+// Kinds lists what rows can limit, in the order of their documentation. Noise as
+// radiated power and intermodulation are shown by certification, not by a plan;
+// their rows stand there to be read beside the others.
 var Kinds = []Kind{
 	{"gain", "G", "dB", "from the amplifier's own input port to its output port"},
 	{"system_gain", "G", "dB", "as the instrument defines it, with the antennas and cables it names"},
