@@ -158,7 +158,11 @@ func (l *Level) Explain() string {
 	var out []string
 	for _, s := range l.Segments {
 		density := plain(s.A.V)
-		if s.B.V != 0 {
+		switch s.B.V {
+		case 0:
+		case 1:
+			density += "·f/MHz"
+		default:
 			density += "·(f/MHz)^" + plain(s.B.V)
 		}
 		out = append(out, s.MHz.V.String()+" "+density)

@@ -71,7 +71,7 @@ func TestDutiesExplainThemselves(t *testing.T) {
 		{p.Papers[0].Explain(), "each licensee whose network is used has consented before operation; 47 CFR 20.21(a)(1) (as amended by FCC 14-138 and FCC 18-35), read"},
 		{p.Spectrum[3].Explain(), "AWS-1, uplink 1710–1755 MHz, downlink 2110–2155 MHz; 47 CFR 20.21(a)(4), part 27 (as amended by FCC 14-138 and FCC 18-35), read (the service is named in the clause; its edges are from memory)"},
 		{p.Heights[0].Explain(), "antennas of fixed stations that transmit on 1710–1755 MHz stand at most 10 m above ground; 47 CFR 27.50(d)(4) "},
-		{p.Level("general").Explain(), "S in W/m², averaged over 30 min: 30–300 MHz 2, 300–1500 MHz 0.00666666666666667·(f/MHz)^1, 1500–100000 MHz 10; 47 CFR 1.1310"},
+		{p.Level("general").Explain(), "S in W/m², averaged over 30 min: 30–300 MHz 2, 300–1500 MHz 0.00666666666666667·f/MHz, 1500–100000 MHz 10; 47 CFR 1.1310"},
 		{p.Limits[2].Explain(), "uplink: P ≤ 30 dBm; 47 CFR 20.21(e)(8)(i)(D) (as amended by FCC 14-138 and FCC 18-35), read in a copy of the rule elsewhere, not in the clause itself (1 W)"},
 	} {
 		if !strings.HasPrefix(c.got, c.want) {
