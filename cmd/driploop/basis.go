@@ -1,0 +1,6 @@
+package main
+
+import "github.com/spf13/cobra"
+
+func (c *Command) basis() *cobra.Command { return &cobra.Command{Use: "basis"} }
+func (c *Command) parts() *cobra.Command { return &cobra.Command{Use: "parts"} }

@@ -1,0 +1,152 @@
+// Command driploop checks install plans for cellular antennas, signal boosters
+// and routers, and takes off what they need.
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"time"
+
+	"github.com/spf13/cobra"
+	"golang.org/x/term"
+
+	"driploop/cmd/driploop/show"
+)
+
+// Command is one call of the program with everything it touches.
+type Command struct {
+	Stdin          io.Reader
+	Stdout, Stderr io.Writer
+	Now            func() time.Time
+	Env            func(string) string
+
+	shared shared
+	held   bool // a hold stands
+}
+
+// shared are the flags that all commands have.
+type shared struct {
+	root, as, out, at string
+	today, color      string
+	quiet             bool
+}
+
+// The exit statuses.
+const (
+	statusClear  = 0 // nothing holds work up
+	statusHeld   = 1 // a hold stands
+	statusCall   = 2 // the call or an input can't be used
+	statusFailed = 3 // the tool failed; also a failed write
+)
+
+// failure is an error of the tool itself, not of the call or its input.
+type failure struct{ error }
+
+func (f failure) Unwrap() error { return f.error }
+
+// Main runs the program and returns its exit status.
+func (c *Command) Main(args []string) int {
+	root := c.tree()
+	root.SetArgs(args)
+	root.SetIn(c.Stdin)
+	root.SetOut(c.Stdout)
+	root.SetErr(c.Stderr)
+	err := root.ExecuteContext(context.Background())
+	switch {
+	case err == nil && c.held:
+		return statusHeld
+	case err == nil:
+		return statusClear
+	}
+	c.say("%s", err)
+	if errors.As(err, new(failure)) {
+		return statusFailed
+	}
+	return statusCall
+}
+
+// say writes a message of the tool to standard error.
+func (c *Command) say(format string, args ...any) {
+	fmt.Fprintf(c.Stderr, "driploop: %s\n", show.Clean(fmt.Sprintf(format, args...)))
+}
+
+// tree is all commands.
+func (c *Command) tree() *cobra.Command {
+	root := &cobra.Command{
+		Use:           "driploop COMMAND [PLAN…]",
+		Short:         "checks install plans for cellular antennas, boosters and routers",
+		SilenceErrors: true,
+		SilenceUsage:  true,
+		Version:       version,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			if len(args) > 0 {
+				return fmt.Errorf("there is no command %q", args[0])
+			}
+			return cmd.Help()
+		},
+	}
+	root.SetVersionTemplate("driploop {{.Version}}\n")
+	f := root.PersistentFlags()
+	f.StringVar(&c.shared.root, "root", ".", "folder of the workspace")
+	f.StringVar(&c.shared.as, "as", "", "form of the output")
+	f.StringVar(&c.shared.out, "out", "", "write to a file, whole or not at all")
+	f.StringVar(&c.shared.at, "at", "", "read the workspace from a git revision, or :index for what is staged")
+	f.StringVar(&c.shared.today, "today", "", "the day to go by, like 2026-12-01 (default: today, UTC)")
+	f.StringVar(&c.shared.color, "color", "auto", "auto, always or never")
+	f.BoolVar(&c.shared.quiet, "quiet", false, "no messages, and of findings only holds")
+	root.AddCommand(c.inspect(), c.takeoff(), c.basis(), c.parts())
+	return root
+}
+
+// form is the form asked for, or the first of those that the command has.
+func (c *Command) form(forms ...string) (string, error) {
+	if c.shared.as == "" {
+		return forms[0], nil
+	}
+	for _, f := range forms {
+		if f == c.shared.as {
+			return f, nil
+		}
+	}
+	return "", fmt.Errorf("--as %s: this command has %s", c.shared.as, joinWords(forms))
+}
+
+func joinWords(words []string) string {
+	out := ""
+	for i, w := range words {
+		switch {
+		case i == 0:
+		case i == len(words)-1:
+			out += " and "
+		default:
+			out += ", "
+		}
+		out += w
+	}
+	return out
+}
+
+// page is how wide text may be and whether it has colour.
+func (c *Command) page() (show.Page, error) {
+	p := show.Page{Width: 80}
+	f, ok := c.Stdout.(*os.File)
+	terminal := ok && c.shared.out == "" && term.IsTerminal(int(f.Fd()))
+	if terminal {
+		if w, _, err := term.GetSize(int(f.Fd())); err == nil && w > 0 {
+			p.Width = min(max(w, 32), 100)
+		}
+	}
+	switch c.shared.color {
+	case "auto":
+		p.Color = terminal && c.Env("NO_COLOR") == "" && c.Env("TERM") != "dumb"
+	case "always":
+		p.Color = true
+	case "never":
+	default:
+		return p, fmt.Errorf("--color %s: it is auto, always or never", c.shared.color)
+	}
+	return p, nil
+}

@@ -1,0 +1,15 @@
+package main
+
+import (
+	"os"
+	"os/signal"
+	"syscall"
+	"time"
+)
+
+func main() {
+	// A reader that goes away is a failed write like any other, not a silent end.
+	signal.Ignore(syscall.SIGPIPE)
+	c := &Command{Stdin: os.Stdin, Stdout: os.Stdout, Stderr: os.Stderr, Now: time.Now, Env: os.Getenv}
+	os.Exit(c.Main(os.Args[1:]))
+}
