@@ -1,6 +1,11 @@
 package catalog
 
-import "testing"
+import (
+	"strings"
+	"testing"
+
+	"driploop/catalog/unit"
+)
 
 func TestBookReels(t *testing.T) {
 	runStock(t, []stockCase{
@@ -268,6 +273,40 @@ bin CX-10 van-1 22 m
 tag R-107 CX-10 van-1 22 m
 issued x CX-10 30 m
 `},
+		{name: "carried on before it was read", files: `
+-- counts/a.toml --
+sheet = { on = 2026-11-20, where = "shop" }
+reel = [{ tag = "R-107", part = "CX-10", left = "52 m" }]
+-- issue/x-1.toml --
+sheet = { on = 2026-11-21, job = "x" }
+move = [{ tag = "R-107", from = "shop", to = "job" }]
+-- back/c.toml --
+sheet = { on = 2026-11-22, job = "x" }
+move = [{ tag = "R-107", from = "van-1", to = "shop" }, { tag = "R-107", from = "job", to = "van-1" }]
+-- counts/d.toml --
+sheet = { on = 2026-11-23, where = "shop" }
+reel = [{ tag = "R-107", part = "CX-10", left = "22 m" }]
+`, want: `
+bin CX-10 shop 22 m
+tag R-107 CX-10 shop 22 m
+issued x CX-10 30 m
+`},
+		{name: "back where it began on one day", files: `
+-- counts/a.toml --
+sheet = { on = 2026-11-20, where = "van-1" }
+reel = [{ tag = "R-107", part = "CX-10", left = "52 m" }]
+-- move/b.toml --
+sheet = { on = 2026-11-21, job = "x" }
+move = [
+  { tag = "R-107", from = "dock", to = "van-1" },
+  { tag = "R-107", from = "shop", to = "dock" },
+  { tag = "R-107", from = "van-1", to = "job" },
+  { tag = "R-107", from = "van-1", to = "shop" },
+]
+`, want: `
+tag R-107 CX-10 job x 52 m
+issued x CX-10 52 m
+`},
 		{name: "read on a shelf though nobody booked it back", files: `
 -- counts/a.toml --
 sheet = { on = 2026-11-20, where = "shop" }
@@ -380,6 +419,47 @@ bin CX-10 van-1 12 m
 tag R-107 CX-10 shop 18 m
 tag R-108 CX-10 van-1 12 m
 `},
+		{name: "of the first of two reels that were cut for one line", files: `
+-- counts/a.toml --
+sheet = { on = 2026-11-20, where = "shop" }
+reel = [{ tag = "R-1", part = "CX-10", left = "30 m" }, { tag = "R-2", part = "CX-10", left = "30 m" }]
+-- issue/x-1.toml --
+sheet = { on = 2026-11-21, job = "x" }
+cut = [{ tag = "R-1", length = "20 m", cable = "C1" }]
+-- issue/x-2.toml --
+sheet = { on = 2026-11-22, job = "x" }
+cut = [{ tag = "R-2", length = "25 m", cable = "C1" }]
+-- back/b.toml --
+sheet = { on = 2026-11-23 }
+reel = [{ tag = "x-C1", part = "CX-10", where = "shop", left = "19 m", of = "R-1" }]
+`, want: `
+bin CX-10 shop 34 m
+tag R-1 CX-10 shop 10 m
+tag R-2 CX-10 shop 5 m
+tag x-C1 CX-10 shop 19 m
+issued x CX-10 26 m
+piece x/C1 1 m of R-1
+piece x/C1 25 m of R-2
+`},
+		{name: "its row says which of two jobs its tag could mean", files: `
+-- counts/a.toml --
+sheet = { on = 2026-11-20, where = "shop" }
+reel = [{ tag = "R-1", part = "CX-10", left = "30 m" }]
+-- issue/x-1.toml --
+sheet = { on = 2026-11-21 }
+cut = [{ tag = "R-1", length = "10 m", job = "x", cable = "y-C1" }, { tag = "R-1", length = "10 m", job = "x-y", cable = "C1" }]
+-- back/b.toml --
+sheet = { on = 2026-11-23, job = "x" }
+reel = [{ tag = "x-y-C1", part = "CX-10", where = "shop", left = "4 m", of = "R-1" }]
+`, want: `
+bin CX-10 shop 14 m
+tag R-1 CX-10 shop 10 m
+tag x-y-C1 CX-10 shop 4 m
+issued x CX-10 6 m
+issued x-y CX-10 10 m
+piece x/y-C1 6 m of R-1
+piece x-y/C1 10 m of R-1
+`},
 		{name: "of nothing, and of another part", files: `
 -- counts/a.toml --
 sheet = { on = 2026-11-20, where = "shop" }
@@ -443,6 +523,37 @@ bin AMP-W van-1 1
 serial AMP-W A1 [van-1]
 serial AMP-W A2 [shop]
 note jump c:2+a:2 AMP-W shop 2/1
+`},
+		{name: "a count that names some of its pieces says nothing of the others", files: counted + `
+-- counts/b.toml --
+sheet = { on = 2026-11-20, where = "shop" }
+count = [{ part = "AMP-W", qty = 2, serials = ["A2"] }]
+`, want: `
+bin AMP-W shop 2
+serial AMP-W A1 [shop]
+serial AMP-W A2 [shop]
+`},
+		{name: "a complete count that does not list the part finds none of them", files: counted + `
+-- counts/b.toml --
+sheet = { on = 2026-11-20, where = "shop", complete = true }
+`, want: `
+bin AMP-W shop 0
+note jump b:1+a:2 AMP-W shop 2/0
+`},
+		{name: "one that arrives a second time", files: counted + `
+-- in/PO-1-1.toml --
+sheet = { on = 2026-11-20, order = "PO-1", where = "dock" }
+move = [{ part = "AMP-W", qty = 1, serials = ["A1"] }]
+-- orders/PO-1.toml --
+order = { vendor = "tern", sent = 2026-11-01 }
+line = [{ part = "AMP-W", packs = 1 }]
+`, want: `
+bin AMP-W dock 1
+bin AMP-W shop 2
+serial AMP-W A1 [dock shop]
+serial AMP-W A2 [shop]
+open PO-1 AMP-W 0
+note clash PO-1-1:2+a:2 AMP-W A1 dock shop place
 `},
 		{name: "one serial issued to two jobs", files: counted + `
 -- issue/x-1.toml --
@@ -553,6 +664,29 @@ tag R-2 CX-7 dock 70 m
 open PO-33 CX-10 0
 open PO-33 CX-10 76.2 m
 `},
+		{name: "the pack decides, not what is due first", files: `
+-- orders/PO-33.toml --
+order = { vendor = "tern", sent = 2026-11-01, to = "shop" }
+line = [
+  { part = "CX-10", pack = "152.4 m", packs = 1, due = 2026-12-05 },
+  { part = "CX-10", pack = "76.2 m", packs = 1, due = 2026-12-09 },
+]
+-- in/PO-33-1.toml --
+sheet = { on = 2026-11-30, order = "PO-33", where = "dock" }
+reel = [{ tag = "R-1", part = "CX-10", left = "76.2 m" }]
+`, want: `
+bin CX-10 dock 76.2 m
+tag R-1 CX-10 dock 76.2 m
+open PO-33 CX-10 152.4 m
+open PO-33 CX-10 0
+`},
+		{name: "a second file for an order adds nothing", files: order + strings.Replace(order, "orders/PO-31", "orders/old/PO-31", 1), want: `
+open PO-31 NC-10-NM 50
+open PO-31 NC-10-NM 10
+open PO-31 AMP-W 1
+open PO-31 PS-12 2
+note overdue PO-31:4+PO-31:4 NC-10-NM shop PO-31 10/0
+`},
 		{name: "names an order leads with", files: `
 -- orders/PO-34.toml --
 order = { vendor = "tern", sent = 2026-11-01, to = "shpo" }
@@ -573,5 +707,35 @@ line = [{ part = "NC-10-NM", pack = 25, packs = 2 }, { part = "NC-10-NF", packs 
 `}.book(t)
 	if q, lines := s.Inbound("NC-10-NM"); q != (Quantity{Each: 50}) || len(lines) != 1 {
 		t.Errorf("%s inbound on %d lines", q, len(lines))
+	}
+}
+
+// What is known of a reel besides its length.
+func TestBookTagKnows(t *testing.T) {
+	s := stockCase{files: `
+-- in/PO-1-1.toml --
+sheet = { on = 2026-11-20, order = "PO-1", where = "dock" }
+reel = [
+  { tag = "R-1", part = "CX-10", left = "76.2 m", how = "label", sealed = true },
+  { tag = "R-2", part = "CX-10", left = "76.2 m", how = "label", sealed = true },
+]
+-- issue/x-1.toml --
+sheet = { on = 2026-11-21, job = "x" }
+cut = [{ tag = "R-2", length = "20 m", cable = "C1" }]
+-- back/b.toml --
+sheet = { on = 2026-11-22 }
+reel = [{ tag = "x-C1", part = "CX-10", where = "shop", left = "4 m", of = "R-2", how = "guess" }]
+`}.book(t)
+	day := func(d int) Moment { return Moment{Day: unit.Date{Year: 2026, Month: 11, Day: d}} }
+	for _, want := range []Tag{
+		{ID: "R-1", Where: "dock", Kind: "inbound", Left: 76200, How: "label", Sealed: true, Order: "PO-1", Read: day(20)},
+		{ID: "R-2", Where: "dock", Kind: "inbound", Left: 56200, How: "label", Order: "PO-1", Read: day(20)},
+		{ID: "x-C1", Where: "shop", Kind: "shop", Left: 4000, How: "guess", Of: "R-2", Read: day(22)},
+	} {
+		got := *s.Tag(want.ID)
+		want.Part, want.At = "CX-10", got.At
+		if got != want {
+			t.Errorf("got  %+v\nwant %+v", got, want)
+		}
 	}
 }

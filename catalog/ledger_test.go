@@ -443,7 +443,7 @@ count = [
 cut = [{ tag = "R-9", length = "2 m", job = "x", cable = "C1" }]
 -- in/b.toml --
 sheet = { on = 2026-11-20, order = "PO-9", where = "dock" }
-move = [{ part = "NC-10-NM", qty = 25 }]
+move = [{ part = "NC-10-NM", qty = 20 }, { part = "NC-10-NM", qty = 5 }]
 `, want: `
 bin NC-10-NM dock 25
 bin NC-10-NM van1 6
@@ -464,6 +464,19 @@ count = [{ part = "NC-10-NM", qty = 6 }]
 `, want: `
 bin NC-10-NM shop 6
 bin NC-10-NM van-2 0
+`},
+		{name: "older than the complete count that did not find the tag", files: `
+-- counts/a.toml --
+sheet = { on = 2026-11-19, where = "van-1" }
+reel = [{ tag = "R-1", part = "CX-10", left = "40 m" }]
+-- move/a.toml --
+sheet = { on = 2026-11-20 }
+move = [{ tag = "R-1", from = "van-2", to = "shop" }]
+-- counts/b.toml --
+sheet = { on = 2026-11-21, where = "shop", complete = true }
+`, want: `
+tag R-1 CX-10 scrap 0 m
+note jump b:1+a:2 CX-10 R-1 shop shop 40 m/0
 `},
 		{name: "a bin on an unknown shelf is no stock on hand", files: `
 -- counts/a.toml --
@@ -521,6 +534,46 @@ reel = [
 	}
 	if s.Tag("R-2") == nil || s.Tag("R-4") != nil {
 		t.Error("tags are found by ID")
+	}
+}
+
+// A row that a newer count has overtaken is told apart, so that a job whose plan
+// is long gone need not be looked for.
+func TestIssueRowsSettled(t *testing.T) {
+	s := stockCase{files: `
+-- counts/a.toml --
+sheet = { on = 2026-11-20, where = "shop" }
+reel = [{ tag = "R-1", part = "CX-10", left = "40 m" }]
+count = [{ part = "NC-10-NM", qty = 26 }]
+-- issue/x-1.toml --
+sheet = { on = 2026-11-21, job = "x" }
+move = [{ part = "NC-10-NM", from = "shop", to = "job", qty = 4 }]
+cut = [{ tag = "R-1", length = "10 m", cable = "C1" }]
+-- counts/b.toml --
+sheet = { on = 2026-11-22, where = "shop" }
+count = [{ part = "NC-10-NM", qty = 22 }]
+-- issue/x-2.toml --
+sheet = { on = 2026-11-23, job = "x" }
+move = [{ part = "NC-10-NM", from = "shop", to = "job", qty = 1 }]
+`}.book(t)
+	want := map[string][]bool{"CX-10": {false}, "NC-10-NM": {true, false}}
+	for _, is := range s.IssuesOf("x") {
+		var got []bool
+		for _, r := range is.Rows {
+			got = append(got, r.Settled)
+		}
+		if !slices.Equal(got, want[is.Part]) {
+			t.Errorf("%s: settled %v, want %v", is.Part, got, want[is.Part])
+		}
+	}
+	if got := s.Issued("x", "NC-10-NM"); got != (Quantity{Each: 5}) {
+		t.Errorf("%s issued, want 5", got)
+	}
+	if got := s.Issued("x", "AMP-W"); !got.IsZero() {
+		t.Errorf("%s issued of what was never issued", got)
+	}
+	if got := s.PiecesOf("x", "C1"); len(got) != 1 || got[0].Length != 10000 {
+		t.Errorf("pieces %+v", got)
 	}
 }
 

@@ -228,6 +228,22 @@ func (o *Offers) Check(look func(string) *Part) []source.Problem {
 	return out
 }
 
+// CheckOrders says which orders go to a vendor that nobody describes.
+func (o *Offers) CheckOrders(orders []*Order) []source.Problem {
+	var names []string
+	for i := range o.Vendors {
+		names = append(names, o.Vendors[i].ID)
+	}
+	var out []source.Problem
+	for _, r := range orders {
+		if r.Vendor.Set && o.Vendor(r.Vendor.V) == nil {
+			out = append(out, unknownVendor(r.Vendor, names))
+		}
+	}
+	source.SortProblems(out)
+	return out
+}
+
 func unknownVendor(v source.Val[string], names []string) source.Problem {
 	do := "describe it in [vendor." + v.V + "]"
 	if near := source.Nearest(v.V, names); near != "" {

@@ -172,3 +172,11 @@ func TestOffersCheckOverFiles(t *testing.T) {
 		t.Errorf("the remedy is %q", do)
 	}
 }
+
+func TestOrdersNameVendors(t *testing.T) {
+	o, problems := ReadOffers(docOf(t, "offers/tern.toml", terns))
+	wantNone(t, problems)
+	known := orderOf(t, "stock/orders/PO-1.toml", "[order]\nvendor = \"tern\"\n")
+	typo := orderOf(t, "stock/orders/PO-2.toml", "[order]\nvendor = \"terne\"\n")
+	wantTold(t, o.CheckOrders([]*Order{typo, known}), "2: nobody describes the vendor \"terne\"")
+}
