@@ -14,8 +14,7 @@ import (
 )
 
 // stockCase is a store's files with what they add up to. The files are written in
-// one text, each under a line "-- path --"; a name that ends in "@16:00.toml" gives
-// its rows that time of day.
+// one text, each under a line "-- path --".
 type stockCase struct {
 	name  string
 	today string // absent: 2026-12-01
@@ -53,33 +52,9 @@ func stockFiles(t testing.TB, text string) (sheets []*Sheet, orders []*Order) {
 			orders = append(orders, o)
 			continue
 		}
-		clocked(s)
 		sheets = append(sheets, s)
 	}
 	return sheets, orders
-}
-
-func clocked(s *Sheet) {
-	_, clock, found := strings.Cut(s.ID, "@")
-	if !found {
-		return
-	}
-	var h, m int
-	fmt.Sscanf(clock, "%d:%d", &h, &m)
-	set := func(v *source.Val[Moment]) { v.V.Clock, v.V.Sec = true, h*3600+m*60 }
-	set(&s.Head.On)
-	for i := range s.Counts {
-		set(&s.Counts[i].On)
-	}
-	for i := range s.Reels {
-		set(&s.Reels[i].On)
-	}
-	for i := range s.Moves {
-		set(&s.Moves[i].On)
-	}
-	for i := range s.Cuts {
-		set(&s.Cuts[i].On)
-	}
 }
 
 var noteWords = map[NoteKind]string{NoteBelow: "below", NoteClash: "clash", NoteCountedTwice: "counted-twice", NoteOver: "over", NoteUnknown: "unknown",
@@ -192,22 +167,22 @@ note same-day a:2+quay-lane-1:2 NC-10-NM shop
 -- counts/a.toml --
 sheet = { on = 2026-11-20, where = "shop" }
 count = [{ part = "NC-10-NM", qty = 26 }]
--- move/night@00:00.toml --
-sheet = { on = 2026-11-21 }
+-- move/night.toml --
+sheet = { on = 2026-11-21T00:00:00 }
 move = [{ part = "NC-10-NM", from = "shop", to = "van-1", qty = 6 }]
 `, want: `
 bin NC-10-NM shop 20
 bin NC-10-NM van-1 6
 `},
 		{name: "times of day decide within a day", files: `
--- counts/b@16:00.toml --
-sheet = { on = 2026-10-29, where = "shop" }
+-- counts/b.toml --
+sheet = { on = 2026-10-29T16:00:00, where = "shop" }
 count = [{ part = "NC-10-NM", qty = 22 }]
--- issue/early@08:10.toml --
-sheet = { on = 2026-10-29, job = "quay-lane" }
+-- issue/early.toml --
+sheet = { on = 2026-10-29T08:10:00, job = "quay-lane" }
 move = [{ part = "NC-10-NM", from = "shop", to = "job", qty = 4 }]
--- issue/late@16:01.toml --
-sheet = { on = 2026-10-29, job = "quay-lane" }
+-- issue/late.toml --
+sheet = { on = 2026-10-29T16:01:00, job = "quay-lane" }
 move = [{ part = "NC-10-NM", from = "shop", to = "job", qty = 2 }]
 -- counts/a.toml --
 sheet = { on = 2026-10-28, where = "shop" }
@@ -217,11 +192,11 @@ bin NC-10-NM shop 20
 issued quay-lane NC-10-NM 6
 `},
 		{name: "at one instant a move is in the count", files: `
--- counts/a@16:00.toml --
-sheet = { on = 2026-11-20, where = "shop" }
+-- counts/a.toml --
+sheet = { on = 2026-11-20T16:00:00, where = "shop" }
 count = [{ part = "NC-10-NM", qty = 26 }]
--- move/b@16:00.toml --
-sheet = { on = 2026-11-20 }
+-- move/b.toml --
+sheet = { on = 2026-11-20T16:00:00 }
 move = [{ part = "NC-10-NM", from = "shop", to = "van-1", qty = 6 }]
 `, want: `
 bin NC-10-NM shop 26
@@ -231,8 +206,8 @@ bin NC-10-NM van-1 6
 -- counts/a.toml --
 sheet = { on = 2026-11-20, where = "shop" }
 count = [{ part = "NC-10-NM", qty = 26 }]
--- move/b@23:59.toml --
-sheet = { on = 2026-11-20 }
+-- move/b.toml --
+sheet = { on = 2026-11-20T23:59:00 }
 move = [{ part = "NC-10-NM", from = "shop", to = "van-1", qty = 6 }]
 `, want: `
 bin NC-10-NM shop 26

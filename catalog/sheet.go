@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"path"
 	"strings"
+	"time"
 
 	"driploop/catalog/source"
 	"driploop/catalog/unit"
@@ -35,7 +36,11 @@ func (m Moment) String() string {
 	return s
 }
 
-var moment = source.Map(source.Day, func(d unit.Date) (Moment, error) { return Moment{Day: d}, nil })
+var moment = source.Either(source.IsDay,
+	source.Map(source.Day, func(d unit.Date) (Moment, error) { return Moment{Day: d}, nil }),
+	source.Map(source.When, func(t time.Time) (Moment, error) {
+		return Moment{Day: unit.DateOf(t), Clock: true, Sec: t.Hour()*3600 + t.Minute()*60 + t.Second()}, nil
+	}), "date or local time")
 
 // Sheet is one event of the store: a count, a delivery, an issue, a return. The
 // file's name is its ID.

@@ -5,6 +5,7 @@ import (
 	"math"
 	"strconv"
 	"strings"
+	"time"
 
 	"driploop/catalog/unit"
 )
@@ -90,6 +91,14 @@ var Day = Type[unit.Date]{TypeDoc{Name: "date", Example: "2026-12-01"}, func(n *
 		return unit.Date{}, expected(n, "a date", "it like 2026-12-01, without quotes")
 	}
 	return unit.DateOf(n.Time), nil
+}}
+
+// When is a local date-time.
+var When = Type[time.Time]{TypeDoc{Name: "local time", Example: "2026-12-01T16:00:00"}, func(n *Node) (time.Time, []bad) {
+	if n.Kind != LocalDateTime {
+		return time.Time{}, expected(n, "a date or a local time", "it like 2026-12-01T16:00:00, without quotes and without zone")
+	}
+	return n.Time, nil
 }}
 
 // Number is any finite number.
@@ -227,6 +236,9 @@ func IsArray(n *Node) bool { return n.Kind == Array }
 
 // IsTable reports an inline or other table.
 func IsTable(n *Node) bool { return n.Kind == Table }
+
+// IsDay reports a local date.
+func IsDay(n *Node) bool { return n.Kind == LocalDate }
 
 // IsString reports a string.
 func IsString(n *Node) bool { return n.Kind == String }
