@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"sort"
+	"strings"
 
 	"driploop/catalog/source"
 )
@@ -24,9 +25,10 @@ type Finding struct {
 	Waived  *Settled // the waiver that covers it, or nil
 	Part    string   // of findings on the catalog: the part concerned
 
-	lighter  Weight  // weighs no more than this
-	override *Weight // of the workspace
-	worse    int     // +1: greater figures are worse; −1: smaller ones; 0: no figure to accept
+	bands    []string // of a finding that several bands may share
+	lighter  Weight   // weighs no more than this
+	override *Weight  // of the workspace
+	worse    int      // +1: greater figures are worse; −1: smaller ones; 0: no figure to accept
 }
 
 // Figure is a named number of a finding; its name carries the unit.
@@ -124,7 +126,51 @@ func (f *Finding) InBand(band string) *Finding {
 	return f
 }
 
-// On that row of a document the finding stands, before the rule's own basis.
+// inBands stands in what a finding says for the bands that it holds in. Findings
+// that differ in nothing but their band are one finding.
+const inBands = "\x00"
+
+// AcrossBands says that the finding is one of several that may differ only in
+// their band; Says has inBands where the bands belong.
+func (f *Finding) AcrossBands(band string) *Finding {
+	f.bands = []string{band}
+	return f
+}
+
+// merged joins the findings that differ only in their band.
+func (r *Report) merged() []*Finding {
+	type key struct {
+		at       source.Place
+		on, says string
+		outcome  Outcome
+	}
+	first := map[key]*Finding{}
+	var out []*Finding
+	for _, f := range r.findings {
+		k := key{f.At, f.On, f.Says, f.Outcome}
+		if one := first[k]; one != nil && f.bands != nil {
+			one.bands = append(one.bands, f.bands...)
+			continue
+		}
+		if f.bands != nil {
+			first[k] = f
+		}
+		out = append(out, f)
+	}
+	for _, f := range out {
+		if f.bands == nil {
+			continue
+		}
+		f.Says = strings.ReplaceAll(f.Says, inBands, list(f.bands))
+		if len(f.bands) == 1 {
+			f.Band = f.bands[0]
+		}
+	}
+	return out
+}
+
+// By puts the row of a document on which the finding stands before the rule's own
+// basis.
 func (f *Finding) By(basis string) *Finding {
 	f.Basis = append([]string{basis}, f.Basis...)
 	return f

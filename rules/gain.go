@@ -185,8 +185,8 @@ func (c *Case) citation(row *limits.Row) string {
 
 // unassessed says once for a figure of a band what it lacks.
 func (x *BandChain) unassessed(r *Report, what string, lacks []Lack) {
-	f := r.Unknown(partAt(x.Amp), x.Amp.On(), "%s of %s in %s is not assessed: it lacks %s", what, x.Amp.ID, x.Band.Name, lackWords(lacks)).
-		Then("add what is missing").InBand(x.Band.Name)
+	f := r.Unknown(partAt(x.Amp), x.Amp.On(), "%s of %s in "+inBands+" is not assessed: it lacks %s", what, x.Amp.ID, lackWords(lacks)).
+		Then("add what is missing").AcrossBands(x.Band.Name)
 	for _, l := range lacks {
 		f.Beside(l.At, "what is missing: %s", l.What)
 	}

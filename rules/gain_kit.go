@@ -22,13 +22,12 @@ var gainKit = &Rule{
 		if c.Profile == nil || c.Profile.Kit == nil {
 			return
 		}
-		seen := map[string]bool{}
 		for _, x := range c.Chain().Bands {
 			for _, l := range x.Feeds {
-				checkKit(c, r, x, l, l.From, "donor", x.Up.Span, seen)
+				checkKit(c, r, x, l, l.From, "donor", x.Up.Span)
 			}
 			for _, l := range x.Legs {
-				checkKit(c, r, x, l, l.To, "server", x.Down.Span, seen)
+				checkKit(c, r, x, l, l.To, "server", x.Down.Span)
 			}
 		}
 	},
@@ -36,16 +35,12 @@ var gainKit = &Rule{
 
 // checkKit holds one antenna against the amplifier's kit rows for its side and
 // band: one row must take it, by name or by gain, behind at least the row's loss.
-func checkKit(c *Case, r *Report, x *BandChain, l *bom.Line, n *bom.Node, side string, span unit.Span, seen map[string]bool) {
+func checkKit(c *Case, r *Report, x *BandChain, l *bom.Line, n *bom.Node, side string, span unit.Span) {
 	rows := x.kit(side)
 	basis := limits.Origin(c.Profile.Kit.Clause.V, c.Profile.Kit.Edition.Or(c.Profile.Edition.V), c.Profile.Kit.Proof.V)
 	if len(rows) == 0 {
-		key := x.Amp.ID + side
-		if !seen[key] {
-			seen[key] = true
-			r.Unknown(partAt(x.Amp), x.Amp.On(), "part %s lists no %s antennas that it is certified with in %s; its kit is not assessed", x.Amp.Part.ID, side, x.Band.Name).
-				Then("copy the maker's list into the part as [[part.%s.kit]]", x.Amp.Part.ID).By(basis).Beside(x.Amp.Part.At, "the part")
-		}
+		r.Unknown(partAt(x.Amp), x.Amp.On(), "part %s lists no %s antennas that it is certified with in "+inBands+"; its kit is not assessed", x.Amp.Part.ID, side).
+			Then("copy the maker's list into the part as [[part.%s.kit]]", x.Amp.Part.ID).AcrossBands(x.Band.Name).By(basis).Beside(x.Amp.Part.At, "the part")
 		return
 	}
 	tried := c.tryKit(rows, l, n, span)
@@ -53,12 +48,12 @@ func checkKit(c *Case, r *Report, x *BandChain, l *bom.Line, n *bom.Node, side s
 		return
 	}
 	if len(tried.lacks) > 0 {
-		r.Unknown(partAt(n.Device), n.On(), "whether %s is in the kit of %s in %s is not assessed: it lacks %s", n.Device.ID, x.Amp.Part.ID, x.Band.Name, lackWords(tried.lacks)).
-			Then("add what is missing").InBand(x.Band.Name).By(basis)
+		r.Unknown(partAt(n.Device), n.On(), "whether %s is in the kit of %s in "+inBands+" is not assessed: it lacks %s", n.Device.ID, x.Amp.Part.ID, lackWords(tried.lacks)).
+			Then("add what is missing").AcrossBands(x.Band.Name).By(basis)
 		return
 	}
-	f := r.Fails(partAt(n.Device), n.On(), "%s (%s) is outside the kit of %s on the %s side in %s: %s", n.Device.ID, n.Device.Part.ID, x.Amp.Part.ID, side, x.Band.Name, tried.why).
-		Then("take an antenna and a line from the maker's list").InBand(x.Band.Name).By(basis).Beside(rows[0].At, "the kit")
+	f := r.Fails(partAt(n.Device), n.On(), "%s (%s) is outside the kit of %s on the %s side in "+inBands+": %s", n.Device.ID, n.Device.Part.ID, x.Amp.Part.ID, side, tried.why).
+		Then("take an antenna and a line from the maker's list").AcrossBands(x.Band.Name).By(basis).Beside(rows[0].At, "the kit")
 	if tried.limit != nil {
 		f.Over("net_gain_db", tried.net, "limit_db", *tried.limit)
 	}

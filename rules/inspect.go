@@ -214,7 +214,7 @@ func (c *Case) run(filesOnly bool) []*Finding {
 func (f *Firm) weigh(r *Report, stage string) []*Finding {
 	var out []*Finding
 	own := f.Override(r.rule.Name)
-	for _, x := range r.findings {
+	for _, x := range r.merged() {
 		if own != nil && own.Weight.Set {
 			w := weightNamed(own.Weight.V)
 			x.override = &w

@@ -45,10 +45,13 @@ var lossLeg = &Rule{
 // checkLineLoss holds the greatest loss of a line, over the edges of a band,
 // against a figure of the house.
 func checkLineLoss(c *Case, r *Report, l *bom.Line, b catalog.Band, limit float64, key string, of func(LineSum) rf.Loss) {
+	if !reaches(l, b) {
+		return // no antenna of the line works in the band: band/antenna says so
+	}
 	worst, at, lacks := c.worstLoss(l, b, of)
 	if len(lacks) > 0 {
-		r.Unknown(lineAt(l), l.On(), "%s %s in %s is not assessed: it lacks %s", l.Kind, l.Name(), b.Name, lackWords(lacks)).
-			Then("add what is missing").InBand(b.Name).Beside(lacks[0].At, "what it lacks")
+		r.Unknown(lineAt(l), l.On(), "%s %s in "+inBands+" is not assessed: it lacks %s", l.Kind, l.Name(), lackWords(lacks)).
+			Then("add what is missing").AcrossBands(b.Name).Beside(lacks[0].At, "what it lacks")
 		return
 	}
 	v := float64(of(worst).Greatest)
@@ -60,6 +63,22 @@ func checkLineLoss(c *Case, r *Report, l *bom.Line, b catalog.Band, limit float6
 		Over("loss_db", v, "limit_db", limit).With("least_db", float64(of(worst).Least))
 	f.Says += ": " + addends(worst, greatest)
 	f.Then("%s", c.lowerLoss(l, at, v-limit))
+}
+
+// reaches reports whether the antenna at an end of the line works in some part of
+// the band.
+func reaches(l *bom.Line, b catalog.Band) bool {
+	for _, n := range []*bom.Node{l.From, l.To} {
+		if n.Device == nil || n.Device.Part == nil || n.Device.Part.Antenna == nil {
+			continue
+		}
+		for _, rng := range n.Device.Part.Antenna.RangesOf(n.Port.Name) {
+			if !rng.MHz.V.Overlap(b.Uplink).Empty() || !rng.MHz.V.Overlap(b.Downlink).Empty() {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // worstLoss is the sum of a line at the edge or middle of a band where it loses
