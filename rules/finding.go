@@ -3,6 +3,7 @@ package rules
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 	"strings"
 
@@ -170,9 +171,10 @@ func (r *Report) merged() []*Finding {
 }
 
 // By puts the row of a document on which the finding stands before the rule's own
-// basis.
+// basis; where that only says that a row of the profile decides, it takes its place.
 func (f *Finding) By(basis string) *Finding {
-	f.Basis = append([]string{basis}, f.Basis...)
+	rest := slices.DeleteFunc(slices.Clone(f.Basis), func(b string) bool { return b == byProfile.String() })
+	f.Basis = append([]string{basis}, rest...)
 	return f
 }
 

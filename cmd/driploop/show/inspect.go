@@ -136,21 +136,36 @@ func or(s, other string) string {
 	return s
 }
 
-// gainWords is the gain that runs per band: "gain that runs, up/down dB: B12
-// 61.0/55.0 (isolation)".
+// gainWords is the gain that runs per band: "gain that runs, up/down in dB: B12
+// 61.0/55.0 (isolation)"; with the amplifier's name where there are several.
 func gainWords(runs []rules.Runs) string {
-	var out []string
+	byDevice := map[string][]string{}
+	var devices []string
 	for _, r := range runs {
-		text := fmt.Sprintf("%s %s/%s", r.Band, gainOr(r.Up), gainOr(r.Down))
+		if byDevice[r.Device] == nil {
+			devices = append(devices, r.Device)
+		}
+		text := r.Band + " not assessed"
+		if r.Up != nil || r.Down != nil {
+			text = fmt.Sprintf("%s %s/%s", r.Band, gainOr(r.Up), gainOr(r.Down))
+		}
 		if r.BoundBy != "" {
 			text += " (" + r.BoundBy + ")"
+		}
+		byDevice[r.Device] = append(byDevice[r.Device], text)
+	}
+	var out []string
+	for _, d := range devices {
+		text := strings.Join(byDevice[d], ", ")
+		if len(devices) > 1 {
+			text = d + " " + text
 		}
 		out = append(out, text)
 	}
 	if len(out) == 0 {
 		return ""
 	}
-	return "gain that runs, up/down in dB: " + strings.Join(out, ", ")
+	return "gain that runs, up/down in dB: " + strings.Join(out, "; ")
 }
 
 func gainOr(v *float64) string {
@@ -160,18 +175,21 @@ func gainOr(v *float64) string {
 	return unit.Fixed(*v, 1)
 }
 
-// findings writes one block for each finding, worst first.
+// findings writes one block for each matter, worst first.
 func (t *inspectText) findings(all []*rules.Finding, planPath string) {
-	ordered := append([]*rules.Finding(nil), all...)
-	sort.SliceStable(ordered, func(i, j int) bool { return rank(ordered[i]) > rank(ordered[j]) })
 	n := map[string]int{}
-	for _, f := range ordered {
-		letter := letterOf(f)
-		n[letter]++
+	for _, m := range matters(all) {
+		letter := letterOf(m.worst)
+		from := n[letter] + 1
+		n[letter] += 1 + len(m.others)
 		if t.quiet && letter != "H" {
 			continue
 		}
-		t.finding(f, fmt.Sprintf("%s%d", letter, n[letter]), planPath)
+		tag := fmt.Sprintf("%s%d", letter, from)
+		if len(m.others) > 0 {
+			tag += fmt.Sprintf("–%d", n[letter])
+		}
+		t.finding(m, tag, planPath)
 	}
 }
 
@@ -196,8 +214,8 @@ func letterOf(f *rules.Finding) string {
 	return "N"
 }
 
-func (t *inspectText) finding(f *rules.Finding, tag, planPath string) {
-	how := plain
+func (t *inspectText) finding(m matter, tag, planPath string) {
+	f, how := m.worst, plain
 	switch letterOf(f) {
 	case "H":
 		how = stop
@@ -207,6 +225,9 @@ func (t *inspectText) finding(f *rules.Finding, tag, planPath string) {
 	lead := tag + strings.Repeat(" ", max(1, 5-utf8.RuneCountInString(tag)))
 	t.hang(Clean(lead), how, 5, strong, Clean(heading(f, planPath)))
 	t.para("     ", plain, Clean(f.Says+"."))
+	if also := m.also(); also != "" {
+		t.para("     ", plain, Clean(also))
+	}
 	if f.Do != "" {
 		t.hang("  do ", mend, 5, plain, Clean(f.Do+ending(f.Do)))
 	}
