@@ -7,58 +7,61 @@ import (
 	"unicode/utf8"
 )
 
-// Term is a string that does nothing on a terminal but show itself: no control
-// characters, no marks that turn or hide text, and no line breaks.
+// Term is a string that does nothing on a terminal or in the log of a build but
+// show itself: no control characters, no marks that turn or hide text, no line
+// breaks, and nothing that a build runner takes for a command.
 type Term string
 
-// Clean makes a string harmless on a terminal; what does more than show itself is
-// written as an escape.
+// Clean makes a string harmless; what does more than show itself is written as an
+// escape.
 func Clean(s string) Term {
-	clean := true
-	for _, r := range s {
-		if r == utf8.RuneError || acts(r) {
-			clean = false
-			break
-		}
-	}
-	if clean {
+	if !strings.ContainsFunc(s, actsOrBad) && !strings.Contains(s, "::") && !strings.Contains(s, "##") {
 		return Term(s)
 	}
 	var b strings.Builder
+	last := rune(0) // as it was written, 0 behind an escape
 	for i, r := range s {
+		_, n := utf8.DecodeRuneInString(s[i:])
 		switch {
-		case r == utf8.RuneError:
-			if _, n := utf8.DecodeRuneInString(s[i:]); n == 1 {
-				fmt.Fprintf(&b, `\x%02x`, s[i])
-				continue
-			}
-			b.WriteRune(r)
+		case r == utf8.RuneError && n == 1:
+			fmt.Fprintf(&b, `\x%02x`, s[i])
 		case r == '\n':
 			b.WriteString(`\n`)
 		case r == '\t':
 			b.WriteString(`\t`)
-		case r < 0x100 && acts(r):
+		case r < 0x100 && acts(r), r == last && commands(r):
 			fmt.Fprintf(&b, `\x%02x`, r)
+		case acts(r) && r > 0xFFFF:
+			fmt.Fprintf(&b, `\U%08x`, r)
 		case acts(r):
 			fmt.Fprintf(&b, `\u%04x`, r)
 		default:
 			b.WriteRune(r)
+			last = r
+			continue
 		}
+		last = 0
 	}
 	return Term(b.String())
 }
 
+// commands reports a character that, twice in a row, begins a command to a build
+// runner: "::error::" at the start of a line, however far it is indented, and
+// "##[error]" or the like anywhere in it.
+func commands(r rune) bool { return r == ':' || r == '#' }
+
 // acts reports a character that does something else than show itself: controls,
-// marks of direction, what joins or hides, line and paragraph separators, tags.
+// marks of direction, what joins, hides or picks variants, line and paragraph
+// separators, tags.
 func acts(r rune) bool {
-	switch {
-	case unicode.IsControl(r), unicode.Is(unicode.Cf, r), r == '\u2028', r == '\u2029':
-		return true
-	case r >= 0xFE00 && r <= 0xFE0F, r >= 0xE0100 && r <= 0xE01EF, r == 0x115F, r == 0x1160, r == 0x3164, r == 0xFFA0:
-		return true
+	if r < 0x7F {
+		return r < ' '
 	}
-	return false
+	return unicode.IsControl(r) || unicode.In(r, unicode.Cf, unicode.Zl, unicode.Zp,
+		unicode.Variation_Selector, unicode.Other_Default_Ignorable_Code_Point)
 }
+
+func actsOrBad(r rune) bool { return r == utf8.RuneError || acts(r) }
 
 // Terms cleans what a line is put together from.
 func Terms(format string, args ...any) Term { return Clean(fmt.Sprintf(format, args...)) }
@@ -103,7 +106,9 @@ func (s *sheet) para(lead Term, how ink, text Term) {
 	s.hang(lead, plain, utf8.RuneCountInString(string(lead)), how, text)
 }
 
-// hang is para with an indent of its own for the lines after the first.
+// hang is para with an indent of its own for the lines after the first. The lead
+// is a word of our own, or ends in a space: two harmless ends may do harm side by
+// side.
 func (s *sheet) hang(lead Term, leadHow ink, indent int, how ink, text Term) {
 	width := max(s.page.Width-indent, 16)
 	first := max(s.page.Width-utf8.RuneCountInString(string(lead)), 16)
