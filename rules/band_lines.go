@@ -1,0 +1,100 @@
+package rules
+
+import (
+	"driploop/bom"
+	"driploop/catalog"
+	"driploop/catalog/unit"
+)
+
+// everything is all spectrum that a plan can speak of.
+var everything = unit.Span{Lo: 0, Hi: 300000}
+
+// activeEnds are the ends of a line at an amplifier or router.
+func activeEnds(l *bom.Line) []*bom.Node {
+	var out []*bom.Node
+	for _, n := range []*bom.Node{l.From, l.To} {
+		if n.Device != nil && n.Device.Part != nil && n.Device.Active() {
+			out = append(out, n)
+		}
+	}
+	return out
+}
+
+// meantFor reports whether a planned band is to go over a line. It is not where a
+// port at its end is for something else, where another amplifier or router of the
+// plan does the band, and where a diplexer or filter sends it another way.
+func (c *Case) meantFor(l *bom.Line, b catalog.Band) bool {
+	ends := activeEnds(l)
+	if len(ends) == 0 {
+		return false
+	}
+	for _, n := range ends {
+		if n.Port.Use.Or("cellular") != "cellular" || n.Port.Bands.Set && listLeavesOut(b, n.Port.Bands.V).All() {
+			return false
+		}
+		if left, known := runsWithout(n.Device, b); known && left.All() && c.elsewhere(n.Device, b) != "" {
+			return false
+		}
+	}
+	return !parts(l, b) || !c.goesAnotherWay(l, b)
+}
+
+// parts reports a line on which a diplexer or filter keeps some of a band off.
+func parts(l *bom.Line, b catalog.Band) bool {
+	for _, s := range l.Steps {
+		if s.Pass == nil {
+			continue
+		}
+		switch s.Pass.Part.Kind.V {
+		case "diplexer", "filter":
+			if left, known := passLeavesOut(s.Pass, b); known && !left.Nothing() {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// goesAnotherWay reports whether another line from the same amplifier or router
+// port passes the whole band.
+func (c *Case) goesAnotherWay(l *bom.Line, b catalog.Band) bool {
+	for _, n := range activeEnds(l) {
+		for _, o := range c.Lines().At(n) {
+			if o != l && o.Kind == l.Kind && passesAll(o, b) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+func passesAll(l *bom.Line, b catalog.Band) bool {
+	for _, s := range l.Steps {
+		if s.Pass == nil {
+			continue
+		}
+		if left, known := passLeavesOut(s.Pass, b); !known || !left.Nothing() {
+			return false
+		}
+	}
+	return true
+}
+
+// passLeavesOut is what of a band the rows of a passive part do not hold for;
+// false where it has no row for that way through.
+func passLeavesOut(p *bom.Pass, b catalog.Band) (leftOut, bool) {
+	covers, known := passCovers(p)
+	return leavesOut(b, covers, covers), known
+}
+
+func passCovers(p *bom.Pass) ([]unit.Span, bool) {
+	var out []unit.Span
+	for _, row := range p.Rows {
+		if row.MHz.Set {
+			out = append(out, row.MHz.V)
+		} else {
+			out = append(out, everything)
+		}
+	}
+	return out, len(out) > 0
+}
