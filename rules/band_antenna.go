@@ -160,13 +160,13 @@ func common(a, b []unit.Span) []unit.Span {
 
 // name is the port's antenna, with the port where it is one of several.
 func (p antennaPort) name() string {
-	if p.node == nil || radioPorts(p.device.Part) == 1 {
+	if p.node == nil || countRadioPorts(p.device.Part) == 1 {
 		return p.device.ID
 	}
 	return p.node.Name()
 }
 
-func radioPorts(p *catalog.Part) int {
+func countRadioPorts(p *catalog.Part) int {
 	n := 0
 	for i := range p.Ports {
 		if p.Ports[i].RF() {
@@ -272,7 +272,7 @@ func (c *Case) coveringAntenna(now *catalog.Part, b catalog.Band) string {
 	drop := fmt.Sprintf("take %s out of bands", b.Name)
 	p := c.Firm.pick(func(p *catalog.Part) bool {
 		return p.Antenna != nil && p.Router == nil && now.Router == nil && p.Antenna.Fixing.V == now.Antenna.Fixing.V &&
-			radioPorts(p) == radioPorts(now) && c.coversPlan(p)
+			countRadioPorts(p) == countRadioPorts(now) && c.coversPlan(p)
 	})
 	if p == nil {
 		return "take an antenna that covers it, or " + drop

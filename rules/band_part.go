@@ -90,7 +90,7 @@ func wordList(words catalog.Words) string {
 func (c *Case) runsPlan(now *catalog.Part, b catalog.Band) string {
 	drop := fmt.Sprintf("take %s out of bands", b.Name)
 	p := c.Firm.pick(func(p *catalog.Part) bool {
-		return p.Kind.V == now.Kind.V && radioPorts(p) == radioPorts(now) && sameClass(p, now) && c.runsAll(p)
+		return p.Kind.V == now.Kind.V && countRadioPorts(p) == countRadioPorts(now) && sameClass(p, now) && c.runsAll(p)
 	})
 	if p == nil {
 		return "take " + withArticle(now.Kind.V) + " that works in it, or " + drop
@@ -222,7 +222,7 @@ func (w *bandWalk) pass(p *bom.Pass, mate *bom.Mate, b catalog.Band) {
 	case p.Device != nil:
 		key, x = p.Device.On(), bounded{name: fmt.Sprintf("%s (%s)", p.Device.ID, p.Part.ID), on: p.Device.On(), at: deviceAt(p.Device)}
 	case mate != nil:
-		key, x = mate.On()+" "+p.Part.ID, bounded{name: "adapter " + p.Part.ID, on: mate.On(), at: adapterAt(mate, p.Part)}
+		key, x = mate.On()+" "+p.Part.ID, bounded{name: "adapter " + p.Part.ID, on: mate.On(), at: adapterNamedAt(mate, p.Part)}
 	default:
 		return
 	}
@@ -248,7 +248,7 @@ func wayThrough(p *bom.Pass) string {
 	return fmt.Sprintf("%d", p.Rows[0].At.From)
 }
 
-func adapterAt(m *bom.Mate, p *catalog.Part) source.Place {
+func adapterNamedAt(m *bom.Mate, p *catalog.Part) source.Place {
 	for _, a := range m.Adapters {
 		if a.Part == p {
 			return a.At
