@@ -56,6 +56,10 @@ func TestPattern(t *testing.T) {
 	}
 	v, ok := yagi.Discrimination(math.NaN(), 0)
 	wantUnknown(t, "no angle", v, ok)
+	v, ok = yagi.Discrimination(0, math.NaN())
+	wantUnknown(t, "no elevation", v, ok)
+	v, ok = rf.Pattern{FrontToBack: -1}.Discrimination(0, 0)
+	wantUnknown(t, "a back that gains", v, ok)
 	v, ok = yagi.OffBoresight(214, rf.Direction{Metres: 100, Bearing: 244})
 	wantDB(t, "off the aim", v, ok, 3, 1e-9)
 }
@@ -206,8 +210,10 @@ func TestTolerances(t *testing.T) {
 	if !ok || !near(float64(got.Above), 5, 1e-9) || !near(float64(got.Below), 13, 1e-9) {
 		t.Errorf("%+v, %v", got, ok)
 	}
-	got, ok = rf.Together(rf.Either(-1))
-	wantUnknown(t, "a negative tolerance", got, ok)
+	for _, bad := range []rf.Tolerance{{Above: -1}, {Below: -1}} {
+		got, ok = rf.Together(bad)
+		wantUnknown(t, "a negative tolerance", got, ok)
+	}
 	got, ok = rf.Together()
 	if !ok || got != (rf.Tolerance{}) {
 		t.Errorf("nothing to add: %+v, %v", got, ok)

@@ -121,7 +121,19 @@ func TestLossBetweenTemperatures(t *testing.T) {
 	wantDB(t, "nominal", l.Nominal, ok, 10, 0.001)
 	wantDB(t, "greatest", l.Greatest, ok, 10*1.05, 0.001)
 	line := l.Plus(rf.Exactly(0.5))
-	wantDB(t, "line", line.Greatest-line.Least, true, 10*0.12, 0.001)
+	wantDB(t, "least of the line", line.Least, true, 9.8, 0.001)
+	wantDB(t, "nominal of the line", line.Nominal, true, 10.5, 0.001)
+	wantDB(t, "greatest of the line", line.Greatest, true, 11, 0.001)
+	for _, temperatures := range [][2]unit.Celsius{{-100, 20}, {20, 200}} {
+		l, ok = c.LossBetween(1000, 50000, temperatures[0], temperatures[1])
+		wantUnknown(t, "a temperature no site has", l, ok)
+	}
+	l, ok = c.LossBetween(1001, 50000, 20, 20)
+	wantUnknown(t, "beyond the table", l, ok)
+	l, ok = c.LossBetween(1000, 0, 20, 20)
+	if !ok || l != (rf.Loss{}) {
+		t.Errorf("no cable loses %+v", l)
+	}
 }
 
 // TestGeometryAgreesWithTable holds the RG-213 table against its cross-section. A
@@ -137,6 +149,28 @@ func TestGeometryAgreesWithTable(t *testing.T) {
 	skin := table.K1 * math.Sqrt(50) / 100
 	if !ok || skin < float64(loss) || skin > 3*float64(loss) {
 		t.Errorf("the table's skin effect is %.4f dB/m at 50 MHz, smooth copper %v", skin, float64(loss))
+	}
+}
+
+// TestInfinityIsNoFigure: what a division by zero upstream leaves behind stops here.
+func TestInfinityIsNoFigure(t *testing.T) {
+	inf := math.Inf(1)
+	if v, ok := rf.Gamma(inf); ok {
+		t.Errorf("VSWR without end reflects %g", v)
+	}
+	if v, ok := rf.StepVSWR(50, inf); ok {
+		t.Errorf("a step to infinity is %g", v)
+	}
+	if best, worst, ok := rf.CompositeVSWR(1e200, 1e200); ok {
+		t.Errorf("%g, %g", best, worst)
+	}
+	v, ok := rf.FreeSpaceLoss(700, inf)
+	wantUnknown(t, "an endless path", v, ok)
+	level, ok := rf.RSSI(unit.DBmOf(inf), 50)
+	wantUnknown(t, "endless power", level, ok)
+	tol, ok := rf.Together(rf.Either(unit.DB(inf)))
+	if ok {
+		t.Errorf("%+v", tol)
 	}
 }
 
@@ -230,6 +264,7 @@ func TestGainRuns(t *testing.T) {
 		by        rf.Bound
 		on, ok    bool
 	}{
+		{"set to nothing", 0, 1, nil, 0, rf.BySet, true, true},
 		{"nothing else", 63, 1, nil, 63, rf.BySet, true, true},
 		{"output binds", 63, 0, []rf.Ceiling{out, prot, iso}, 52, rf.ByOutput, true, true},
 		{"protection binds", 64.9, 1, []rf.Ceiling{prot, iso}, 55.9, rf.ByProtection, true, true},
