@@ -33,6 +33,7 @@ type House struct {
 	LegLossDB         source.Val[float64]
 	CableLossDB       source.Val[float64]
 	IsolationMarginDB source.Val[float64]
+	VSWR              source.Val[float64]
 
 	AntennaToleranceDB source.Val[float64]
 	CableTolerance     source.Val[float64] // per cent
@@ -79,6 +80,7 @@ func (h *House) keys(k *source.Keys) {
 	source.Opt(k, &h.LegLossDB, "leg_loss_db", db, "greatest loss of a leg's cables and connectors, splitters left out; absent: 8")
 	source.Opt(k, &h.CableLossDB, "cable_loss_db", db, "greatest loss of one cable; absent: 5")
 	source.Opt(k, &h.IsolationMarginDB, "isolation_margin_db", db, "isolation above the gain that is set; absent: 15")
+	source.Opt(k, &h.VSWR, "vswr", source.Between(1, 20, ""), "greatest standing wave ratio of an antenna in the planned bands; absent: 2")
 	source.Opt(k, &h.AntennaToleranceDB, "antenna_tolerance_db", db, "how far an antenna's gain may be off; absent: 0.5")
 	source.Opt(k, &h.CableTolerance, "cable_tolerance_percent", source.Between(0, 50, "%"), "how far a cable's loss may be off; absent: 4")
 }

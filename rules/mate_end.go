@@ -1,0 +1,259 @@
+package rules
+
+import (
+	"fmt"
+
+	"driploop/bom"
+	"driploop/catalog"
+	"driploop/catalog/source"
+)
+
+var mateFit = &Rule{
+	Name:   "mate/fit",
+	Title:  "A connector is made for the cable that it goes on",
+	Why:    "a body for another diameter cannot be crimped or clamped; forced on, it pulls off in the first storm",
+	Basis:  []Basis{practice("the cables that the connector's maker lists (fits)")},
+	Weight: Hold,
+	Check: func(c *Case, r *Report) {
+		for _, x := range c.Graph.Cables {
+			if x.Part == nil {
+				continue // its part is a finding already
+			}
+			for _, e := range x.Ends {
+				switch {
+				case x.Part.Jumper != nil:
+					checkMadeEnd(r, x, e)
+				case e.Fit != nil:
+					c.checkFits(r, x, e)
+				case lacksConnector(e):
+					c.lackConnector(r, x, e)
+				}
+			}
+		}
+	},
+}
+
+// checkFits holds the connector part of an end against the cable.
+func (c *Case) checkFits(r *Report, x *bom.Cable, e *bom.Node) {
+	fits := e.Fit.Connector.Fits
+	if !fits.Set || catalog.Has(fits, x.Part.ID) {
+		return // without a list the catalog file has a finding
+	}
+	face := e.Fit.Connector.Face.V
+	do := "use a cable that it fits, or add a connector that fits " + x.Part.ID + " to the catalog"
+	if p := c.connectorWith(x.Part.ID, face); p != nil {
+		do = fmt.Sprintf("use %s, the same face for %s", c.Firm.OnHand(p), x.Part.ID)
+	}
+	r.Fails(endPlace(e), x.On(), "end %d of %s: %s is made for %s, the cable is %s", e.End, x.ID, e.Fit.ID, list(words(fits.V)), x.Part.ID).
+		Then("%s", do).besidePart(e.Fit, fits.At, "what the connector fits")
+}
+
+// connectorWith is a connector for a cable with a face of that series and gender,
+// or nil.
+func (c *Case) connectorWith(cable string, face catalog.Face) *catalog.Part {
+	return c.best(c.Firm.Catalog.Connectors(cable), func(p *catalog.Part) bool {
+		f := p.Connector.Face
+		return f.Set && f.V.Series == face.Series && f.V.Shell == face.Shell && f.V.Contact == face.Contact
+	})
+}
+
+// checkMadeEnd holds what the plan says of a jumper's end against the jumper.
+func checkMadeEnd(r *Report, x *bom.Cable, e *bom.Node) {
+	written, ok := writtenEnd(e)
+	ends := x.Part.Jumper.Ends
+	if !ok || !ends.Set {
+		return
+	}
+	f := written.V.Face
+	switch has := ends.V[0].Written + " and " + ends.V[1].Written; {
+	case !f.Set:
+		r.Fails(endPlace(e), x.On(), "end %d of %s: %s is named, and the jumper %s comes with %s", e.End, x.ID, written.V.Part, x.Part.ID, has).
+			Then("leave ends out; a jumper brings its own")
+	case !sameHalf(f.V, ends.V[0]) && !sameHalf(f.V, ends.V[1]):
+		r.Fails(endPlace(e), x.On(), "end %d of %s: %s is written, and the jumper %s has %s", e.End, x.ID, f.V, x.Part.ID, has).
+			Then("leave ends out, or take a jumper that has this end").besidePart(x.Part, ends.At, "its ends")
+	}
+}
+
+func sameHalf(a, b catalog.Face) bool {
+	return a.Series == b.Series && a.Shell == b.Shell && a.Contact == b.Contact
+}
+
+// lacksConnector reports an end to be made for which the catalog has no connector.
+// An end whose connector part did not resolve, and one of which nothing is known,
+// have findings of their own.
+func lacksConnector(e *bom.Node) bool {
+	written, ok := writtenEnd(e)
+	switch {
+	case e.Cable.Row.Existing.V || len(e.Could) > 0:
+		return false
+	case ok:
+		return written.V.Face.Set
+	case len(e.Mates) == 0:
+		return false
+	}
+	return neighbour(e.Mates[0], e).Face.Set
+}
+
+func (c *Case) lackConnector(r *Report, x *bom.Cable, e *bom.Node) {
+	want := ""
+	if written, ok := writtenEnd(e); ok {
+		want = "is " + written.V.Face.V.Written
+	} else {
+		n := neighbour(e.Mates[0], e)
+		want = fmt.Sprintf("meets %s (%s, %s ohm)", n.Name, n.Face.V, plainFigure(n.Ohm.V))
+	}
+	do := "add one to the catalog, or take another cable"
+	if known := c.Firm.Catalog.Connectors(x.Part.ID); len(known) > 0 {
+		do = fmt.Sprintf("take one of those for %s with an adapter, or another cable: %s", x.Part.ID, c.faces(known))
+	}
+	r.Fails(endPlace(e), x.On(), "end %d of %s: no connector of the catalog fits %s and %s", e.End, x.ID, x.Part.ID, want).
+		Then("%s", do).besidePart(x.Part, x.Part.At, "the cable")
+}
+
+// faces lists connector parts with their faces and what is on hand.
+func (c *Case) faces(parts []*catalog.Part) string {
+	var out []string
+	for _, p := range parts {
+		out = append(out, fmt.Sprintf("%s %s", p.Connector.Face.V, c.Firm.OnHand(p)))
+	}
+	return list(out)
+}
+
+var mateChoice = &Rule{
+	Name:   "mate/choice",
+	Title:  "The plan says which connector goes on an end where several would do",
+	Why:    "the crew packs for the clamp and stands on the roof with the crimp; nothing is counted or kept for the job until it is named",
+	Basis:  []Basis{practice("connectors of one face differ in tool and in loss")},
+	Weight: Punch,
+	Check: func(c *Case, r *Report) {
+		for _, x := range c.Graph.Cables {
+			c.checkChoice(r, x)
+		}
+	},
+}
+
+// checkChoice reports the open ends of a cable, both in one finding. A cable that is
+// like another has its ends from there.
+func (c *Case) checkChoice(r *Report, x *bom.Cable) {
+	var open []*bom.Node
+	for _, e := range x.Ends {
+		if _, written := writtenEnd(e); len(e.Could) > 1 && !x.Row.Existing.V && !(x.Like != nil && (!written || endIsInherited(e))) {
+			open = append(open, e)
+		}
+	}
+	if len(open) == 0 {
+		return
+	}
+	first := open[0]
+	which := fmt.Sprintf("end %d", first.End)
+	if len(open) == 2 && list(open[0].Could) == list(open[1].Could) {
+		which, open = "each end", open[:1]
+	}
+	says := fmt.Sprintf("%s of %s (%s) can be made with %s", which, x.ID, x.Part.ID, c.namely(first.Could))
+	if len(open) == 2 {
+		says += fmt.Sprintf(", end 2 with %s", c.namely(open[1].Could))
+	}
+	r.Fails(endPlace(first), x.On(), "%s", says).Then("name the connector part in ends")
+}
+
+func endIsInherited(e *bom.Node) bool {
+	written, _ := writtenEnd(e)
+	return inherited(e.Cable, written.At)
+}
+
+// namely lists parts by ID with what is on hand of each.
+func (c *Case) namely(ids []string) string {
+	out := ""
+	for i, id := range ids {
+		if i > 0 {
+			out += " or "
+		}
+		out += c.Firm.OnHand(c.Firm.Catalog.Look(id))
+	}
+	return out
+}
+
+var mateLoose = &Rule{
+	Name:   "mate/loose",
+	Title:  "Every device and every cable end is connected to something",
+	Why:    "what hangs loose was forgotten: in the plan, and soon in the van",
+	Basis:  []Basis{practice("a line has two ends")},
+	Weight: Hold,
+	Check: func(c *Case, r *Report) {
+		for _, d := range c.Graph.Devices {
+			c.checkLooseDevice(r, d)
+		}
+		for _, x := range c.Graph.Cables {
+			checkLooseCable(r, x)
+		}
+	},
+}
+
+func (c *Case) checkLooseDevice(r *Report, d *bom.Device) {
+	switch {
+	case !c.loose(d) || c.unfinished(d):
+	case d.Row.Existing.V:
+		r.Unknown(d.At, d.On(), "%s (%s) is there already, and the plan connects nothing to it; whether it is in use is not assessed", d.ID, d.Part.ID).
+			Then("write down what it is connected to, or leave it out")
+	default:
+		ports, _ := matedPorts(d)
+		r.Fails(d.At, d.On(), "%s (%s) has nothing connected to %s", d.ID, d.Part.ID, list(portNames(ports))).
+			Then("connect it, or take it out of the plan")
+	}
+}
+
+// loose reports a device for radio lines that no line reaches. A router does without
+// where it has an antenna of its own, or where its maker lets its ports be.
+func (c *Case) loose(d *bom.Device) bool {
+	ports, mated := matedPorts(d)
+	if len(ports) == 0 || mated > 0 {
+		return false
+	}
+	if d.Kind() != "router" {
+		return true
+	}
+	for _, n := range ports {
+		if n.Port.Use.Or("cellular") == "cellular" && n.Port.Unused.V != "leave" && d.Part.Antenna == nil {
+			return true
+		}
+	}
+	return false
+}
+
+func checkLooseCable(r *Report, x *bom.Cable) {
+	var loose []string
+	for i, to := range []source.Val[bom.Ref]{x.Row.From, x.Row.To} {
+		if !to.Set && len(x.Ends[i].Mates) == 0 {
+			loose = append(loose, []string{"from", "to"}[i])
+		}
+	}
+	switch {
+	case len(loose) == 0:
+	case x.Row.Existing.V:
+		r.Unknown(x.At, x.On(), "%s is there already, and the plan gives no %s; what it goes to is not assessed", x.ID, list(loose)).
+			Then("follow it and write it down")
+	case len(loose) == 2:
+		r.Fails(x.At, x.On(), "%s goes from nowhere to nowhere: the plan gives neither from nor to", x.ID).
+			Then("say what it joins, or take it out")
+	default:
+		r.Fails(x.At, x.On(), "%s goes nowhere at its %s end: the plan gives no %s, and no other cable is joined to it", x.ID, loose[0], loose[0]).
+			Then("say where it goes")
+	}
+}
+
+func portNames(ports []*bom.Node) []string {
+	var out []string
+	for _, n := range ports {
+		out = append(out, n.Port.Name)
+	}
+	return out
+}
+
+func words(vs catalog.Words) []string {
+	var out []string
+	for _, v := range vs {
+		out = append(out, v.V)
+	}
+	return out
+}

@@ -1,0 +1,274 @@
+package rules
+
+import (
+	"fmt"
+
+	"driploop/bom"
+	"driploop/catalog"
+)
+
+var mateOpen = &Rule{
+	Name:   "mate/open",
+	Title:  "No port that matters is left open",
+	Why:    "an open port sends back what comes to it: an amplifier starts to oscillate or shuts a band down, a splitter's other legs get ripple, a radio with two branches runs on one",
+	Basis:  []Basis{practice("unused ports get a load of the line's impedance; the maker's own word (unused) goes first")},
+	Weight: Hold,
+	Lighter: "A server port of an amplifier, an output of a passive part and a port of an antenna that only an amplifier feeds are a punch; " +
+		"Wi-Fi, GNSS and receive-only ports a note. A port that the maker never wants open always holds; one that he lets be is silent.",
+	Check: func(c *Case, r *Report) {
+		for _, d := range c.Graph.Devices {
+			if !c.loose(d) && !c.unfinished(d) {
+				c.checkOpen(r, d)
+			}
+		}
+	},
+}
+
+// opening says why an open port matters, and how much.
+type opening struct {
+	weight Weight // 0: not assessed
+	is     string // "the donor port", "an output"
+	harm   string
+	do     string // besides a load; "" where only a load will do
+}
+
+// checkOpen reports the open ports of a device, those that matter alike as one.
+func (c *Case) checkOpen(r *Report, d *bom.Device) {
+	var order []opening
+	ports := map[opening][]*bom.Node{}
+	for _, n := range d.Nodes {
+		o, matters := c.opening(n)
+		if !matters {
+			continue
+		}
+		if ports[o] == nil {
+			order = append(order, o)
+		}
+		ports[o] = append(ports[o], n)
+	}
+	for _, o := range order {
+		c.failOpen(r, d, o, ports[o])
+	}
+}
+
+func (c *Case) failOpen(r *Report, d *bom.Device, o opening, ports []*bom.Node) {
+	says := fmt.Sprintf("%s (%s), %s, %s nothing connected", list(nodeNames(ports)), d.Part.ID, o.is, has(len(ports)))
+	if o.weight == 0 {
+		r.Unknown(d.At, d.On(), "%s: what that does is not assessed, because the part does not say on which side it is", says).
+			Then("add side to the port in the catalog").besidePart(d.Part, ports[0].Port.At, "the port")
+		return
+	}
+	f := r.Fails(d.At, d.On(), "%s: %s", says, o.harm).Lighter(o.weight).Then("%s", c.close(o, d, ports))
+	if ports[0].Port.Unused.Set {
+		f.besidePart(d.Part, ports[0].Port.Unused.At, "what the maker asks for")
+	}
+	for _, n := range c.freeBranches(d) {
+		f.Beside(n.At(), "%s is free too", n.Name())
+	}
+}
+
+func has(n int) string {
+	if n == 1 {
+		return "has"
+	}
+	return "have"
+}
+
+func nodeNames(nodes []*bom.Node) []string {
+	var out []string
+	for _, n := range nodes {
+		out = append(out, n.Name())
+	}
+	return out
+}
+
+// opening says what an open port does; false where it does not matter or is said
+// elsewhere.
+func (c *Case) opening(n *bom.Node) (opening, bool) {
+	p, d := n.Port, n.Device
+	if !p.RF() || len(n.Mates) > 0 || p.Unused.V == "leave" {
+		return opening{}, false
+	}
+	o, matters := c.openingOf(n, d.Kind())
+	if p.Unused.V == "never" && matters {
+		o.weight = Hold
+		if o.is == "of unknown side" {
+			o = opening{Hold, "a port that its maker never wants open", "what it sends comes back into it", "connect it"}
+		}
+	}
+	return o, matters
+}
+
+func (c *Case) openingOf(n *bom.Node, kind string) (opening, bool) {
+	p := n.Port
+	switch use := p.Use.Or("cellular"); {
+	case use == "wifi":
+		return opening{Note, "a Wi-Fi port", "Wi-Fi reaches less far without it", "connect its antenna"}, true
+	case use == "gnss":
+		return opening{Note, "a GNSS port", "there is no position and no time from it", "connect its antenna"}, true
+	case receiveOnly(p):
+		return opening{Note, "a receive-only port", "it receives nothing", "connect its antenna"}, true
+	}
+	switch kind {
+	case "amplifier":
+		return openAmplifier(p), true
+	case "router":
+		return opening{Hold, "a port that the radio transmits or receives a branch on", "its power comes back into the radio and one branch is missing", "connect its antenna"}, true
+	case "antenna":
+		return c.openAntenna(n)
+	}
+	return openPassive(n), true
+}
+
+func openAmplifier(p *catalog.Port) opening {
+	switch p.Side.V {
+	case "donor":
+		return opening{Hold, "the donor port", "the amplifier hears no network, and what it sends comes back into it", "connect the donor antenna, or take the amplifier out"}
+	case "server":
+		return opening{Punch, "a server port", "what it sends comes back into it", "connect a server antenna"}
+	}
+	return opening{0, "of unknown side", "", ""}
+}
+
+// openAntenna is a second or later port of an antenna: a missing branch where a
+// router is at the others, else only a port without a load. Where the router has
+// as many ports open, the finding stands there.
+func (c *Case) openAntenna(n *bom.Node) (opening, bool) {
+	router := c.routerAt(n.Device)
+	switch {
+	case router == nil:
+		return opening{Punch, "a port of an antenna in use", "it takes up part of the other port's power and spoils its pattern", ""}, true
+	case len(openBranches(router)) > 0:
+		return opening{}, false
+	}
+	return opening{Hold, "a branch of a radio with several", "the branch is missing", "connect it to the radio"}, true
+}
+
+// routerAt is a router that some line leads to from an antenna, or nil.
+func (c *Case) routerAt(d *bom.Device) *bom.Device {
+	for _, l := range c.Lines().All {
+		if l.Kind != bom.Feed && l.Kind != bom.Leg {
+			continue
+		}
+		a, b := l.From.Device, l.To.Device
+		switch {
+		case a == d && b.Kind() == "router":
+			return b
+		case b == d && a.Kind() == "router":
+			return a
+		}
+	}
+	return nil
+}
+
+// openBranches lists the cellular ports of a router or antenna that are open and
+// matter.
+func openBranches(d *bom.Device) []*bom.Node {
+	var out []*bom.Node
+	for _, n := range d.Nodes {
+		if n.Port.Use.Or("cellular") == "cellular" && len(n.Mates) == 0 && n.Port.Unused.V != "leave" && !receiveOnly(n.Port) {
+			out = append(out, n)
+		}
+	}
+	return out
+}
+
+// freeBranches lists the open ports of the antennas at a router: most likely the
+// other ends of the lines that were forgotten.
+func (c *Case) freeBranches(router *bom.Device) []*bom.Node {
+	if router.Kind() != "router" {
+		return nil
+	}
+	var out []*bom.Node
+	for _, d := range c.Graph.Devices {
+		if d.Kind() == "antenna" && c.routerAt(d) == router {
+			out = append(out, openBranches(d)...)
+		}
+	}
+	return out
+}
+
+// receiveOnly reports a port all of whose bands have a downlink only.
+func receiveOnly(p *catalog.Port) bool {
+	for _, w := range p.Bands.V {
+		if b, ok := catalog.LookBand(w.V); !ok || !b.Uplink.Empty() {
+			return false
+		}
+	}
+	return len(p.Bands.V) > 0
+}
+
+// openPassive is an open port of a passive part.
+func openPassive(n *bom.Node) opening {
+	ports, _ := matedPorts(n.Device)
+	switch {
+	case len(ports) <= 2:
+		return opening{Hold, "one of two ports", "the line ends there", "connect it"}
+	case n.Device.Kind() == "coupler" && isolated(n):
+		return opening{Punch, "the isolated port of a coupler", "without a load the coupler takes one direction for the other", ""}
+	case n.Port.Unused.V == "never":
+		return opening{Hold, "a port that its maker never wants open", "nothing passes the part as it should", "connect it"}
+	}
+	return opening{Punch, "a port of a part that divides", "the legs beside it get ripple", "connect a line"}
+}
+
+// isolated reports a coupler's port that no connected port passes on to while
+// another pair of its ports is in use.
+func isolated(n *bom.Node) bool {
+	in := 0
+	for _, o := range n.Device.Nodes {
+		if o == n || len(o.Mates) == 0 {
+			continue
+		}
+		in++
+		if o.Port.RF() && len(n.Device.Part.Between(n.Port.Name, o.Port.Name)) == 0 && passesOn(o) {
+			return true
+		}
+	}
+	return in == 0
+}
+
+// passesOn reports whether a port has a way to another one that is connected.
+func passesOn(n *bom.Node) bool {
+	for _, o := range n.Device.Nodes {
+		if o != n && len(o.Mates) > 0 && len(n.Device.Part.Between(n.Port.Name, o.Port.Name)) > 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// close says how to close an open port.
+func (c *Case) close(o opening, d *bom.Device, ports []*bom.Node) string {
+	load := c.loadFor(d, ports[0])
+	switch asked := ports[0].Port.Unused.V; {
+	case o.do != "" && (asked == "never" || ports[0].Port.Side.V == "donor"):
+		return o.do
+	case load == nil && o.do == "":
+		return "put a load on it; the catalog has none that fits"
+	case load == nil:
+		return o.do
+	case asked == "terminate" || o.do == "":
+		return c.terminate(o, load)
+	}
+	return fmt.Sprintf("%s, or terminate it with %s", o.do, c.Firm.OnHand(load))
+}
+
+func (c *Case) terminate(o opening, load *catalog.Part) string {
+	if o.do == "" {
+		return "terminate it with " + c.Firm.OnHand(load)
+	}
+	return fmt.Sprintf("terminate it with %s, or %s", c.Firm.OnHand(load), o.do)
+}
+
+// loadFor is the load of the catalog that goes on a port as it is, rated for the
+// weather where the port is out in it; nil where there is none.
+func (c *Case) loadFor(d *bom.Device, n *bom.Node) *catalog.Part {
+	at := bom.Half{Name: n.Name(), Face: n.Face, Ohm: n.Ohm}
+	return c.best(c.Firm.Catalog.All(), func(p *catalog.Part) bool {
+		if p.Kind.V != "load" || len(p.Ports) != 1 || d.Place.Outdoors() && !catalog.Has(p.Rated, "outdoor") {
+			return false
+		}
+		return portMeets(&p.Ports[0], at)
+	})
+}
