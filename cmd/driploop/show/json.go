@@ -3,18 +3,44 @@ package show
 import (
 	"bytes"
 	"encoding/json"
+	"fmt"
+	"unicode/utf16"
+	"unicode/utf8"
 
 	"driploop/rules"
 )
 
 // encode writes a value as JSON that ends in a line break. Go's encoder escapes
-// what HTML and old parsers stumble over and replaces what is no UTF-8.
+// what HTML and old parsers stumble over and replaces what is no UTF-8; the rest of
+// what Clean escapes is escaped here, for JSON is read on terminals and in logs too.
 func encode(v any) ([]byte, error) {
 	var b bytes.Buffer
 	e := json.NewEncoder(&b)
 	e.SetIndent("", " ")
-	err := e.Encode(v)
-	return b.Bytes(), err
+	if err := e.Encode(v); err != nil {
+		return nil, err
+	}
+	return quiet(b.Bytes()), nil
+}
+
+// quiet escapes what acts in JSON. All of it can only stand inside strings, where
+// the escape means the same.
+func quiet(src []byte) []byte {
+	out := make([]byte, 0, len(src))
+	for len(src) > 0 {
+		r, n := utf8.DecodeRune(src)
+		switch hash := len(out) > 0 && out[len(out)-1] == '#'; {
+		case r > 0xFFFF && acts(r):
+			high, low := utf16.EncodeRune(r)
+			out = fmt.Appendf(out, `\u%04x\u%04x`, high, low)
+		case r >= 0x7F && acts(r), r == '#' && hash:
+			out = fmt.Appendf(out, `\u%04x`, r)
+		default:
+			out = append(out, src[:n]...)
+		}
+		src = src[n:]
+	}
+	return out
 }
 
 // InspectJSON writes the result of an inspection as the interface describes it.
