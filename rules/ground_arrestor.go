@@ -131,22 +131,38 @@ func (c *Case) exempt(d *bom.Device) zone {
 }
 
 // arrestorFor names a catalog arrestor for a line that comes in: of its impedance,
-// for all planned bands, and passing direct current where the line carries it;
-// what is on hand first, then the firm's own parts.
+// for as many of the planned bands as there is one for, and passing direct current
+// where the line carries it; what is on hand first, then the firm's own parts.
 func (c *Case) arrestorFor(x bom.Crossing, verb string) string {
 	dc := len(feeders(x.Line)) > 0
-	var would []*catalog.Part
+	type choice struct {
+		part *catalog.Part
+		left []string // planned bands that it does not cover
+	}
+	var would []choice
 	for _, p := range c.Firm.Catalog.All() {
-		if a := p.Arrestor; a != nil && a.Principle.V != "shield-block" && p.Status.Or("active") == "active" &&
-			(!dc || a.DC.V == "pass") && c.passes(p, lineOhm(x.Line)) {
-			would = append(would, p)
+		a := p.Arrestor
+		if a == nil || a.Principle.V == "shield-block" || p.Status.Or("active") != "active" || dc && a.DC.V != "pass" || !ofImpedance(p, lineOhm(x.Line)) {
+			continue
+		}
+		if left := c.leavesOut(p); len(left) == 0 || len(left) < len(c.Bands()) {
+			would = append(would, choice{p, left})
 		}
 	}
-	sort.SliceStable(would, func(i, j int) bool { return c.Firm.nearerThan(would[i], would[j]) })
+	sort.SliceStable(would, func(i, j int) bool {
+		if a, b := len(would[i].left), len(would[j].left); a != b {
+			return a < b
+		}
+		return c.Firm.nearerThan(would[i].part, would[j].part)
+	})
 	if len(would) == 0 {
-		return verb + "an arrestor at the entry and bond it; no arrestor of the catalog covers the planned bands at this impedance"
+		return verb + "an arrestor at the entry and bond it; the catalog has none for these bands at this impedance"
 	}
-	return verb + c.Firm.OnHand(would[0]) + " at the entry, its line side toward the antenna, and bond it"
+	out := verb + c.Firm.OnHand(would[0].part) + " at the entry, its line side toward the antenna, and bond it"
+	if left := would[0].left; len(left) > 0 {
+		out += "; it leaves out " + list(left) + ", and the catalog has none that does not"
+	}
+	return out
 }
 
 // nearerThan puts what is on hand first, then the firm's own parts, then by ID.
@@ -160,21 +176,25 @@ func (f *Firm) nearerThan(a, b *catalog.Part) bool {
 	return a.ID < b.ID
 }
 
-// passes reports whether a two-port has a path of that impedance at every point of
-// the planned bands. An impedance of 0 asks for none.
-func (c *Case) passes(p *catalog.Part, ohm float64) bool {
-	line, gear := p.Port("line"), p.Port("gear")
-	if line == nil || gear == nil || ohm != 0 && line.Impedance.V != ohm {
-		return false
-	}
+// ofImpedance reports an arrestor of an impedance; 0 asks for none.
+func ofImpedance(p *catalog.Part, ohm float64) bool {
+	line := p.Port("line")
+	return line != nil && (ohm == 0 || line.Impedance.V == ohm)
+}
+
+// leavesOut lists the planned bands that an arrestor has no path for at some point.
+func (c *Case) leavesOut(p *catalog.Part) []string {
+	rows := p.Between("line", "gear")
+	var out []string
 	for _, b := range c.Bands() {
 		for _, f := range bandPoints(b) {
-			if !covers(p.Between("line", "gear"), f) {
-				return false
+			if !covers(rows, f) {
+				out = append(out, b.Name)
+				break
 			}
 		}
 	}
-	return true
+	return out
 }
 
 func covers(rows []*catalog.Path, f unit.MHz) bool {

@@ -2,8 +2,6 @@ package rules
 
 import (
 	"driploop/bom"
-	"driploop/catalog"
-	"driploop/catalog/source"
 	"driploop/rules/limits"
 )
 
@@ -316,71 +314,4 @@ func (c *Case) bondTo(d *bom.Device) string {
 		return "bond " + d.ID + " to " + to + " with " + c.Firm.OnHand(p)
 	}
 	return "bond " + d.ID + " to " + to
-}
-
-// conductorFor is a catalog conductor of a size that a code row allows: on hand
-// first, the firm's own before generic ones, the thinnest that will do. Nil where
-// there is none.
-func (c *Case) conductorFor(row *limits.CodeRow) *catalog.Part {
-	if row == nil {
-		return nil
-	}
-	var best *catalog.Part
-	for _, p := range c.Firm.Catalog.All() {
-		if p.Kind.V != "bond-conductor" || p.Status.Or("active") != "active" {
-			continue
-		}
-		if ok, known := row.AllowsSize(p.Bond.Material.V, p.Bond.Size.V); !ok || !known {
-			continue
-		}
-		if best == nil || c.Firm.handier(p, best) {
-			best = p
-		}
-	}
-	return best
-}
-
-func (f *Firm) handier(a, b *catalog.Part) bool {
-	if x, y := f.held(a), f.held(b); x != y {
-		return x
-	}
-	if a.Generic != b.Generic {
-		return b.Generic
-	}
-	if x, y := a.Bond.Size.V.MM2, b.Bond.Size.V.MM2; x != y {
-		return x < y
-	}
-	return a.ID < b.ID
-}
-
-// feeder is a port that puts direct current on a line.
-type feeder struct {
-	name string
-	port *catalog.Port
-	at   source.Place
-	step int  // −1 at the line's beginning, len(Steps) at its end
-	on   bool // it feeds onward along the line; else back
-}
-
-// feeders lists the ports that put direct current on a line.
-func feeders(l *bom.Line) []feeder {
-	var out []feeder
-	if p := l.From.Port; p != nil && p.DCOut != nil {
-		out = append(out, feeder{l.From.Name(), p, p.At, -1, true})
-	}
-	for i, s := range l.Steps {
-		if s.Pass == nil || s.Pass.Device == nil {
-			continue
-		}
-		if p := s.Pass.In; p.DCOut != nil {
-			out = append(out, feeder{s.Pass.Device.ID + "." + p.Name, p, p.At, i, false})
-		}
-		if p := s.Pass.Out; p.DCOut != nil {
-			out = append(out, feeder{s.Pass.Device.ID + "." + p.Name, p, p.At, i, true})
-		}
-	}
-	if p := l.To.Port; p != nil && p.DCOut != nil {
-		out = append(out, feeder{l.To.Name(), p, p.At, len(l.Steps), false})
-	}
-	return out
 }
