@@ -12,8 +12,9 @@ import (
 // Chain is the radio chain of a plan: for each amplifier and each of its planned
 // bands what it receives, what it makes of it, and what it radiates.
 type Chain struct {
-	Bands []*BandChain // by device in the plan's order, then by band
-	sums  map[sumKey]LineSum
+	Bands  []*BandChain // by device in the plan's order, then by band
+	Radios []*RadioChain
+	sums   map[sumKey]LineSum
 }
 
 type sumKey struct {
@@ -95,6 +96,7 @@ func newChain(c *Case) *Chain {
 			}
 		}
 	}
+	ch.Radios = c.radioChains()
 	return ch
 }
 

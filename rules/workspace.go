@@ -37,6 +37,12 @@ type House struct {
 
 	AntennaToleranceDB source.Val[float64]
 	CableTolerance     source.Val[float64] // per cent
+
+	BodyLossDB     source.Val[float64]
+	PhoneGainDBi   source.Val[float64]
+	FadeMarginDB   source.Val[float64]
+	ReferenceDBm   source.Val[float64]
+	SensitivityDBm source.Val[float64]
 }
 
 // Override changes what a plain failure of a rule weighs.
@@ -82,6 +88,12 @@ func (h *House) keys(k *source.Keys) {
 	source.Opt(k, &h.IsolationMarginDB, "isolation_margin_db", db, "isolation above the gain that is set; absent: 15")
 	source.Opt(k, &h.VSWR, "vswr", source.Between(1, 20, ""), "greatest standing wave ratio of an antenna in the planned bands; absent: 2")
 	source.Opt(k, &h.AntennaToleranceDB, "antenna_tolerance_db", db, "how far an antenna's gain may be off; absent: 0.5")
+	level := source.Between(-200, 60, "dBm")
+	source.Opt(k, &h.BodyLossDB, "body_loss_db", db, "what the body that holds a phone takes; absent: 3")
+	source.Opt(k, &h.PhoneGainDBi, "phone_gain_dbi", source.Between(-30, 10, "dBi"), "gain of a phone's antenna; absent: -3")
+	source.Opt(k, &h.FadeMarginDB, "fade_margin_db", db, "margin for 90 % of an area; absent: 8")
+	source.Opt(k, &h.ReferenceDBm, "reference_dbm", level, "reference signal of a base station, per resource element; absent: 18")
+	source.Opt(k, &h.SensitivityDBm, "base_sensitivity_dbm", level, "base station, one resource block; absent: -118")
 	source.Opt(k, &h.CableTolerance, "cable_tolerance_percent", source.Between(0, 50, "%"), "how far a cable's loss may be off; absent: 4")
 }
 

@@ -14,10 +14,10 @@ type column struct {
 	right bool // figures stand flush right
 }
 
-// table lays rows out in columns, without borders; a rule stands under the
+// table lays rows out in columns behind an indent, without borders; a rule stands under the
 // titles. The library's own formatting of titles and its look at the environment
 // are off, so that the same rows give the same bytes.
-func table(columns []column, rows [][]Term) (Term, error) {
+func table(indent int, columns []column, rows [][]Term) (Term, error) {
 	var b bytes.Buffer
 	align := make([]tw.Align, len(columns))
 	titles := make([]string, len(columns))
@@ -57,7 +57,7 @@ func table(columns []column, rows [][]Term) (Term, error) {
 	}
 	var out strings.Builder
 	for _, line := range strings.Split(strings.TrimRight(b.String(), "\n"), "\n") {
-		out.WriteString(strings.TrimRight(line, " "))
+		out.WriteString(strings.TrimRight(strings.Repeat(" ", indent)+line, " "))
 		out.WriteByte('\n')
 	}
 	return Term(out.String()), nil

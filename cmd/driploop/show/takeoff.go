@@ -48,7 +48,7 @@ func (t *Takeoff) table(s *sheet) error {
 	for _, r := range t.Rows {
 		rows = append(rows, []Term{Clean(r.Part.ID), Clean(r.Part.Kind.V), Clean(t.qty(r.Each, r.Length)), Clean(t.installed(r)), Clean(t.jobs(r))})
 	}
-	text, err := table([]column{{"part", false}, {"kind", false}, {"to bring", true}, {"installed", true}, {"for", false}}, rows)
+	text, err := table(0, []column{{"part", false}, {"kind", false}, {"to bring", true}, {"installed", true}, {"for", false}}, rows)
 	if err != nil {
 		return err
 	}

@@ -74,7 +74,7 @@ func FuzzTerm(f *testing.F) {
 		s.para("", strong, Clean(text))
 		s.para("  do ", plain, Clean(text+text))
 		s.hang(Clean(text)+" ", plain, 4, plain, Clean(text))
-		cells, err := table([]column{{"a", false}, {"b", true}}, [][]Term{{Clean(text), Clean(text)}, {"", Clean(text)}})
+		cells, err := table(0, []column{{"a", false}, {"b", true}}, [][]Term{{Clean(text), Clean(text)}, {"", Clean(text)}})
 		if err != nil {
 			t.Fatal(err)
 		}
