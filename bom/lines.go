@@ -49,9 +49,14 @@ type Pass struct {
 	Rows    []*catalog.Path // all rows of the part between the two ports
 }
 
-// most bounds the number of lines of one plan; a plan that has more ways through
-// its splitters than that is a tangle, and said to be one.
-const most = 4000
+// most bounds the number of lines of one plan, mostSteps the steps that are taken to
+// find them. A plan that has more ways through its splitters is a tangle, and said
+// to be one: splitters joined back to back double the ways with each pair, and a
+// small file could keep the walk busy for ever.
+const (
+	most      = 4000
+	mostSteps = 1 << 18
+)
 
 // Lines are the lines of the plan in the order of its devices.
 type Lines struct {
@@ -115,6 +120,16 @@ type walker struct {
 	reached map[*Node]bool // antenna ports that some line has reached
 	start   *Node
 	steps   []Step
+	taken   int // steps in all, those of the lines found included
+}
+
+// spent counts steps, and reports whether no more are to be taken.
+func (w *walker) spent(steps int) bool {
+	w.taken += steps
+	if w.taken > mostSteps {
+		w.lines.Whole = false
+	}
+	return !w.lines.Whole
 }
 
 func (w *walker) from(d *Device) {
@@ -137,6 +152,9 @@ func (w *walker) lead(n *Node) {
 
 // leave follows every mate of a node outward.
 func (w *walker) leave(n *Node) {
+	if w.spent(1) {
+		return
+	}
 	w.seen[n] = true
 	defer delete(w.seen, n)
 	if len(n.Mates) == 0 {
@@ -241,6 +259,8 @@ func (d *Device) onward(p *catalog.Port) []*Node {
 func (w *walker) end(n *Node, open bool) {
 	if len(w.lines.All) >= most {
 		w.lines.Whole = false
+	}
+	if w.spent(len(w.steps)) {
 		return
 	}
 	line := &Line{From: w.start, To: n, Steps: append([]Step(nil), w.steps...), Open: open}
@@ -273,15 +293,41 @@ func kindOf(l *Line) LineKind {
 	return Stub
 }
 
-// first reports whether a link is met from this end for the first time; every
-// link is found from both of its ends.
+// first reports whether a link is met for the first time; every link is found from
+// both of its ends, and two links may join the same two ports.
 func (w *walker) first(l *Line) bool {
 	for _, x := range w.lines.All {
-		if x.Kind == Link && len(x.Steps) == len(l.Steps) && (x.From == l.To && x.To == l.From || x.From == l.From && x.To == l.To) {
+		if x.Kind == Link && (sameWay(x.Steps, l.Steps, false) || sameWay(x.Steps, l.Steps, true)) {
 			return false
 		}
 	}
 	return true
+}
+
+// sameWay reports whether two lists of steps are one way, the second of them
+// forward or back.
+func sameWay(a, b []Step, back bool) bool {
+	if len(a) != len(b) {
+		return false
+	}
+	for i := range a {
+		o := b[i]
+		if back {
+			o = b[len(b)-1-i].back()
+		}
+		if !a[i].same(o) {
+			return false
+		}
+	}
+	return true
+}
+
+// same reports whether two steps are over the same thing in the same direction.
+func (s Step) same(o Step) bool {
+	if s.Pass != nil && o.Pass != nil {
+		return s.Pass.Device == o.Pass.Device && s.Pass.Part == o.Pass.Part && s.Pass.In == o.Pass.In && s.Pass.Out == o.Pass.Out
+	}
+	return s.Pass == nil && o.Pass == nil && s.Cable == o.Cable && s.Lead == o.Lead && s.Mate == o.Mate && s.Reverse == o.Reverse
 }
 
 // turned reports a line that was found against its direction: a feed from the
