@@ -110,6 +110,42 @@ func turn(m *Mate) {
 	}
 }
 
+// turnJumpers turns each jumper round that mates only so, as the person holding it
+// would: a made-up cable has no end 1 until it is connected.
+func (g *Graph) turnJumpers() {
+	for _, c := range g.Cables {
+		if c.Part == nil || c.Part.Jumper == nil {
+			continue
+		}
+		before := c.fitting()
+		c.turn()
+		if c.fitting() <= before {
+			c.turn()
+		}
+	}
+}
+
+// turn swaps the faces of a jumper's ends and sets the adapters at them anew.
+func (c *Cable) turn() {
+	c.Ends[0].Face, c.Ends[1].Face = c.Ends[1].Face, c.Ends[0].Face
+	for _, e := range c.Ends {
+		for _, m := range e.Mates {
+			turn(m)
+		}
+	}
+}
+
+// fitting counts the ends of a cable that mate with what they go to.
+func (c *Cable) fitting() int {
+	n := 0
+	for _, e := range c.Ends {
+		if joins(e.Face, e.target().Face) {
+			n++
+		}
+	}
+	return n
+}
+
 func joins(a, b source.Val[catalog.Face]) bool {
 	return a.Set && b.Set && catalog.Meet(a.V, b.V, 0, 0).Fit == catalog.Mates
 }
@@ -215,11 +251,18 @@ func (g *Graph) dressEnds() {
 			continue
 		}
 		for _, e := range c.Ends {
-			if e.Fit == nil {
+			if e.Fit == nil && !e.names() {
 				g.dressEnd(c, e)
 			}
 		}
 	}
+}
+
+// names reports an end for which the plan names a connector part. Where that part
+// did not resolve, none is guessed in its place.
+func (n *Node) names() bool {
+	ends := n.Cable.Row.Ends
+	return ends.Set && ends.V[n.End-1].Set && !ends.V[n.End-1].V.Face.Set
 }
 
 func (g *Graph) dressEnd(c *Cable, e *Node) {

@@ -24,6 +24,7 @@ func Resolve(p *Plan, c *catalog.Catalog) *Graph {
 	g.addCables()
 	g.uniqueNames()
 	g.mate()
+	g.turnJumpers()
 	g.dressEnds()
 	g.addSupply()
 	g.addBonds()
