@@ -12,7 +12,8 @@ import (
 // there. They ask the plan's code for its rows by name, so that a rule reads the
 // same under either code; what a code is silent on is not asked for. In a vehicle
 // they have nothing to say.
-var groundRules = []*Rule{groundArrestor, groundBond, groundConductor, groundElectrodes}
+var groundRules = []*Rule{groundArrestor, groundBond, groundConductor, groundElectrodes,
+	groundDC, groundReversed}
 
 // Cautions of the ground rules, in the order in which a crew needs them.
 const (

@@ -65,7 +65,7 @@ func (c *Case) checkCrossing(r *Report, x bom.Crossing, by []protector) bool {
 			Then("look at it on site and give its part").onRow(row).Beside(x.At, "the line that comes in")
 	case block != nil:
 		r.Fails(block.At, block.On(), "%s is a shield block and the only protection of %s: the centre conductor comes in from %s to %s without an arrestor",
-			block.ID, name, x.Out.ID, innerEnd(x).ID).Then("%s", c.arrestorFor(x, "in its place fit ")).
+			block.ID, name, x.Out.ID, innerEnd(x).ID).Then("%s", c.arrestorFor(x.Line, "in its place")).
 			onRow(c.firstRow("shield-block", "discharge-unit")).Lighter(Punch).Beside(x.At, "the line that comes in")
 	default:
 		c.reportUnprotected(r, x, name, row)
@@ -83,7 +83,7 @@ func (c *Case) reportUnprotected(r *Report, x bom.Crossing, name string, row *li
 		return
 	}
 	f := r.Fails(x.At, x.On, "%s comes in from %s to %s without an arrestor; one is expected between outdoors and %s",
-		name, x.Out.ID, x.In.ID, inner.ID).Then("%s", c.arrestorFor(x, "fit ")).onRow(row).Beside(inner.At, "the gear that it reaches")
+		name, x.Out.ID, x.In.ID, inner.ID).Then("%s", c.arrestorFor(x.Line, "at the entry")).onRow(row).Beside(inner.At, "the gear that it reaches")
 	if zone.says != "" {
 		f.Says += "; " + zone.says
 	}
@@ -133,8 +133,8 @@ func (c *Case) exempt(d *bom.Device) zone {
 // arrestorFor names a catalog arrestor for a line that comes in: of its impedance,
 // for as many of the planned bands as there is one for, and passing direct current
 // where the line carries it; what is on hand first, then the firm's own parts.
-func (c *Case) arrestorFor(x bom.Crossing, verb string) string {
-	dc := len(feeders(x.Line)) > 0
+func (c *Case) arrestorFor(l *bom.Line, where string) string {
+	dc := len(feeders(l)) > 0
 	type choice struct {
 		part *catalog.Part
 		left []string // planned bands that it does not cover
@@ -142,7 +142,7 @@ func (c *Case) arrestorFor(x bom.Crossing, verb string) string {
 	var would []choice
 	for _, p := range c.Firm.Catalog.All() {
 		a := p.Arrestor
-		if a == nil || a.Principle.V == "shield-block" || p.Status.Or("active") != "active" || dc && a.DC.V != "pass" || !ofImpedance(p, lineOhm(x.Line)) {
+		if a == nil || a.Principle.V == "shield-block" || p.Status.Or("active") != "active" || dc && a.DC.V != "pass" || !ofImpedance(p, lineOhm(l)) {
 			continue
 		}
 		if left := c.leavesOut(p); len(left) == 0 || len(left) < len(c.Bands()) {
@@ -156,9 +156,9 @@ func (c *Case) arrestorFor(x bom.Crossing, verb string) string {
 		return c.Firm.nearerThan(would[i].part, would[j].part)
 	})
 	if len(would) == 0 {
-		return verb + "an arrestor at the entry and bond it; the catalog has none for these bands at this impedance"
+		return "fit an arrestor " + where + " and bond it; the catalog has none for these bands at this impedance"
 	}
-	out := verb + c.Firm.OnHand(would[0].part) + " at the entry, its line side toward the antenna, and bond it"
+	out := "fit " + c.Firm.OnHand(would[0].part) + " " + where + ", its line side toward the antenna, and bond it"
 	if left := would[0].left; len(left) > 0 {
 		out += "; it leaves out " + list(left) + ", and the catalog has none that does not"
 	}
