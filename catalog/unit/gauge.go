@@ -2,6 +2,7 @@ package unit
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"strconv"
 	"strings"
@@ -51,16 +52,21 @@ func ParseGauge(s string) (Gauge, error) {
 	return Gauge{}, unitFault(u, "AWG or mm2")
 }
 
+// awgNumber is n of AWGArea. Only the plain form of a number is read: 00 would be
+// taken for 0, and is 2/0 in the trade.
 func awgNumber(s string) (int, error) {
+	if aughts := len(s); aughts > 1 && aughts <= 4 && strings.Trim(s, "0") == "" {
+		return 0, fmt.Errorf("%s AWG is written %d/0 AWG", s, aughts)
+	}
 	if aught, ok := strings.CutSuffix(s, "/0"); ok {
 		n, err := strconv.Atoi(aught)
-		if err != nil || n < 1 || n > 4 {
+		if err != nil || n < 1 || n > 4 || aught != strconv.Itoa(n) {
 			return 0, errors.New("AWG sizes above 0 run from 1/0 to 4/0")
 		}
 		return 1 - n, nil
 	}
 	n, err := strconv.Atoi(s)
-	if err != nil || n < 0 || n > 40 {
+	if err != nil || n < 0 || n > 40 || s != strconv.Itoa(n) {
 		return 0, errors.New("AWG sizes run from 4/0 over 0 to 40")
 	}
 	return n, nil

@@ -31,6 +31,9 @@ func (s Span) Overlap(t Span) Span { return Span{max(s.Lo, t.Lo), min(s.Hi, t.Hi
 
 // Minus is what of s none of the given spans covers, from low to high.
 func (s Span) Minus(covers ...Span) []Span {
+	if s.Empty() {
+		return nil
+	}
 	left := []Span{s}
 	for _, c := range covers {
 		var next []Span
