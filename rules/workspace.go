@@ -4,6 +4,7 @@ import (
 	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/source"
+	"driploop/catalog/unit"
 )
 
 // WorkspaceFile is the name of the file at the root of every workspace.
@@ -37,6 +38,9 @@ type House struct {
 
 	AntennaToleranceDB source.Val[float64]
 	CableTolerance     source.Val[float64] // per cent
+
+	BondLength source.Val[unit.MM]
+	EntryReach source.Val[unit.MM]
 
 	BodyLossDB     source.Val[float64]
 	PhoneGainDBi   source.Val[float64]
@@ -95,6 +99,8 @@ func (h *House) keys(k *source.Keys) {
 	source.Opt(k, &h.ReferenceDBm, "reference_dbm", level, "reference signal of a base station, per resource element; absent: 18")
 	source.Opt(k, &h.SensitivityDBm, "base_sensitivity_dbm", level, "base station, one resource block; absent: -118")
 	source.Opt(k, &h.CableTolerance, "cable_tolerance_percent", source.Between(0, 50, "%"), "how far a cable's loss may be off; absent: 4")
+	source.Opt(k, &h.BondLength, "bond_length", source.Length, "longest way over bonds from an arrestor to its electrode; absent: 20 ft")
+	source.Opt(k, &h.EntryReach, "entry_reach", source.Length, "how far behind the entry an arrestor may sit; absent: 5 ft")
 }
 
 func (o *Override) keys(k *source.Keys) {
