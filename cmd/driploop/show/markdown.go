@@ -92,18 +92,14 @@ func escape(word string) string {
 	return b.String()
 }
 
-// escapeFirst escapes what has a meaning at the start of a line: bullets, numbers
-// of a list, underlines of a heading.
+// escapeFirst escapes what has a meaning at the start of a line: quotes, bullets,
+// numbers of a list, underlines of a heading.
 func escapeFirst(word string) string {
-	if word == "" {
-		return word
-	}
-	if strings.ContainsRune("-+=>", rune(word[0])) {
+	if strings.HasPrefix(word, ">") || strings.Trim(word, "-") == "" || strings.Trim(word, "+") == "" || strings.Trim(word, "=") == "" {
 		return `\` + word
 	}
-	digits := strings.TrimLeft(word, "0123456789")
-	if len(digits) < len(word) && (strings.HasPrefix(digits, ".") || strings.HasPrefix(digits, ")")) {
-		return word[:len(word)-len(digits)] + `\` + digits
+	if mark := strings.TrimLeft(word, "0123456789"); mark == "." || mark == ")" {
+		return strings.TrimSuffix(word, mark) + `\` + mark
 	}
 	return word
 }
