@@ -13,7 +13,7 @@ import (
 // same under either code; what a code is silent on is not asked for. In a vehicle
 // they have nothing to say.
 var groundRules = []*Rule{groundArrestor, groundBond, groundConductor, groundElectrodes,
-	groundDC, groundReversed}
+	groundDC, groundData, groundReversed, groundLength, groundEntry}
 
 // Cautions of the ground rules, in the order in which a crew needs them.
 const (
@@ -55,6 +55,14 @@ func (f *Finding) onRow(row *limits.CodeRow) *Finding {
 		basis = append(basis, row.Caution.V)
 	}
 	return f.Replacing(basis...)
+}
+
+// besides names a row of the plan's code before the rule's own documents.
+func (f *Finding) besides(row *limits.CodeRow) *Finding {
+	if row == nil {
+		return f
+	}
+	return f.By(row.Explain())
 }
 
 // leadIns lists the RF lines as grounding sees them: those that end somewhere. A
