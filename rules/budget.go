@@ -78,7 +78,7 @@ func (l LimitCheck) Margin() (float64, bool) {
 
 // Budget lays the chain of a case open.
 func (c *Case) Budget() *Budget {
-	b := &Budget{Case: c, Areas: c.reach()}
+	b := &Budget{Case: c, Areas: c.Reach()}
 	for _, x := range c.Chain().Bands {
 		for _, d := range x.directions() {
 			if !d.Span.Empty() {

@@ -15,6 +15,7 @@ type Chain struct {
 	Bands  []*BandChain // by device in the plan's order, then by band
 	Radios []*RadioChain
 	sums   map[sumKey]LineSum
+	reach  []*AreaReach
 }
 
 type sumKey struct {

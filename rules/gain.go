@@ -183,8 +183,21 @@ func (c *Case) citation(row *limits.Row) string {
 	return limits.Origin(row.Clause.V, row.Edition.Or(c.Profile.Edition.V), row.Proof.V)
 }
 
+// cutOff reports an amplifier that is not connected on one side. The rules about
+// mating say what is open there; figures that lack nothing else are passed over.
+func (x *BandChain) cutOff() bool {
+	return len(x.Feeds) == 0 || len(x.Legs) == 0 && x.coupling() == "antenna"
+}
+
 // unassessed says once for a figure of a band what it lacks.
 func (x *BandChain) unassessed(r *Report, what string, lacks []Lack) {
+	if x.cutOff() {
+		if r.rule.Name == "gain/profile" {
+			r.Unknown(partAt(x.Amp), x.Amp.On(), "%s has no whole line to a donor antenna and to where the phones are; nothing of its radio chain is assessed", x.Amp.ID).
+				Then("connect it").AcrossBands(x.Band.Name)
+		}
+		return
+	}
 	f := r.Unknown(partAt(x.Amp), x.Amp.On(), "%s of %s in "+inBands+" is not assessed: it lacks %s", what, x.Amp.ID, lackWords(lacks)).
 		Then("add what is missing").AcrossBands(x.Band.Name)
 	for _, l := range lacks {

@@ -42,11 +42,12 @@ type House struct {
 	BondLength source.Val[unit.MM]
 	EntryReach source.Val[unit.MM]
 
-	BodyLossDB     source.Val[float64]
-	PhoneGainDBi   source.Val[float64]
-	FadeMarginDB   source.Val[float64]
-	ReferenceDBm   source.Val[float64]
-	SensitivityDBm source.Val[float64]
+	BodyLossDB      source.Val[float64]
+	ReplacedGainDBi source.Val[float64]
+	PhoneGainDBi    source.Val[float64]
+	FadeMarginDB    source.Val[float64]
+	ReferenceDBm    source.Val[float64]
+	SensitivityDBm  source.Val[float64]
 }
 
 // Override changes what a plain failure of a rule weighs.
@@ -94,6 +95,7 @@ func (h *House) keys(k *source.Keys) {
 	source.Opt(k, &h.AntennaToleranceDB, "antenna_tolerance_db", db, "how far an antenna's gain may be off; absent: 0.5")
 	level := source.Between(-200, 60, "dBm")
 	source.Opt(k, &h.BodyLossDB, "body_loss_db", db, "what the body that holds a phone takes; absent: 3")
+	source.Opt(k, &h.ReplacedGainDBi, "replaced_gain_dbi", source.Between(-30, 30, "dBi"), "gain of a router's own antenna; absent: 2")
 	source.Opt(k, &h.PhoneGainDBi, "phone_gain_dbi", source.Between(-30, 10, "dBi"), "gain of a phone's antenna; absent: -3")
 	source.Opt(k, &h.FadeMarginDB, "fade_margin_db", db, "margin for 90 % of an area; absent: 8")
 	source.Opt(k, &h.ReferenceDBm, "reference_dbm", level, "reference signal of a base station, per resource element; absent: 18")
