@@ -227,10 +227,19 @@ func (c *Case) antennaLeaves(left leftOut, a *antennaInUse, ports []antennaPort,
 		verb = "leave"
 	}
 	covers, _ := first.covers()
-	r.Fails(deviceAt(first.device), first.device.On(), "%s (%s) %s out %s; its ranges cover %s", list(names), part.ID, verb, left, stretches(covers)).
+	r.Fails(deviceAt(first.device), first.device.On(), "%s (%s) %s out %s; %s", list(names), part.ID, verb, left, first.bound(covers, left)).
 		Over("left_out_mhz", left.Width(), "allowed_mhz", 0).InBand(left.Band.Name).
 		Then("%s", c.coveringAntenna(part, left.Band)).
 		Beside(c.bandAt(left.Band), "%s is planned here", left.Band.Name).Beside(rangesAt(part), "its ranges")
+}
+
+// bound says what a port covers: the ranges, or the bands that it is limited to
+// where those are what leaves something out.
+func (p antennaPort) bound(covers []unit.Span, left leftOut) string {
+	if leavesOut(left.Band, covers, covers).Nothing() {
+		return "its port " + p.node.Port.Name + " is for " + wordList(p.node.Port.Bands.V) + " only"
+	}
+	return "its ranges cover " + stretches(covers)
 }
 
 // names lists the ports; an antenna all of whose ports are among them stands for
