@@ -2,6 +2,7 @@ package rules
 
 import (
 	"fmt"
+	"slices"
 
 	"driploop/bom"
 	"driploop/catalog"
@@ -45,13 +46,15 @@ type Lack struct {
 }
 
 // Sum is the loss of the kinds of addend that are named.
-func (s LineSum) Sum(kinds ...TermKind) rf.Loss {
-	var out rf.Loss
+func (s LineSum) Sum(kinds ...TermKind) rf.Loss { return s.Only(kinds...).Loss }
+
+// Only is the sum of the kinds of addend that are named, with these alone.
+func (s LineSum) Only(kinds ...TermKind) LineSum {
+	out := LineSum{Missing: s.Missing}
 	for _, t := range s.Terms {
-		for _, k := range kinds {
-			if t.Kind == k {
-				out = out.Plus(t.Loss)
-			}
+		if slices.Contains(kinds, t.Kind) {
+			out.Terms = append(out.Terms, t)
+			out.Loss = out.Loss.Plus(t.Loss)
 		}
 	}
 	return out
@@ -178,7 +181,7 @@ func (a *adder) run(part string, length source.Val[unit.MM], way []bom.Section, 
 	cold, hot := a.c.temperatures(way, ends)
 	loss, ok := fit.LossBetween(a.f, length.V, cold, hot)
 	if !ok {
-		a.lack(p.At, "a loss of %s at %s: its table ends at %s", p.ID, a.f, fit.Max)
+		a.lack(p.At, "a loss of %s beyond %s, where its table ends", p.ID, fit.Max)
 		return
 	}
 	a.term(OfCable, loss, "%s, %s of %s", name, length.V, p.ID)
@@ -222,7 +225,7 @@ func (a *adder) rows(p *bom.Pass, name string) {
 			return
 		}
 	}
-	a.lack(p.Rows[0].At, "a loss of %s at %s: its table covers %s", what, a.f, p.Rows[0].MHz.V)
+	a.lack(p.Rows[0].At, "a loss of %s outside %s", what, p.Rows[0].MHz.V)
 }
 
 func (a *adder) table(points catalog.Points, valid unit.Span, kind TermKind, at source.Place, what string) {

@@ -20,7 +20,7 @@ var lossFeed = &Rule{
 		limit := c.House().FeedLossDB.Or(6)
 		for _, l := range c.Lines().Of(bom.Feed) {
 			for _, b := range c.Bands() {
-				checkLineLoss(c, r, l, b, limit, "feed_loss_db", func(s LineSum) rf.Loss { return s.Loss })
+				checkLineLoss(c, r, l, b, limit, "feed_loss_db")
 			}
 		}
 	},
@@ -36,76 +36,103 @@ var lossLeg = &Rule{
 		limit := c.House().LegLossDB.Or(8)
 		for _, l := range c.Lines().Of(bom.Leg) {
 			for _, b := range c.Bands() {
-				checkLineLoss(c, r, l, b, limit, "leg_loss_db", func(s LineSum) rf.Loss { return s.Sum(OfCable, OfPair, OfSteps) })
+				checkLineLoss(c, r, l, b, limit, "leg_loss_db", OfCable, OfPair, OfSteps)
 			}
 		}
 	},
 }
 
 // checkLineLoss holds the greatest loss of a line, over the edges of a band,
-// against a figure of the house.
-func checkLineLoss(c *Case, r *Report, l *bom.Line, b catalog.Band, limit float64, key string, of func(LineSum) rf.Loss) {
-	if !reaches(l, b) {
-		return // no antenna of the line works in the band: band/antenna says so
+// against a figure of the house: of all its addends, or of some kinds.
+func checkLineLoss(c *Case, r *Report, l *bom.Line, b catalog.Band, limit float64, key string, kinds ...TermKind) {
+	if !carries(l, b) {
+		return // band/antenna and band/amplifier say what is left out
 	}
-	worst, at, lacks := c.worstLoss(l, b, of)
-	if len(lacks) > 0 {
-		r.Unknown(lineAt(l), l.On(), "%s %s in "+inBands+" is not assessed: it lacks %s", l.Kind, l.Name(), lackWords(lacks)).
-			Then("add what is missing").AcrossBands(b.Name).Beside(lacks[0].At, "what it lacks")
+	worst, at := c.worstLoss(l, b, kinds)
+	if !worst.Known() {
+		r.Unknown(lineAt(l), l.On(), "%s %s in "+inBands+" is not assessed: it lacks %s", l.Kind, l.Name(), lackWords(worst.Missing)).
+			Then("add what is missing").AcrossBands(b.Name).Beside(worst.Missing[0].At, "what it lacks")
 		return
 	}
-	v := float64(of(worst).Greatest)
+	v := float64(worst.Loss.Greatest)
 	if !rf.Exceeds(v, limit) {
 		return
 	}
-	f := r.Fails(lineAt(l), l.On(), "%s %s loses %s dB in %s at %s; the house allows %s dB (%s)", l.Kind, l.Name(),
-		unit.Fixed(v, 2), b.Name, at, plainFigure(limit), key).InBand(b.Name).
-		Over("loss_db", v, "limit_db", limit).With("least_db", float64(of(worst).Least))
-	f.Says += ": " + addends(worst, greatest)
-	f.Then("%s", c.lowerLoss(l, at, v-limit))
+	r.Fails(lineAt(l), l.On(), "%s %s loses %s dB in %s at %s; the house allows %s dB (%s): %s", l.Kind, l.Name(),
+		unit.Fixed(v, 2), b.Name, at, plainFigure(limit), key, addends(worst, greatest)).InBand(b.Name).
+		Over("loss_db", v, "limit_db", limit).With("least_db", float64(worst.Loss.Least)).Then("%s", c.lowerLoss(l, at, v-limit))
 }
 
-// reaches reports whether the antenna at an end of the line works in some part of
-// the band.
-func reaches(l *bom.Line, b catalog.Band) bool {
+// carries reports whether a band runs over a line: the antenna at one end works in
+// some part of it, and so does the amplifier or router at the other, as far as
+// either says.
+func carries(l *bom.Line, b catalog.Band) bool {
+	antenna := false
 	for _, n := range []*bom.Node{l.From, l.To} {
-		if n.Device == nil || n.Device.Part == nil || n.Device.Part.Antenna == nil {
+		if n.Device == nil || n.Device.Part == nil {
 			continue
 		}
-		for _, rng := range n.Device.Part.Antenna.RangesOf(n.Port.Name) {
-			if !rng.MHz.V.Overlap(b.Uplink).Empty() || !rng.MHz.V.Overlap(b.Downlink).Empty() {
-				return true
-			}
+		switch p := n.Device.Part; {
+		case p.Amplifier != nil && !among(ampBands(p.Amplifier), b), p.Router != nil && p.Router.Bands.Set && !among(p.Router.Bands.V, b):
+			return false
+		case p.Kind.V == "antenna" && p.Antenna != nil:
+			antenna = antenna || worksIn(p.Antenna, n.Port.Name, b)
+		}
+	}
+	return antenna
+}
+
+// worksIn reports whether an antenna works at a port in some part of a band.
+func worksIn(a *catalog.Antenna, port string, b catalog.Band) bool {
+	for _, rng := range a.RangesOf(port) {
+		if !rng.MHz.V.Overlap(b.Uplink).Empty() || !rng.MHz.V.Overlap(b.Downlink).Empty() {
+			return true
+		}
+	}
+	return false
+}
+
+// among reports whether one of the named bands shares spectrum with a band.
+func among(names catalog.Words, b catalog.Band) bool {
+	for _, n := range names {
+		own, ok := catalog.LookBand(n.V)
+		if ok && (!own.Uplink.Overlap(b.Uplink).Empty() || !own.Downlink.Overlap(b.Downlink).Empty()) {
+			return true
 		}
 	}
 	return false
 }
 
 // worstLoss is the sum of a line at the edge or middle of a band where it loses
-// most.
-func (c *Case) worstLoss(l *bom.Line, b catalog.Band, of func(LineSum) rf.Loss) (LineSum, unit.MHz, []Lack) {
+// most, or the first that is not known.
+func (c *Case) worstLoss(l *bom.Line, b catalog.Band, kinds []TermKind) (LineSum, unit.MHz) {
 	var worst LineSum
 	var at unit.MHz
 	for _, f := range bandPoints(b) {
 		s := c.Sum(l, f)
 		if !s.Known() {
-			return s, f, s.Missing
+			return s, f
 		}
-		if at == 0 || of(worst).Greatest < of(s).Greatest {
+		if len(kinds) > 0 {
+			s = s.Only(kinds...)
+		}
+		if at == 0 || worst.Loss.Greatest < s.Loss.Greatest {
 			worst, at = s, f
 		}
 	}
-	return worst, at, nil
+	return worst, at
 }
 
 // bandPoints are the low edge, the middle and the high edge of a band's uplink and
 // downlink.
 func bandPoints(b catalog.Band) []unit.MHz {
-	var out []unit.MHz
-	for _, s := range []unit.Span{b.Uplink, b.Downlink} {
-		if !s.Empty() {
-			out = append(out, s.Lo, s.Mid(), s.Hi)
-		}
+	return append(points(b.Uplink), points(b.Downlink)...)
+}
+
+// points are the low edge, the middle and the high edge of a stretch of spectrum.
+func points(s unit.Span) []unit.MHz {
+	if s.Empty() {
+		return nil
 	}
-	return out
+	return []unit.MHz{s.Lo, s.Mid(), s.Hi}
 }

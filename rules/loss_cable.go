@@ -2,6 +2,7 @@ package rules
 
 import (
 	"fmt"
+	"slices"
 	"sort"
 
 	"driploop/bom"
@@ -20,14 +21,38 @@ var lossCable = &Rule{
 	Check: func(c *Case, r *Report) {
 		limit := c.House().CableLossDB.Or(5)
 		for _, x := range c.Graph.Cables {
-			if x.Part != nil && x.Part.Cable != nil && len(c.bands) > 0 {
-				checkCable(c, r, x, limit)
+			if x.Part == nil || x.Part.Cable == nil {
+				continue // part/unknown says so; a made-up jumper is what it is
+			}
+			if bands := c.bandsOver(x); len(bands) > 0 {
+				checkCable(c, r, x, bands, limit)
 			}
 		}
 	},
 }
 
-func checkCable(c *Case, r *Report, x *bom.Cable, limit float64) {
+// bandsOver lists the planned bands that run over a cable; all of them where the
+// cable leads to no antenna.
+func (c *Case) bandsOver(x *bom.Cable) []catalog.Band {
+	var lines []*bom.Line
+	for _, l := range c.Lines().All {
+		if (l.Kind == bom.Feed || l.Kind == bom.Leg) && slices.Contains(l.Cables(), x) {
+			lines = append(lines, l)
+		}
+	}
+	if len(lines) == 0 {
+		return c.bands
+	}
+	var out []catalog.Band
+	for _, b := range c.bands {
+		if slices.ContainsFunc(lines, func(l *bom.Line) bool { return carries(l, b) }) {
+			out = append(out, b)
+		}
+	}
+	return out
+}
+
+func checkCable(c *Case, r *Report, x *bom.Cable, bands []catalog.Band, limit float64) {
 	if !x.Length.Set {
 		r.Unknown(x.At, x.On(), "%s has no length; its loss is not assessed", x.ID).Then("add length")
 		return
@@ -38,9 +63,9 @@ func checkCable(c *Case, r *Report, x *bom.Cable, limit float64) {
 			Then("complete the part's loss table").Beside(x.Part.At, "the part")
 		return
 	}
-	band, f := c.highest(fit.Max)
+	band, f := highest(bands, fit.Max)
 	if f == 0 {
-		return // every planned band lies beyond the cable's table: band/part says so
+		return // every band lies beyond the cable's table: band/part says so
 	}
 	cold, hot := c.temperatures(x.Way, c.endsOf(x))
 	loss, ok := fit.LossBetween(f, x.Length.V, cold, hot)
@@ -53,11 +78,11 @@ func checkCable(c *Case, r *Report, x *bom.Cable, limit float64) {
 		InBand(band).Over("loss_db", v, "limit_db", limit).Then("%s", c.betterCable(x, f, v-limit))
 }
 
-// highest is the highest frequency of the planned bands that a cable's table
-// reaches, with its band.
-func (c *Case) highest(max unit.MHz) (string, unit.MHz) {
+// highest is the highest frequency of some bands that a cable's table reaches, with
+// its band.
+func highest(bands []catalog.Band, max unit.MHz) (string, unit.MHz) {
 	name, top := "", unit.MHz(0)
-	for _, b := range c.bands {
+	for _, b := range bands {
 		for _, f := range bandPoints(b) {
 			if f <= max && f > top {
 				name, top = b.Name, f
