@@ -67,19 +67,30 @@ func checkLineLoss(c *Case, r *Report, l *bom.Line, b catalog.Band, limit float6
 // some part of it, and so does the amplifier or router at the other, as far as
 // either says.
 func carries(l *bom.Line, b catalog.Band) bool {
-	antenna := false
 	for _, n := range []*bom.Node{l.From, l.To} {
 		if n.Device == nil || n.Device.Part == nil {
 			continue
 		}
-		switch p := n.Device.Part; {
-		case p.Amplifier != nil && !among(ampBands(p.Amplifier), b), p.Router != nil && p.Router.Bands.Set && !among(p.Router.Bands.V, b):
+		p := n.Device.Part
+		if p.Amplifier != nil && !among(ampBands(p.Amplifier), b) || p.Router != nil && p.Router.Bands.Set && !among(p.Router.Bands.V, b) {
 			return false
-		case p.Kind.V == "antenna" && p.Antenna != nil:
-			antenna = antenna || worksIn(p.Antenna, n.Port.Name, b)
 		}
 	}
-	return antenna
+	return reaches(l, b)
+}
+
+// reaches reports whether the antenna at an end of the line works in some part of
+// the band.
+func reaches(l *bom.Line, b catalog.Band) bool {
+	for _, n := range []*bom.Node{l.From, l.To} {
+		if n.Device == nil || n.Device.Part == nil || n.Device.Kind() != "antenna" || n.Device.Part.Antenna == nil {
+			continue
+		}
+		if worksIn(n.Device.Part.Antenna, n.Port.Name, b) {
+			return true
+		}
+	}
+	return false
 }
 
 // worksIn reports whether an antenna works at a port in some part of a band.
