@@ -34,6 +34,7 @@ type BandChain struct {
 	Up     Direction
 	Down   Direction
 	RSSI   Known[unit.DBm] // composite at the donor port over the amplifier's band
+	Loud   Known[unit.DBm] // the strongest channel of it
 	MSCL   Known[unit.DB]
 	BSCL   limits.Input
 	BSCLBy string
@@ -140,7 +141,7 @@ func (c *Case) bandChain(d *bom.Device, b catalog.Band, row *catalog.AmpBand, ow
 	}
 	x.Up = c.direction(x, "uplink", b.Uplink, row.Uplink, x.Feeds)
 	x.Down = c.direction(x, "downlink", b.Downlink, row.Downlink, x.Legs)
-	x.RSSI = c.rssi(x)
+	x.RSSI, x.Loud = c.received(x)
 	x.MSCL = c.mscl(x)
 	x.BSCL, x.BSCLBy = c.bscl(x)
 	x.Apart = c.isolation(x)
@@ -154,7 +155,11 @@ func (c *Case) direction(x *BandChain, name string, span unit.Span, spec *catalo
 	dir := Direction{Name: name, Span: span, Spec: spec}
 	dir.Set = setGain(x, spec)
 	for _, l := range lines {
-		dir.Antennas = append(dir.Antennas, c.radiates(l, span, spec, x.Row.At))
+		a := c.radiates(l, span, spec, x.Row.At)
+		if !dir.rated() {
+			a.Lacks = []Lack{x.noOutput()}
+		}
+		dir.Antennas = append(dir.Antennas, a)
 	}
 	return dir
 }
@@ -162,16 +167,33 @@ func (c *Case) direction(x *BandChain, name string, span unit.Span, spec *catalo
 // setGain is the greatest gain less the installer's back-off.
 func setGain(x *BandChain, spec *catalog.Gain) Known[unit.DB] {
 	if spec == nil || !spec.GainDB.Set {
-		return unknown[unit.DB](x.Row.At, "gain_db of "+x.Amp.Part.ID+" in "+x.Own.Name)
+		return unknown[unit.DB](x.Row.At, "gain_db of "+x.Amp.Part.ID)
 	}
 	g := unit.DB(spec.GainDB.V)
-	for _, s := range x.Amp.Row.Set {
-		if s.Name == x.Band.Name || s.Name == x.Own.Name {
-			g -= unit.DB(s.Val.V.BackOff.V)
-		}
+	if s := x.setting(); s != nil {
+		g -= unit.DB(s.Val.V.BackOff.V)
 	}
 	return known(g)
 }
+
+// setting is how the plan sets the amplifier in the band: by the planned band's
+// name, else by that of the amplifier's own row, or nil.
+func (x *BandChain) setting() *source.Pick[bom.Setting] {
+	for _, name := range []string{x.Band.Name, x.Own.Name} {
+		for i := range x.Amp.Row.Set {
+			if s := &x.Amp.Row.Set[i]; s.Name == name {
+				return s
+			}
+		}
+	}
+	return nil
+}
+
+// rated reports whether the amplifier's part states its output in this direction.
+func (d *Direction) rated() bool { return d.Spec != nil && d.Spec.MaxOut.Set }
+
+// noOutput is what is missing where the amplifier's part does not state its output.
+func (x *BandChain) noOutput() Lack { return Lack{"max_out_dbm of " + x.Amp.Part.ID, x.Row.At} }
 
 // radiates is what an antenna radiates at the rated output, at the low edge, the
 // middle and the high edge of a band.
@@ -188,7 +210,7 @@ func (c *Case) radiates(l *bom.Line, span unit.Span, spec *catalog.Gain, rowAt s
 		a.Lacks = append(a.Lacks, Lack{"max_out_dbm of the amplifier", rowAt})
 		return a
 	}
-	for i, f := range []unit.MHz{span.Lo, span.Mid(), span.Hi} {
+	for i, f := range points(span) {
 		r, lacks := c.radiation(l, node, unit.DBmOf(spec.MaxOut.V), f)
 		if len(lacks) > 0 {
 			a.Lacks = lacks
@@ -208,8 +230,8 @@ func (c *Case) radiation(l *bom.Line, node *bom.Node, out unit.DBm, f unit.MHz) 
 	r := Radiation{MHz: f, Out: out, Line: c.Sum(l, f)}
 	lacks := append([]Lack(nil), r.Line.Missing...)
 	rng := antennaAt(node, f)
-	if rng == nil || !rng.Gain.Set {
-		return r, append(lacks, Lack{"a gain of " + node.Name() + " at " + f.String(), node.At()})
+	if rng == nil {
+		return r, append(lacks, noGain(node))
 	}
 	r.Gain = unit.DB(rng.Gain.V)
 	if len(lacks) > 0 {
@@ -222,138 +244,32 @@ func (c *Case) radiation(l *bom.Line, node *bom.Node, out unit.DBm, f unit.MHz) 
 	return r, lacks
 }
 
-// antennaAt is the range of an antenna's port that holds a frequency, or nil.
+// antennaAt is the range of an antenna's port that holds a frequency and states a
+// gain, or nil.
 func antennaAt(n *bom.Node, f unit.MHz) *catalog.Range {
 	if n.Device == nil || n.Device.Part == nil || n.Device.Part.Antenna == nil {
 		return nil
 	}
-	return n.Device.Part.Antenna.RangeAt(n.Port.Name, f)
+	if rng := n.Device.Part.Antenna.RangeAt(n.Port.Name, f); rng != nil && rng.Gain.Set {
+		return rng
+	}
+	return nil
 }
 
-// rssi is the composite downlink power at the donor port over all signals in the
-// amplifier's band, each at full load, with the donor antenna's gain toward its
-// bearing and the least loss of the feed.
-func (c *Case) rssi(x *BandChain) Known[unit.DBm] {
-	if len(x.Feeds) == 0 {
-		return unknown[unit.DBm](x.Amp.At, "a feed")
-	}
-	var best Known[unit.DBm]
-	for i, feed := range x.Feeds {
-		k := c.rssiThrough(x, feed)
-		if !k.OK {
-			return k
-		}
-		if i == 0 || best.V.Below(k.V) {
-			best = k
-		}
-	}
-	return best
-}
-
-func (c *Case) rssiThrough(x *BandChain, feed *bom.Line) Known[unit.DBm] {
-	var signals []rf.Signal
-	for i := range c.Plan.Signals {
-		s := &c.Plan.Signals[i]
-		ch, ok := channel(s)
-		if !ok || ch.Overlap(x.Own.Downlink).Empty() {
-			if !ok && overlaps(s, x.Own) {
-				return unknown[unit.DBm](s.At, "width_mhz of the signal of "+s.Operator.V+" in "+s.Band.V)
-			}
-			continue
-		}
-		k := c.arriving(s, ch, feed)
-		if !k.OK {
-			return Known[unit.DBm]{Lacks: k.Lacks}
-		}
-		signals = append(signals, k.V)
-	}
-	if len(signals) == 0 {
-		return unknown[unit.DBm](c.JobAt(), "a survey in "+x.Own.Name+" ([[signal]])")
-	}
-	level, ok := rf.CompositeInput(x.Own.Downlink, signals)
-	if !ok {
-		return unknown[unit.DBm](c.JobAt(), "signals in "+x.Own.Name+" whose power can be added up")
-	}
-	return known(level)
-}
-
-// channel is what a surveyed signal occupies; false where its width is not given.
-func channel(s *bom.Signal) (unit.Span, bool) {
-	band, ok := catalog.LookBand(s.Band.V)
-	if !ok || !s.WidthMHz.Set {
-		return unit.Span{}, false
-	}
-	mid := unit.MHz(s.MHz.Or(float64(band.Downlink.Mid())))
-	half := unit.MHz(s.WidthMHz.V) / 2
-	return unit.Span{Lo: mid - half, Hi: mid + half}, true
-}
-
-func overlaps(s *bom.Signal, b catalog.Band) bool {
-	band, ok := catalog.LookBand(s.Band.V)
-	return ok && !band.Downlink.Overlap(b.Downlink).Empty()
-}
-
-// arriving is a surveyed signal as it comes in through a feed.
-func (c *Case) arriving(s *bom.Signal, ch unit.Span, feed *bom.Line) Known[rf.Signal] {
-	blocks, ok := blocksOf(s)
-	if !ok {
-		return unknown[rf.Signal](s.At, "a channel width of 3GPP, and scs_khz for NR, of the signal of "+s.Operator.V+" in "+s.Band.V)
-	}
-	sum := c.Sum(feed, ch.Mid())
-	rng := antennaAt(feed.From, ch.Mid())
-	switch {
-	case !sum.Known():
-		return Known[rf.Signal]{Lacks: sum.Missing}
-	case rng == nil:
-		return unknown[rf.Signal](feed.From.At(), "a gain of "+feed.From.Name()+" at "+ch.Mid().String())
-	}
-	level := unit.DBmOf(s.RSRP.V)
-	if t := s.Through; t != nil {
-		level, ok = rf.AtIsotropic(level, unit.DB(t.GainDBi.V), unit.DB(t.LossDB.V))
-	}
-	gain := unit.DB(rng.Gain.V) - offBeam(feed.From.Device, rng, s.Bearing)
-	return Known[rf.Signal]{V: rf.Signal{RSRP: level, Channel: ch, Blocks: blocks, Gain: gain, Feed: sum.Loss.Least}, OK: ok}
-}
-
-// blocksOf is the number of resource blocks of a signal: NR where the band's name
-// says so, else LTE.
-func blocksOf(s *bom.Signal) (int, bool) {
-	width := unit.MHz(s.WidthMHz.V)
-	if s.Band.V != "" && s.Band.V[0] == 'n' {
-		if !s.SCSkHz.Set {
-			return 0, false
-		}
-		return rf.NRBlocks(width, int(s.SCSkHz.V))
-	}
-	return rf.LTEBlocks(width)
-}
-
-// offBeam is how far the gain lies below the main beam toward a bearing; nothing
-// where the aim or the bearing is not given.
-func offBeam(d *bom.Device, r *catalog.Range, bearing source.Val[float64]) unit.DB {
-	if !d.Row.AimDeg.Set || !bearing.Set {
-		return 0
-	}
-	off, _ := pattern(r).Discrimination(bearing.V-d.Row.AimDeg.V, 0)
-	return off
-}
-
-func pattern(r *catalog.Range) rf.Pattern {
-	return rf.Pattern{Horizontal: r.Beam.V[0], Vertical: r.Beam.V[1], FrontToBack: unit.DB(r.FB.V)}
-}
+// noGain is what is missing where an antenna has no range. It does not say the
+// frequency, so that what several bands lack is one thing.
+func noGain(n *bom.Node) Lack { return Lack{"a gain of " + n.Name() + " all over the band", n.At()} }
 
 // mscl is the mobile station coupling loss, least over the server antennas; that
-// of a cradle is the part's own figure.
+// of a cradle or a wire is the part's own figure, because the formula is for what
+// radiates.
 func (c *Case) mscl(x *BandChain) Known[unit.DB] {
-	amp := x.Amp.Part.Amplifier
-	switch x.coupling() {
-	case "cradle":
-		if !amp.CouplingDB.Set {
+	if x.coupling() != "antenna" {
+		own := x.Amp.Part.Amplifier.CouplingDB
+		if !own.Set {
 			return unknown[unit.DB](x.Amp.Part.At, "coupling_db of "+x.Amp.Part.ID)
 		}
-		return known(unit.DB(amp.CouplingDB.V))
-	case "wired":
-		return unknown[unit.DB](x.Amp.At, "a coupling loss of a wired phone")
+		return known(unit.DB(own.V))
 	}
 	if len(x.Legs) == 0 {
 		return unknown[unit.DB](x.Amp.At, "a leg to a server antenna")
@@ -370,7 +286,7 @@ func (c *Case) mscl(x *BandChain) Known[unit.DB] {
 			return Known[unit.DB]{Lacks: sum.Missing}
 		}
 		if rng == nil {
-			return unknown[unit.DB](l.To.At(), "a gain of "+l.To.Name()+" at "+f.String())
+			return Known[unit.DB]{Lacks: []Lack{noGain(l.To)}}
 		}
 		v, ok := rf.MSCL(f, metres, unit.DB(rng.Gain.V), sum.Loss.Least)
 		if !ok {
@@ -382,15 +298,25 @@ func (c *Case) mscl(x *BandChain) Known[unit.DB] {
 	return Known[unit.DB]{V: v, OK: ok}
 }
 
-// coupling is how phones are coupled: as the plan says, else by antenna.
-func (x *BandChain) coupling() string { return x.Amp.Row.Coupling.Or("antenna") }
+// coupling is how phones are coupled.
+func (x *BandChain) coupling() string { return couplingOf(x.Amp) }
 
-// bscl is the coupling loss to the base station as the profile has it found.
+// couplingOf is how phones are coupled to an amplifier: as the plan says, else the
+// only way that the part knows, else by antenna.
+func couplingOf(d *bom.Device) string {
+	if can := d.Part.Amplifier.Coupling; !d.Row.Coupling.Set && len(can.V) == 1 && can.V[0].Set {
+		return can.V[0].V
+	}
+	return d.Row.Coupling.Or("antenna")
+}
+
+// bscl is the coupling loss to the base station as the profile has it found: from
+// the strongest channel, which is the base station that comes closest.
 func (c *Case) bscl(x *BandChain) (limits.Input, string) {
 	if c.Profile == nil {
 		return limits.Input{}, ""
 	}
-	return c.Profile.BSCLFrom(limits.Input{}, limits.Figure(x.RSSI.V.Value(), x.RSSI.OK))
+	return c.Profile.BSCLFrom(limits.Input{}, limits.Figure(x.Loud.V.Value(), x.Loud.OK))
 }
 
 // inputs are what limit formulas take in this band.

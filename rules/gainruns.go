@@ -3,7 +3,6 @@ package rules
 import (
 	"driploop/bom"
 	"driploop/catalog"
-	"driploop/catalog/source"
 	"driploop/catalog/unit"
 	"driploop/rules/limits"
 	"driploop/rules/rf"
@@ -107,9 +106,9 @@ func (c *Case) coupling(feed, leg *bom.Line, f unit.MHz) Known[unit.DB] {
 	case lacks != nil:
 		return Known[unit.DB]{Lacks: lacks}
 	case dr == nil:
-		return unknown[unit.DB](donor.At(), "a gain of "+donor.Name()+" at "+f.String())
+		return Known[unit.DB]{Lacks: []Lack{noGain(donor)}}
 	case sr == nil:
-		return unknown[unit.DB](server.At(), "a gain of "+server.Name()+" at "+f.String())
+		return Known[unit.DB]{Lacks: []Lack{noGain(server)}}
 	case !fs.Known() || !ls.Known():
 		return Known[unit.DB]{Lacks: append(fs.Missing, ls.Missing...)}
 	}
@@ -198,16 +197,14 @@ func (c *Case) gainRuns(x *BandChain, dir *Direction) Known[rf.Running] {
 	if !dir.Set.OK {
 		return Known[rf.Running]{Lacks: dir.Set.Lacks}
 	}
+	if dir.Set.V < 0 {
+		return known(rf.Running{By: rf.BySet}) // set back by more than it has: the band is off
+	}
 	var ceilings []rf.Ceiling
 	var lacks []Lack
 	if dir.Name == "downlink" {
-		switch {
-		case !dir.Input.OK:
-			lacks = append(lacks, dir.Input.Lacks...)
-			ceilings = append(ceilings, rf.Ceiling{By: rf.ByOutput})
-		case dir.Spec.MaxOut.Set:
-			ceilings = append(ceilings, rf.OutputCeiling(unit.DBmOf(dir.Spec.MaxOut.V), dir.Input.V))
-		}
+		o, missing := x.outputCeiling(dir)
+		ceilings, lacks = append(ceilings, o), append(lacks, missing...)
 	}
 	if x.Amp.Part.Amplifier.NetworkProtection.V && c.Profile != nil {
 		p, missing := c.protection(x, dir.Name)
@@ -220,6 +217,18 @@ func (c *Case) gainRuns(x *BandChain, dir *Direction) Known[rf.Running] {
 	}
 	run, ok := rf.GainRuns(dir.Set.V, unit.DB(x.Amp.Part.Amplifier.StepDB.V), ceilings...)
 	return Known[rf.Running]{V: run, OK: ok, Lacks: lacks}
+}
+
+// outputCeiling is the gain at which what comes in reaches the rated output.
+func (x *BandChain) outputCeiling(dir *Direction) (rf.Ceiling, []Lack) {
+	lacks := dir.Input.Lacks
+	if !dir.rated() {
+		lacks = append([]Lack{x.noOutput()}, lacks...)
+	}
+	if len(lacks) > 0 || !dir.Input.OK {
+		return rf.Ceiling{By: rf.ByOutput}, lacks
+	}
+	return rf.OutputCeiling(unit.DBmOf(dir.Spec.MaxOut.V), dir.Input.V), nil
 }
 
 // protection is the least gain row that depends on the site, which an amplifier
@@ -237,22 +246,29 @@ func (c *Case) protection(x *BandChain, direction string) ([]rf.Ceiling, []Lack)
 	return []rf.Ceiling{rf.ProtectionCeiling(unit.DB(a.Value))}, nil
 }
 
-// lacking names what the rows that stay open lack, in the words of the plan.
+// lacking names what the rows that stay open lack, in the words of the plan and
+// the catalog.
 func (x *BandChain) lacking(open []limits.Open) []Lack {
 	var out []Lack
 	for _, o := range open {
 		for _, m := range o.Missing {
-			switch m {
-			case "RSSI":
-				out = append(out, x.RSSI.Lacks...)
-			case "MSCL":
-				out = append(out, x.MSCL.Lacks...)
-			default:
-				out = append(out, Lack{m, source.Place{}})
-			}
+			out = append(out, x.lack(m)...)
 		}
 	}
 	return dedupe(out)
+}
+
+// lack says what stands behind one input or selector of a row.
+func (x *BandChain) lack(name string) []Lack {
+	behind := map[string][]Lack{"RSSI": x.RSSI.Lacks, "MSCL": x.MSCL.Lacks}[name]
+	if len(behind) > 0 {
+		return behind
+	}
+	switch name {
+	case "class", "mobility", "isolation_control":
+		return []Lack{{name + " of " + x.Amp.Part.ID, x.Amp.Part.At}}
+	}
+	return []Lack{{name, x.Amp.At}}
 }
 
 func dedupe(lacks []Lack) []Lack {
