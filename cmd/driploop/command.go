@@ -13,6 +13,7 @@ import (
 	"github.com/spf13/cobra"
 	"golang.org/x/term"
 
+	"driploop/catalog/source"
 	"driploop/cmd/driploop/show"
 )
 
@@ -52,9 +53,13 @@ func (c *Command) Main(args []string) int {
 	root := c.tree()
 	root.SetArgs(args)
 	root.SetIn(c.Stdin)
-	root.SetOut(c.Stdout)
+	out := &watched{to: c.Stdout}
+	root.SetOut(out)
 	root.SetErr(c.Stderr)
 	err := root.ExecuteContext(context.Background())
+	if out.err != nil {
+		err = failure{fmt.Errorf("writing the result: %w", out.err)}
+	}
 	switch {
 	case err == nil && c.held:
 		return statusHeld
@@ -66,6 +71,21 @@ func (c *Command) Main(args []string) int {
 		return statusFailed
 	}
 	return statusCall
+}
+
+// watched remembers that a write failed, for what is written without a look at that:
+// help and completion.
+type watched struct {
+	to  io.Writer
+	err error
+}
+
+func (w *watched) Write(b []byte) (int, error) {
+	n, err := w.to.Write(b)
+	if err != nil {
+		w.err = err
+	}
+	return n, err
 }
 
 // say writes a message of the tool to standard error.
@@ -81,9 +101,10 @@ func (c *Command) tree() *cobra.Command {
 		SilenceErrors: true,
 		SilenceUsage:  true,
 		Version:       version,
+		Args:          cobra.ArbitraryArgs, // so that RunE says what is wrong with them
 		RunE: func(cmd *cobra.Command, args []string) error {
 			if len(args) > 0 {
-				return fmt.Errorf("there is no command %q", args[0])
+				return unknownCommand(cmd.Root(), args[0])
 			}
 			return cmd.Help()
 		},
@@ -98,7 +119,34 @@ func (c *Command) tree() *cobra.Command {
 	f.StringVar(&c.shared.color, "color", "auto", "auto, always or never")
 	f.BoolVar(&c.shared.quiet, "quiet", false, "no messages, and of findings only holds")
 	root.AddCommand(c.inspect(), c.budget(), c.takeoff(), c.basis(), c.parts())
+	root.SetHelpCommand(help())
 	return root
+}
+
+// help is the library's help, but that an unknown command is an error.
+func help() *cobra.Command {
+	return &cobra.Command{
+		Use:   "help [COMMAND]",
+		Short: "help for a command",
+		RunE: func(cmd *cobra.Command, args []string) error {
+			about, rest, err := cmd.Root().Find(args)
+			if err != nil || len(rest) > 0 {
+				return unknownCommand(cmd.Root(), args[0])
+			}
+			return about.Help()
+		},
+	}
+}
+
+func unknownCommand(root *cobra.Command, word string) error {
+	var names []string
+	for _, sub := range root.Commands() {
+		names = append(names, sub.Name())
+	}
+	if near := source.Nearest(word, names); near != "" {
+		return fmt.Errorf("there is no command %s; did you mean %s?", source.Quote(word), near)
+	}
+	return fmt.Errorf("there is no command %s; help lists them", source.Quote(word))
 }
 
 // form is the form asked for, or the first of those that the command has.
