@@ -48,6 +48,9 @@ func (c *Command) today() (unit.Date, error) {
 // source is the tree that the flags name: the folder, or a revision of it.
 func (c *Command) source(ctx context.Context) (source.Tree, func(), error) {
 	if c.shared.at == "" {
+		if err := c.begins(); err != nil {
+			return nil, nil, err
+		}
 		tree, err := source.Disk(c.shared.root)
 		if err != nil {
 			return nil, nil, fmt.Errorf("opening the workspace: %w", err)
@@ -63,6 +66,19 @@ func (c *Command) source(ctx context.Context) (source.Tree, func(), error) {
 		return nil, nil, errors.Join(err, r.Close())
 	}
 	return tree, func() { r.Close() }, nil
+}
+
+// begins refuses a folder that is no workspace before all that lies below it is
+// listed: it may be a whole disk.
+func (c *Command) begins() error {
+	if _, err := os.Stat(c.shared.root); err != nil {
+		return fmt.Errorf("opening the workspace: %w", err)
+	}
+	_, err := os.Lstat(filepath.Join(c.shared.root, rules.WorkspaceFile))
+	if errors.Is(err, fs.ErrNotExist) {
+		return fmt.Errorf("reading the workspace in %s: %w", c.shared.root, rules.ErrNoWorkspace)
+	}
+	return nil
 }
 
 // plans are the plan files that the arguments name: a job's ID, or a file. What
