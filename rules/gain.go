@@ -2,10 +2,12 @@ package rules
 
 import (
 	"fmt"
+	"math"
 	"slices"
 	"strings"
 
 	"driploop/bom"
+	"driploop/catalog"
 	"driploop/catalog/source"
 	"driploop/catalog/unit"
 	"driploop/rules/limits"
@@ -35,10 +37,8 @@ var gainProfile = &Rule{
 		if !c.haveLimits(r) {
 			return
 		}
-		for _, x := range c.Chain().Bands {
-			for _, d := range x.directions() {
-				checkGain(c, r, x, d, true)
-			}
+		for _, direction := range directions {
+			c.eachDirection(direction, func(x *BandChain, d *Direction) { checkGain(c, r, x, d, true) })
 		}
 	},
 }
@@ -52,18 +52,51 @@ var gainAmplifier = &Rule{
 	Weight:  Hold,
 	Grave:   true,
 	Check: func(c *Case, r *Report) {
-		if c.Profile == nil {
-			return // gain/profile says so
-		}
-		for _, x := range c.Chain().Bands {
-			for _, d := range x.directions() {
-				checkGain(c, r, x, d, false)
-			}
+		for _, direction := range directions {
+			c.eachDirection(direction, func(x *BandChain, d *Direction) { checkGain(c, r, x, d, false) })
 		}
 	},
 }
 
+var directions = []string{"uplink", "downlink"}
+
 func (x *BandChain) directions() []*Direction { return []*Direction{&x.Up, &x.Down} }
+
+// eachDirection visits one direction of every band that there is something to hold
+// against: a profile with figures for this amplifier, and spectrum in that
+// direction.
+func (c *Case) eachDirection(name string, visit func(*BandChain, *Direction)) {
+	if c.Profile == nil || c.Profile.NeedsOperatorPermission() {
+		return // gain/profile says so
+	}
+	for _, x := range c.Chain().Bands {
+		for _, d := range x.directions() {
+			if d.Name == name && !d.Span.Empty() && c.fits(x.Amp) {
+				visit(x, d)
+			}
+		}
+	}
+}
+
+// fits reports whether the profile's rows are made for an amplifier of this class
+// and mobility. Where they are not, gain/mobility says so, and figures made for
+// something else would only say it again in every band.
+func (c *Case) fits(d *bom.Device) bool {
+	return c.Profile != nil && misfit(c.Profile, d.Part.Amplifier) == nil
+}
+
+// trait is what an amplifier and a profile both state.
+type trait struct{ word, profile, amp string }
+
+// misfit is the first trait in which the two contradict each other, or nil.
+func misfit(p *limits.Profile, a *catalog.Amplifier) *trait {
+	for _, t := range []trait{{"class", p.Class.V, a.Class.V}, {"mobility", p.Mobility.V, a.Mobility.V}} {
+		if t.profile != "" && t.amp != "" && t.profile != t.amp {
+			return &t
+		}
+	}
+	return nil
+}
 
 // haveLimits reports whether there is a profile with figures to hold gains
 // against; where there is none, it says once that nothing is assessed.
@@ -84,6 +117,10 @@ func (c *Case) haveLimits(r *Report) bool {
 		r.Unknown(at, "job", "profile %s has no figures of its own; gain and power are not assessed: the operator's permission sets them", c.Profile.ID).
 			Then("get the operator's written permission, and enter its figures as a profile of the workspace")
 		return false
+	case len(c.Profile.Limits) == 0 && !c.Profile.DonorAsRadio.V:
+		r.Unknown(at, "job", "profile %s has no rows for amplifiers; gain and power of %s are not assessed", c.Profile.ID, amps[0].ID).
+			Then("name the profile of the amplifier's class").Beside(partAt(amps[0]), "the amplifier")
+		return false
 	}
 	return true
 }
@@ -102,37 +139,63 @@ func (c *Case) amplifiers() []*bom.Device {
 // checkGain holds the set gain of one direction against one half of the gain
 // rows: those that depend on the site, or those that follow from the band.
 func checkGain(c *Case, r *Report, x *BandChain, d *Direction, bySite bool) {
-	if d.Span.Empty() {
-		return
-	}
 	q := x.query("gain", d.Name)
-	band, site := limits.Split(c.Profile.Match(q))
-	rows := band
-	if bySite {
-		rows = site
-	}
-	if len(rows) == 0 {
+	a := c.gainLimit(x, q, bySite)
+	lacks := append(c.rowsLack(x, a), d.Set.Lacks...)
+	switch {
+	case d.Set.OK && a.Exceeded(float64(d.Set.V)):
+	case a.None() || bySite && x.deaf():
 		return
-	}
-	a := limits.Least(q, x.inputs(), rows...)
-	if lacks := append(x.lacking(a.Open), d.Set.Lacks...); len(lacks) > 0 && (!d.Set.OK || a.Row == nil || !a.Exceeded(float64(d.Set.V))) {
+	case len(lacks) > 0:
 		x.unassessed(r, "the "+d.Name+" gain", lacks)
 		return
-	}
-	if !a.Exceeded(float64(d.Set.V)) {
+	default:
 		return
 	}
 	set := float64(d.Set.V)
-	says := fmt.Sprintf("%s is set to %s dB of %s gain in %s; the limit is %s dB (%s)", x.Amp.ID, unit.Fixed(set, 1), d.Name,
+	says := fmt.Sprintf("%s is set to %s dB of %s gain in %s; the limit is %s dB (%s)", x.Amp.ID, hundredths(set), d.Name,
 		x.Band.Name, unit.Fixed(a.Value, 2), x.formula(a.Row))
-	do := fmt.Sprintf("set %s back by %s dB more: set = { %s = { back_off_db = %s } }", x.Amp.ID, unit.Fixed(set-a.Value, 1), x.Band.Name, x.backOff(d, a.Value))
 	var f *Finding
 	if bySite && x.Amp.Part.Amplifier.NetworkProtection.V {
 		f = r.Advice(x.settingAt(), x.Amp.On(), "%s; its network protection will run it at no more than that", says)
 	} else {
-		f = r.Fails(x.settingAt(), x.Amp.On(), "%s", says).Then("%s", do)
+		f = r.Fails(x.settingAt(), x.Amp.On(), "%s", says).
+			Then("set it back: set = { %s = { back_off_db = %s } }", x.Band.Name, x.backOff(d, a.Value))
 	}
 	f.InBand(x.Band.Name).Over("gain_db", set, "limit_db", a.Value).By(c.citation(a.Row)).Beside(d.Spec.At, "gain of %s in %s", x.Amp.Part.ID, x.Own.Name)
+}
+
+// deaf reports an amplifier with nothing at its donor ports: it hears nothing and
+// radiates nothing toward the network, and mate/open says so.
+func (x *BandChain) deaf() bool {
+	for _, n := range x.Amp.Nodes {
+		if n.Port.Side.V == "donor" && len(n.Mates) > 0 {
+			return false
+		}
+	}
+	return true
+}
+
+// gainLimit is the least of one half of the gain rows. Spectrum for which the
+// profile has no row at all counts with those that follow from the band.
+func (c *Case) gainLimit(x *BandChain, q limits.Query, bySite bool) limits.Assessment {
+	byBand, site := limits.Split(c.Profile.Match(q))
+	if bySite {
+		return limits.Least(q, x.inputs(), site...)
+	}
+	a := limits.Least(q, x.inputs(), byBand...)
+	a.Left = c.Profile.Assess(q, x.inputs()).Left
+	return a
+}
+
+// rowsLack names what keeps rows from being assessed: inputs, and spectrum for
+// which there is none.
+func (c *Case) rowsLack(x *BandChain, a limits.Assessment) []Lack {
+	lacks := x.lacking(a.Open)
+	if len(a.Left) > 0 {
+		lacks = append(lacks, Lack{"a row of profile " + c.Profile.ID + " for " + spans(a.Left), c.Plan.Job.Profile.At})
+	}
+	return lacks
 }
 
 // backOff is the back-off from the greatest gain that reaches a limit, in whole
@@ -147,10 +210,8 @@ func (x *BandChain) backOff(d *Direction, limit float64) string {
 
 // settingAt is where the plan sets the amplifier in the band, else the device.
 func (x *BandChain) settingAt() source.Place {
-	for _, s := range x.Amp.Row.Set {
-		if s.Name == x.Band.Name || s.Name == x.Own.Name {
-			return s.At
-		}
+	if s := x.setting(); s != nil {
+		return s.At
 	}
 	return partAt(x.Amp)
 }
@@ -169,7 +230,7 @@ func (x *BandChain) formula(row *limits.Row) string {
 		{row.KM.V, in.MSCL.V, "MSCL", "dB"}, {row.KB.V, in.BSCL.V, "BSCL", "dB"},
 	} {
 		if t.k != 0 {
-			with = append(with, fmt.Sprintf("%s = %s %s", t.name, plainFigure(Round2(t.v)), t.unit))
+			with = append(with, fmt.Sprintf("%s = %s %s", t.name, hundredths(t.v), t.unit))
 		}
 	}
 	if len(with) > 0 {
@@ -205,57 +266,8 @@ func (x *BandChain) unassessed(r *Report, what string, lacks []Lack) {
 	}
 }
 
-var gainMobility = &Rule{
-	Name:    "gain/mobility",
-	Title:   "Amplifier, limit profile and setting are of one kind: in a building or in a vehicle, and of one class",
-	Why:     "an amplifier certified for a vehicle has other gain, noise and antenna limits than one for a building",
-	Basis:   []Basis{{Document: "47 CFR 20.3, definitions of fixed and mobile signal boosters", Kind: "code", Proof: "memory"}, byProfile},
-	Caution: mindOperator,
-	Weight:  Hold,
-	Grave:   true,
-	Check: func(c *Case, r *Report) {
-		for _, d := range c.amplifiers() {
-			checkMobility(c, r, d)
-		}
-	},
-}
-
-func checkMobility(c *Case, r *Report, d *bom.Device) {
-	amp, at := d.Part.Amplifier, partAt(d)
-	setting := c.Plan.Job.Setting.Or("building")
-	switch {
-	case !amp.Mobility.Set:
-		r.Unknown(at, d.On(), "part %s does not say whether it is for buildings or vehicles; that is not assessed", d.Part.ID).
-			Then("add mobility to the part").Beside(d.Part.At, "the part")
-	case (amp.Mobility.V == "mobile") != (setting == "vehicle"):
-		r.Fails(at, d.On(), "%s is a %s amplifier, the job is in a %s", d.ID, amp.Mobility.V, setting).
-			Then("take an amplifier that is certified for a %s", setting).Beside(amp.Mobility.At, "mobility of %s", d.Part.ID)
-		return
-	}
-	if c.Profile == nil {
-		return
-	}
-	for _, m := range []struct{ word, profile, amp string }{
-		{"class", c.Profile.Class.V, amp.Class.V}, {"mobility", c.Profile.Mobility.V, amp.Mobility.V},
-	} {
-		if m.profile != "" && m.amp != "" && m.profile != m.amp {
-			r.Fails(at, d.On(), "%s is %s by its %s, profile %s is for %s", d.ID, m.amp, m.word, c.Profile.ID, m.profile).
-				Then("name the profile that fits the amplifier, or take an amplifier that fits the profile").Beside(c.Plan.Job.Profile.At, "the profile")
-			return
-		}
-	}
-	if s := c.Profile.Setting; s.Set && s.V != setting {
-		r.Fails(placeOr(c.Plan.Job.Profile.At, at), d.On(), "profile %s is for a %s, the job is in a %s", c.Profile.ID, s.V, setting).
-			Then("name the profile that fits the job")
-	}
-	if !amp.Class.Set && c.Profile.Class.Set {
-		r.Unknown(at, d.On(), "part %s states no class; profile %s is for class %s, and whether it fits is not assessed", d.Part.ID, c.Profile.ID, c.Profile.Class.V).
-			Then("add class to the part").Beside(d.Part.At, "the part")
-	}
-}
-
-// Round2 rounds a figure for a message.
-func Round2(v float64) float64 { return Round(Round(v*100) / 100) }
+// hundredths prints a figure with two decimals at most.
+func hundredths(v float64) string { return plainFigure(math.Round(v*100) / 100) }
 
 // eachPer asks a question for the composite figure and for whatever else the rows
 // are counted in.

@@ -2,6 +2,7 @@ package rules
 
 import (
 	"fmt"
+	"math"
 
 	"driploop/bom"
 	"driploop/catalog"
@@ -26,60 +27,38 @@ func powerRule(name, direction, title, why string) *Rule {
 	}
 }
 
-// eachDirection visits one direction of every band that there is something to hold
-// against: a profile with figures, and spectrum in that direction.
-func (c *Case) eachDirection(name string, visit func(*BandChain, *Direction)) {
-	if c.Profile == nil || c.Profile.NeedsOperatorPermission() {
-		return
-	}
-	for _, x := range c.Chain().Bands {
-		for _, d := range x.directions() {
-			if d.Name == name && !d.Span.Empty() {
-				visit(x, d)
-			}
-		}
-	}
-}
-
 func checkPower(c *Case, r *Report, x *BandChain, d *Direction) {
+	what := "the " + d.Name + " output"
 	for _, q := range eachPer(c.Profile, x.query("conducted", d.Name)) {
 		a := c.Profile.Assess(q, x.inputs())
 		switch {
 		case a.None():
 			continue
-		case d.Spec == nil || !d.Spec.MaxOut.Set:
-			x.unassessed(r, "the "+d.Name+" output", []Lack{{"max_out_dbm of " + x.Amp.Part.ID + " in " + x.Own.Name, x.Row.At}})
+		case !d.rated():
+			x.unassessed(r, what, []Lack{x.noOutput()})
 			return
 		}
 		v := d.Spec.MaxOut.V
-		if a.Exceeded(v) && q.Per == "" {
+		switch lacks := c.rowsLack(x, a); {
+		case a.Exceeded(v) && q.Per == "":
 			r.Fails(partAt(x.Amp), x.Amp.On(), "%s puts out up to %s dBm in the %s of %s; the limit at the port is %s %s",
-				x.Amp.ID, unit.Fixed(v, 1), d.Name, x.Band.Name, unit.Fixed(a.Value, 1), a.Row.Unit()).
+				x.Amp.ID, hundredths(v), d.Name, x.Band.Name, hundredths(a.Value), a.Row.Unit()).
 				Then("take an amplifier with less output, or another profile if the job falls under one").InBand(x.Band.Name).
 				Over("output_dbm", v, "limit_dbm", a.Value).By(c.citation(a.Row)).Beside(d.Spec.MaxOut.At, "its rated output")
-			continue
+		case a.Exceeded(v):
+			x.onlyComposite(c, r, a, what, v)
+		case len(lacks) > 0:
+			x.unassessed(r, what, lacks)
 		}
-		x.openLimits(c, r, q, a, "the "+d.Name+" output", v)
 	}
 }
 
-// openLimits says what keeps a figure that breaks no known limit from being inside
-// all of them: rows that lack an input, spectrum without a row, or a limit counted
-// in something narrower than the rated composite power.
-func (x *BandChain) openLimits(c *Case, r *Report, q limits.Query, a limits.Assessment, what string, v float64) {
-	at := partAt(x.Amp)
-	if a.Exceeded(v) {
-		r.Unknown(at, x.Amp.On(), "%s of %s in %s is not assessed per %s: it is rated as a composite of %s dBm, the limit is %s %s", what, x.Amp.ID, x.Band.Name,
-			q.Per, unit.Fixed(v, 1), unit.Fixed(a.Value, 1), a.Row.Unit()).Then("ask the maker for the figure per %s", q.Per).InBand(x.Band.Name).By(c.citation(a.Row))
-		return
-	}
-	lacks := x.lacking(a.Open)
-	for _, s := range a.Left {
-		lacks = append(lacks, Lack{"a row of profile " + c.Profile.ID + " for " + s.String(), c.Plan.Job.Profile.At})
-	}
-	if len(lacks) > 0 {
-		x.unassessed(r, what, lacks)
-	}
+// onlyComposite says that a composite figure breaks a limit which is counted in
+// something narrower; by how much of it nobody can tell.
+func (x *BandChain) onlyComposite(c *Case, r *Report, a limits.Assessment, what string, v float64) {
+	r.Unknown(partAt(x.Amp), x.Amp.On(), "%s of %s in "+inBands+" is not assessed against %s %s: it is known as a composite of %s dBm", what, x.Amp.ID,
+		hundredths(a.Value), a.Row.Unit(), hundredths(v)).
+		Then("ask the maker for the figure %s", a.Row.Per.V).AcrossBands(x.Band.Name).By(c.citation(a.Row))
 }
 
 var gainUplinkEIRP = eirpRule("gain/uplink-eirp", "uplink",
@@ -102,32 +81,37 @@ func eirpRule(name, direction, title, why string) *Rule {
 }
 
 func checkEIRP(c *Case, r *Report, x *BandChain, d *Direction) {
+	limited := false
 	for _, q := range eachPer(c.Profile, x.query("eirp", d.Name)) {
 		a := c.Profile.Assess(q, x.inputs())
 		if a.None() {
 			continue
 		}
-		strongest := d.strongest()
-		if strongest == nil {
-			x.noEIRP(c, r, d)
-			return
+		limited = true
+		if strongest := d.strongest(); strongest != nil {
+			x.holdEIRP(c, r, d, strongest, a)
 		}
-		v := strongest.Worst.EIRP.Most.Value()
-		tolerance := c.eirpTolerance(strongest)
-		switch {
-		case a.Exceeded(v) && q.Per == "":
-			x.eirpFinding(c, r.Fails, a, d, strongest, "").Then("%s", c.lessEIRP(x, strongest, v-a.Value))
-		case q.Per == "" && a.Exceeded(v+tolerance):
-			x.eirpFinding(c, r.AtWorst, a, d, strongest, fmt.Sprintf(" ± %s dB", unit.Fixed(tolerance, 1))).With("tolerance_db", tolerance).
-				Then("measure it at commissioning, or %s", c.lessEIRP(x, strongest, v+tolerance-a.Value))
-		default:
-			x.openLimits(c, r, q, a, "the "+d.Name+" EIRP", v)
-		}
-		for _, ant := range d.Antennas {
-			if len(ant.Lacks) > 0 && q.Per == "" {
-				x.unassessed(r, "the "+d.Name+" EIRP of "+ant.Node.Name(), ant.Lacks)
-			}
-		}
+	}
+	if limited {
+		x.unknownEIRP(r, d)
+	}
+}
+
+// holdEIRP holds the strongest antenna of a direction against the row that binds.
+func (x *BandChain) holdEIRP(c *Case, r *Report, d *Direction, ant *Antenna, a limits.Assessment) {
+	what := "the " + d.Name + " EIRP"
+	v := ant.Worst.EIRP.Most.Value()
+	tolerance := c.eirpTolerance(ant)
+	switch lacks := c.rowsLack(x, a); {
+	case a.Exceeded(v) && !a.Row.Per.Set:
+		x.eirpFinding(c, r.Fails, a, d, ant, "").Then("%s", c.lessEIRP(x, ant, v-a.Value))
+	case a.Exceeded(v):
+		x.onlyComposite(c, r, a, what, v)
+	case a.Exceeded(v + tolerance):
+		x.eirpFinding(c, r.AtWorst, a, d, ant, " ± "+unit.Fixed(tolerance, 2)+" dB").With("tolerance_db", tolerance).
+			Then("measure it at commissioning, or %s", c.lessEIRP(x, ant, v+tolerance-a.Value))
+	case len(lacks) > 0:
+		x.unassessed(r, what, lacks)
 	}
 }
 
@@ -146,20 +130,24 @@ func (d *Direction) strongest() *Antenna {
 	return best
 }
 
-// noEIRP says why nothing is known of what a direction radiates. An amplifier
-// whose phones lie in a cradle, or hang on a wire, has no server antenna.
-func (x *BandChain) noEIRP(c *Case, r *Report, d *Direction) {
-	var lacks []Lack
-	for _, a := range d.Antennas {
-		lacks = append(lacks, a.Lacks...)
+// unknownEIRP says of which antennas nothing is known. An amplifier whose phones
+// lie in a cradle, or hang on a wire, needs no server antenna.
+func (x *BandChain) unknownEIRP(r *Report, d *Direction) {
+	what := "the " + d.Name + " EIRP"
+	needed := d.Name == "uplink" && !x.deaf() || d.Name == "downlink" && x.coupling() == "antenna"
+	if len(d.Antennas) == 0 && needed {
+		x.unassessed(r, what, []Lack{{"a line from " + x.Amp.ID + " to an antenna", x.Amp.At}})
+		return
 	}
-	if len(lacks) == 0 {
-		if d.Name == "downlink" && x.coupling() != "antenna" {
-			return
+	if !d.rated() && len(d.Antennas) > 0 {
+		x.unassessed(r, what, []Lack{x.noOutput()})
+		return
+	}
+	for _, ant := range d.Antennas {
+		if len(ant.Lacks) > 0 {
+			x.unassessed(r, what+" of "+ant.Node.Device.ID, ant.Lacks)
 		}
-		lacks = []Lack{{"a line from " + x.Amp.ID + " to an antenna", x.Amp.At}}
 	}
-	x.unassessed(r, "the "+d.Name+" EIRP", lacks)
 }
 
 type reportFunc = func(at source.Place, on, says string, args ...any) *Finding
@@ -167,10 +155,10 @@ type reportFunc = func(at source.Place, on, says string, args ...any) *Finding
 // eirpFinding shows the sum.
 func (x *BandChain) eirpFinding(c *Case, report reportFunc, a limits.Assessment, d *Direction, ant *Antenna, spread string) *Finding {
 	w := ant.Worst
-	f := report(partAt(ant.Node.Device), ant.Node.On(), "%s radiates %s dBm%s in the %s of %s at %s: %s dBm + %s dBi − %s dB = %s dBm, limit %s %s",
-		ant.Node.Device.ID, unit.Fixed(w.EIRP.Most.Value(), 1), spread, d.Name, x.Band.Name, w.MHz,
-		unit.Fixed(w.Out.Value(), 1), unit.Fixed(float64(w.Gain), 1), unit.Fixed(float64(w.Line.Loss.Least), 1),
-		unit.Fixed(w.EIRP.Most.Value(), 1), unit.Fixed(a.Value, 1), a.Row.Unit())
+	f := report(partAt(ant.Node.Device), ant.Node.On(), "%s radiates %s dBm%s in the %s of %s at %s: %s dBm + %s dBi − %s dB; the limit is %s %s",
+		ant.Node.Device.ID, unit.Fixed(w.EIRP.Most.Value(), 2), spread, d.Name, x.Band.Name, w.MHz,
+		hundredths(w.Out.Value()), hundredths(float64(w.Gain)), unit.Fixed(float64(w.Line.Loss.Least), 2),
+		hundredths(a.Value), a.Row.Unit())
 	return f.InBand(x.Band.Name).Over("eirp_dbm", w.EIRP.Most.Value(), "limit_dbm", a.Value).
 		With("output_dbm", w.Out.Value()).With("antenna_gain_dbi", float64(w.Gain)).With("least_loss_db", float64(w.Line.Loss.Least)).
 		By(c.citation(a.Row)).Beside(x.Amp.Row.Part.At, "the amplifier").Beside(lineAt(ant.Line), "the line between them")
@@ -184,13 +172,15 @@ func (c *Case) lessEIRP(x *BandChain, ant *Antenna, by float64) string {
 		if p.Antenna == nil || p.ID == ant.Node.Device.Part.ID || p.Router != nil || len(p.Ports) != len(ant.Node.Device.Part.Ports) || !fitsInstead(p, ant.Node, x.Band) {
 			continue
 		}
-		if g, ok := greatestGain(p, x.Band); ok && g <= want && (other == nil || c.Firm.held(p) && !c.Firm.held(other)) {
+		g, ok := greatestGain(p, x.Band)
+		if ok && g <= want && c.kitTakes(x, ant.Line, p, g) && (other == nil || c.Firm.held(p) && !c.Firm.held(other)) {
 			other = p
 		}
 	}
-	add := fmt.Sprintf("put %s dB more loss into the line", unit.Fixed(by+0.05, 1))
+	amount := unit.Fixed(math.Ceil(by*10-rf.Slack)/10, 1)
+	add := "put " + amount + " dB more loss into the line"
 	if other == nil {
-		return "take an antenna with " + unit.Fixed(by+0.05, 1) + " dB less gain, or " + add
+		return "take an antenna with " + amount + " dB less gain, or " + add
 	}
 	return fmt.Sprintf("take an antenna with less gain such as %s, or %s", c.Firm.OnHand(other), add)
 }
