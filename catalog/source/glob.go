@@ -11,23 +11,35 @@ func Match(pattern, name string) bool {
 	return matchParts(strings.Split(pattern, "/"), strings.Split(name, "/"))
 }
 
+// matchParts goes back to the last ** only: what an earlier one could take more of,
+// the last one can take as well. So the work does not grow with the ways to share
+// the folders out among many of them.
 func matchParts(pattern, name []string) bool {
-	for len(pattern) > 0 {
-		if pattern[0] == "**" {
-			for i := 0; i <= len(name); i++ {
-				if matchParts(pattern[1:], name[i:]) {
-					return true
-				}
-			}
+	last, taken := -1, 0 // the last ** met, and the parts of the name up to its end
+	p, n := 0, 0
+	for n < len(name) {
+		switch {
+		case p < len(pattern) && pattern[p] == "**":
+			last, taken = p, n
+			p++
+		case p < len(pattern) && matchPart(pattern[p], name[n]):
+			p++
+			n++
+		case last >= 0:
+			taken++
+			p, n = last+1, taken
+		default:
 			return false
 		}
-		if len(name) == 0 {
-			return false
-		}
-		if ok, err := path.Match(pattern[0], name[0]); err != nil || !ok {
-			return false
-		}
-		pattern, name = pattern[1:], name[1:]
 	}
-	return len(name) == 0
+	for p < len(pattern) && pattern[p] == "**" {
+		p++
+	}
+	return p == len(pattern)
+}
+
+// matchPart matches one folder or file name; a pattern that is none matches nothing.
+func matchPart(pattern, name string) bool {
+	ok, err := path.Match(pattern, name)
+	return ok && err == nil
 }

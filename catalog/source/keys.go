@@ -37,7 +37,8 @@ type Keys struct {
 // reading collects what one file has to say.
 type reading struct {
 	problems []Problem
-	partial  bool // keys that seem missing may well be there
+	missing  []int // those of the problems that are missing keys
+	partial  bool  // keys that seem missing may well be there
 }
 
 // Read runs a bind function over the root of a document and returns the
@@ -78,6 +79,7 @@ func (k *Keys) Fault(at Place, says, do string, also ...Place) {
 // Missing reports a key that the record needs and does not have.
 func (k *Keys) Missing(name, doc string) {
 	if k.read != nil && !k.read.partial {
+		k.read.missing = append(k.read.missing, len(k.read.problems))
 		k.read.add(Problem{Key, k.at, fmt.Sprintf("%s has no %s: %s", k.called(), name, doc), "add " + name, nil})
 	}
 }
@@ -126,10 +128,10 @@ func Opt[T any](k *Keys, to *Val[T], name string, t Type[T], doc string) {
 func accept[T any](k *Keys, to *Val[T], n *KeyNode, t Type[T]) {
 	v, bad := t.parse(n.Value)
 	for _, b := range bad {
-		if b.kind == 0 {
-			continue // reported when the file was parsed
+		if b.kind == 0 || b.missing && k.read.partial {
+			continue // reported when the file was parsed, or may well be there
 		}
-		k.read.add(Problem{b.kind, b.at, n.Name + ": " + b.says, b.do, nil})
+		k.read.add(Problem{b.kind, b.at, n.Name + ": " + b.says, b.do, b.also})
 	}
 	if len(bad) == 0 {
 		*to = Val[T]{v, n.Value.At, true}

@@ -3,6 +3,7 @@ package source
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 	"time"
@@ -21,9 +22,13 @@ type bad struct {
 	kind     ProblemKind // 0: nothing more to say
 	at       Place
 	says, do string
+	also     []Place
+	missing  bool // a key that is not there
 }
 
-func refuse(at Place, says, do string) []bad { return []bad{{Value, at, says, do}} }
+func refuse(at Place, says, do string) []bad {
+	return []bad{{kind: Value, at: at, says: says, do: do}}
+}
 
 func expected(n *Node, want, example string) []bad {
 	if n.Kind == Refused {
@@ -67,7 +72,7 @@ var (
 	Temperature = Checked("temperature", `"45 C"`, unit.ParseTemperature)
 	Speed       = Checked("speed", `"44 m/s"`, unit.ParseSpeed)
 	Size        = Checked("conductor size", `"10 AWG"`, unit.ParseGauge)
-	Price       = Checked("amount", `"318.00"`, unit.ParseMoney)
+	Price       = Checked("money amount", `"318.00"`, unit.ParseMoney)
 )
 
 // Checked is a string that a function reads or refuses.
@@ -255,8 +260,8 @@ func Inline[R any](bind func(*R, *Keys)) Type[R] {
 		bind(&row, k)
 		k.finish()
 		var all []bad
-		for _, p := range r.problems {
-			all = append(all, bad{p.Kind, p.At, p.Says, p.Do})
+		for i, p := range r.problems {
+			all = append(all, bad{p.Kind, p.At, p.Says, p.Do, p.Also, slices.Contains(r.missing, i)})
 		}
 		return row, all
 	}}
