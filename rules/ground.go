@@ -13,7 +13,7 @@ import (
 // same under either code; what a code is silent on is not asked for. In a vehicle
 // they have nothing to say.
 var groundRules = []*Rule{groundArrestor, groundBond, groundConductor, groundElectrodes,
-	groundDC, groundData, groundReversed, groundLength, groundEntry}
+	groundDC, groundData, groundReversed, groundLength, groundEntry, groundSpark, groundMains}
 
 // Cautions of the ground rules, in the order in which a crew needs them.
 const (
