@@ -97,7 +97,7 @@ func checkDensity(c *Case, r *Report, e *emitter) {
 		free, reflected, lacks = shares(e, level)
 	}
 	if len(lacks) > 0 {
-		r.Unknown(at, e.node.On(), "the power density at %s is not assessed: it lacks %s", e.node.Name(), lackWords(lacks)).Then("add what is missing").Beside(lacks[0].At, "what is missing")
+		r.Lacking(at, e.node.On(), lacks, "the power density at %s", e.node.Name())
 		return
 	}
 	metres := d.Row.People.V

@@ -25,6 +25,8 @@ type Finding struct {
 	Related []Related
 	Waived  *Settled // the waiver that covers it, or nil
 	Part    string   // of findings on the catalog: the part concerned
+	Of      string   // of findings that lack something: what is not assessed
+	Lacks   string   // and what is lacking
 
 	bands    []string // of a finding that several bands may share
 	lighter  Weight   // weighs no more than this
@@ -63,6 +65,18 @@ func (r *Report) AtWorst(at source.Place, on, says string, args ...any) *Finding
 // Unknown reports what could not be assessed because an input is missing.
 func (r *Report) Unknown(at source.Place, on, says string, args ...any) *Finding {
 	return r.add(Unknown, at, on, says, args)
+}
+
+// Lacking reports a figure that could not be assessed because the plan or the
+// catalog lacks something; what is lacking is shown with its place.
+func (r *Report) Lacking(at source.Place, on string, lacks []Lack, subject string, args ...any) *Finding {
+	of := fmt.Sprintf(subject, args...)
+	f := r.Unknown(at, on, "%s is not assessed: it lacks %s", of, lackWords(lacks)).Then("add what is missing")
+	f.Of, f.Lacks = of, lackWords(lacks)
+	for _, l := range dedupe(lacks) {
+		f.Beside(l.At, "what is missing: %s", l.What)
+	}
+	return f
 }
 
 // Advice reports what is worth saying without standing against the rule.
@@ -163,6 +177,7 @@ func (r *Report) merged() []*Finding {
 			continue
 		}
 		f.Says = strings.ReplaceAll(f.Says, inBands, list(f.bands))
+		f.Of = strings.ReplaceAll(f.Of, inBands, list(f.bands))
 		if len(f.bands) == 1 {
 			f.Band = f.bands[0]
 		}

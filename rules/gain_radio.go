@@ -50,8 +50,7 @@ func checkRadio(c *Case, r *Report, x *RadioChain) {
 		for _, ant := range x.Antennas {
 			lacks = append(lacks, ant.Lacks...)
 		}
-		r.Unknown(partAt(x.Router), x.Router.On(), "the EIRP of %s in "+inBands+" is not assessed: it lacks %s", x.Router.ID, lackWords(lacks)).
-			Then("add what is missing").AcrossBands(x.Band.Name)
+		r.Lacking(partAt(x.Router), x.Router.On(), lacks, "the EIRP of %s in "+inBands, x.Router.ID).AcrossBands(x.Band.Name)
 		return
 	}
 	w, tolerance := s.Worst, c.eirpTolerance(s)
@@ -75,7 +74,7 @@ func checkRadio(c *Case, r *Report, x *RadioChain) {
 		if a.None() {
 			lacks = append(lacks, Lack{"rows of profile " + c.Profile.ID + " for routers", c.Plan.Job.Profile.At})
 		}
-		r.Unknown(partAt(x.Router), x.Router.On(), "the EIRP of %s in "+inBands+" is not assessed: it lacks %s", x.Router.ID, lackWords(lacks)).
+		r.Lacking(partAt(x.Router), x.Router.On(), lacks, "the EIRP of %s in "+inBands, x.Router.ID).
 			Then("name a profile that covers the band").AcrossBands(x.Band.Name)
 	case a.Exceeded(v + tolerance):
 		r.AtWorst(partAt(s.Node.Device), s.Node.On(), "%s radiates %s ± %s dB in the uplink of %s at %s; the limit is %s dBm", s.Node.Device.ID, sum, unit.Fixed(tolerance, 1), x.Band.Name, w.MHz, unit.Fixed(a.Value, 1)).

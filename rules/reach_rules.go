@@ -35,8 +35,7 @@ func checkDownlink(r *Report, a *AreaReach) {
 	case !a.Area.Target.Set:
 		r.Unknown(a.Area.At, areaOn(a.Area), "the area %s has no target_rsrp_dbm; whether it is reached is not assessed", a.Area.Name.V).Then("add what is promised there").AcrossBands(a.Signal.Band.V)
 	case !a.RSRP.OK:
-		r.Unknown(a.Area.At, areaOn(a.Area), "the level of %s in "+inBands+" in the area %s is not assessed: it lacks %s", a.Signal.Operator.V, a.Area.Name.V, lackWords(a.RSRP.Lacks)).
-			Then("add what is missing").AcrossBands(a.Signal.Band.V)
+		r.Lacking(a.Area.At, areaOn(a.Area), a.RSRP.Lacks, "the level of %s in "+inBands+" in the area %s", a.Signal.Operator.V, a.Area.Name.V).AcrossBands(a.Signal.Band.V)
 	default:
 		v, target, doubt := a.RSRP.V.Value(), a.Area.Target.V, float64(a.Doubt)
 		report := r.Fails
@@ -91,8 +90,7 @@ var reachUplink = &Rule{
 
 func checkUplink(r *Report, a *AreaReach) {
 	if !a.Up.OK {
-		r.Unknown(a.Area.At, areaOn(a.Area), "the way back from the area %s to %s in "+inBands+" is not assessed: it lacks %s", a.Area.Name.V, a.Signal.Operator.V, lackWords(a.Up.Lacks)).
-			Then("add what is missing").AcrossBands(a.Signal.Band.V)
+		r.Lacking(a.Area.At, areaOn(a.Area), a.Up.Lacks, "the way back from the area %s to %s in "+inBands, a.Area.Name.V, a.Signal.Operator.V).AcrossBands(a.Signal.Band.V)
 		return
 	}
 	v, need := a.Up.V.Level.Value(), a.Up.V.Needed.Value()

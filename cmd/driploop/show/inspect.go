@@ -235,6 +235,9 @@ func (t *inspectText) finding(m matter, tag, planPath string) {
 		t.hang("     ", plain, 5, plain, Clean("accepted"+by(w)+": "+w.Because.V))
 	}
 	for _, rel := range f.Related {
+		if f.Lacks != "" {
+			break // the lack is named already
+		}
 		t.hang("     ", plain, 5, faint, Clean(rel.Says+": "+where(rel.At.Path(), rel.At.Line(), planPath)))
 	}
 	t.hang("     ", plain, 5, faint, Clean(f.Rule.Name+"; "+strings.Join(f.Basis, "; ")))

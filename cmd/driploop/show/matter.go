@@ -10,14 +10,16 @@ import (
 	"driploop/rules"
 )
 
-// matter is what one rule has to say of one thing over several bands: a reader
-// takes it in as one, with its worst band in full.
+// matter is what a reader takes in as one: what a rule has to say of one thing over
+// several bands, with its worst band in full; or all that is not assessed of a
+// thing for one and the same lack.
 type matter struct {
 	worst  *rules.Finding
 	others []*rules.Finding
 }
 
-// matters groups findings that differ in their band only, worst first.
+// matters groups findings that differ in their band only, or lack the same, worst
+// first.
 func matters(all []*rules.Finding) []matter {
 	type key struct {
 		rule, on string
@@ -30,8 +32,13 @@ func matters(all []*rules.Finding) []matter {
 	var out []matter
 	for _, f := range all {
 		k := key{f.Rule.Name, f.On, f.At, f.Outcome, f.Weight, f.Waived != nil}
+		if f.Lacks != "" {
+			k = key{"", f.On + f.Lacks, source.Place{}, f.Outcome, f.Weight, f.Waived != nil}
+		}
 		i, found := index[k]
 		switch {
+		case found && f.Lacks != "":
+			out[i].others = append(out[i].others, f)
 		case !found || f.Band == "" || out[i].worst.Band == "":
 			index[k] = len(out)
 			out = append(out, matter{worst: f})
@@ -58,6 +65,13 @@ func excess(f *rules.Finding) float64 {
 func (m matter) also() string {
 	if len(m.others) == 0 {
 		return ""
+	}
+	if m.worst.Lacks != "" {
+		var more []string
+		for _, f := range m.others {
+			more = append(more, f.Of+" ("+f.Rule.Name+")")
+		}
+		return "Nor is, for the same lack: " + strings.Join(more, "; ") + "."
 	}
 	var bands []string
 	for _, f := range m.others {
