@@ -73,6 +73,10 @@ func TestIsolation(t *testing.T) {
 
 	v, ok = rf.AirGap(836.5, 0.3)
 	wantUnknown(t, "closer than a wavelength", v, ok)
+	v, ok = rf.Coupling{Path: 30, Donor: 20, Server: 10}.Isolation()
+	wantDB(t, "antennas that look into one another", v, ok, 0, 0)
+	v, ok = rf.Coupling{Path: 30, Donor: 20, Server: 10.5}.Isolation()
+	wantUnknown(t, "a gap that gains", v, ok)
 	c.Path = unit.DB(math.NaN())
 	v, ok = c.Isolation()
 	wantUnknown(t, "no path", v, ok)
@@ -87,6 +91,8 @@ func TestIsolation(t *testing.T) {
 func TestLeastCoupling(t *testing.T) {
 	v, ok := rf.LeastCoupling(44.9, 38.2, 51)
 	wantDB(t, "least", v, ok, 38.2, 0)
+	v, ok = rf.LeastCoupling(38.2, 44.9)
+	wantDB(t, "the first is the least", v, ok, 38.2, 0)
 	v, ok = rf.LeastCoupling()
 	wantUnknown(t, "no antenna", v, ok)
 	v, ok = rf.LeastCoupling(44, unit.DB(math.NaN()))
@@ -96,6 +102,8 @@ func TestLeastCoupling(t *testing.T) {
 func TestStrongest(t *testing.T) {
 	v, ok := rf.Strongest(unit.DBmOf(12), unit.DBmOf(14.5), unit.DBmOf(9))
 	wantDB(t, "strongest", unit.DB(v.Value()), ok, 14.5, 0)
+	v, ok = rf.Strongest(unit.DBmOf(14.5), unit.DBmOf(12))
+	wantDB(t, "the first is the strongest", unit.DB(v.Value()), ok, 14.5, 0)
 	v, ok = rf.Strongest()
 	wantUnknown(t, "no server", v, ok)
 	v, ok = rf.Strongest(unit.DBmOf(12), unit.DBmOf(math.NaN()))

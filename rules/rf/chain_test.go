@@ -33,6 +33,8 @@ func TestLimitComparison(t *testing.T) {
 	}{
 		{30, 30, false, false},
 		{0.1 + 0.2, 0.3, false, false}, // 4e-17 apart
+		{30 + rf.Slack, 30, false, false},
+		{30 - rf.Slack, 30, false, false},
 		{30 + 2e-9, 30, true, false},
 		{30 - 2e-9, 30, false, true},
 		{math.NaN(), 30, true, true},
