@@ -37,6 +37,7 @@ var gainProfile = &Rule{
 		if !c.haveLimits(r) {
 			return
 		}
+		c.sayCutOff(r)
 		for _, direction := range directions {
 			c.eachDirection(direction, func(x *BandChain, d *Direction) { checkGain(c, r, x, d, true) })
 		}
@@ -144,10 +145,13 @@ func checkGain(c *Case, r *Report, x *BandChain, d *Direction, bySite bool) {
 	lacks := append(c.rowsLack(x, a), d.Set.Lacks...)
 	switch {
 	case d.Set.OK && a.Exceeded(float64(d.Set.V)):
-	case a.None() || bySite && x.deaf():
+	case a.None():
+		return
+	case len(lacks) > 0 && bySite:
+		x.unassessed(r, "the "+d.Name+" gain", lacks)
 		return
 	case len(lacks) > 0:
-		x.unassessed(r, "the "+d.Name+" gain", lacks)
+		x.lacksFigures(r, "the "+d.Name+" gain", lacks)
 		return
 	default:
 		return
@@ -163,17 +167,6 @@ func checkGain(c *Case, r *Report, x *BandChain, d *Direction, bySite bool) {
 			Then("set it back: set = { %s = { back_off_db = %s } }", x.Band.Name, x.backOff(d, a.Value))
 	}
 	f.InBand(x.Band.Name).Over("gain_db", set, "limit_db", a.Value).By(c.citation(a.Row)).Beside(d.Spec.At, "gain of %s in %s", x.Amp.Part.ID, x.Own.Name)
-}
-
-// deaf reports an amplifier with nothing at its donor ports: it hears nothing and
-// radiates nothing toward the network, and mate/open says so.
-func (x *BandChain) deaf() bool {
-	for _, n := range x.Amp.Nodes {
-		if n.Port.Side.V == "donor" && len(n.Mates) > 0 {
-			return false
-		}
-	}
-	return true
 }
 
 // gainLimit is the least of one half of the gain rows. Spectrum for which the
@@ -244,21 +237,35 @@ func (c *Case) citation(row *limits.Row) string {
 	return limits.Origin(row.Clause.V, row.Edition.Or(c.Profile.Edition.V), row.Proof.V)
 }
 
-// cutOff reports an amplifier that is not connected on one side. The rules about
-// mating say what is open there; figures that lack nothing else are passed over.
+// cutOff reports an amplifier that is not connected on one side. gain/profile says
+// so once; figures that take a line are passed over.
 func (x *BandChain) cutOff() bool {
 	return len(x.Feeds) == 0 || len(x.Legs) == 0 && x.coupling() == "antenna"
 }
 
-// unassessed says once for a figure of a band what it lacks.
-func (x *BandChain) unassessed(r *Report, what string, lacks []Lack) {
-	if x.cutOff() {
-		if r.rule.Name == "gain/profile" {
-			r.Unknown(partAt(x.Amp), x.Amp.On(), "%s has no whole line to a donor antenna and to where the phones are; nothing of its radio chain is assessed", x.Amp.ID).
-				Then("connect it").AcrossBands(x.Band.Name)
+// sayCutOff says of an amplifier without a whole line on both sides that nothing is
+// assessed of it, whatever the profile asks.
+func (c *Case) sayCutOff(r *Report) {
+	said := map[*bom.Device]bool{}
+	for _, x := range c.Chain().Bands {
+		if x.cutOff() && !said[x.Amp] {
+			said[x.Amp] = true
+			r.Unknown(partAt(x.Amp), x.Amp.On(), "%s has no whole line to a donor antenna and to where the phones are; what comes in and what it radiates is not assessed", x.Amp.ID).
+				Then("connect it")
 		}
-		return
 	}
+}
+
+// unassessed says once for a figure of a band what it lacks; of an amplifier that is
+// cut off there is more to say than one figure.
+func (x *BandChain) unassessed(r *Report, what string, lacks []Lack) {
+	if !x.cutOff() {
+		x.lacksFigures(r, what, lacks)
+	}
+}
+
+// lacksFigures is unassessed for what no line has a part in.
+func (x *BandChain) lacksFigures(r *Report, what string, lacks []Lack) {
 	f := r.Unknown(partAt(x.Amp), x.Amp.On(), "%s of %s in "+inBands+" is not assessed: it lacks %s", what, x.Amp.ID, lackWords(lacks)).
 		Then("add what is missing").AcrossBands(x.Band.Name)
 	for _, l := range lacks {

@@ -35,7 +35,7 @@ func checkPower(c *Case, r *Report, x *BandChain, d *Direction) {
 		case a.None():
 			continue
 		case !d.rated():
-			x.unassessed(r, what, []Lack{x.noOutput()})
+			x.lacksFigures(r, what, []Lack{x.noOutput()})
 			return
 		}
 		v := d.Spec.MaxOut.V
@@ -45,10 +45,11 @@ func checkPower(c *Case, r *Report, x *BandChain, d *Direction) {
 				x.Amp.ID, hundredths(v), d.Name, x.Band.Name, hundredths(a.Value), a.Row.Unit()).
 				Then("take an amplifier with less output, or another profile if the job falls under one").InBand(x.Band.Name).
 				Over("output_dbm", v, "limit_dbm", a.Value).By(c.citation(a.Row)).Beside(d.Spec.MaxOut.At, "its rated output")
+			return // what is counted in something narrower would say it again
 		case a.Exceeded(v):
 			x.onlyComposite(c, r, a, what, v)
 		case len(lacks) > 0:
-			x.unassessed(r, what, lacks)
+			x.lacksFigures(r, what, lacks)
 		}
 	}
 }
@@ -88,8 +89,8 @@ func checkEIRP(c *Case, r *Report, x *BandChain, d *Direction) {
 			continue
 		}
 		limited = true
-		if strongest := d.strongest(); strongest != nil {
-			x.holdEIRP(c, r, d, strongest, a)
+		if strongest := d.strongest(); strongest != nil && x.holdEIRP(c, r, d, strongest, a) {
+			break // what is counted in something narrower would say it again
 		}
 	}
 	if limited {
@@ -97,22 +98,25 @@ func checkEIRP(c *Case, r *Report, x *BandChain, d *Direction) {
 	}
 }
 
-// holdEIRP holds the strongest antenna of a direction against the row that binds.
-func (x *BandChain) holdEIRP(c *Case, r *Report, d *Direction, ant *Antenna, a limits.Assessment) {
+// holdEIRP holds the strongest antenna of a direction against the row that binds,
+// and reports whether it broke it.
+func (x *BandChain) holdEIRP(c *Case, r *Report, d *Direction, ant *Antenna, a limits.Assessment) bool {
 	what := "the " + d.Name + " EIRP"
 	v := ant.Worst.EIRP.Most.Value()
 	tolerance := c.eirpTolerance(ant)
 	switch lacks := c.rowsLack(x, a); {
 	case a.Exceeded(v) && !a.Row.Per.Set:
 		x.eirpFinding(c, r.Fails, a, d, ant, "").Then("%s", c.lessEIRP(x, ant, v-a.Value))
+		return true
 	case a.Exceeded(v):
 		x.onlyComposite(c, r, a, what, v)
 	case a.Exceeded(v + tolerance):
 		x.eirpFinding(c, r.AtWorst, a, d, ant, " ± "+unit.Fixed(tolerance, 2)+" dB").With("tolerance_db", tolerance).
 			Then("measure it at commissioning, or %s", c.lessEIRP(x, ant, v+tolerance-a.Value))
 	case len(lacks) > 0:
-		x.unassessed(r, what, lacks)
+		x.lacksFigures(r, what, lacks)
 	}
+	return false
 }
 
 // partAt is where the plan names a device's part, else the device.
@@ -130,16 +134,10 @@ func (d *Direction) strongest() *Antenna {
 	return best
 }
 
-// unknownEIRP says of which antennas nothing is known. An amplifier whose phones
-// lie in a cradle, or hang on a wire, needs no server antenna.
+// unknownEIRP says of which antennas nothing is known.
 func (x *BandChain) unknownEIRP(r *Report, d *Direction) {
 	what := "the " + d.Name + " EIRP"
-	needed := d.Name == "uplink" && !x.deaf() || d.Name == "downlink" && x.coupling() == "antenna"
-	if len(d.Antennas) == 0 && needed {
-		x.unassessed(r, what, []Lack{{"a line from " + x.Amp.ID + " to an antenna", x.Amp.At}})
-		return
-	}
-	if !d.rated() && len(d.Antennas) > 0 {
+	if len(d.Antennas) > 0 && !d.rated() {
 		x.unassessed(r, what, []Lack{x.noOutput()})
 		return
 	}
