@@ -102,7 +102,7 @@ func withStep(f *Finding, a, b float64) {
 // checkSteps reports the steps of each line that no earlier line has had, as one
 // finding with all steps of the line.
 func (c *Case) checkSteps(r *Report) {
-	said := map[string]bool{}
+	said := map[stepKey]bool{}
 	lacking := map[source.Place]bool{}
 	for _, l := range c.Lines().All {
 		steps, lacks := ohmSteps(l)
@@ -116,7 +116,7 @@ func (c *Case) checkSteps(r *Report) {
 		var fresh *ohmStep
 		for i := range steps {
 			s := &steps[i]
-			if !said[s.key] && !s.harms && fresh == nil {
+			if !said[s.key] && !s.elsewhere && fresh == nil {
 				fresh = s
 			}
 			said[s.key] = true
@@ -131,8 +131,8 @@ func (c *Case) failSteps(r *Report, l *bom.Line, steps []ohmStep, first *ohmStep
 	vswr, _ := rf.StepVSWR(first.a, first.b)
 	back, _ := rf.ReturnLoss(vswr)
 	lost, _ := rf.MismatchLoss(vswr)
-	says := fmt.Sprintf("%s is %s ohm and %s is %s ohm: VSWR %s, return loss %s dB, %s dB lost", first.from, plainFigure(first.a),
-		first.to, plainFigure(first.b), unit.Fixed(vswr, 2), unit.Fixed(float64(back), 1), unit.Fixed(float64(lost), 2))
+	says := fmt.Sprintf("%s: VSWR %s, return loss %s dB, %s dB lost", first.says(),
+		unit.Fixed(vswr, 2), unit.Fixed(float64(back), 1), unit.Fixed(float64(lost), 2))
 	var vswrs []float64
 	for _, s := range steps {
 		v, _ := rf.StepVSWR(s.a, s.b)
@@ -148,7 +148,7 @@ func (c *Case) failSteps(r *Report, l *bom.Line, steps []ohmStep, first *ohmStep
 		With("worst_vswr", worst).With("worst_db", float64(run.Greatest))
 	for _, s := range steps {
 		if s.key != first.key {
-			f.Beside(s.at, "%s is %s ohm, %s is %s ohm", s.from, plainFigure(s.a), s.to, plainFigure(s.b))
+			f.Beside(s.at, "%s", s.says())
 		}
 	}
 	f.Then("use parts of one impedance along the line, or a matching pad at the step and its loss in the budget")

@@ -1,6 +1,7 @@
 package rules
 
 import (
+	"fmt"
 	"strings"
 
 	"driploop/bom"
@@ -10,12 +11,27 @@ import (
 
 // ohmStep is one place on a line where the impedance changes.
 type ohmStep struct {
-	from, to string // what meets
-	a, b     float64
-	at       source.Place
-	on       string
-	key      string // the same from either side
-	harms    bool   // a contact
+	from, to  string // what meets
+	a, b      float64
+	at        source.Place
+	on        string
+	key       stepKey
+	inside    string // the adapter that it lies inside, if any
+	elsewhere bool   // another finding says what is wrong there
+}
+
+// says names the two sides of the step.
+func (s ohmStep) says() string {
+	if s.inside != "" {
+		return fmt.Sprintf("adapter %s goes from %s to %s ohm", s.inside, plainFigure(s.a), plainFigure(s.b))
+	}
+	return fmt.Sprintf("%s is %s ohm and %s is %s ohm", s.from, plainFigure(s.a), s.to, plainFigure(s.b))
+}
+
+// stepKey is the same for a step from whichever side a line comes to it.
+type stepKey struct {
+	low, high string
+	at        source.Place
 }
 
 // tracer follows the impedance along a line. It takes what meets in the order of
@@ -26,6 +42,7 @@ type tracer struct {
 
 	name string // what the line has come through last
 	ohm  float64
+	mate *bom.Mate // the last one, whose adapters may come next
 }
 
 // ohmSteps lists where the impedance changes along a line, and the cables whose
@@ -47,27 +64,31 @@ func ohmSteps(l *bom.Line) ([]ohmStep, []Lack) {
 
 // meets notes the next impedance; where it differs from the one before there is a
 // step. One that is not known is passed over.
-func (t *tracer) meets(name string, ohm source.Val[float64], at source.Place, on string, m *bom.Mate) {
+func (t *tracer) meets(name string, ohm source.Val[float64], at source.Place, on, inside string) {
 	if !ohm.Set {
 		return
 	}
 	if t.ohm != 0 && t.ohm != ohm.V {
-		key := []string{t.name, name}
-		if key[1] < key[0] {
-			key[0], key[1] = key[1], key[0]
-		}
-		t.steps = append(t.steps, ohmStep{t.name, name, t.ohm, ohm.V, at, on, strings.Join(key, " "), m != nil && harms(m)})
+		key := stepKey{min(t.name, name), max(t.name, name), at}
+		t.steps = append(t.steps, ohmStep{from: t.name, to: name, a: t.ohm, b: ohm.V, at: at, on: on, key: key, inside: inside})
 	}
 	t.name, t.ohm = name, ohm.V
 }
 
-// harms reports a mate in which two impedances of one series harm a contact.
-func harms(m *bom.Mate) bool {
-	for _, x := range m.Contacts() {
-		if x.A.Face.Set && x.B.Face.Set {
-			if fit := catalog.Meet(x.A.Face.V, x.B.Face.V, x.A.Ohm.V, x.B.Ohm.V).Fit; fit == catalog.ThinSocket || fit == catalog.LoosePin {
-				return true
-			}
+// harms reports a pair in which two impedances of one series harm a contact.
+func harms(x bom.Contact) bool {
+	if !x.A.Face.Set || !x.B.Face.Set {
+		return false
+	}
+	fit := catalog.Meet(x.A.Face.V, x.B.Face.V, x.A.Ohm.V, x.B.Ohm.V).Fit
+	return fit == catalog.ThinSocket || fit == catalog.LoosePin
+}
+
+// lacking reports a mate one of whose ends no connector can be found for.
+func lacking(m *bom.Mate) bool {
+	for _, n := range []*bom.Node{m.A, m.B} {
+		if n.Cable != nil && n.Cable.Part != nil && n.Cable.Part.Cable != nil && n.Fit == nil && lacksConnector(n) {
+			return true
 		}
 	}
 	return false
@@ -78,9 +99,14 @@ func (t *tracer) contact(s bom.Step) {
 	if s.Reverse {
 		first, second = second, first
 	}
+	t.mate = s.Mate
 	at := touching{mate: s.Mate, index: contactIndex(s)}.at()
-	t.meets(first.Name, first.Ohm, at, s.Mate.On(), s.Mate)
-	t.meets(second.Name, second.Ohm, at, s.Mate.On(), s.Mate)
+	n := len(t.steps)
+	t.meets(first.Name, first.Ohm, at, s.Mate.On(), "")
+	t.meets(second.Name, second.Ohm, at, s.Mate.On(), "")
+	for i := range t.steps[n:] {
+		t.steps[n+i].elsewhere = harms(*s.Contact) || lacking(s.Mate)
+	}
 }
 
 // contactIndex is the number of a contact within its mate.
@@ -101,20 +127,32 @@ func (t *tracer) cable(x *bom.Cable) {
 	if x.Part != nil && !ohm.Set {
 		t.lacks = append(t.lacks, Lack{x.On(), x.At})
 	}
-	t.meets(x.ID, ohm, x.At, x.On(), nil)
+	t.meets(x.ID, ohm, x.At, x.On(), "")
 }
 
 func (t *tracer) pass(p *bom.Pass) {
-	name, at, on := p.Part.ID, p.Part.At, "part."+p.Part.ID
+	name, at, on := p.Part.ID, source.Place{}, ""
 	if p.Device != nil {
 		name, at, on = p.Device.ID, p.Device.At, p.Device.On()
+	} else {
+		at, on = t.adapter(p), t.mate.On()
 	}
-	t.meets(name+"."+p.In.Name, p.In.Impedance, at, on, nil)
+	t.meets(name+"."+p.In.Name, p.In.Impedance, at, on, "")
 	if p.Part.Kind.V == "adapter" {
-		t.meets(name+"."+p.Out.Name, p.Out.Impedance, at, on, nil)
+		t.meets(name+"."+p.Out.Name, p.Out.Impedance, at, on, name)
 	} else if p.Out.Impedance.Set {
 		t.name, t.ohm = name+"."+p.Out.Name, p.Out.Impedance.V // it matches the two by itself
 	}
+}
+
+// adapter is where the plan names an adapter of the mate at hand.
+func (t *tracer) adapter(p *bom.Pass) source.Place {
+	for _, a := range t.mate.Adapters {
+		if a.Part == p.Part {
+			return a.At
+		}
+	}
+	return t.mate.At
 }
 
 // nameOf is the thing's name without its sort: "C1" of "cable.C1".

@@ -105,11 +105,11 @@ func (c *Case) worstVSWR(users []used) (worst float64, band string, at *catalog.
 
 // checkComposite holds the antenna with the impedance steps of its line against the
 // figure, as the radio sees them at worst. The line's own loss is passed twice by
-// what comes back, and is taken off. Where a step harms a contact the parts at it
-// change, and there is nothing to add up yet.
+// what comes back, and is taken off. Where match/impedance holds, the parts at the
+// step change, and there is nothing to add up yet.
 func (c *Case) checkComposite(r *Report, users []used, limit float64) {
 	for _, u := range users {
-		steps := stepVSWRs(u.line)
+		steps := c.stepVSWRs(u.line)
 		for _, b := range c.bands {
 			if len(steps) == 0 {
 				break
@@ -124,13 +124,15 @@ func (c *Case) checkComposite(r *Report, users []used, limit float64) {
 	}
 }
 
-// stepVSWRs are the VSWRs of a line's impedance steps; none where one of them harms
-// a contact.
-func stepVSWRs(l *bom.Line) []float64 {
+// stepVSWRs are the VSWRs of a line's impedance steps; none where one of them holds.
+func (c *Case) stepVSWRs(l *bom.Line) []float64 {
 	found, _ := ohmSteps(l)
+	if outside, _ := c.outsideKit(l, found); outside != 0 {
+		return nil
+	}
 	var out []float64
 	for _, s := range found {
-		if s.harms {
+		if s.elsewhere {
 			return nil
 		}
 		v, _ := rf.StepVSWR(s.a, s.b)

@@ -30,6 +30,7 @@ var mateAdapters = &Rule{
 type stack struct {
 	ids           []string
 	before, after bom.Half
+	broken        bool // something in it does not mate, and has a finding of its own
 	at            source.Place
 	on            string
 }
@@ -41,7 +42,7 @@ func stacks(l *bom.Line) []stack {
 	var run stack
 	var last bom.Half
 	closeRun := func() {
-		if len(run.ids) > 1 {
+		if len(run.ids) > 1 && !run.broken {
 			out = append(out, run)
 		}
 		run = stack{}
@@ -55,7 +56,10 @@ func stacks(l *bom.Line) []stack {
 			}
 			last, run.after = first, second
 			if len(run.ids) == 0 {
-				run.at, run.on = stackAt(l, i), s.Mate.On()
+				run = stack{at: stackAt(l, i), on: s.Mate.On(), after: second}
+			}
+			if first.Face.Set && second.Face.Set && catalog.Meet(first.Face.V, second.Face.V, 0, 0).Fit != catalog.Mates {
+				run.broken = true
 			}
 		case s.Pass != nil && s.Pass.Part.Kind.V == "adapter":
 			if len(run.ids) == 0 {

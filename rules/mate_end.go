@@ -105,7 +105,7 @@ func (c *Case) lackConnector(r *Report, x *bom.Cable, e *bom.Node) {
 	}
 	do := "add one to the catalog, or take another cable"
 	if known := c.Firm.Catalog.Connectors(x.Part.ID); len(known) > 0 {
-		do = fmt.Sprintf("take one of those for %s with an adapter, or another cable: %s", x.Part.ID, c.faces(known))
+		do = fmt.Sprintf("take one of those for %s and an adapter, or another cable; there is %s", x.Part.ID, c.faces(known))
 	}
 	r.Fails(endPlace(e), x.On(), "end %d of %s: no connector of the catalog fits %s and %s", e.End, x.ID, x.Part.ID, want).
 		Then("%s", do).besidePart(x.Part, x.Part.At, "the cable")

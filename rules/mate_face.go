@@ -32,7 +32,7 @@ var mateGender = &Rule{
 	Check: func(c *Case, r *Report) {
 		c.meetings(catalog.SameShell, func(t touching) {
 			a, b := t.A.Face.V, t.B.Face.V
-			if a.Series == b.Series {
+			if a.Written == b.Written {
 				t.fails(c, r, "%s and %s are both %s: %s", t.A.Name, t.B.Name, a, bothHalves(a))
 				return
 			}
@@ -173,23 +173,40 @@ func (c *Case) checkFaceless(r *Report) {
 			if !faceless(n, m) {
 				continue
 			}
+			do := "write it in ends"
+			if n.Cable.Row.Existing.V {
+				do = "look at it on site and write it in ends"
+			}
 			r.Unknown(endPlace(n), n.On(), "the plan does not say which connector %s has; whether it joins %s is not assessed", n.Name(), neighbour(m, n).Name).
-				Then("look at it and write it in ends")
+				Then("%s", do)
 			break // one of the two is enough to ask for
 		}
 	}
 }
 
-// faceless reports a cable end whose face only the plan could give.
+// faceless reports a cable end whose face only the plan could give: of a cable that
+// is there already and is to go on something new, or of two ends that neither of
+// them says anything of. Two things that are both there already are joined already.
 func faceless(n *bom.Node, m *bom.Mate) bool {
 	x := n.Cable
-	if x == nil || n.Face.Set || x.Part == nil || x.Part.Cable == nil {
+	if x == nil || x.Part == nil || x.Part.Cable == nil {
 		return false
 	}
 	if _, written := writtenEnd(n); written {
-		return false // the connector part that it names did not resolve
+		return false
 	}
-	return x.Row.Existing.V || !neighbour(m, n).Face.Set
+	if x.Row.Existing.V {
+		return !standing(m.Other(n))
+	}
+	return !n.Face.Set && !neighbour(m, n).Face.Set && m.Other(n).Cable != nil
+}
+
+// standing reports what is there already.
+func standing(n *bom.Node) bool {
+	if n.Device != nil {
+		return n.Device.Row.Existing.V
+	}
+	return n.Cable.Row.Existing.V
 }
 
 // neighbour is the half that a node of a mate meets.

@@ -24,92 +24,128 @@ var mateLoop = &Rule{
 
 	Weight: Hold,
 	Check: func(c *Case, r *Report) {
+		if !c.Lines().Whole {
+			r.Fails(c.JobAt(), "job", "the lines of this plan are a tangle: there are more ways through its passive parts than can be followed").
+				Then("look for splitters whose outputs are joined to each other")
+			return
+		}
 		rings := c.rings()
 		for _, g := range rings {
 			c.checkRing(r, g)
 		}
 		c.checkClosed(r, rings)
-		if !c.Lines().Whole {
-			r.Fails(c.JobAt(), "job", "the lines of this plan are a tangle: there are more ways through its passive parts than can be followed").
-				Then("look for splitters whose outputs are joined to each other")
-		}
 	},
 }
 
-// ring is two lines between the same two ports, and where they part and meet.
+// ring is a set of ways from one port to another that have nothing in common in
+// between.
 type ring struct {
-	a, b       *bom.Line
-	part, meet string       // "split.in": where they part, and where they meet again
-	viaA, viaB string       // first cable of each branch
-	at         source.Place // of the second branch
-	on         string       // likewise
+	part, meet string // "split.in": where the ways part, and where they meet again
+	ways       []branch
 	passed     []*bom.Device
 }
 
-// rings pairs the lines that join the same two ports. Lines that share a ring, as
-// the legs behind it do, count once.
-func (c *Case) rings() []ring {
-	var out []ring
-	seen := map[[4]string]bool{}
-	lines := c.Lines().All
-	for i, b := range lines {
-		for _, a := range lines[:i] {
-			if a.From != b.From || a.To != b.To {
-				continue
-			}
-			g := ringOf(a, b)
-			if key := [4]string{g.part, g.meet, g.viaA, g.viaB}; !seen[key] {
-				seen[key] = true
-				out = append(out, g)
-			}
+// branch is one way of a ring, with a line that takes it.
+type branch struct {
+	line *bom.Line
+	via  string // its first cable
+	on   string // what findings about it stand on
+	at   source.Place
+}
+
+// rings finds where lines between the same two ports part and meet. Each line is
+// held against the first of its kind; the legs behind a ring share it, and count it
+// once.
+func (c *Case) rings() []*ring {
+	type ends struct{ from, to *bom.Node }
+	var out []*ring
+	first := map[ends]*bom.Line{}
+	known := map[string]*ring{}
+	for _, l := range c.Lines().All {
+		base := first[ends{l.From, l.To}]
+		if base == nil {
+			first[ends{l.From, l.To}] = l
+			continue
 		}
+		a, b, ok := branches(base, l)
+		if !ok {
+			continue
+		}
+		key := a.from + " " + a.to
+		g := known[key]
+		if g == nil {
+			g = &ring{part: a.from, meet: a.to}
+			g.add(a)
+			known[key] = g
+			out = append(out, g)
+		}
+		g.add(b)
 	}
 	return out
 }
 
-// ringOf finds where two lines part and meet.
-func ringOf(a, b *bom.Line) ring {
-	g := ring{a: a, b: b, part: a.From.Name(), meet: a.To.Name(), on: b.On(), at: b.At()}
-	sa, sb := a.Steps, b.Steps
-	for len(sa) > 0 && len(sb) > 0 && sameStep(sa[0], sb[0]) {
-		sa, sb = sa[1:], sb[1:]
+// stretch is the part of a line between two ports.
+type stretch struct {
+	line     *bom.Line
+	from, to string
+	steps    []bom.Step
+}
+
+// branches cuts off what two lines have in common at their ends; false where the
+// rest has something in common still, and so is more than one ring.
+func branches(la, lb *bom.Line) (a, b stretch, ok bool) {
+	a = stretch{la, la.From.Name(), la.To.Name(), la.Steps}
+	b = stretch{lb, a.from, a.to, lb.Steps}
+	for len(a.steps) > 0 && len(b.steps) > 0 && sameStep(a.steps[0], b.steps[0]) {
+		a.steps, b.steps = a.steps[1:], b.steps[1:]
 	}
-	for len(sa) > 0 && len(sb) > 0 && sameStep(sa[len(sa)-1], sb[len(sb)-1]) {
-		sa, sb = sa[:len(sa)-1], sb[:len(sb)-1]
+	for len(a.steps) > 0 && len(b.steps) > 0 && sameStep(a.steps[len(a.steps)-1], b.steps[len(b.steps)-1]) {
+		a.steps, b.steps = a.steps[:len(a.steps)-1], b.steps[:len(b.steps)-1]
 	}
-	if len(sa) > 0 {
-		if p := sa[0].Pass; p != nil && p.Device != nil {
-			g.part = p.Device.ID + "." + p.In.Name
+	if len(a.steps) == 0 || len(b.steps) == 0 || sharesMate(a.steps, b.steps) {
+		return a, b, false
+	}
+	if p := a.steps[0].Pass; p != nil && p.Device != nil {
+		a.from = p.Device.ID + "." + p.In.Name
+	}
+	if p := a.steps[len(a.steps)-1].Pass; p != nil && p.Device != nil {
+		a.to = p.Device.ID + "." + p.Out.Name
+	}
+	return a, b, true
+}
+
+func sharesMate(a, b []bom.Step) bool {
+	seen := map[*bom.Mate]bool{}
+	for _, s := range a {
+		if s.Mate != nil {
+			seen[s.Mate] = true
 		}
-		if p := sa[len(sa)-1].Pass; p != nil && p.Device != nil {
-			g.meet = p.Device.ID + "." + p.Out.Name
+	}
+	for _, s := range b {
+		if s.Mate != nil && seen[s.Mate] {
+			return true
 		}
 	}
-	g.viaA, _ = via(sa)
-	var first *bom.Cable
-	if g.viaB, first = via(sb); first != nil {
-		g.on, g.at = first.On(), first.At
-	}
-	for _, s := range append(sa[:len(sa):len(sa)], sb...) {
-		if s.Pass != nil && s.Pass.Device != nil {
+	return false
+}
+
+// add puts a branch into the ring, unless a line before has taken it.
+func (g *ring) add(b stretch) {
+	w := branch{line: b.line, via: "a direct joint", on: b.line.On(), at: b.line.At()}
+	for i := len(b.steps) - 1; i >= 0; i-- {
+		switch s := b.steps[i]; {
+		case s.Cable != nil:
+			w.via, w.on, w.at = s.Cable.ID, s.Cable.On(), s.Cable.At
+		case s.Pass != nil && s.Pass.Device != nil:
 			g.passed = append(g.passed, s.Pass.Device)
 		}
 	}
-	return g
-}
-
-// via is the first cable of a branch, else the first device, by name.
-func via(steps []bom.Step) (string, *bom.Cable) {
-	name := "a direct joint"
-	for _, s := range steps {
-		if s.Cable != nil {
-			return s.Cable.ID, s.Cable
-		}
-		if s.Pass != nil && s.Pass.Device != nil && name == "a direct joint" {
-			name = s.Pass.Device.ID + "." + s.Pass.Out.Name
+	for _, have := range g.ways {
+		if have.via == w.via {
+			return
 		}
 	}
-	return name, nil
+	g.ways = append(g.ways, w)
 }
 
 func sameStep(a, b bom.Step) bool {
@@ -122,52 +158,78 @@ func sameStep(a, b bom.Step) bool {
 	return a.Cable == b.Cable && a.Lead == b.Lead && a.Pass == b.Pass && a.Contact == b.Contact
 }
 
-// checkRing compares the two ways of a ring band by band.
-func (c *Case) checkRing(r *Report, g ring) {
+// checkRing compares the ways of a ring band by band.
+func (c *Case) checkRing(r *Report, g *ring) {
+	var worst nearPair
 	var lacks []Lack
 	var bands []string
-	worst, at := math.Inf(1), unit.MHz(0)
 	for _, b := range c.bands {
-		d, f, missing := c.nearest(g, b)
+		n, missing := c.nearest(g, b)
 		lacks = append(lacks, missing...)
-		if rf.Below(d, apart) {
+		if n.found && rf.Below(n.apart, apart) {
 			bands = append(bands, b.Name)
-			if d < worst {
-				worst, at = d, f
+			if !worst.found || n.apart < worst.apart {
+				worst = n
 			}
 		}
 	}
 	if len(c.bands) == 0 {
 		lacks = []Lack{{"the planned bands", c.JobAt()}}
 	}
-	says := fmt.Sprintf("two ways lead from %s to %s, over %s and over %s", g.part, g.meet, g.viaA, g.viaB)
+	last := g.ways[len(g.ways)-1]
 	switch {
-	case len(bands) > 0:
-		r.Fails(g.at, g.on, "%s: in %s they are %s dB apart (at %s), %d dB or more is expected", says, list(bands), unit.Fixed(worst, 1), at, apart).
-			Then("take one of the two out, or keep them apart by band with a diplexer at each end").
-			Under("apart_db", worst, "limit_db", apart)
+	case worst.found:
+		r.Fails(worst.b.at, worst.b.on, "%s ways lead from %s to %s: in %s those over %s and %s are %s dB apart (at %s), %d dB or more is expected",
+			howMany(len(g.ways)), g.part, g.meet, list(bands), worst.a.via, worst.b.via, unit.Fixed(worst.apart, 1), worst.at, apart).
+			Then("leave one way, or keep them apart by band with a diplexer at each end").
+			Under("apart_db", worst.apart, "limit_db", apart)
 	case len(lacks) > 0:
-		r.Unknown(g.at, g.on, "%s; how far apart they are is not assessed: it lacks %s", says, lackWords(lacks)).
-			Then("add what is missing, or take one of the two out").Beside(lacks[0].At, "what it lacks")
+		r.Unknown(last.at, last.on, "%s ways lead from %s to %s, the last over %s; how far apart they are is not assessed: it lacks %s",
+			howMany(len(g.ways)), g.part, g.meet, last.via, lackWords(lacks)).
+			Then("add what is missing, or leave one way").Beside(lacks[0].At, "what it lacks")
 	}
 }
 
-// nearest is the least difference in loss between the two ways over the edges and
-// middles of a band; infinite where one of them stops the whole band.
-func (c *Case) nearest(g ring, b catalog.Band) (float64, unit.MHz, []Lack) {
-	least, at := math.Inf(1), unit.MHz(0)
+func howMany(n int) string {
+	if n == 2 {
+		return "two"
+	}
+	return fmt.Sprint(n)
+}
+
+// nearPair is the pair of ways of a ring that lie closest to each other in a band.
+type nearPair struct {
+	found bool
+	apart float64 // dB
+	at    unit.MHz
+	a, b  branch
+}
+
+// nearest looks for that pair over the edges and middles of a band. A way that some
+// part on it stops is none at that frequency.
+func (c *Case) nearest(g *ring, b catalog.Band) (nearPair, []Lack) {
+	var best nearPair
 	var lacks []Lack
 	for _, f := range bandPoints(b) {
-		if stops(g.a, f) || stops(g.b, f) {
-			continue
+		var open []branch
+		for _, w := range g.ways {
+			if !stops(w.line, f) {
+				open = append(open, w)
+			}
 		}
-		a, b := c.Sum(g.a, f), c.Sum(g.b, f)
-		lacks = append(append(lacks, a.Missing...), b.Missing...)
-		if d := math.Abs(float64(a.Loss.Nominal - b.Loss.Nominal)); a.Known() && b.Known() && d < least {
-			least, at = d, f
+		for i, y := range open {
+			for _, x := range open[:i] {
+				sx, sy := c.Sum(x.line, f), c.Sum(y.line, f)
+				if lacks = append(append(lacks, sx.Missing...), sy.Missing...); !sx.Known() || !sy.Known() {
+					continue
+				}
+				if d := math.Abs(float64(sx.Loss.Nominal - sy.Loss.Nominal)); !best.found || d < best.apart {
+					best = nearPair{true, d, f, x, y}
+				}
+			}
 		}
 	}
-	return least, at, lacks
+	return best, lacks
 }
 
 // stops reports whether some part on a line has no way through at a frequency.
@@ -188,116 +250,4 @@ func rowAt(rows []*catalog.Path, f unit.MHz) *catalog.Path {
 		}
 	}
 	return nil
-}
-
-// checkClosed reports the ways that come back to a part they have passed, as where
-// two outputs of a splitter are joined. A ring between two ports has been reported.
-func (c *Case) checkClosed(r *Report, rings []ring) {
-	said := map[*bom.Device]bool{}
-	for _, g := range rings {
-		for _, d := range g.passed {
-			said[d] = true
-		}
-	}
-	for _, n := range c.Lines().Loops {
-		d := n.Device
-		if d == nil || said[d] {
-			continue
-		}
-		said[d] = true
-		says := fmt.Sprintf("a way out of %s comes back to it", d.ID)
-		switch bands := c.closedBands(d); {
-		case len(c.bands) == 0:
-			r.Unknown(d.At, d.On(), "%s; whether it does so in a planned band is not assessed: the plan names no bands", says).
-				Then("write the planned bands in bands, or open the ring")
-		case len(bands) > 0:
-			r.Fails(d.At, d.On(), "%s in %s: two of its ports are joined outside it", says, list(bands)).
-				Then("open the ring: an output goes to an antenna, the next part's input, or a load")
-		}
-	}
-}
-
-// closedBands lists the planned bands in which a ring through a device is closed.
-func (c *Case) closedBands(d *bom.Device) []string {
-	var out []string
-	for _, b := range c.bands {
-		for _, f := range bandPoints(b) {
-			if c.ringThrough(d, f) {
-				out = append(out, b.Name)
-				break
-			}
-		}
-	}
-	return out
-}
-
-// ringThrough reports whether two ports of a device that pass on to each other at
-// a frequency are joined outside that way as well.
-func (c *Case) ringThrough(d *bom.Device, f unit.MHz) bool {
-	for i, a := range d.Nodes {
-		for _, b := range d.Nodes[i+1:] {
-			if passes(a, b, f) && joinedOtherwise(a, b, f) {
-				return true
-			}
-		}
-	}
-	return false
-}
-
-func passes(a, b *bom.Node, f unit.MHz) bool {
-	return rowAt(a.Device.Part.Between(a.Port.Name, b.Port.Name), f) != nil
-}
-
-// joinedOtherwise looks for a way from a to b at a frequency that does not take the
-// way between the two inside their device.
-func joinedOtherwise(a, b *bom.Node, f unit.MHz) bool {
-	seen := map[*bom.Node]bool{a: true}
-	queue := []*bom.Node{a}
-	for len(queue) > 0 {
-		n := queue[0]
-		queue = queue[1:]
-		for _, o := range onward(n, f, a, b) {
-			if o == b {
-				return true
-			}
-			if !seen[o] {
-				seen[o] = true
-				queue = append(queue, o)
-			}
-		}
-	}
-	return false
-}
-
-// onward lists the nodes next to a node at a frequency: over its mates, along its
-// cable, through its passive part, but not through that part from a to b.
-func onward(n *bom.Node, f unit.MHz, a, b *bom.Node) []*bom.Node {
-	var out []*bom.Node
-	for _, m := range n.Mates {
-		if mateOpenAt(m, f) {
-			out = append(out, m.Other(n))
-		}
-	}
-	if n.Cable != nil {
-		return append(out, n.Cable.Ends[2-n.End])
-	}
-	if n.Device.Part == nil || n.Device.Active() || n.Device.Kind() == "antenna" {
-		return out
-	}
-	for _, o := range n.Device.Nodes {
-		if o != n && passes(n, o, f) && !(n == a && o == b) {
-			out = append(out, o)
-		}
-	}
-	return out
-}
-
-// mateOpenAt reports whether every adapter of a mate has a way through at a frequency.
-func mateOpenAt(m *bom.Mate, f unit.MHz) bool {
-	for _, a := range m.Adapters {
-		if rowAt(a.Part.Between(a.In.Name, a.Out.Name), f) == nil {
-			return false
-		}
-	}
-	return true
 }

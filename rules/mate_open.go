@@ -2,6 +2,7 @@ package rules
 
 import (
 	"fmt"
+	"strings"
 
 	"driploop/bom"
 	"driploop/catalog"
@@ -52,7 +53,7 @@ func (c *Case) checkOpen(r *Report, d *bom.Device) {
 }
 
 func (c *Case) failOpen(r *Report, d *bom.Device, o opening, ports []*bom.Node) {
-	says := fmt.Sprintf("%s (%s), %s, %s nothing connected", list(nodeNames(ports)), d.Part.ID, o.is, has(len(ports)))
+	says := fmt.Sprintf("%s (%s), %s, %s nothing connected", list(nodeNames(ports)), d.Part.ID, kindOfPort(o.is, len(ports)), has(len(ports)))
 	if o.weight == 0 {
 		r.Unknown(d.At, d.On(), "%s: what that does is not assessed, because the part does not say on which side it is", says).
 			Then("add side to the port in the catalog").besidePart(d.Part, ports[0].Port.At, "the port")
@@ -65,6 +66,14 @@ func (c *Case) failOpen(r *Report, d *bom.Device, o opening, ports []*bom.Node) 
 	for _, n := range c.freeBranches(d) {
 		f.Beside(n.At(), "%s is free too", n.Name())
 	}
+}
+
+// kindOfPort is the port's kind in words, for one or several.
+func kindOfPort(is string, n int) string {
+	if n == 1 {
+		return is
+	}
+	return strings.Replace(strings.TrimPrefix(strings.TrimPrefix(is, "an "), "a "), "port", "ports", 1)
 }
 
 func has(n int) string {
@@ -113,11 +122,11 @@ func (c *Case) openingOf(n *bom.Node, kind string) (opening, bool) {
 	case "amplifier":
 		return openAmplifier(p), true
 	case "router":
-		return opening{Hold, "a port that the radio transmits or receives a branch on", "its power comes back into the radio and one branch is missing", "connect its antenna"}, true
+		return opening{Hold, "an antenna port of the radio", "what it transmits comes back into the radio, and one branch is missing", "connect its antenna"}, true
 	case "antenna":
 		return c.openAntenna(n)
 	}
-	return openPassive(n), true
+	return c.openPassive(n), true
 }
 
 func openAmplifier(p *catalog.Port) opening {
@@ -125,7 +134,7 @@ func openAmplifier(p *catalog.Port) opening {
 	case "donor":
 		return opening{Hold, "the donor port", "the amplifier hears no network, and what it sends comes back into it", "connect the donor antenna, or take the amplifier out"}
 	case "server":
-		return opening{Punch, "a server port", "what it sends comes back into it", "connect a server antenna"}
+		return opening{Punch, "a server port", "what it sends comes back, and the amplifier may oscillate or shut the band down", "connect a server antenna"}
 	}
 	return opening{0, "of unknown side", "", ""}
 }
@@ -137,11 +146,11 @@ func (c *Case) openAntenna(n *bom.Node) (opening, bool) {
 	router := c.routerAt(n.Device)
 	switch {
 	case router == nil:
-		return opening{Punch, "a port of an antenna in use", "it takes up part of the other port's power and spoils its pattern", ""}, true
+		return opening{Punch, "a port of an antenna whose other port is in use", "it takes up part of the other port's power and spoils its pattern", ""}, true
 	case len(openBranches(router)) > 0:
 		return opening{}, false
 	}
-	return opening{Hold, "a branch of a radio with several", "the branch is missing", "connect it to the radio"}, true
+	return opening{Hold, "a port of the antenna of a router", "the branch that belongs there is missing", "connect it to the router"}, true
 }
 
 // routerAt is a router that some line leads to from an antenna, or nil.
@@ -199,43 +208,51 @@ func receiveOnly(p *catalog.Port) bool {
 }
 
 // openPassive is an open port of a passive part.
-func openPassive(n *bom.Node) opening {
+func (c *Case) openPassive(n *bom.Node) opening {
 	ports, _ := matedPorts(n.Device)
 	switch {
 	case len(ports) <= 2:
 		return opening{Hold, "one of two ports", "the line ends there", "connect it"}
-	case n.Device.Kind() == "coupler" && isolated(n):
+	case n.Device.Kind() == "coupler" && c.isolated(n):
 		return opening{Punch, "the isolated port of a coupler", "without a load the coupler takes one direction for the other", ""}
 	case n.Port.Unused.V == "never":
 		return opening{Hold, "a port that its maker never wants open", "nothing passes the part as it should", "connect it"}
 	}
-	return opening{Punch, "a port of a part that divides", "the legs beside it get ripple", "connect a line"}
+	return opening{Punch, "a port of a part that divides", "what comes out of it is sent back, and the other ports get ripple", "connect a line"}
 }
 
-// isolated reports a coupler's port that no connected port passes on to while
-// another pair of its ports is in use.
-func isolated(n *bom.Node) bool {
-	in := 0
-	for _, o := range n.Device.Nodes {
-		if o == n || len(o.Mates) == 0 {
-			continue
-		}
-		in++
-		if o.Port.RF() && len(n.Device.Part.Between(n.Port.Name, o.Port.Name)) == 0 && passesOn(o) {
-			return true
-		}
-	}
-	return in == 0
-}
-
-// passesOn reports whether a port has a way to another one that is connected.
-func passesOn(n *bom.Node) bool {
-	for _, o := range n.Device.Nodes {
-		if o != n && len(o.Mates) > 0 && len(n.Device.Part.Between(n.Port.Name, o.Port.Name)) > 0 {
-			return true
+// isolated reports a coupler's port that has no way to a port on whose side a radio
+// or amplifier is.
+func (c *Case) isolated(n *bom.Node) bool {
+	for _, l := range c.Lines().All {
+		for _, p := range sourcePorts(l, n.Device) {
+			if p != n.Port && len(n.Device.Part.Between(p.Name, n.Port.Name)) == 0 {
+				return true
+			}
 		}
 	}
 	return false
+}
+
+// sourcePorts lists the ports of a device that face an active end of a line.
+func sourcePorts(l *bom.Line, d *bom.Device) []*catalog.Port {
+	var passes []*bom.Pass
+	for _, s := range l.Steps {
+		if s.Pass != nil && s.Pass.Device == d {
+			passes = append(passes, s.Pass)
+		}
+	}
+	var out []*catalog.Port
+	if len(passes) == 0 {
+		return nil
+	}
+	if x := l.From.Device; x != nil && x.Active() {
+		out = append(out, passes[0].In)
+	}
+	if x := l.To.Device; x != nil && x.Active() {
+		out = append(out, passes[len(passes)-1].Out)
+	}
+	return out
 }
 
 // close says how to close an open port.
@@ -248,17 +265,19 @@ func (c *Case) close(o opening, d *bom.Device, ports []*bom.Node) string {
 		return "put a load on it; the catalog has none that fits"
 	case load == nil:
 		return o.do
-	case asked == "terminate" || o.do == "":
-		return c.terminate(o, load)
+	case o.do == "":
+		return terminate(len(ports)) + c.Firm.OnHand(load)
+	case asked == "terminate":
+		return fmt.Sprintf("%s%s, or %s", terminate(len(ports)), c.Firm.OnHand(load), o.do)
 	}
-	return fmt.Sprintf("%s, or terminate it with %s", o.do, c.Firm.OnHand(load))
+	return fmt.Sprintf("%s, or %s%s", o.do, terminate(len(ports)), c.Firm.OnHand(load))
 }
 
-func (c *Case) terminate(o opening, load *catalog.Part) string {
-	if o.do == "" {
-		return "terminate it with " + c.Firm.OnHand(load)
+func terminate(n int) string {
+	if n == 1 {
+		return "terminate it with "
 	}
-	return fmt.Sprintf("terminate it with %s, or %s", c.Firm.OnHand(load), o.do)
+	return "terminate each with "
 }
 
 // loadFor is the load of the catalog that goes on a port as it is, rated for the
