@@ -29,6 +29,7 @@ type Keys struct {
 	at    Place
 	table *Node
 	known []string
+	lacks map[string]int // keys reported missing, each with its problem
 	mute  bool
 	read  *reading
 	rec   *Record
@@ -48,8 +49,9 @@ func Read(d *Doc, bind func(*Keys)) []Problem {
 	k := &Keys{at: d.File.Start(), table: d.Root, read: r}
 	bind(k)
 	k.finish()
-	SortProblems(r.problems)
-	return firstOf(r.problems, 0)
+	problems := r.standing()
+	SortProblems(problems)
+	return firstOf(problems, 0)
 }
 
 // ID is the name under which the table stands in its parent, for Named records.
@@ -78,10 +80,26 @@ func (k *Keys) Fault(at Place, says, do string, also ...Place) {
 
 // Missing reports a key that the record needs and does not have.
 func (k *Keys) Missing(name, doc string) {
-	if k.read != nil && !k.read.partial {
-		k.read.missing = append(k.read.missing, len(k.read.problems))
-		k.read.add(Problem{Key, k.at, fmt.Sprintf("%s has no %s: %s", k.called(), name, doc), "add " + name, nil})
+	if k.read == nil || k.read.partial {
+		return
 	}
+	if k.lacks == nil {
+		k.lacks = map[string]int{}
+	}
+	k.lacks[name] = len(k.read.problems)
+	k.read.missing = append(k.read.missing, len(k.read.problems))
+	k.read.add(Problem{Key, k.at, fmt.Sprintf("%s has no %s: %s", k.called(), name, doc), "add " + name, nil})
+}
+
+// standing lists the problems but for those that another one has taken up.
+func (r *reading) standing() []Problem {
+	var out []Problem
+	for _, p := range r.problems {
+		if p.Kind != 0 {
+			out = append(out, p)
+		}
+	}
+	return out
 }
 
 func (r *reading) add(p Problem) { r.problems = append(r.problems, p) }
@@ -260,10 +278,17 @@ func (k *Keys) finish() {
 			continue
 		}
 		do := "take it out"
-		if near := Nearest(e.Name, k.known); near != "" {
+		near := Nearest(e.Name, k.known)
+		if near != "" {
 			do = "did you mean " + near + "?"
 		}
-		k.read.add(Problem{Key, e.At, "nothing reads the key " + Quote(e.Name) + " here", do, nil})
+		says := "nothing reads the key " + Quote(e.Name) + " here"
+		if i, lacking := k.lacks[near]; lacking {
+			says += ", and " + near + " is needed"
+			k.read.problems[i].Kind = 0 // one slip of the pen, said once
+			delete(k.lacks, near)
+		}
+		k.read.add(Problem{Key, e.At, says, do, nil})
 	}
 }
 

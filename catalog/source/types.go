@@ -80,7 +80,7 @@ func Checked[T any](name, example string, read func(string) (T, error)) Type[T] 
 	return Type[T]{TypeDoc{Name: name, Example: example}, func(n *Node) (T, []bad) {
 		var none T
 		if n.Kind != String {
-			return none, expected(n, "a "+name, "it like "+example)
+			return none, expected(n, article(name)+" "+name, "it like "+example)
 		}
 		v, err := read(n.Str)
 		if err != nil {
@@ -88,6 +88,13 @@ func Checked[T any](name, example string, read func(string) (T, error)) Type[T] 
 		}
 		return v, nil
 	}}
+}
+
+func article(noun string) string {
+	if strings.ContainsRune("aeiou", rune(noun[0])) {
+		return "an"
+	}
+	return "a"
 }
 
 // Day is a local date.

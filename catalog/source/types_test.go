@@ -208,8 +208,7 @@ func TestInline(t *testing.T) {
 	}
 	list = Val[[]Val[room]]{}
 	wants(t, read(t, "rooms = [{ nam = \"a\" }, 3, { name = 4, area = -1 }, { name = nan }]\n", bind), []string{
-		`1:10 { nam = "a" }: rooms: this table has no name`,
-		`1:12 nam: rooms: nothing reads the key "nam" here; did you mean name?`,
+		`1:12 nam: rooms: nothing reads the key "nam" here, and name is needed; did you mean name?`,
 		`1:25 3: rooms: the number 3 was read, a table is expected; write it in braces`,
 		`1:37 4: rooms: name: the number 4 was read, text is expected`,
 		`1:47 -1: rooms: area: -1 is outside`,
