@@ -3,6 +3,7 @@ package rules
 import (
 	"fmt"
 	"slices"
+	"strings"
 
 	"driploop/bom"
 	"driploop/catalog"
@@ -19,7 +20,9 @@ var bandAntenna = &Rule{
 	Grave:  true, // what it radiates is computed from its ranges
 	Check: func(c *Case, r *Report) {
 		if len(c.Plan.Job.Bands.V) == 0 {
-			c.noBands(r)
+			if !c.refused("bands") {
+				c.noBands(r)
+			}
 			return
 		}
 		for _, row := range c.antennasInUse() {
@@ -30,6 +33,17 @@ var bandAntenna = &Rule{
 
 // bandEdges is where the edges of bands come from.
 var bandEdges = Basis{Document: "TS 36.104 table 5.5-1, TS 38.104 table 5.2-1", Edition: "V19.2.0, V18.13.0", Kind: "standard", Proof: "copy"}
+
+// refused reports a key of the plan whose value could not be read: it is not
+// missing, and the file has its finding.
+func (c *Case) refused(key string) bool {
+	for _, p := range c.Problems {
+		if p.Kind == source.Value && strings.HasPrefix(p.Says, key+": ") {
+			return true
+		}
+	}
+	return false
+}
 
 // noBands says once that a plan without bands leaves everything by band open.
 func (c *Case) noBands(r *Report) {

@@ -127,6 +127,9 @@ func unknownName(v source.Val[string], what string, known []string) (source.Prob
 		}
 	}
 	do := "name one of " + strings.Join(known, ", ")
+	if len(known) == 0 {
+		do = "describe it in driploop.toml, or leave the key out"
+	}
 	if near := source.Nearest(v.V, known); near != "" {
 		do = "did you mean " + near + "?"
 	}
@@ -157,7 +160,7 @@ func (f *Firm) Overrides() []string {
 
 func unknownRule(name string) error {
 	if near := source.Nearest(name, Names()); near != "" {
-		return fmt.Errorf("there is no rule %s; did you mean %s?", source.Quote(name), near)
+		return fmt.Errorf("there is no rule %s; %s is one", source.Quote(name), near)
 	}
 	return fmt.Errorf("there is no rule %s", source.Quote(name))
 }

@@ -1,6 +1,7 @@
 package rules
 
 import (
+	"bytes"
 	"fmt"
 	"slices"
 
@@ -22,10 +23,7 @@ var partUnknown = &Rule{
 	Grave: true,
 	Check: func(c *Case, r *Report) {
 		for _, h := range firstOfEach(c.Graph.Holes, bom.NoPart) {
-			f := r.Fails(h.At, h.On, "%s", h.Says).Then("%s", c.Firm.suggest(h.ID, h.Do))
-			for _, also := range h.Also {
-				f.Beside(also, "named here too")
-			}
+			c.reportMissing(h, r)
 		}
 		for _, d := range c.Graph.Devices {
 			c.checkNameless(d, r)
@@ -41,6 +39,51 @@ var partUnknown = &Rule{
 			ref.weigh(x)
 		})
 	},
+}
+
+// reportMissing reports a part that the catalog lacks. One that stands in a catalog
+// file that could not be read whole is not missing; nobody knows it yet.
+func (c *Case) reportMissing(h *missingPart, r *Report) {
+	var f *Finding
+	if file := c.Firm.brokenWith(h.ID); !file.IsZero() {
+		f = r.Unknown(h.At, h.On, "%s is not assessed: it stands in %s, which could not be read whole", h.ID, file.Path()).
+			Then("put that file right first").Beside(file, "what is wrong with it")
+	} else {
+		f = r.Fails(h.At, h.On, "%s", h.Says).Then("%s", c.Firm.suggest(h.ID, h.Do))
+	}
+	for _, also := range h.Also {
+		f.Beside(also, "named here too")
+	}
+}
+
+// brokenWith is what is wrong with a catalog file that holds a part's ID and could
+// not be read whole; nowhere where there is no such file.
+func (f *Firm) brokenWith(id string) source.Place {
+	for _, p := range f.Problems {
+		if p.Kind != source.Syntax && p.Kind != source.Merge || p.At.File == nil {
+			continue
+		}
+		if anyMatch(patterns(f.Workspace.Catalog, "catalog"), p.At.Path()) && holdsWord(p.At.File.Src, id) {
+			return p.At
+		}
+	}
+	return source.Place{}
+}
+
+// holdsWord reports whether an ID stands in a text, and not only as a piece of a
+// longer one.
+func holdsWord(text []byte, id string) bool {
+	for from := 0; ; {
+		i := bytes.Index(text[from:], []byte(id))
+		if i < 0 {
+			return false
+		}
+		at, end := from+i, from+i+len(id)
+		if (at == 0 || !source.ValidID("x"+string(text[at-1:at]))) && (end == len(text) || !source.ValidID("x"+string(text[end:end+1]))) {
+			return true
+		}
+		from = at + 1
+	}
 }
 
 // missingPart is what the catalog lacks, with every place of a plan that names it.
