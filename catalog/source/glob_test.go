@@ -1,6 +1,8 @@
 package source
 
 import (
+	"math/rand/v2"
+	"path"
 	"strings"
 	"testing"
 	"time"
@@ -69,4 +71,43 @@ func TestMatchEndsInTime(t *testing.T) {
 	if took := time.Since(start); took > bound {
 		t.Errorf("took %v", took)
 	}
+}
+
+// Matching agrees with trying every way.
+func TestMatchAgreesWithTryingAll(t *testing.T) {
+	r := rand.New(rand.NewPCG(3, 3))
+	pick := func(words []string, most int) string {
+		parts := make([]string, 1+r.IntN(most))
+		for i := range parts {
+			parts[i] = words[r.IntN(len(words))]
+		}
+		return strings.Join(parts, "/")
+	}
+	matched := 0
+	for range 20000 {
+		pattern, name := pick([]string{"**", "**", "*", "a", "b", "a*"}, 6), pick([]string{"a", "b", "ab"}, 6)
+		got := Match(pattern, name)
+		if want := tryAll(strings.Split(pattern, "/"), strings.Split(name, "/")); got != want {
+			t.Fatalf("%q matches %q: %v, want %v", pattern, name, got, want)
+		}
+		if got {
+			matched++
+		}
+	}
+	if matched < 2000 || matched > 18000 {
+		t.Errorf("%d of 20000 match, so one side is hardly tested", matched)
+	}
+}
+
+func tryAll(pattern, name []string) bool {
+	switch {
+	case len(pattern) == 0:
+		return len(name) == 0
+	case pattern[0] == "**":
+		return tryAll(pattern[1:], name) || len(name) > 0 && tryAll(pattern, name[1:])
+	case len(name) == 0:
+		return false
+	}
+	ok, _ := path.Match(pattern[0], name[0])
+	return ok && tryAll(pattern[1:], name[1:])
 }
