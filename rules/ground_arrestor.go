@@ -40,7 +40,7 @@ var groundArrestor = &Rule{
 				unclear = append(unclear, unplaced(l.From.Device), unplaced(l.To.Device))
 			}
 		}
-		reportUnplaced(r, unclear, c.codeRow("discharge-unit"), "whether their lines come in from outdoors")
+		reportUnplaced(r, unclear, c.codeRow("discharge-unit"), "whether a line comes in from outdoors")
 	},
 }
 

@@ -26,7 +26,8 @@ var groundBond = &Rule{
 			c.reportAstray(r, b, group)
 		}
 		c.reportSupports(r, b)
-		reportUnplaced(r, b.unplaced, c.codeRow("mast-bond"), "whether it needs a bond, as outdoors it does,")
+		c.adviseLightning(r)
+		reportUnplaced(r, b.unplaced, c.codeRow("mast-bond"), "whether a bond is needed, as it is outdoors,")
 	},
 }
 
@@ -203,7 +204,7 @@ func (c *Case) reportAstray(r *Report, b *bonding, in island) {
 	f := r.Fails(in.hub.At, in.hub.On(), "%s", says).Then("%s", c.bondTo(in.hub)).onRow(in.wanted[0].row)
 	c.besideSite(f)
 	for _, x := range in.bonds {
-		f.Beside(x.Row.At, "this bond ends here")
+		f.Beside(x.Row.At, "one of the bonds there are")
 	}
 }
 
@@ -280,6 +281,18 @@ func (c *Case) reportSupports(r *Report, b *bonding) {
 	for _, d := range bare[1:] {
 		f.Beside(d.At, "an antenna too")
 	}
+}
+
+// adviseLightning says what a lightning protection system asks of what goes up
+// beside it; a plan does not show distances from its conductors.
+func (c *Case) adviseLightning(r *Report) {
+	system := c.Plan.Site.Lightning
+	if !system.Set || system.V == "none" || !c.anythingOutdoors() {
+		return
+	}
+	r.Advice(system.At, "site", "the building has a lightning protection system of class %s; whether what goes up keeps its distance from it is not in the plan", system.V).
+		Then("stay inside its protected zone and keep the distance, or join the two with its own size of conductor and an arrestor on every line; ask whoever looks after the system").
+		onRow(c.firstRow("separation", "lightning-conductor"))
 }
 
 // carried reports an antenna that has a bond of its own, or stands on something

@@ -26,7 +26,7 @@ var groundData = &Rule{
 		for _, run := range c.dataRuns() {
 			unclear = append(unclear, c.checkData(r, run)...)
 		}
-		reportUnplaced(r, unclear, c.codeRow("data-arrestor"), "whether their data line comes in from outdoors")
+		reportUnplaced(r, unclear, c.codeRow("data-arrestor"), "whether a data line comes in from outdoors")
 	},
 }
 

@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"strings"
 
 	"driploop/bom"
 	"driploop/catalog/source"
@@ -14,6 +15,14 @@ const (
 	defaultBondLength unit.MM = 6096 // 20 ft
 	defaultEntryReach unit.MM = 1524 // 5 ft
 )
+
+// figureOf prints a length of the house as its file writes it, or the default.
+func figureOf(v source.Val[unit.MM], otherwise string) string {
+	if !v.Set {
+		return otherwise
+	}
+	return strings.Trim(v.At.Text(), `"`)
+}
 
 var groundLength = &Rule{
 	Name:    "ground/length",
@@ -108,7 +117,7 @@ func (c *Case) reportLong(r *Report, l *longWay, limit unit.MM) {
 		terms += b.Row.ID + " " + b.Row.Length.V.String()
 	}
 	f := r.Fails(placeOr(longest.Row.Length.At, longest.Row.At), longest.On(), "%s comes to %s over %s (%s); the house allows %s (bond_length)",
-		l.from.ID, l.end.ID, l.sum, terms, limit).Over("length_m", l.sum.Metres(), "limit_m", limit.Metres()).
+		l.from.ID, l.end.ID, l.sum, terms, figureOf(c.House().BondLength, "20 ft")).Over("length_m", l.sum.Metres(), "limit_m", limit.Metres()).
 		Then("move %s nearer to its electrode, or bring an electrode to it and tie the two", l.from.ID)
 	if l.bends > 0 {
 		f.Says += ", with " + count(l.bends, "bend", "bends")
@@ -168,7 +177,7 @@ func (c *Case) checkInside(r *Report, x bom.Crossing, p protector, said map[*bom
 	if in <= limit {
 		return
 	}
-	r.Fails(at, d.On(), "%s sits in %s, %s behind the entry (%s); the house allows %s (entry_reach)", d.ID, d.Place.ID, in, how, limit).
+	r.Fails(at, d.On(), "%s sits in %s, %s behind the entry (%s); the house allows %s (entry_reach)", d.ID, d.Place.ID, in, how, figureOf(c.House().EntryReach, "5 ft")).
 		Over("inside_m", in.Metres(), "limit_m", limit.Metres()).
 		Then("move %s to the entry", d.ID).besides(row)
 }

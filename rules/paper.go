@@ -127,11 +127,11 @@ func stateWords(e *bom.Evidence) string {
 	case "applied":
 		return "only applied for" + since + "; granted is expected"
 	case "refused":
-		return "refused"
+		return "refused; granted is expected"
 	case "not-required":
 		return "said not to be required, without a why; so it does not count"
 	}
-	return "missing"
+	return "missing; granted is expected"
 }
 
 func stateRemedy(key string, e *bom.Evidence) string {
