@@ -21,9 +21,18 @@ func (c *Command) emit(b []byte) error {
 		return nil
 	}
 	if err := writeWhole(c.shared.out, b); err != nil {
-		return failure{fmt.Errorf("writing %s: %w", c.shared.out, err)}
+		return failure{fmt.Errorf("writing %s: %w", c.shared.out, cause(err))}
 	}
 	return nil
+}
+
+// cause is what went wrong with a file, without the name of the file beside its
+// place, which nobody knows and which is another every time.
+func cause(err error) error {
+	if p := (*fs.PathError)(nil); errors.As(err, &p) {
+		return p.Err
+	}
+	return err
 }
 
 func writeWhole(path string, b []byte) error {
