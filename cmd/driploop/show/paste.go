@@ -72,16 +72,10 @@ func (b *paste) hints(keys ...string) {
 }
 
 func (b *paste) cable(connectors []*catalog.Part) {
-	b.hints(`length = "18.5 m"`, `from = "donor.rf"`, `to = "arrestor.line"`)
-	if len(connectors) == 0 {
-		b.hints(`ends = ["N male", "N male"]`)
-	} else {
-		b.hints(`ends = ["` + connectors[0].ID + `", "` + connectors[0].ID + `"]`)
-		for _, c := range connectors {
-			b.comment("fits: " + c.ID + " " + c.Connector.Face.V.String())
-		}
+	b.hints(`length = "18.5 m"`, `from = "donor.rf"`, `to = "arrestor.line"`, `ends = ["N male", "N male"]`, `way = ["roof", "entry"]`)
+	for _, c := range connectors {
+		b.comment("an end: " + c.ID + ", " + c.Connector.Face.V.String())
 	}
-	b.hints(`way = ["roof", "entry"]`)
 }
 
 func (b *paste) device(p *catalog.Part) {
