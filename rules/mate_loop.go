@@ -180,7 +180,7 @@ func (c *Case) checkRing(r *Report, g *ring) {
 	switch {
 	case worst.found:
 		r.Fails(worst.b.at, worst.b.on, "%s ways lead from %s to %s: in %s those over %s and %s are %s dB apart (at %s), %d dB or more is expected",
-			howMany(len(g.ways)), g.part, g.meet, list(bands), worst.a.via, worst.b.via, unit.Fixed(worst.apart, 1), worst.at, apart).
+			howMany(len(g.ways)), g.part, g.meet, list(bands), worst.a.via, worst.b.via, unit.Fixed(worst.apart, 2), worst.at, apart).
 			Then("leave one way, or keep them apart by band with a diplexer at each end").
 			Under("apart_db", worst.apart, "limit_db", apart)
 	case len(lacks) > 0:

@@ -59,6 +59,11 @@ func (c *Case) failOpen(r *Report, d *bom.Device, o opening, ports []*bom.Node) 
 			Then("add side to the port in the catalog").besidePart(d.Part, ports[0].Port.At, "the port")
 		return
 	}
+	if d.Row.Existing.V {
+		r.Unknown(d.At, d.On(), "%s in the plan; %s is there already, and what is on it is not assessed", says, d.ID).
+			Then("look at it, and write down what is connected or that it has a load")
+		return
+	}
 	f := r.Fails(d.At, d.On(), "%s: %s", says, o.harm).Lighter(o.weight).Then("%s", c.close(o, d, ports))
 	if ports[0].Port.Unused.Set {
 		f.besidePart(d.Part, ports[0].Port.Unused.At, "what the maker asks for")

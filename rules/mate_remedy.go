@@ -19,7 +19,7 @@ func (c *Case) remedy(t touching) string {
 			ways = append(ways, w)
 		}
 	}
-	if w := c.adapterFor(t.mate); w != "" {
+	if w := c.adapterFor(t); w != "" {
 		ways = append(ways, w)
 	}
 	if len(ways) == 0 {
@@ -76,18 +76,29 @@ func (c *Case) jumperOhm(j *catalog.Jumper) float64 {
 	return 0
 }
 
-// adapterFor says which single adapter would join the two sides of a mate, in
-// place of those that the plan has.
-func (c *Case) adapterFor(m *bom.Mate) string {
-	contacts := m.Contacts()
-	p := c.oneAdapter(contacts[0].A, contacts[len(contacts)-1].B)
-	switch {
-	case p == nil:
+// adapterFor says which single adapter would join the pair: in place of the
+// adapters that the plan has there, or before or after a pad or block, which stays.
+func (c *Case) adapterFor(t touching) string {
+	if len(t.mate.Adapters) > 0 && allAdapters(t.mate.Adapters) {
+		contacts := t.mate.Contacts()
+		if p := c.oneAdapter(contacts[0].A, contacts[len(contacts)-1].B); p != nil {
+			return fmt.Sprintf("put adapter %s between them in place of %s", c.Firm.OnHand(p), adapterIDs(t.mate.Adapters))
+		}
 		return ""
-	case len(m.Adapters) > 0:
-		return fmt.Sprintf("put adapter %s between them in place of %s", c.Firm.OnHand(p), adapterIDs(m.Adapters))
 	}
-	return fmt.Sprintf("put adapter %s between them", c.Firm.OnHand(p))
+	if p := c.oneAdapter(t.A, t.B); p != nil {
+		return fmt.Sprintf("put adapter %s between them", c.Firm.OnHand(p))
+	}
+	return ""
+}
+
+func allAdapters(list []bom.Adapter) bool {
+	for _, a := range list {
+		if a.Part.Kind.V != "adapter" {
+			return false
+		}
+	}
+	return true
 }
 
 func adapterIDs(list []bom.Adapter) string {
