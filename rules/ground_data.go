@@ -23,6 +23,12 @@ var groundData = &Rule{
 			return
 		}
 		var unclear []*bom.Device
+		for _, d := range c.Graph.Data {
+			if !d.Row.From.Set || !d.Row.To.Set {
+				r.Unknown(d.Row.At, d.On(), "%s does not say where both its ends go; whether it comes in from outdoors is not assessed", d.Row.ID).
+					Then("add from and to").onRow(c.codeRow("data-arrestor"))
+			}
+		}
 		for _, run := range c.dataRuns() {
 			unclear = append(unclear, c.checkData(r, run)...)
 		}

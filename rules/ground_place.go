@@ -161,12 +161,16 @@ func first(by []protector, x bom.Crossing) protector {
 
 // checkInside holds how far behind the entry an arrestor sits.
 func (c *Case) checkInside(r *Report, x bom.Crossing, p protector, said map[*bom.Device]bool) {
-	d := p.dev
-	if said[d] || !d.Place.Indoors() {
+	d, row := p.dev, c.codeRow("discharge-place")
+	if said[d] {
 		return
 	}
 	said[d] = true
-	limit, row := c.House().EntryReach.Or(defaultEntryReach), c.codeRow("discharge-place")
+	if !d.Place.Indoors() {
+		reportUnplaced(r, []*bom.Device{unplaced(d)}, row, "whether it sits at the entry")
+		return
+	}
+	limit := c.House().EntryReach.Or(defaultEntryReach)
 	at := placeOr(d.Row.Place.At, d.At)
 	in, how, known := inside(x, p)
 	if !known {

@@ -88,7 +88,10 @@ func (c *Case) transmitters() []*bom.Device {
 func (c *Case) checkHeight(r *Report, d *bom.Device, h heightFor) {
 	most := h.limit.Most.V.Metres()
 	low, high, lacks := heightOf(d)
-	at := placeOr(d.Row.Up.At, placeOr(d.Point.At, d.At))
+	at := placeOr(d.Point.At, d.At)
+	if onBase(d) {
+		at = placeOr(d.Row.Up.At, at)
+	}
 	switch {
 	case lacks == "the height":
 		r.Unknown(d.At, d.On(), "how high %s stands above ground is not known; in %s it may stand %s at most, so this is not assessed", d.ID, list(h.bands), h.limit.Most.V).
@@ -102,6 +105,9 @@ func (c *Case) checkHeight(r *Report, d *bom.Device, h heightFor) {
 	}
 }
 
+// onBase reports a device whose point is that of what it stands on, plus up.
+func onBase(d *bom.Device) bool { return d.Stands != nil && d.Point.At == d.Stands.Point.At }
+
 // heightOf is the height of a device above ground in metres. Where it stands on a
 // mast and up is missing, it lies between the mast's foot and its free end; high is
 // then that end, or infinite where the mast gives no free length.
@@ -111,7 +117,7 @@ func heightOf(d *bom.Device) (low, high float64, lacks string) {
 	}
 	low = d.Point.V.Up
 	high = low
-	for s := d; s.Stands != nil && !s.Row.Point.Set; s = s.Stands {
+	for s := d; onBase(s); s = s.Stands {
 		if s.Row.Up.Set {
 			continue
 		}
