@@ -143,7 +143,7 @@ func (x *BandChain) unknownEIRP(r *Report, d *Direction) {
 	}
 	for _, ant := range d.Antennas {
 		if len(ant.Lacks) > 0 {
-			x.unassessed(r, what+" of "+ant.Node.Device.ID, ant.Lacks)
+			x.unassessed(r, what+" at "+ant.Node.Device.ID, ant.Lacks)
 		}
 	}
 }
