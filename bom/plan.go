@@ -134,7 +134,7 @@ func (j *Job) keys(k *source.Keys) {
 	source.Opt(k, &j.Use, "use", source.OneOf("personal", "business", "public"), "who uses it")
 	source.Opt(k, &j.Crew, "crew", source.Name, "crew of the workspace")
 	source.Opt(k, &j.Bands, "bands", source.ListOf(catalog.BandName), "bands the install is for")
-	if j.Stage.V == "cancelled" && !j.Because.Set {
+	if j.Stage.V == "cancelled" && !k.Has("because") {
 		k.Missing("because", "a cancelled job says why")
 	}
 }

@@ -148,7 +148,7 @@ func (d *DeviceRow) keys(k *source.Keys) {
 		return Copy{Point: source.Val[Point]{V: p, Set: true}}, nil
 	})
 	source.Each(k, &d.Copies, "copies", validName, source.Either(source.IsArray, at, source.Inline((*Copy).keys), "position or table"), "more devices of the same part")
-	if !k.Recording() && !k.Has("part") && !(d.Existing.V && d.Kind.Set) {
+	if !k.Recording() && !k.Has("part") && !(maybe(k, d.Existing, "existing") && k.Has("kind")) {
 		k.Missing("part", "only what exists already may give its kind instead")
 	}
 }
@@ -228,7 +228,12 @@ func (b *BondRow) keys(k *source.Keys) {
 	source.Opt(k, &b.Raceway, "raceway", source.OneOf("none", "plastic", "metal", "metal-bonded-one-end", "metal-bonded-both-ends"), "what it runs in")
 	source.Opt(k, &b.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &b.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
-	if !k.Recording() && !b.Direct.V && !b.Existing.V && !k.Has("part") {
+	if !k.Recording() && !k.Has("part") && !maybe(k, b.Direct, "direct") && !maybe(k, b.Existing, "existing") {
 		k.Missing("part", "or direct = true: what makes the bond")
 	}
+}
+
+// maybe reports a flag that is true, or that could not be read, which has been said.
+func maybe(k *source.Keys, flag source.Val[bool], name string) bool {
+	return flag.V || !flag.Set && k.Has(name)
 }

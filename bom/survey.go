@@ -192,8 +192,11 @@ func (r *Reserve) keys(k *source.Keys) {
 	source.Opt(k, &r.Where, "at", source.Name, "from which shelf")
 	source.Opt(k, &r.Cable, "cable", source.Name, "for which cable")
 	source.Need(k, &r.Until, "until", source.Day, "until when it is kept")
-	if !k.Recording() && k.Has("tag") == k.Has("part") {
+	switch tag, part := k.Has("tag"), k.Has("part"); {
+	case tag && part:
 		k.Fault(k.At(), "a reserve names a tag or a part, one of the two", "write tag, or part and qty")
+	case !tag && !part:
+		k.Missing("tag", "or part and qty: what is kept")
 	}
 }
 
