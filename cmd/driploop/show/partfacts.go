@@ -113,7 +113,7 @@ func lineFacts(p *catalog.Part) []string {
 		c := p.Cable
 		bend := ""
 		if c.Bend.Set {
-			bend = "bends to " + c.Bend.V.String()
+			bend = "bends to " + plainNumber(float64(c.Bend.V)) + " mm"
 		}
 		return []string{measure("", c.Impedance, " ohm"), measure("to ", c.MaxMHz, " MHz"), measure("", c.ODmm, " mm across"), bend, fact("", c.Fire)}
 	case p.Connector != nil:
