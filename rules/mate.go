@@ -10,9 +10,11 @@ import (
 )
 
 // The mate rules say whether what the plan joins can be joined: that a reference
-// leads to a port (here), that the two faces fit (mate_face.go), that an end can
-// be made and goes somewhere (mate_end.go), that nothing is left open
-// (mate_open.go), and that there is one way between two ports (mate_loop.go).
+// leads to a port (here), that the two faces fit (mate_face.go, and mate_remedy.go
+// what would), that an end can be made (mate_fit.go, mate_choice.go) and goes
+// somewhere (mate_loose.go), that nothing is left open (mate_open.go), that adapters
+// do not pile up (mate_adapters.go), and that there is one way between two ports
+// (mate_loop.go, mate_closed.go).
 var mateRules = []*Rule{matePort, mateShared, mateSeries, mateGender, matePolarity, mateFit,
 	mateLoop, mateLoose, mateOpen, mateChoice, mateAdapters}
 

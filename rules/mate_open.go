@@ -14,8 +14,8 @@ var mateOpen = &Rule{
 	Why:    "an open port sends back what comes to it: an amplifier starts to oscillate or shuts a band down, a splitter's other legs get ripple, a radio with two branches runs on one",
 	Basis:  []Basis{practice("unused ports get a load of the line's impedance; the maker's own word (unused) goes first")},
 	Weight: Hold,
-	Lighter: "A server port of an amplifier, an output of a passive part and a port of an antenna that only an amplifier feeds are a punch; " +
-		"Wi-Fi, GNSS and receive-only ports a note. A port that the maker never wants open always holds; one that he lets be is silent.",
+	Lighter: "A server port of an amplifier, an output of a passive part, a further port of an antenna and a router's port for bands that are " +
+		"not planned are a punch; Wi-Fi, GNSS and receive-only ports a note. A port that the maker never wants open always holds; one that he lets be is silent.",
 	Check: func(c *Case, r *Report) {
 		for _, d := range c.Graph.Devices {
 			if !c.loose(d) && !c.unfinished(d) {
@@ -67,6 +67,9 @@ func (c *Case) failOpen(r *Report, d *bom.Device, o opening, ports []*bom.Node) 
 	f := r.Fails(d.At, d.On(), "%s: %s", says, o.harm).Lighter(o.weight).Then("%s", c.close(o, d, ports))
 	if ports[0].Port.Unused.Set {
 		f.besidePart(d.Part, ports[0].Port.Unused.At, "what the maker asks for")
+	}
+	if o.weight < Hold {
+		return
 	}
 	for _, n := range c.freeBranches(d) {
 		f.Beside(n.At(), "%s is free too", n.Name())
@@ -127,7 +130,7 @@ func (c *Case) openingOf(n *bom.Node, kind string) (opening, bool) {
 	case "amplifier":
 		return openAmplifier(p), true
 	case "router":
-		return opening{Hold, "an antenna port of the radio", "what it transmits comes back into the radio, and one branch is missing", "connect its antenna"}, true
+		return c.openRouter(n), true
 	case "antenna":
 		return c.openAntenna(n)
 	}
@@ -144,18 +147,39 @@ func openAmplifier(p *catalog.Port) opening {
 	return opening{0, "of unknown side", "", ""}
 }
 
-// openAntenna is a second or later port of an antenna: a missing branch where a
-// router is at the others, else only a port without a load. Where the router has
-// as many ports open, the finding stands there.
+// openRouter is an open port of a router: a missing branch, or a port for bands that
+// nobody planned.
+func (c *Case) openRouter(n *bom.Node) opening {
+	if !c.planned(n) {
+		return opening{Punch, "an antenna port of the radio for bands that are not planned", "what it transmits there comes back into the radio", ""}
+	}
+	return opening{Hold, "an antenna port of the radio", "what it transmits comes back into the radio, and one branch is missing", "connect its antenna"}
+}
+
+// planned reports whether a port serves a planned band, as far as its part says.
+func (c *Case) planned(n *bom.Node) bool {
+	if !n.Port.Bands.Set || len(c.bands) == 0 {
+		return true
+	}
+	for _, w := range n.Port.Bands.V {
+		own, ok := catalog.LookBand(w.V)
+		for _, b := range c.bands {
+			if ok && (!own.Uplink.Overlap(b.Uplink).Empty() || !own.Downlink.Overlap(b.Downlink).Empty()) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// openAntenna is a further port of an antenna in use. Where the router at the others
+// has a port open as well, the line between the two was forgotten, and the finding
+// stands there.
 func (c *Case) openAntenna(n *bom.Node) (opening, bool) {
-	router := c.routerAt(n.Device)
-	switch {
-	case router == nil:
-		return opening{Punch, "a port of an antenna whose other port is in use", "it takes up part of the other port's power and spoils its pattern", ""}, true
-	case len(openBranches(router)) > 0:
+	if router := c.routerAt(n.Device); router != nil && len(c.openBranches(router)) > 0 {
 		return opening{}, false
 	}
-	return opening{Hold, "a port of the antenna of a router", "the branch that belongs there is missing", "connect it to the router"}, true
+	return opening{Punch, "a port of an antenna whose other port is in use", "it takes up part of the other port's power and spoils its pattern", ""}, true
 }
 
 // routerAt is a router that some line leads to from an antenna, or nil.
@@ -176,11 +200,11 @@ func (c *Case) routerAt(d *bom.Device) *bom.Device {
 }
 
 // openBranches lists the cellular ports of a router or antenna that are open and
-// matter.
-func openBranches(d *bom.Device) []*bom.Node {
+// serve a planned band.
+func (c *Case) openBranches(d *bom.Device) []*bom.Node {
 	var out []*bom.Node
 	for _, n := range d.Nodes {
-		if n.Port.Use.Or("cellular") == "cellular" && len(n.Mates) == 0 && n.Port.Unused.V != "leave" && !receiveOnly(n.Port) {
+		if n.Port.Use.Or("cellular") == "cellular" && len(n.Mates) == 0 && n.Port.Unused.V != "leave" && !receiveOnly(n.Port) && c.planned(n) {
 			out = append(out, n)
 		}
 	}
@@ -196,7 +220,7 @@ func (c *Case) freeBranches(router *bom.Device) []*bom.Node {
 	var out []*bom.Node
 	for _, d := range c.Graph.Devices {
 		if d.Kind() == "antenna" && c.routerAt(d) == router {
-			out = append(out, openBranches(d)...)
+			out = append(out, c.openBranches(d)...)
 		}
 	}
 	return out

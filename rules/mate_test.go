@@ -42,7 +42,7 @@ func TestOpenPortsWeigh(t *testing.T) {
 		"amp.server": rules.Punch, "donor.m45": rules.Punch, "hyb.a2": rules.Punch, "hyb.b2": rules.Punch,
 		"coup.coupled": rules.Punch, "split.out2": rules.Punch, "split.in": rules.Hold, "pad.in": rules.Hold,
 		"car.wifi1 and car.wifi2": rules.Note, "tv.rx": rules.Note,
-		"east.donor": rules.Hold, "radio.cell2, radio.cell3 and radio.cell4": rules.Hold, "duo.m45": rules.Hold,
+		"east.donor": rules.Hold, "radio.cell2": rules.Hold, "radio.cell3 and radio.cell4": rules.Punch, "duo.m45": rules.Punch,
 	}
 	for _, name := range []string{"bad-weights", "bad-donor-and-router"} {
 		for _, f := range caseFindings(t, "mate/open", name) {
