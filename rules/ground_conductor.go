@@ -290,8 +290,8 @@ func (j *judge) raceway(b *bom.Bond) bool {
 }
 
 // conductorFor is a catalog conductor of a size that a code row allows: on hand
-// first, the firm's own before generic ones, the thinnest that will do. Nil where
-// there is none.
+// first, the firm's own before generic ones, copper before other metals because
+// every clamp takes it, the thinnest that will do. Nil where there is none.
 func (c *Case) conductorFor(row *limits.CodeRow) *catalog.Part {
 	if row == nil {
 		return nil
@@ -317,6 +317,9 @@ func (f *Firm) handier(a, b *catalog.Part) bool {
 	}
 	if a.Generic != b.Generic {
 		return b.Generic
+	}
+	if x, y := a.Bond.Material.V == "copper", b.Bond.Material.V == "copper"; x != y {
+		return x
 	}
 	if x, y := a.Bond.Size.V.MM2, b.Bond.Size.V.MM2; x != y {
 		return x < y
