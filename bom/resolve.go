@@ -74,10 +74,10 @@ func (g *Graph) addDevices() {
 	for i := range g.Plan.Devices {
 		row := &g.Plan.Devices[i]
 		part := g.part(row.Part, "device."+row.ID, deviceKinds...)
-		g.addDevice(&Device{ID: row.ID, At: row.At, Row: row, Part: part, Place: g.place(row.Place, "device."+row.ID), Point: row.Point})
+		place := g.place(row.Place, "device."+row.ID)
+		g.addDevice(&Device{ID: row.ID, At: row.At, Row: row, Part: part, Place: place, Point: row.Point})
 		for _, c := range row.Copies {
-			d := &Device{ID: c.Name, At: c.At, Row: row, Part: part, Point: c.Val.V.Point}
-			d.Place = g.place(row.Place, d.On())
+			d := &Device{ID: c.Name, At: c.At, Row: row, Part: part, Place: place, Point: c.Val.V.Point}
 			if c.Val.V.Place.Set {
 				d.Place = g.place(c.Val.V.Place, d.On())
 			}
@@ -129,18 +129,16 @@ func (g *Graph) stand() {
 		if !d.Row.On.Set {
 			continue
 		}
-		base := g.devices[d.Row.On.V]
-		if base == nil {
+		d.Stands = g.devices[d.Row.On.V]
+		if d.Stands == nil && d.ID == d.Row.ID { // once, and not for each copy
 			g.hole(BadRef, d.Row.On.At, d.On(), "the plan has no device "+source.Quote(d.Row.On.V),
 				didYouMean(source.Nearest(d.Row.On.V, sortedKeys(g.devices)), "add it, or correct the name"))
-			continue
 		}
-		d.Stands = base
 	}
 	for _, d := range g.Devices {
-		if d.standsOnItself() {
+		if g.standsOnItself(d) {
 			g.hole(BadRef, d.Row.On.At, d.On(), "what "+d.ID+" stands on stands on "+d.ID+" again", "let the chain end at a place")
-			d.Stands = nil
+			d.openRing()
 		}
 	}
 	for _, d := range g.Devices {
@@ -148,19 +146,29 @@ func (g *Graph) stand() {
 	}
 }
 
-func (d *Device) standsOnItself() bool {
-	seen := map[*Device]bool{}
-	for s := d; s != nil; s = s.Stands {
-		if seen[s] {
-			return true
-		}
-		seen[s] = true
+// standsOnItself reports a device that is part of a ring, not one that only stands
+// on a ring.
+func (g *Graph) standsOnItself(d *Device) bool {
+	s := d.Stands
+	for left := len(g.Devices); s != nil && s != d && left > 0; left-- {
+		s = s.Stands
 	}
-	return false
+	return s == d
+}
+
+// openRing lets no device of the ring stand on another, so that nothing depends on
+// which of them the file names first.
+func (d *Device) openRing() {
+	for s := d; s != nil; {
+		next := s.Stands
+		s.Stands = nil
+		s = next
+	}
 }
 
 // position is the device's place, and its point where that is known: its own,
-// else that of what it stands on plus up, else its place's.
+// else that of what it stands on plus up, else its place's. A device whose place is
+// another than that of what it is said to stand on has nothing of that one's point.
 func (d *Device) position() (*Place, source.Val[Point]) {
 	place, at := d.Place, d.Point
 	if d.Stands != nil {
@@ -168,7 +176,7 @@ func (d *Device) position() (*Place, source.Val[Point]) {
 		if place == nil {
 			place = basePlace
 		}
-		if !at.Set && base.Set {
+		if !at.Set && base.Set && (basePlace == nil || place == basePlace) {
 			at = base
 			at.V.Up += d.Row.Up.V.Metres()
 		}
