@@ -22,7 +22,7 @@ func InspectText(r *rules.Result, page Page, quiet bool) []byte {
 		t.plan(p)
 	}
 	t.foot(r)
-	return []byte(s.b.String())
+	return []byte(strings.TrimRight(s.b.String(), "\n") + "\n")
 }
 
 type inspectText struct {
