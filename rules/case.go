@@ -1,6 +1,8 @@
 package rules
 
 import (
+	"slices"
+
 	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/source"
@@ -31,8 +33,9 @@ func newCase(f *Firm, p *bom.Plan, problems []source.Problem) *Case {
 	c.Code = f.Limits.Code(c.CodeName())
 	c.checkNames()
 	for _, b := range p.Job.Bands.V {
-		if band, ok := catalog.LookBand(b.V); ok {
-			c.bands = append(c.bands, band)
+		band, ok := catalog.LookBand(b.V)
+		if ok && !slices.ContainsFunc(c.bands, func(x catalog.Band) bool { return x.Name == band.Name }) {
+			c.bands = append(c.bands, band) // a band that is named twice is planned once
 		}
 	}
 	return c
