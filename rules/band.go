@@ -169,11 +169,26 @@ func (c *Case) runners() []*bom.Device {
 	return out
 }
 
-// elsewhere names another amplifier or router that works in all of a band, or "".
-// What one of them leaves to another is a division of work rather than a gap.
-func (c *Case) elsewhere(d *bom.Device, b catalog.Band) string {
-	for _, o := range c.runners() {
-		if left, known := runsWithout(o, b); o != d && known && left.Nothing() {
+// division knows which amplifiers and routers of a plan work in all of a band. What
+// one of them leaves to another is a division of work rather than a gap.
+type division map[string][]*bom.Device // by band; two at most
+
+func (c *Case) division() division {
+	by := division{}
+	for _, b := range c.Bands() {
+		for _, d := range c.runners() {
+			if left, known := runsWithout(d, b); known && left.Nothing() && len(by[b.Name]) < 2 {
+				by[b.Name] = append(by[b.Name], d)
+			}
+		}
+	}
+	return by
+}
+
+// elsewhere names a device other than d that works in all of a band, or "".
+func (by division) elsewhere(d *bom.Device, b catalog.Band) string {
+	for _, o := range by[b.Name] {
+		if o != d {
 			return o.ID
 		}
 	}

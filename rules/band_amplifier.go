@@ -13,6 +13,7 @@ var bandAmplifier = &Rule{
 	Weight:  Hold,
 	Lighter: "A band that another amplifier or router of the plan works in is a punch.",
 	Check: func(c *Case, r *Report) {
+		by := c.division()
 		for _, d := range c.runners() {
 			if d.Part.Amplifier == nil {
 				continue
@@ -23,13 +24,13 @@ var bandAmplifier = &Rule{
 				continue
 			}
 			for _, b := range c.Bands() {
-				c.checkAmplifier(d, b, r)
+				c.checkAmplifier(d, b, by, r)
 			}
 		}
 	},
 }
 
-func (c *Case) checkAmplifier(d *bom.Device, b catalog.Band, r *Report) {
+func (c *Case) checkAmplifier(d *bom.Device, b catalog.Band, by division, r *Report) {
 	a := d.Part.Amplifier
 	left, _ := runsWithout(d, b)
 	row, _ := ampRow(a, b)
@@ -45,7 +46,7 @@ func (c *Case) checkAmplifier(d *bom.Device, b catalog.Band, r *Report) {
 		Over("left_out_mhz", left.Width(), "allowed_mhz", 0).InBand(b.Name).
 		Then("%s", c.runsPlan(d.Part, b)).
 		Beside(c.bandAt(b), "%s is planned here", b.Name).Beside(a.Bands[0].At, "its rows")
-	if other := c.elsewhere(d, b); other != "" {
+	if other := by.elsewhere(d, b); other != "" {
 		f.Lighter(Punch).Says += "; " + b.Name + " runs over " + other + " only"
 	}
 }

@@ -74,6 +74,7 @@ type antennaPort struct {
 // serve with their own; the copies of a row are one.
 func (c *Case) antennasInUse() []*antennaInUse {
 	var out []*antennaInUse
+	ways := c.bandWays()
 	for _, d := range c.Graph.Devices {
 		if d.Part == nil || d.Part.Antenna == nil {
 			continue
@@ -86,11 +87,11 @@ func (c *Case) antennasInUse() []*antennaInUse {
 			out = append(out, of)
 		}
 		if d.Part.Router != nil {
-			of.ports = append(of.ports, antennaPort{device: d, bands: c.ownAntennaBands(d)})
+			of.ports = append(of.ports, antennaPort{device: d, bands: ways.ownAntenna(d)})
 			continue
 		}
 		for _, n := range d.Nodes {
-			if bands := c.bandsAt(n); len(bands) > 0 {
+			if bands := ways.bandsAt(n); len(bands) > 0 {
 				of.ports = append(of.ports, antennaPort{d, n, bands})
 			}
 		}
@@ -99,11 +100,11 @@ func (c *Case) antennasInUse() []*antennaInUse {
 }
 
 // bandsAt lists the planned bands that are meant for an antenna's port.
-func (c *Case) bandsAt(n *bom.Node) []catalog.Band {
+func (w *bandWays) bandsAt(n *bom.Node) []catalog.Band {
 	var out []catalog.Band
-	for _, b := range c.Bands() {
-		for _, l := range c.Lines().At(n) {
-			if (l.Kind == bom.Feed || l.Kind == bom.Leg) && c.meantFor(l, b) {
+	for _, b := range w.c.Bands() {
+		for _, l := range w.at[n] {
+			if (l.Kind == bom.Feed || l.Kind == bom.Leg) && w.meant(l, b) {
 				out = append(out, b)
 				break
 			}
@@ -112,15 +113,15 @@ func (c *Case) bandsAt(n *bom.Node) []catalog.Band {
 	return out
 }
 
-// ownAntennaBands are the planned bands that a router receives by its own antenna:
+// ownAntenna lists the planned bands that a router receives by its own antenna:
 // all that it works in, unless a feed brings them.
-func (c *Case) ownAntennaBands(d *bom.Device) []catalog.Band {
+func (w *bandWays) ownAntenna(d *bom.Device) []catalog.Band {
 	var out []catalog.Band
-	for _, b := range c.Bands() {
+	for _, b := range w.c.Bands() {
 		fed := false
 		for _, n := range d.Nodes {
-			for _, l := range c.Lines().At(n) {
-				fed = fed || l.Kind == bom.Feed && c.meantFor(l, b)
+			for _, l := range w.at[n] {
+				fed = fed || l.Kind == bom.Feed && w.meant(l, b)
 			}
 		}
 		if left, known := runsWithout(d, b); !fed && !(known && left.All()) {
@@ -298,7 +299,7 @@ func (c *Case) coveringAntenna(now *catalog.Part, b catalog.Band) string {
 			countRadioPorts(p) == countRadioPorts(now) && c.coversPlan(p)
 	})
 	if p == nil {
-		return "take an antenna that covers it, or " + drop
+		return "no antenna like it in the catalog covers all planned bands; find one, or " + drop
 	}
 	return "take " + c.Firm.OnHand(p) + ", which covers all planned bands, or " + drop
 }

@@ -1,6 +1,8 @@
 package rules
 
 import (
+	"slices"
+
 	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/unit"
@@ -20,10 +22,36 @@ func activeEnds(l *bom.Line) []*bom.Node {
 	return out
 }
 
-// meantFor reports whether a planned band is to go over a line. It is not where a
-// port at its end is for something else, where another amplifier or router of the
-// plan does the band, and where a diplexer or filter sends it another way.
-func (c *Case) meantFor(l *bom.Line, b catalog.Band) bool {
+// bandWays knows which planned bands are to go over which line.
+type bandWays struct {
+	c     *Case
+	by    division
+	at    map[*bom.Node][]*bom.Line // by the nodes at both ends
+	whole map[wayOut]bool
+}
+
+// wayOut is a port of an amplifier or router, a kind of line, and a band.
+type wayOut struct {
+	from *bom.Node
+	kind bom.LineKind
+	band string
+}
+
+func (c *Case) bandWays() *bandWays {
+	w := &bandWays{c: c, by: c.division(), at: map[*bom.Node][]*bom.Line{}, whole: map[wayOut]bool{}}
+	for _, l := range c.Lines().All {
+		w.at[l.From] = append(w.at[l.From], l)
+		if l.To != l.From {
+			w.at[l.To] = append(w.at[l.To], l)
+		}
+	}
+	return w
+}
+
+// meant reports whether a planned band is to go over a line. It is not where a port
+// at its end is for something else, where another amplifier or router of the plan
+// does the band, and where a diplexer or filter sends it another way.
+func (w *bandWays) meant(l *bom.Line, b catalog.Band) bool {
 	ends := activeEnds(l)
 	if len(ends) == 0 {
 		return false
@@ -32,11 +60,11 @@ func (c *Case) meantFor(l *bom.Line, b catalog.Band) bool {
 		if n.Port.Use.Or("cellular") != "cellular" || n.Port.Bands.Set && listLeavesOut(b, n.Port.Bands.V).All() {
 			return false
 		}
-		if left, known := runsWithout(n.Device, b); known && left.All() && c.elsewhere(n.Device, b) != "" {
+		if left, known := runsWithout(n.Device, b); known && left.All() && w.by.elsewhere(n.Device, b) != "" {
 			return false
 		}
 	}
-	return !parts(l, b) || !c.goesAnotherWay(l, b)
+	return !parts(l, b) || !w.goesAnotherWay(l, b)
 }
 
 // parts reports a line on which a diplexer or filter keeps some of a band off.
@@ -55,14 +83,18 @@ func parts(l *bom.Line, b catalog.Band) bool {
 	return false
 }
 
-// goesAnotherWay reports whether another line from the same amplifier or router
-// port passes the whole band.
-func (c *Case) goesAnotherWay(l *bom.Line, b catalog.Band) bool {
+// goesAnotherWay reports whether a line from the same amplifier or router port
+// passes the whole band; one on which parts holds is not itself that line.
+func (w *bandWays) goesAnotherWay(l *bom.Line, b catalog.Band) bool {
 	for _, n := range activeEnds(l) {
-		for _, o := range c.Lines().At(n) {
-			if o != l && o.Kind == l.Kind && passesAll(o, b) {
-				return true
-			}
+		key := wayOut{n, l.Kind, b.Name}
+		passes, known := w.whole[key]
+		if !known {
+			passes = slices.ContainsFunc(w.at[n], func(o *bom.Line) bool { return o.Kind == l.Kind && passesAll(o, b) })
+			w.whole[key] = passes
+		}
+		if passes {
+			return true
 		}
 	}
 	return false

@@ -20,15 +20,16 @@ var bandPart = &Rule{
 	Weight:  Hold,
 	Lighter: "A router without a planned band that another amplifier or router of the plan works in is a punch.",
 	Check: func(c *Case, r *Report) {
+		by := c.division()
 		for _, d := range c.runners() {
 			if d.Part.Router != nil {
-				c.checkRouter(d, r)
+				c.checkRouter(d, by, r)
 			}
 		}
-		w := &bandWalk{c: c, by: map[string]*bounded{}}
+		w := &bandWalk{c: c, ways: c.bandWays(), by: map[string]*bounded{}}
 		for _, l := range c.Lines().All {
 			for _, b := range c.Bands() {
-				if c.runsOver(l, b) {
+				if w.ways.runOver(l, b) {
 					w.walk(l, b)
 				}
 			}
@@ -39,11 +40,11 @@ var bandPart = &Rule{
 	},
 }
 
-// runsOver reports whether a band runs over a line: it is meant to, and the
+// runOver reports whether a band runs over a line: it is meant to, and the
 // amplifiers and routers at its ends work in some of it. Where one does not at all,
 // that is said of that one.
-func (c *Case) runsOver(l *bom.Line, b catalog.Band) bool {
-	if l.Kind == bom.Stub || !c.meantFor(l, b) {
+func (w *bandWays) runOver(l *bom.Line, b catalog.Band) bool {
+	if l.Kind == bom.Stub || !w.meant(l, b) {
 		return false
 	}
 	for _, n := range activeEnds(l) {
@@ -55,7 +56,7 @@ func (c *Case) runsOver(l *bom.Line, b catalog.Band) bool {
 }
 
 // checkRouter holds a router against the planned bands.
-func (c *Case) checkRouter(d *bom.Device, r *Report) {
+func (c *Case) checkRouter(d *bom.Device, by division, r *Report) {
 	listed := d.Part.Router.Bands
 	if !listed.Set && len(c.Bands()) > 0 {
 		r.Unknown(deviceAt(d), d.On(), "which bands %s works in is not assessed: %s lists none", d.ID, d.Part.ID).
@@ -71,7 +72,7 @@ func (c *Case) checkRouter(d *bom.Device, r *Report) {
 			Over("left_out_mhz", left.Width(), "allowed_mhz", 0).InBand(b.Name).
 			Then("%s", c.runsPlan(d.Part, b)).
 			Beside(c.bandAt(b), "%s is planned here", b.Name).Beside(listed.At, "its bands")
-		if other := c.elsewhere(d, b); other != "" {
+		if other := by.elsewhere(d, b); other != "" {
 			f.Lighter(Punch).Says += "; " + b.Name + " runs over " + other + " only"
 		}
 	}
@@ -93,7 +94,7 @@ func (c *Case) runsPlan(now *catalog.Part, b catalog.Band) string {
 		return p.Kind.V == now.Kind.V && countRadioPorts(p) == countRadioPorts(now) && sameClass(p, now) && c.runsAll(p)
 	})
 	if p == nil {
-		return "take " + withArticle(now.Kind.V) + " that works in it, or " + drop
+		return "no " + now.Kind.V + " like it in the catalog works in all planned bands; find one, or " + drop
 	}
 	return "take " + c.Firm.OnHand(p) + ", which works in all planned bands, or " + drop
 }
@@ -133,6 +134,7 @@ type bounded struct {
 // bandWalk collects the bounds that bands meet on their way.
 type bandWalk struct {
 	c    *Case
+	ways *bandWays
 	by   map[string]*bounded
 	list []*bounded
 }

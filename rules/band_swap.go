@@ -16,7 +16,7 @@ func (c *Case) insteadOf(x *bounded) string {
 	}
 	p := c.Firm.pick(func(p *catalog.Part) bool { return x.would(p) && c.suitsPlan(p) })
 	if p == nil {
-		return "take a part that is made for it, or " + drop
+		return "no part like it in the catalog is made for all planned bands; find one, or " + drop
 	}
 	return "take " + c.Firm.OnHand(p) + ", which is made for all planned bands, or " + drop
 }

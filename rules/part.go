@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"fmt"
 	"slices"
+	"strings"
 
 	"driploop/bom"
 	"driploop/catalog"
@@ -49,7 +50,7 @@ func (c *Case) reportMissing(h *missingPart, r *Report) {
 		f = r.Unknown(h.At, h.On, "%s is not assessed: it stands in %s, which could not be read whole", h.ID, file.Path()).
 			Then("put that file right first").Beside(file, "what is wrong with it")
 	} else {
-		f = r.Fails(h.At, h.On, "%s", h.Says).Then("%s", c.Firm.suggest(h.ID, h.Do))
+		f = r.Fails(h.At, h.On, "%s", h.Says).Then("%s", c.Firm.withStock(h.Do))
 	}
 	for _, also := range h.Also {
 		f.Beside(also, "named here too")
@@ -121,6 +122,15 @@ func unquoted(s string) string {
 		return s[1 : len(s)-1]
 	}
 	return s
+}
+
+// withStock adds what is on hand to a suggestion of the nearest part.
+func (f *Firm) withStock(do string) string {
+	id, asks := strings.CutPrefix(do, "did you mean ")
+	if near := f.Catalog.Look(strings.TrimSuffix(id, "?")); asks && near != nil {
+		return "did you mean " + f.OnHand(near) + "?"
+	}
+	return do
 }
 
 // suggest names the known part that an ID was probably meant to be, with the
