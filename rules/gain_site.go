@@ -125,12 +125,12 @@ func checkInput(c *Case, r *Report, x *BandChain) {
 		Then("set %s back by %s dB, aim the donor antenna off the strong site, or put an attenuator into the feed", x.Amp.ID, unit.Fixed(out.Value()-d.Spec.MaxOut.V, 1)).
 		InBand(x.Band.Name).Over("output_dbm", out.Value(), "limit_dbm", d.Spec.MaxOut.V).With("input_dbm", d.Input.V.Value())
 	if x.Amp.Part.Amplifier.NetworkProtection.V {
-		f.Lighter(Punch).Says += "; it will turn itself down" + runsAt(d)
+		f.Lighter(Punch).Says += "; it will turn itself down" + runsTo(d)
 	}
 }
 
-// runsAt says at which gain a direction will run.
-func runsAt(d *Direction) string {
+// runsTo says at which gain a direction will run.
+func runsTo(d *Direction) string {
 	if !d.Runs.OK {
 		return ""
 	}
@@ -219,7 +219,7 @@ func checkIsolation(c *Case, r *Report, x *BandChain) {
 	case rf.Below(v, need):
 		f := r.Fails(x.settingAt(), x.Amp.On(), "%s", says).Then("%s", do).InBand(x.Band.Name).Under("isolation_db", v, "needed_db", need)
 		if x.Amp.Part.Amplifier.IsolationControl.V {
-			f.Lighter(Punch).Says += "; it will turn itself down" + runsAt(&x.Down)
+			f.Lighter(Punch).Says += "; it will turn itself down" + runsTo(&x.Down)
 		}
 		if x.Apart.Reading != nil {
 			f.Beside(x.Apart.Reading.At, "the reading")

@@ -35,11 +35,17 @@ type PlanResult struct {
 	Counts
 }
 
-// Runs is the gain that runs in one band.
+// Runs is the gain that runs in one band, each way.
 type Runs struct {
 	Device, Band string
-	Up, Down     *float64 // dB; nil: not assessed
-	BoundBy      string
+	Up, Down     RunsAt
+}
+
+// RunsAt is the gain that runs and what binds it. Without either it is not
+// assessed; without a gain, what binds it leaves none and the band is off.
+type RunsAt struct {
+	Gain *float64 // dB
+	By   string   // set, output, protection, isolation
 }
 
 // Counts counts findings by weight; what a waiver covers is counted apart.

@@ -137,7 +137,7 @@ func or(s, other string) string {
 }
 
 // gainWords is the gain that runs per band: "gain that runs, up/down in dB: B12
-// 61.0/55.0 (isolation)"; with the amplifier's name where there are several.
+// 61.0/55.0 (set/isolation)"; with the amplifier's name where there are several.
 func gainWords(runs []rules.Runs) string {
 	byDevice := map[string][]string{}
 	var devices []string
@@ -145,14 +145,7 @@ func gainWords(runs []rules.Runs) string {
 		if byDevice[r.Device] == nil {
 			devices = append(devices, r.Device)
 		}
-		text := r.Band + " not assessed"
-		if r.Up != nil || r.Down != nil {
-			text = fmt.Sprintf("%s %s/%s", r.Band, gainOr(r.Up), gainOr(r.Down))
-		}
-		if r.BoundBy != "" {
-			text += " (" + r.BoundBy + ")"
-		}
-		byDevice[r.Device] = append(byDevice[r.Device], text)
+		byDevice[r.Device] = append(byDevice[r.Device], r.Band+" "+bothWays(r.Up, r.Down))
 	}
 	var out []string
 	for _, d := range devices {
@@ -168,11 +161,25 @@ func gainWords(runs []rules.Runs) string {
 	return "gain that runs, up/down in dB: " + strings.Join(out, "; ")
 }
 
-func gainOr(v *float64) string {
-	if v == nil {
-		return "?"
+// bothWays is the gain up and down and what binds each: "61.0/55.0 (set/isolation)".
+func bothWays(up, down rules.RunsAt) string {
+	switch {
+	case up.By == "" && down.By == "":
+		return "not assessed"
+	case up.By == down.By:
+		return fmt.Sprintf("%s/%s (%s)", gainOr(up), gainOr(down), up.By)
 	}
-	return unit.Fixed(*v, 1)
+	return fmt.Sprintf("%s/%s (%s/%s)", gainOr(up), gainOr(down), or(up.By, "?"), or(down.By, "?"))
+}
+
+func gainOr(r rules.RunsAt) string {
+	switch {
+	case r.By == "":
+		return "?"
+	case r.Gain == nil:
+		return "off"
+	}
+	return unit.Fixed(*r.Gain, 1)
 }
 
 // findings writes one block for each matter, worst first.

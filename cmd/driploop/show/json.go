@@ -93,11 +93,12 @@ type planJSON struct {
 }
 
 type runJSON struct {
-	Device  string   `json:"device"`
-	Band    string   `json:"band"`
-	Up      *float64 `json:"uplink_db"`
-	Down    *float64 `json:"downlink_db"`
-	BoundBy string   `json:"bound_by"`
+	Device string   `json:"device"`
+	Band   string   `json:"band"`
+	Up     *float64 `json:"uplink_db"`
+	UpBy   string   `json:"uplink_bound_by"`
+	Down   *float64 `json:"downlink_db"`
+	DownBy string   `json:"downlink_bound_by"`
 }
 
 type findingJSON struct {
@@ -177,7 +178,7 @@ func findingsJSON(all []*rules.Finding) []findingJSON {
 func runsJSON(runs []rules.Runs) []runJSON {
 	out := []runJSON{}
 	for _, r := range runs {
-		out = append(out, runJSON{r.Device, r.Band, rounded(r.Up), rounded(r.Down), r.BoundBy})
+		out = append(out, runJSON{r.Device, r.Band, rounded(r.Up.Gain), r.Up.By, rounded(r.Down.Gain), r.Down.By})
 	}
 	return out
 }
