@@ -16,6 +16,8 @@ type Catalog struct {
 	generic map[string]*Part
 	Twice   []Twin // IDs that the workspace defines more than once
 
+	allOnce sync.Once
+	all     []*Part
 	fitOnce sync.Once
 	fits    map[string][]*Part // connectors by cable
 }
@@ -128,16 +130,20 @@ func (c *Catalog) Overridden() []string {
 // Own lists the parts of the workspace by ID.
 func (c *Catalog) Own() []*Part { return byID(c.own) }
 
-// All lists every part that Look can find, by ID.
+// All lists every part that Look can find, by ID. The list is shared: it is not to
+// be changed.
 func (c *Catalog) All() []*Part {
-	both := make(map[string]*Part, len(c.own)+len(c.generic))
-	for id, p := range c.generic {
-		both[id] = p
-	}
-	for id, p := range c.own {
-		both[id] = p
-	}
-	return byID(both)
+	c.allOnce.Do(func() {
+		both := make(map[string]*Part, len(c.own)+len(c.generic))
+		for id, p := range c.generic {
+			both[id] = p
+		}
+		for id, p := range c.own {
+			both[id] = p
+		}
+		c.all = byID(both)
+	})
+	return c.all
 }
 
 // Nearest is the known ID that id was probably meant to be, or "".
