@@ -266,11 +266,7 @@ func (x *BandChain) unassessed(r *Report, what string, lacks []Lack) {
 
 // lacksFigures is unassessed for what no line has a part in.
 func (x *BandChain) lacksFigures(r *Report, what string, lacks []Lack) {
-	f := r.Unknown(partAt(x.Amp), x.Amp.On(), "%s of %s in "+inBands+" is not assessed: it lacks %s", what, x.Amp.ID, lackWords(lacks)).
-		Then("add what is missing").AcrossBands(x.Band.Name)
-	for _, l := range lacks {
-		f.Beside(l.At, "what is missing: %s", l.What)
-	}
+	r.Lacking(partAt(x.Amp), x.Amp.On(), lacks, "%s of %s in "+inBands, what, x.Amp.ID).AcrossBands(x.Band.Name)
 }
 
 // hundredths prints a figure with two decimals at most.
