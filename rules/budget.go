@@ -218,21 +218,6 @@ func (c *Case) limitChecks(x *BandChain, d *Direction) []LimitCheck {
 	return out
 }
 
-// portNoise is the noise that the amplifier puts out in 1 MHz at the gain that
-// runs.
-func (c *Case) portNoise(x *BandChain, d *Direction) Known[float64] {
-	switch {
-	case !d.Runs.OK:
-		return Known[float64]{Lacks: d.Runs.Lacks}
-	case !d.Runs.V.On:
-		return unknown[float64](x.Amp.At, "a gain above 0 dB")
-	case d.Spec == nil || !d.Spec.NF.Set:
-		return unknown[float64](x.Row.At, "nf_db of "+x.Amp.Part.ID+" in "+x.Own.Name)
-	}
-	n, ok := rf.PortNoise(rf.Stage{Gain: d.Runs.V.Gain, NF: unit.DB(d.Spec.NF.V)})
-	return Known[float64]{V: n.Value(), OK: ok}
-}
-
 func (c *Case) check(rule string, q limits.Query, x *BandChain, value Known[float64], tolerance float64, rows []*limits.Row) []LimitCheck {
 	if len(rows) == 0 {
 		return nil
