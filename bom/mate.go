@@ -10,66 +10,163 @@ import (
 
 // joining is one wish of the plan to join two nodes, before both are known.
 type joining struct {
-	from    *Node // a cable end, or nil for a joint
-	a, b    source.Val[Ref]
-	through source.Val[catalog.Words]
-	joint   *JointRow
-	on      string
+	from     *Node // a cable end, or nil for a joint
+	a, b     source.Val[Ref]
+	adapters []Adapter
+	gap      bool // what it passes through did not resolve
+	joint    *JointRow
+	on       string
 }
 
+// bare reports a wish that leaves open which port of a device it means.
+func (w *joining) bare() bool { return w.b.V.Port == "" || w.joint != nil && w.a.V.Port == "" }
+
 // mate ties ends together. References that name a port go first, so that a bare
-// name means one of the ports that are left.
+// name means one of the ports that are left. The bare ones go in rounds: what each
+// of them means is settled before any of them is tied, and those that are still
+// open have another try with what the others left. So nothing depends on the order
+// of the file.
 func (g *Graph) mate() {
-	var wishes []joining
+	var open []joining
+	for _, w := range g.wishes() {
+		switch {
+		case w.gap:
+			g.checkAcross(w)
+		case w.bare():
+			open = append(open, w)
+		default:
+			g.join(w)
+		}
+	}
+	for len(open) > 0 {
+		left := g.round(open)
+		if len(left) == len(open) {
+			break
+		}
+		open = left
+	}
+	for _, w := range open {
+		g.join(w)
+	}
+}
+
+// round ties what is settled among the open wishes, and returns the others.
+func (g *Graph) round(open []joining) (left []joining) {
+	type pair struct {
+		w    joining
+		a, b *Node
+	}
+	var settled []pair
+	for _, w := range open {
+		if a, b, miss := g.meant(w); miss == nil && a != nil && b != nil {
+			settled = append(settled, pair{w, a, b})
+		} else {
+			left = append(left, w)
+		}
+	}
+	for _, p := range settled {
+		g.tie(p.w, p.a, p.b)
+	}
+	return left
+}
+
+// wishes lists what the plan wants joined.
+func (g *Graph) wishes() []joining {
+	var out []joining
 	for _, c := range g.Cables {
 		if c.Row.From.Set {
-			wishes = append(wishes, joining{from: c.Ends[0], b: c.Row.From, on: c.On()})
+			out = append(out, joining{from: c.Ends[0], b: c.Row.From, on: c.On()})
 		}
 		if c.Row.To.Set {
-			wishes = append(wishes, joining{from: c.Ends[1], b: c.Row.To, through: c.Row.Through, on: c.On()})
+			w := joining{from: c.Ends[1], b: c.Row.To, on: c.On()}
+			w.adapters, w.gap = g.adapters(c)
+			out = append(out, w)
 		}
 	}
 	for i := range g.Plan.Joints {
 		j := &g.Plan.Joints[i]
 		if j.A.Set && j.B.Set {
-			wishes = append(wishes, joining{a: j.A, b: j.B, joint: j, on: "joint." + strings.ReplaceAll(j.A.V.String(), ".", "-")})
+			out = append(out, joining{a: j.A, b: j.B, joint: j, on: "joint." + strings.ReplaceAll(j.A.V.String(), ".", "-")})
 		}
 	}
-	for _, bare := range []bool{false, true} {
-		for _, w := range wishes {
-			if bare == (w.b.V.Port == "" || w.joint != nil && w.a.V.Port == "") {
-				g.join(w)
-			}
-		}
+	return out
+}
+
+// checkAcross looks only whether there is what a cable goes to. What it passes
+// through is not known, so nobody can say what meets there, and nothing is tied.
+func (g *Graph) checkAcross(w joining) {
+	known := g.devices[w.b.V.Name] != nil || g.cables[w.b.V.Name] != nil
+	if w.b.V.Port == "" && known {
+		return
+	}
+	if _, miss := g.node(w.b, w.on, nil); miss != nil {
+		miss()
 	}
 }
 
 func (g *Graph) join(w joining) {
-	a, b := w.from, (*Node)(nil)
-	adapters := g.adapters(w)
-	if w.joint != nil {
-		a = g.node(w.a, w.on, nil)
-		if a == nil {
-			return
-		}
+	a, b, miss := g.meant(w)
+	switch {
+	case miss != nil:
+		miss()
+	case a != nil && b != nil:
+		g.tie(w, a, b)
 	}
-	facing := a
-	if len(adapters) > 0 {
-		facing = nil // the adapter's far face decides, see below
+}
+
+// meant finds the two nodes of a wish. Where they cannot be told, miss reports why;
+// a nil node without a miss belongs to a part that has a finding already.
+func (g *Graph) meant(w joining) (a, b *Node, miss func()) {
+	if w.joint == nil {
+		b, miss = g.node(w.b, w.on, w.facing())
+		return w.from, b, miss
 	}
-	if facing == nil {
-		b = g.nodeFor(w.b, w.on, adapters[len(adapters)-1].Out.Connector, adapters[len(adapters)-1].Out.Impedance)
-	} else {
-		b = g.node(w.b, w.on, facing)
+	// The side that can be told by itself picks among the ports of the other.
+	a, missA := g.node(w.a, w.on, nil)
+	b, missB := g.node(w.b, w.on, nil)
+	switch {
+	case a != nil:
+		b, missB = g.node(w.b, w.on, []Half{a.half()})
+	case b != nil:
+		a, missA = g.node(w.a, w.on, []Half{b.half()})
 	}
-	if b == nil {
-		return
+	if missA != nil && missB != nil {
+		return a, b, func() { missA(); missB() }
 	}
+	if missA == nil {
+		missA = missB
+	}
+	return a, b, missA
+}
+
+// facing is what the port at the far end of a cable meets: the end itself, or the
+// last adapter. While nothing says how the end looks, that adapter may be either
+// way round.
+func (w *joining) facing() []Half {
+	if len(w.adapters) == 0 {
+		return []Half{w.from.half()}
+	}
+	last := w.adapters[len(w.adapters)-1]
+	out := []Half{{Face: last.Out.Connector, Ohm: last.Out.Impedance}}
+	if !w.from.Face.Set {
+		out = append(out, Half{Face: last.In.Connector, Ohm: last.In.Impedance})
+	}
+	return out
+}
+
+func (g *Graph) tie(w joining, a, b *Node) {
 	if a == b {
 		g.hole(BadRef, w.b.At, w.on, w.b.V.String()+" is joined to itself", "name another port")
 		return
 	}
-	m := &Mate{A: a, B: b, Adapters: adapters, At: w.b.At, Joint: w.joint}
+	for _, m := range a.Mates {
+		if m.Other(a) == b {
+			g.hole(SharedPort, w.b.At, w.on, fmt.Sprintf("the plan joins %s and %s twice", a.Name(), b.Name()),
+				"a joint of two cables is written in one of the two", m.At)
+			return
+		}
+	}
+	m := &Mate{A: a, B: b, Adapters: w.adapters, At: w.b.At, Joint: w.joint}
 	if w.joint != nil {
 		m.Way = g.way(w.joint.Way, w.on)
 	}
@@ -84,155 +181,167 @@ func (g *Graph) join(w joining) {
 	g.Mates = append(g.Mates, m)
 }
 
-// adapters looks up what a cable passes through at its to end.
-func (g *Graph) adapters(w joining) []Adapter {
-	var out []Adapter
-	for _, id := range w.through.V {
-		p := g.part(id, w.on, "adapter", "attenuator", "dc-block")
-		if p == nil || len(p.Ports) != 2 {
+// adapters looks up what a cable passes through at its to end, each turned the way
+// it meets the end where that is known. gap reports one that did not resolve.
+func (g *Graph) adapters(c *Cable) (out []Adapter, gap bool) {
+	for _, id := range c.Row.Through.V {
+		p := g.part(id, c.On(), "adapter", "attenuator", "dc-block")
+		if p == nil {
+			gap = true
+			continue
+		}
+		if len(p.Ports) != 2 {
+			g.hole(WrongKind, id.At, c.On(), fmt.Sprintf("%s has %d ports; what a cable passes through has two", p.ID, len(p.Ports)),
+				"make it a device with a cable to each port", p.At)
+			gap = true
 			continue
 		}
 		out = append(out, Adapter{Part: p, In: &p.Ports[0], Out: &p.Ports[1], At: id.At})
 	}
-	return out
+	turnFrom(c.Ends[1].Face, out)
+	return out, gap
 }
 
 // turn sets each adapter the way round in which it mates with what comes before
-// it, as the person holding it would.
+// it, as the person holding it would, or, where the end is still open, with what
+// comes behind it.
 func turn(m *Mate) {
-	left := m.A.half()
-	for i := range m.Adapters {
+	if m.A.Face.Set {
+		turnFrom(m.A.Face, m.Adapters)
+		return
+	}
+	right := m.B.Face
+	for i := len(m.Adapters) - 1; i >= 0; i-- {
 		a := &m.Adapters[i]
-		if !joins(left.Face, a.In.Connector) && joins(left.Face, a.Out.Connector) {
+		if !joins(a.Out.Connector, right) && joins(a.In.Connector, right) {
 			a.In, a.Out = a.Out, a.In
 		}
-		left = Half{Face: a.Out.Connector, Ohm: a.Out.Impedance}
+		right = a.In.Connector
 	}
 }
 
-// turnJumpers turns each jumper round that mates only so, as the person holding it
-// would: a made-up cable has no end 1 until it is connected.
-func (g *Graph) turnJumpers() {
-	for _, c := range g.Cables {
-		if c.Part == nil || c.Part.Jumper == nil {
-			continue
+func turnFrom(left source.Val[catalog.Face], adapters []Adapter) {
+	for i := range adapters {
+		a := &adapters[i]
+		if !joins(left, a.In.Connector) && joins(left, a.Out.Connector) {
+			a.In, a.Out = a.Out, a.In
 		}
-		before := c.fitting()
-		c.turn()
-		if c.fitting() <= before {
-			c.turn()
-		}
+		left = a.Out.Connector
 	}
-}
-
-// turn swaps the faces of a jumper's ends and sets the adapters at them anew.
-func (c *Cable) turn() {
-	c.Ends[0].Face, c.Ends[1].Face = c.Ends[1].Face, c.Ends[0].Face
-	for _, e := range c.Ends {
-		for _, m := range e.Mates {
-			turn(m)
-		}
-	}
-}
-
-// fitting counts the ends of a cable that mate with what they go to.
-func (c *Cable) fitting() int {
-	n := 0
-	for _, e := range c.Ends {
-		if joins(e.Face, e.target().Face) {
-			n++
-		}
-	}
-	return n
 }
 
 func joins(a, b source.Val[catalog.Face]) bool {
 	return a.Set && b.Set && catalog.Meet(a.V, b.V, 0, 0).Fit == catalog.Mates
 }
 
-// node finds what a reference means. facing, where it is given, is the end that
-// is to mate, and picks among the free ports of a bare name.
-func (g *Graph) node(r source.Val[Ref], on string, facing *Node) *Node {
-	var face source.Val[catalog.Face]
-	var ohm source.Val[float64]
-	if facing != nil {
-		face, ohm = facing.Face, facing.Ohm
-	}
-	return g.nodeFor(r, on, face, ohm)
-}
-
-func (g *Graph) nodeFor(r source.Val[Ref], on string, face source.Val[catalog.Face], ohm source.Val[float64]) *Node {
+// node finds what a reference of a coaxial line means. facing is what is to mate
+// there, where that is known, and picks among the free ports of a bare name.
+func (g *Graph) node(r source.Val[Ref], on string, facing []Half) (*Node, func()) {
 	if c := g.cables[r.V.Name]; c != nil {
 		return g.endOf(c, r, on)
 	}
 	d := g.devices[r.V.Name]
 	switch {
 	case d == nil:
-		known := append(sortedKeys(g.devices), sortedKeys(g.cables)...)
-		g.hole(BadRef, r.At, on, "the plan has no device or cable "+source.Quote(r.V.Name),
-			didYouMean(source.Nearest(r.V.Name, known), "add it, or correct the name"))
-		return nil
+		return nil, func() {
+			known := append(sortedKeys(g.devices), sortedKeys(g.cables)...)
+			g.hole(BadRef, r.At, on, "the plan has no device or cable "+source.Quote(r.V.Name),
+				didYouMean(source.Nearest(r.V.Name, known), "add it, or correct the name"))
+		}
 	case d.Part == nil:
-		return nil // the part has a finding already, or has no ports that anybody knows
-	case r.V.Port != "":
-		return g.portOf(d, r, on)
+		return nil, nil // the part has a finding already, or has no ports that anybody knows
+	case r.V.Port == "":
+		return g.freePort(d, r, on, facing, (*catalog.Port).RF)
 	}
-	return g.freePort(d, r, on, face, ohm, (*catalog.Port).RF)
+	port, miss := g.portOf(d, r, on)
+	if port != nil && !port.Port.RF() {
+		return nil, func() {
+			g.hole(NoPort, r.At, on, fmt.Sprintf("%s carries %s; a port for radio signals is expected", port.Name(), port.Port.Use.V), radioPorts(d))
+		}
+	}
+	return port, miss
 }
 
-func (g *Graph) endOf(c *Cable, r source.Val[Ref], on string) *Node {
+func radioPorts(d *Device) string {
+	var names []string
+	for _, n := range d.Nodes {
+		if n.Port.RF() {
+			names = append(names, n.Name())
+		}
+	}
+	if len(names) == 0 {
+		return "the part has none"
+	}
+	return "name one of " + strings.Join(names, ", ")
+}
+
+func (g *Graph) endOf(c *Cable, r source.Val[Ref], on string) (*Node, func()) {
 	switch r.V.Port {
 	case "1":
-		return c.Ends[0]
+		return c.Ends[0], nil
 	case "2":
-		return c.Ends[1]
+		return c.Ends[1], nil
 	}
-	g.hole(NoPort, r.At, on, source.Quote(r.V.String())+" names no end of cable "+c.ID, "write "+c.ID+".1 or "+c.ID+".2")
-	return nil
+	return nil, func() {
+		g.hole(NoPort, r.At, on, source.Quote(r.V.String())+" names no end of cable "+c.ID, "write "+c.ID+".1 or "+c.ID+".2")
+	}
 }
 
-func (g *Graph) portOf(d *Device, r source.Val[Ref], on string) *Node {
+func (g *Graph) portOf(d *Device, r source.Val[Ref], on string) (*Node, func()) {
 	if n := d.Node(r.V.Port); n != nil {
-		return n
+		return n, nil
 	}
-	names := d.Part.PortNames()
-	do := "its ports are " + strings.Join(names, ", ")
-	if len(names) == 0 {
-		do = "the part has no ports"
+	return nil, func() {
+		names := d.Part.PortNames()
+		do := "its ports are " + strings.Join(names, ", ")
+		if len(names) == 0 {
+			do = "the part has no ports"
+		}
+		if near := source.Nearest(r.V.Port, names); near != "" {
+			do = "did you mean " + d.ID + "." + near + "?"
+		}
+		g.hole(NoPort, r.At, on, fmt.Sprintf("%s (part %s) has no port %s", d.ID, d.Part.ID, source.Quote(r.V.Port)), do, d.Part.At)
 	}
-	if near := source.Nearest(r.V.Port, names); near != "" {
-		do = "did you mean " + d.ID + "." + near + "?"
-	}
-	g.hole(NoPort, r.At, on, fmt.Sprintf("%s (part %s) has no port %s", d.ID, d.Part.ID, source.Quote(r.V.Port)), do, d.Part.At)
-	return nil
 }
 
-// freePort is the one free port of a device that mates with the face. Where no
-// free port mates, a single free port is taken all the same: what is wrong with
-// it is then said of that port.
-func (g *Graph) freePort(d *Device, r source.Val[Ref], on string, face source.Val[catalog.Face], ohm source.Val[float64], use func(*catalog.Port) bool) *Node {
+// freePort is the one free port of a device that mates with what faces it. Where no
+// free port mates, a single free port is taken all the same: what is wrong with it
+// is then said of that port.
+func (g *Graph) freePort(d *Device, r source.Val[Ref], on string, facing []Half, use func(*catalog.Port) bool) (*Node, func()) {
 	var free, fits []*Node
 	for _, n := range d.Nodes {
 		if !use(n.Port) || len(n.Mates) > 0 || n.Data != nil {
 			continue
 		}
 		free = append(free, n)
-		if face.Set && n.Face.Set && catalog.Meet(face.V, n.Face.V, ohm.V, n.Ohm.V).Fit == catalog.Mates {
+		if n.meetsOne(facing) {
 			fits = append(fits, n)
 		}
 	}
 	switch {
 	case len(fits) == 1:
-		return fits[0]
+		return fits[0], nil
 	case len(free) == 1:
-		return free[0]
+		return free[0], nil
 	case len(free) == 0:
-		g.hole(NoPort, r.At, on, d.ID+" has no free port left for this", "name the port, or free one", d.At)
-	default:
+		return nil, func() {
+			g.hole(NoPort, r.At, on, d.ID+" has no free port left for this", "name the port, or free one", d.At)
+		}
+	}
+	return nil, func() {
 		g.hole(NoPort, r.At, on, fmt.Sprintf("%s alone does not say which port: %s are free", source.Quote(r.V.String()), names(free)),
 			"write one of them", d.At)
 	}
-	return nil
+}
+
+// meetsOne reports whether the node mates with one of several faces.
+func (n *Node) meetsOne(facing []Half) bool {
+	for _, h := range facing {
+		if h.Face.Set && n.Face.Set && catalog.Meet(h.Face.V, n.Face.V, h.Ohm.V, n.Ohm.V).Fit == catalog.Mates {
+			return true
+		}
+	}
+	return false
 }
 
 func names(nodes []*Node) string {
@@ -241,105 +350,4 @@ func names(nodes []*Node) string {
 		out = append(out, n.Name())
 	}
 	return strings.Join(out, ", ")
-}
-
-// dressEnds finds the connector part of every field-cut end that the plan gives
-// as a face, or leaves to the tool.
-func (g *Graph) dressEnds() {
-	for _, c := range g.Cables {
-		if c.Part == nil || c.Part.Cable == nil {
-			continue
-		}
-		for _, e := range c.Ends {
-			if e.Fit == nil && !e.names() {
-				g.dressEnd(c, e)
-			}
-		}
-	}
-}
-
-// names reports an end for which the plan names a connector part. Where that part
-// did not resolve, none is guessed in its place.
-func (n *Node) names() bool {
-	ends := n.Cable.Row.Ends
-	return ends.Set && ends.V[n.End-1].Set && !ends.V[n.End-1].V.Face.Set
-}
-
-func (g *Graph) dressEnd(c *Cable, e *Node) {
-	target := e.target()
-	if !e.Face.Set && !target.Face.Set {
-		return // nothing says what the end must look like; an end that goes nowhere is a finding of its own
-	}
-	var could []*catalog.Part
-	for _, p := range g.Catalog.Connectors(c.Part.ID) {
-		f := p.Connector.Face
-		if !f.Set {
-			continue
-		}
-		if e.Face.Set && sameFace(f.V, e.Face.V) || !e.Face.Set && catalog.Meet(f.V, target.Face.V, p.Connector.Impedance.V, target.Ohm.V).Fit == catalog.Mates {
-			could = append(could, p)
-		}
-	}
-	switch {
-	case len(could) == 0:
-		g.lackConnector(c, e, target)
-	case len(could) > 1:
-		for _, p := range could {
-			e.Could = append(e.Could, p.ID)
-		}
-		if !c.Row.Existing.V {
-			g.hole(OpenChoice, e.writtenAt(), c.On(), fmt.Sprintf("end %d can be made with %s", e.End, strings.Join(e.Could, " or ")),
-				"name one of them in ends")
-		}
-		fallthrough
-	default:
-		if !e.Face.Set {
-			e.Face, e.Ohm = could[0].Connector.Face, could[0].Connector.Impedance
-		}
-		if len(could) == 1 {
-			e.Fit = could[0]
-		}
-	}
-}
-
-func (g *Graph) lackConnector(c *Cable, e *Node, target Half) {
-	if c.Row.Existing.V {
-		return
-	}
-	want := "a face that mates with " + target.Name
-	if e.Face.Set {
-		want = e.Face.V.Written
-	}
-	g.hole(NoConnector, e.writtenAt(), c.On(), fmt.Sprintf("no connector part fits %s and has %s", c.Part.ID, want),
-		"add one to the catalog, or use a cable or face that has one", c.Part.At)
-}
-
-// target is what the end is to mate with: the near face of the first adapter, or
-// the node itself.
-func (n *Node) target() Half {
-	if len(n.Mates) == 0 {
-		return Half{}
-	}
-	m := n.Mates[0]
-	cs := m.Contacts()
-	if m.A == n {
-		return cs[0].B
-	}
-	return cs[len(cs)-1].A
-}
-
-// writtenAt is where the plan says what the end looks like, else where it goes,
-// else the cable.
-func (n *Node) writtenAt() source.Place {
-	switch {
-	case n.Cable.Row.Ends.Set && n.Cable.Row.Ends.V[n.End-1].Set:
-		return n.Cable.Row.Ends.V[n.End-1].At
-	case len(n.Mates) > 0:
-		return n.Mates[0].At
-	}
-	return n.Cable.At
-}
-
-func sameFace(a, b catalog.Face) bool {
-	return a.Series == b.Series && a.Shell == b.Shell && a.Contact == b.Contact
 }

@@ -285,3 +285,20 @@ func ownCatalog(t *testing.T, text string) *catalog.Catalog {
 	list, _ := catalog.ReadParts(d)
 	return catalog.New(list)
 }
+
+// lines writes the keys of a table in braces one to a line.
+func lines(keys string) string {
+	depth := 0
+	out := []rune(keys)
+	for i, c := range out {
+		switch {
+		case c == '[':
+			depth++
+		case c == ']':
+			depth--
+		case c == ',' && depth == 0:
+			out[i] = '\n'
+		}
+	}
+	return string(out) + "\n"
+}

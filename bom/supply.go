@@ -41,14 +41,21 @@ func (g *Graph) plug(r source.Val[Ref], on, use string) *Node {
 	case d.Part == nil:
 		return nil
 	case r.V.Port != "":
-		n := g.portOf(d, r, on)
+		n, miss := g.portOf(d, r, on)
+		if miss != nil {
+			miss()
+		}
 		if n != nil && n.Port.Use.Or("cellular") != use {
 			g.hole(NoPort, r.At, on, fmt.Sprintf("%s carries %s; a %s port is expected", n.Name(), n.Port.Use.Or("cellular"), use), "name a "+use+" port")
 			return nil
 		}
 		return n
 	}
-	return g.freePort(d, r, on, source.Val[catalog.Face]{}, source.Val[float64]{}, func(p *catalog.Port) bool { return p.Use.V == use })
+	n, miss := g.freePort(d, r, on, nil, func(p *catalog.Port) bool { return p.Use.V == use })
+	if miss != nil {
+		miss()
+	}
+	return n
 }
 
 // occupy marks a data port as taken by a line.
@@ -142,13 +149,17 @@ func (g *Graph) readingRef(r source.Val[Ref], on string) {
 	}
 	if d := g.devices[r.V.Name]; d != nil {
 		if r.V.Port != "" && d.Part != nil {
-			g.portOf(d, r, on)
+			if _, miss := g.portOf(d, r, on); miss != nil {
+				miss()
+			}
 		}
 		return
 	}
 	if c := g.cables[r.V.Name]; c != nil {
 		if r.V.Port != "" {
-			g.endOf(c, r, on)
+			if _, miss := g.endOf(c, r, on); miss != nil {
+				miss()
+			}
 		}
 		return
 	}
