@@ -2,6 +2,7 @@ package source
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 )
 
@@ -179,14 +180,22 @@ func Rows[R any](k *Keys, to *[]R, name string, bind func(*R, *Keys), doc string
 		k.wrongShape(n, "rows, written [["+name+"]]")
 		return
 	}
+	*to = slices.Grow(*to, len(n.Value.Items))
 	for _, item := range n.Value.Items {
 		if !k.isTable(name, item) {
 			continue
 		}
-		row := new(R)
+		row := extend(to)
 		bindTable(k, "", item.At, item, func(s *Keys) { bind(row, s) })
-		*to = append(*to, *row)
 	}
+}
+
+// extend adds an empty record to a list; records are too large to be copied for
+// nothing.
+func extend[R any](to *[]R) *R {
+	var empty R
+	*to = append(*to, empty)
+	return &(*to)[len(*to)-1]
 }
 
 // Named reads a table of tables whose keys are IDs, in document order. Two IDs
@@ -196,14 +205,14 @@ func Named[R any](k *Keys, to *[]R, name string, bind func(*R, *Keys), doc strin
 	if n == nil || !k.isTable(name, n.Value) {
 		return
 	}
-	seen := map[string]Place{}
+	*to = slices.Grow(*to, len(n.Value.Keys))
+	seen := make(map[string]Place, len(n.Value.Keys))
 	for _, e := range n.Value.Keys {
 		if !k.idStands(e, seen) || !k.isTable(e.Name, e.Value) {
 			continue
 		}
-		row := new(R)
+		row := extend(to)
 		bindTable(k, e.Name, e.At, e.Value, func(s *Keys) { bind(row, s) })
-		*to = append(*to, *row)
 	}
 }
 
