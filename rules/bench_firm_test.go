@@ -50,8 +50,8 @@ func newBenchJob(n int) benchJob {
 	j := benchJob{
 		N: n, Make: n % benchMakes, Jumpers: r.IntN(benchMakes),
 		Feed: 8 + float64(r.IntN(60))/10, Gear: 2 + float64(r.IntN(30))/10,
-		Aim: r.IntN(360), Floor: 4 + float64(r.IntN(60))/10,
-		RSRP: -112 + r.IntN(8), Shell: 12 + r.IntN(10), Isolation: 90 + r.IntN(6),
+		Aim: r.IntN(360), Floor: 4 + float64(r.IntN(40))/10,
+		RSRP: -104 + r.IntN(8), Shell: 12 + r.IntN(10), Isolation: 90 + r.IntN(6),
 		Consent: "granted", Line: "line", Inner: "gear",
 	}
 	j.Bearing = (j.Aim + r.IntN(12)) % 360
@@ -74,13 +74,13 @@ func newBenchJob(n int) benchJob {
 	return j
 }
 
-var benchPlan = template.Must(template.New("plan").Parse(`# Shop and store are brick, steel lintels over both windows. Entry is beside the flue.
+var benchPlan = template.Must(template.New("plan").Parse(`# House and store are brick, steel lintels over both windows. Entry is beside the flue.
 
 [job]
-title      = "Shop and store {{.N}}, ground floor"
+title      = "House and store {{.N}}, ground floor"
 stage      = "review"
 install_on = 2026-12-15
-use        = "business"
+use        = "personal"
 crew       = "north"
 bands      = ["B12", "B13", "B5", "B4", "B2"]
 
@@ -192,8 +192,8 @@ bearing_deg = {{.Bearing}}
 name            = "room {{.N}}"
 served_by       = ["dome-{{.N}}"]
 distance        = "{{.Distant}} m"
-walls           = ["plasterboard 12.5 mm", { name = "steel shelf", loss_db = 6 }]
-target_rsrp_dbm = -95
+walls           = ["plasterboard 12.5 mm", { name = "wood shelf", loss_db = 3 }]
+target_rsrp_dbm = -105
 before          = [{ operator = "northbank", band = "B12", rsrp_dbm = -114 }, { operator = "harbourcell", band = "B5", rsrp_dbm = -116 }]
 {{end}}[[reading]]
 what     = "isolation"
@@ -448,7 +448,7 @@ func benchPlanText(n int) string {
 
 func writeBenchMake(b *bytes.Buffer, n int) {
 	err := benchMake.Execute(b, map[string]any{
-		"N": n, "Db": 6 + float64(n%20)/10, "Ways": []int{2, 3},
+		"N": n, "Db": 8 + float64(n%20)/10, "Ways": []int{2, 3},
 		"Bands": []string{"B12", "B13", "B5", "B4", "B2"},
 		"Faces": []benchFace{{"NM", "N male"}, {"NF", "N female"}, {"TM", "TNC male"}},
 	})
