@@ -1,6 +1,10 @@
 package bom
 
-import "driploop/catalog"
+import (
+	"slices"
+
+	"driploop/catalog"
+)
 
 // BondPath is a way over bonds from a device to where it ends.
 type BondPath struct {
@@ -12,28 +16,34 @@ type BondPath struct {
 // each other with metal contact stated as a bond, from a device to an electrode;
 // false where there is none.
 func (g *Graph) PathToElectrode(d *Device) (BondPath, bool) {
-	type reach struct {
-		at   *Device
-		path []*Bond
-	}
-	seen := map[*Device]bool{d: true}
-	queue := []reach{{at: d}}
+	came := map[*Device]*Bond{d: nil} // the bond over which a device was first reached
+	queue := []*Device{d}
 	for len(queue) > 0 {
-		r := queue[0]
+		at := queue[0]
 		queue = queue[1:]
-		if r.at.Kind() == "electrode" {
-			return BondPath{r.path, r.at}, true
+		if at.Kind() == "electrode" {
+			return BondPath{wayBack(came, at), at}, true
 		}
-		for _, b := range g.Bonds {
-			next := b.Other(r.at)
-			if next == nil || seen[next] {
-				continue
+		for _, b := range g.bonds[at] {
+			next := b.Other(at)
+			if _, seen := came[next]; !seen {
+				came[next] = b
+				queue = append(queue, next)
 			}
-			seen[next] = true
-			queue = append(queue, reach{next, append(append([]*Bond(nil), r.path...), b)})
 		}
 	}
 	return BondPath{}, false
+}
+
+// wayBack lists the bonds from where a search began to a device that it reached.
+func wayBack(came map[*Device]*Bond, at *Device) []*Bond {
+	var path []*Bond
+	for b := came[at]; b != nil; b = came[at] {
+		path = append(path, b)
+		at = b.Other(at)
+	}
+	slices.Reverse(path)
+	return path
 }
 
 // Other is the device at the far side of d, or nil where the bond does not touch
@@ -48,16 +58,8 @@ func (b *Bond) Other(d *Device) *Device {
 	return nil
 }
 
-// BondsAt lists the bonds of a device.
-func (g *Graph) BondsAt(d *Device) []*Bond {
-	var out []*Bond
-	for _, b := range g.Bonds {
-		if b.Other(d) != nil {
-			out = append(out, b)
-		}
-	}
-	return out
-}
+// BondsAt lists the bonds of a device that lead somewhere.
+func (g *Graph) BondsAt(d *Device) []*Bond { return g.bonds[d] }
 
 // Conductor is the bond's conductor data, or nil for a direct contact and for a
 // part that did not resolve.

@@ -22,6 +22,7 @@ type Graph struct {
 	devices map[string]*Device
 	cables  map[string]*Cable
 	places  map[string]*Place
+	bonds   map[*Device][]*Bond // those that lead somewhere, by either end
 	lines   *Lines
 }
 

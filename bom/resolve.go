@@ -14,7 +14,7 @@ import (
 func Resolve(p *Plan, c *catalog.Catalog) *Graph {
 	g := &Graph{
 		Plan: p, Catalog: c,
-		devices: map[string]*Device{}, cables: map[string]*Cable{}, places: map[string]*Place{},
+		devices: map[string]*Device{}, cables: map[string]*Cable{}, places: map[string]*Place{}, bonds: map[*Device][]*Bond{},
 	}
 	for i := range p.Places {
 		g.places[p.Places[i].ID] = &p.Places[i]

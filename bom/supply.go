@@ -11,11 +11,9 @@ import (
 func (g *Graph) addSupply() {
 	for i := range g.Plan.Data {
 		row := &g.Plan.Data[i]
-		d := &DataLine{Row: row, Part: g.part(row.Part, "data."+row.ID, "data-cable"), Way: g.way(row.Way, "data."+row.ID)}
-		d.From = g.occupy(g.plug(row.From, d.On(), "data"), d, row.From.At)
-		d.To = g.occupy(g.plug(row.To, d.On(), "data"), d, row.To.At)
-		g.Data = append(g.Data, d)
+		g.Data = append(g.Data, &DataLine{Row: row, Part: g.part(row.Part, "data."+row.ID, "data-cable"), Way: g.way(row.Way, "data."+row.ID)})
 	}
+	g.plugData()
 	for i := range g.Plan.Wires {
 		row := &g.Plan.Wires[i]
 		w := &WireLine{Row: row, Part: g.part(row.Part, "wire."+row.ID, "wire"), Way: g.way(row.Way, "wire."+row.ID)}
@@ -23,6 +21,34 @@ func (g *Graph) addSupply() {
 		w.From = g.plug(row.From, w.On(), "power")
 		w.To = g.plug(row.To, w.On(), "power")
 		g.Wires = append(g.Wires, w)
+	}
+}
+
+// plugData plugs the ends of data lines in: those that name a port first, then the
+// bare names, all of which mean what the first left free.
+func (g *Graph) plugData() {
+	type end struct {
+		line *DataLine
+		to   **Node
+		ref  source.Val[Ref]
+	}
+	var named, bare []end
+	for _, d := range g.Data {
+		for _, e := range []end{{d, &d.From, d.Row.From}, {d, &d.To, d.Row.To}} {
+			if e.ref.V.Port != "" {
+				named = append(named, e)
+			} else {
+				bare = append(bare, e)
+			}
+		}
+	}
+	for _, ends := range [][]end{named, bare} {
+		for _, e := range ends {
+			*e.to = g.plug(e.ref, e.line.On(), "data")
+		}
+		for _, e := range ends {
+			g.occupy(*e.to, e.line, e.ref.At)
+		}
 	}
 }
 
@@ -59,16 +85,14 @@ func (g *Graph) plug(r source.Val[Ref], on, use string) *Node {
 }
 
 // occupy marks a data port as taken by a line.
-func (g *Graph) occupy(n *Node, d *DataLine, at source.Place) *Node {
-	if n == nil {
-		return nil
-	}
-	if n.Data != nil {
+func (g *Graph) occupy(n *Node, d *DataLine, at source.Place) {
+	switch {
+	case n == nil:
+	case n.Data != nil:
 		g.hole(SharedPort, at, d.On(), n.Name()+" already takes the line "+n.Data.Row.ID, "a port takes one line", n.Data.Row.At)
-	} else {
+	default:
 		n.Data = d
 	}
-	return n
 }
 
 // addBonds resolves the bonding conductors.
@@ -78,7 +102,15 @@ func (g *Graph) addBonds() {
 		b := &Bond{Row: row, Part: g.part(row.Part, "bond."+row.ID, "bond-conductor")}
 		b.From = g.bonded(row.From, b.On())
 		b.To = g.bonded(row.To, b.On())
+		if b.From != nil && b.From == b.To {
+			g.hole(BadRef, row.To.At, b.On(), b.From.ID+" is bonded to itself", "name another device")
+			b.To = nil
+		}
 		g.Bonds = append(g.Bonds, b)
+		if b.From != nil && b.To != nil {
+			g.bonds[b.From] = append(g.bonds[b.From], b)
+			g.bonds[b.To] = append(g.bonds[b.To], b)
+		}
 	}
 }
 
