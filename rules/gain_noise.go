@@ -55,7 +55,7 @@ func checkPortNoise(c *Case, r *Report, x *BandChain, d *Direction) {
 func (c *Case) portNoise(x *BandChain, d *Direction) Known[float64] {
 	lacks := slices.Clone(d.Runs.Lacks)
 	if d.Spec == nil || !d.Spec.NF.Set {
-		lacks = append(lacks, Lack{"nf_db of " + x.Amp.Part.ID, x.Row.At})
+		lacks = append(lacks, x.noNF())
 	}
 	if !d.Runs.OK || d.off() || len(lacks) > 0 {
 		return Known[float64]{Lacks: lacks}

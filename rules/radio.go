@@ -5,6 +5,7 @@ import (
 	"driploop/catalog"
 	"driploop/catalog/unit"
 	"driploop/rules/limits"
+	"driploop/rules/rf"
 )
 
 // RadioChain is one router in one planned band.
@@ -46,12 +47,14 @@ func (c *Case) radioChain(d *bom.Device, b catalog.Band) *RadioChain {
 }
 
 // radioAntenna is what one antenna of a router radiates. The transmit power is the
-// total over the ports; it may all stand on one of them.
+// total over the ports: what each of them sends adds up to it, so the antenna with
+// the highest gain behind all of it is the most that the router can radiate, and
+// with equal antennas just what it does.
 func (c *Case) radioAntenna(l *bom.Line, d *bom.Device, b catalog.Band) Antenna {
 	spec := &catalog.Gain{MaxOut: d.Part.Router.TxDBm}
 	a := c.radiates(l, b.Uplink, spec, d.Part.At)
 	if !spec.MaxOut.Set {
-		a.Lacks = []Lack{{"tx_dbm of " + d.Part.ID, d.Part.At}}
+		a.Lacks = []Lack{(&RadioChain{Router: d}).noPower()}
 	}
 	return a
 }
@@ -67,44 +70,60 @@ func (x *RadioChain) query() limits.Query {
 	return limits.Query{Kind: "eirp", Direction: "uplink", Class: limits.Radio, Band: x.Band.Name}
 }
 
-// radioBudget lays a router's uplink open.
-func (c *Case) radioBudget(x *RadioChain) *BudgetBand {
-	f := x.Band.Uplink.Mid()
-	out := &BudgetBand{Device: x.Router, Band: x.Band.Name, Direction: "uplink", MHz: f, Worst: x.strongest()}
-	for _, l := range x.Feeds {
-		out.Lines = append(out.Lines, BudgetLine{l, c.Sum(l, f)})
+// assess asks the profile for the limits of a router in its band: for the composite
+// figure, and for whatever else rows are counted in. Where the profile has none at
+// all there is no answer.
+func (c *Case) assessRadio(x *RadioChain) []limits.Assessment {
+	var out []limits.Assessment
+	for _, q := range eachPer(c.Profile, x.query()) {
+		if a := c.Profile.Assess(q, limits.For(x.Band.Name)); !a.None() {
+			out = append(out, a)
+		}
 	}
-	if s := out.Worst; s != nil {
-		out.EIRP = known(s.Mid.EIRP.Most)
-	}
-	if c.Profile == nil {
-		return out
-	}
-	q := x.query()
-	a := c.Profile.Assess(q, limits.For(x.Band.Name))
-	if a.None() {
-		return out
-	}
-	l := LimitCheck{Rule: "gain/radio-eirp", Outcome: "unknown"}
-	if a.Row != nil {
-		l.Limit, l.Unit, l.Formula, l.Basis = known(a.Value), a.Row.Unit(), a.Row.Formula(), c.citation(a.Row)
-	}
-	if out.Worst != nil {
-		l.Value, l.Tolerance = known(out.Worst.Worst.EIRP.Most.Value()), c.eirpTolerance(out.Worst)
-	}
-	switch {
-	case !l.Value.OK || a.Row == nil:
-	case a.Exceeded(l.Value.V):
-		l.Outcome = "fails"
-	case !a.Whole():
-	case a.Exceeded(l.Value.V + l.Tolerance):
-		l.Outcome = "at-worst"
-	default:
-		l.Outcome = "holds"
-	}
-	out.Limits = append(out.Limits, l)
 	return out
 }
 
-// dBi net of the line's least loss, as grants of modules count antenna gain.
+// rowsLack names what keeps rows from being assessed, and spectrum for which there
+// is none.
+func (x *RadioChain) rowsLack(c *Case, a limits.Assessment) []Lack {
+	var lacks []Lack
+	for _, o := range a.Open {
+		for _, m := range o.Missing {
+			lacks = append(lacks, Lack{m, partAt(x.Router)})
+		}
+	}
+	if len(a.Left) > 0 {
+		lacks = append(lacks, Lack{"a row of profile " + c.Profile.ID + " for " + spans(a.Left), placeOr(c.Plan.Job.Profile.At, partAt(x.Router))})
+	}
+	return dedupe(lacks)
+}
+
+// ownRadiation is what a router radiates from its own antenna, at the edge or middle
+// of its band where that is most.
+func (x *RadioChain) ownRadiation() (Radiation, []Lack) {
+	part := x.Router.Part
+	if !part.Router.TxDBm.Set {
+		return Radiation{}, []Lack{x.noPower()}
+	}
+	var worst Radiation
+	for _, f := range points(x.Band.Uplink) {
+		rng := part.Antenna.RangeAt("", f)
+		if rng == nil || !rng.Gain.Set {
+			return Radiation{}, []Lack{{"a gain of " + x.Router.ID + " all over the band", x.Router.At}}
+		}
+		r := Radiation{MHz: f, Out: unit.DBmOf(part.Router.TxDBm.V), Gain: unit.DB(rng.Gain.V)}
+		var ok bool
+		if r.EIRP, ok = rf.EIRP(r.Out, rf.Loss{}, r.Gain); ok && (worst.MHz == 0 || worst.EIRP.Most.Below(r.EIRP.Most)) {
+			worst = r
+		}
+	}
+	return worst, nil
+}
+
+// noPower is what is missing where a router's part does not state its power.
+func (x *RadioChain) noPower() Lack {
+	return Lack{"tx_dbm of " + x.Router.Part.ID, x.Router.Part.At}
+}
+
+// netGain is an antenna in dBi net of the line's least loss, as grants of modules count antenna gain.
 func netGain(r Radiation) unit.DB { return r.Gain - r.Line.Loss.Least }

@@ -64,8 +64,8 @@ func tightest(b *rules.Budget) string {
 			if l.Outcome == "unknown" {
 				open++
 			}
-			if !ok {
-				continue
+			if !ok || l.Outcome == "advice" {
+				continue // what the amplifier keeps by itself is not the tightest
 			}
 			if best == nil {
 				best, band = l, x
@@ -247,6 +247,8 @@ func outcomeWords(o string) string {
 		return "within tolerance only"
 	case "unknown":
 		return "not assessed"
+	case "advice":
+		return "network protection keeps it"
 	}
 	return "holds"
 }
