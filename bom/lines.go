@@ -97,17 +97,24 @@ func (g *Graph) Lines() *Lines {
 }
 
 func (g *Graph) walk() *Lines {
-	w := &walker{lines: &Lines{Whole: true}, seen: map[*Node]bool{}, reached: map[*Node]bool{}}
+	w := &walker{lines: &Lines{Whole: true}, seen: map[*Node]bool{}, reached: map[*Node]bool{}, walked: map[*Node]bool{}}
 	for _, d := range g.Devices {
 		if d.Active() {
-			w.from(d)
+			w.from(d.Nodes)
 		}
 	}
+	var left []*Node
 	for _, d := range g.Devices {
-		if d.Kind() == "antenna" {
-			w.from(d)
+		if d.Kind() != "antenna" {
+			continue
+		}
+		for _, n := range d.Nodes {
+			if !w.reached[n] {
+				left = append(left, n)
+			}
 		}
 	}
+	w.from(left)
 	return w.lines
 }
 
@@ -118,6 +125,7 @@ type walker struct {
 	lines   *Lines
 	seen    map[*Node]bool // nodes on the way at hand
 	reached map[*Node]bool // antenna ports that some line has reached
+	walked  map[*Node]bool // ports from which every way has been followed
 	start   *Node
 	steps   []Step
 	taken   int // steps in all, those of the lines found included
@@ -132,14 +140,15 @@ func (w *walker) spent(steps int) bool {
 	return !w.lines.Whole
 }
 
-func (w *walker) from(d *Device) {
-	for _, n := range d.Nodes {
-		if !n.Port.RF() || w.reached[n] || len(n.Mates) == 0 {
+func (w *walker) from(ports []*Node) {
+	for _, n := range ports {
+		if !n.Port.RF() || len(n.Mates) == 0 {
 			continue
 		}
 		w.start, w.steps = n, nil
 		w.lead(n)
 		w.leave(n)
+		w.walked[n] = true
 	}
 }
 
@@ -255,8 +264,12 @@ func (d *Device) onward(p *catalog.Port) []*Node {
 	return out
 }
 
-// end closes the way at hand at its last node.
+// end closes the way at hand at its last node. A way between two ports from which
+// ways are followed is met from both of them, and kept once.
 func (w *walker) end(n *Node, open bool) {
+	if w.walked[n] {
+		return
+	}
 	if len(w.lines.All) >= most {
 		w.lines.Whole = false
 	}
@@ -268,9 +281,6 @@ func (w *walker) end(n *Node, open bool) {
 		w.reached[n] = true
 	}
 	line.Kind = kindOf(line)
-	if line.Kind == Link && !w.first(line) {
-		return
-	}
 	if line.turned() {
 		line.reverse()
 	}
@@ -291,43 +301,6 @@ func kindOf(l *Line) LineKind {
 		return Feed
 	}
 	return Stub
-}
-
-// first reports whether a link is met for the first time; every link is found from
-// both of its ends, and two links may join the same two ports.
-func (w *walker) first(l *Line) bool {
-	for _, x := range w.lines.All {
-		if x.Kind == Link && (sameWay(x.Steps, l.Steps, false) || sameWay(x.Steps, l.Steps, true)) {
-			return false
-		}
-	}
-	return true
-}
-
-// sameWay reports whether two lists of steps are one way, the second of them
-// forward or back.
-func sameWay(a, b []Step, back bool) bool {
-	if len(a) != len(b) {
-		return false
-	}
-	for i := range a {
-		o := b[i]
-		if back {
-			o = b[len(b)-1-i].back()
-		}
-		if !a[i].same(o) {
-			return false
-		}
-	}
-	return true
-}
-
-// same reports whether two steps are over the same thing in the same direction.
-func (s Step) same(o Step) bool {
-	if s.Pass != nil && o.Pass != nil {
-		return s.Pass.Device == o.Pass.Device && s.Pass.Part == o.Pass.Part && s.Pass.In == o.Pass.In && s.Pass.Out == o.Pass.Out
-	}
-	return s.Pass == nil && o.Pass == nil && s.Cable == o.Cable && s.Lead == o.Lead && s.Mate == o.Mate && s.Reverse == o.Reverse
 }
 
 // turned reports a line that was found against its direction: a feed from the
