@@ -2,9 +2,10 @@ package rules
 
 import (
 	"fmt"
+	"slices"
+	"strings"
 
 	"driploop/bom"
-	"driploop/catalog"
 	"driploop/catalog/unit"
 	"driploop/rules/limits"
 	"driploop/rules/rf"
@@ -18,7 +19,7 @@ var exposureDensity = &Rule{
 	Name:    "exposure/density",
 	Title:   "At the nearest person the power density of each antenna is inside the reference level",
 	Why:     "people stand closer to an antenna than anybody planned",
-	Basis:   []Basis{{Document: "reference levels of the profile; S = EIRP/(4πR²), FCC OET Bulletin 65, section 2", Edition: "97-01", Kind: "standard", Proof: "memory"}},
+	Basis:   []Basis{{Document: "reference levels of the profile; S = EIRP/(4πR²), FCC OET Bulletin 65, section 2", Edition: "97-01", Kind: "standard", Proof: "memory"}, practice("rated output and least loss; the shares of all bands of one antenna add up")},
 	Caution: mindFields,
 	Weight:  Hold,
 	Lighter: "a punch where only the reflection from a roof (power × 2.56) carries it over",
@@ -30,118 +31,84 @@ var exposureDensity = &Rule{
 	},
 }
 
-// emitter is one antenna with what it radiates in each band.
-type emitter struct {
-	node  *bom.Node
-	parts []emission
-	lacks []Lack
-}
-
-// emission is what an antenna radiates in one band at its worst edge.
-type emission struct {
-	band string
-	rad  Radiation
-}
-
-// emitters lists the antennas that amplifiers and routers transmit from.
-func (c *Case) emitters() []*emitter {
-	byNode := map[*bom.Node]*emitter{}
-	var out []*emitter
-	add := func(band catalog.Band, a *Antenna) {
-		if !reaches(a.Line, band) {
-			return // band/antenna says so
-		}
-		e := byNode[a.Node]
-		if e == nil {
-			e = &emitter{node: a.Node}
-			byNode[a.Node] = e
-			out = append(out, e)
-		}
-		if len(a.Lacks) > 0 {
-			e.lacks = append(e.lacks, a.Lacks...)
-			return
-		}
-		if a.Worst.MHz > 0 {
-			e.parts = append(e.parts, emission{band.Name, a.Worst})
-		}
-	}
-	for _, x := range c.Chain().Bands {
-		for _, d := range x.directions() {
-			for i := range d.Antennas {
-				add(x.Band, &d.Antennas[i])
-			}
-		}
-	}
-	for _, x := range c.Chain().Radios {
-		for i := range x.Antennas {
-			add(x.Band, &x.Antennas[i])
-		}
-	}
-	return out
-}
-
 func checkDensity(c *Case, r *Report, e *emitter) {
-	d, at := e.node.Device, partAt(e.node.Device)
+	d, at, on := e.device, partAt(e.device), e.device.On()
 	level, lacks := c.referenceLevel()
-	switch {
-	case len(e.parts) == 0 && len(e.lacks) == 0:
-		return
-	case !d.Row.People.Set:
-		lacks = append(lacks, Lack{"people of " + d.ID + ", the nearest that a person stays", d.At})
-	case !d.Part.Antenna.SizeMM.Set:
-		lacks = append(lacks, Lack{"size_mm of " + d.Part.ID + ", which tells where its far field begins", d.Part.At})
-	}
-	lacks = append(lacks, e.lacks...)
-	var free, reflected float64
-	if len(lacks) == 0 {
-		free, reflected, lacks = shares(e, level)
-	}
-	if len(lacks) > 0 {
-		r.Lacking(at, e.node.On(), lacks, "the power density at %s", e.node.Name())
+	if lacks = slices.Concat(lacks, needPeople(d), needSize(d)); len(lacks) > 0 {
+		r.Lacking(at, on, append(lacks, e.lacks...), "the power density at %s", d.ID)
 		return
 	}
-	metres := d.Row.People.V
+	s := e.shares(level)
 	basis := limits.Origin(level.Clause.V, level.Edition.Or(c.Profile.Edition.V), level.Proof.V)
-	says := fmt.Sprintf("%s at %s from people comes to %s %% of the reference level over %s", d.ID, metres, unit.Fixed(100*free, 0), count(len(e.parts), "band", "bands"))
-	switch {
-	case rf.Exceeds(free, 1):
-		r.Fails(at, e.node.On(), "%s", says).Then("keep people further away, or take less gain or power").Over("share", free, "limit", 1).By(basis).Beside(d.Row.People.At, "the distance of people")
-	case d.Place.Outdoors() && rf.Exceeds(reflected, 1):
-		r.Fails(at, e.node.On(), "%s, and to %s %% with the reflection from a roof (× 2.56)", says, unit.Fixed(100*reflected, 0)).Lighter(Punch).
-			Then("keep people further away, or mark the place").Over("share", reflected, "limit", 1).By(basis).Beside(d.Row.People.At, "the distance of people")
+	says := fmt.Sprintf("%s at %s from people comes to %s %% of the reference level (%s)", d.ID, d.Row.People.V, unit.Fixed(s.total, 2), strings.Join(s.each, " + "))
+	lacks = slices.Concat(e.lacks, s.lacks)
+	reflected := s.total * rf.GroundReflection
+	if rf.Exceeds(reflected, 100) && d.Place == nil {
+		lacks = append(lacks, Lack{"the place of " + d.ID, d.At})
 	}
+	switch {
+	case rf.Exceeds(s.total, 100):
+		r.Fails(d.Row.People.At, on, "%s", says).Then("keep people further away, or take less gain or power").
+			Over("share_percent", s.total, "limit_percent", 100).By(basis).Beside(at, "the antenna")
+	case len(lacks) > 0:
+		r.Lacking(at, on, dedupe(lacks), "the power density at %s", d.ID)
+	case d.Place.Outdoors() && rf.Exceeds(reflected, 100):
+		r.Fails(d.Row.People.At, on, "%s, and to %s %% with the reflection from a roof (× 2.56)", says, unit.Fixed(reflected, 2)).Lighter(Punch).
+			Then("keep people further away, or mark the place").Over("share_percent", reflected, "limit_percent", 100).By(basis).Beside(at, "the antenna")
+	}
+}
+
+// needSize is what is missing where the part does not say how large the antenna is.
+func needSize(d *bom.Device) []Lack {
+	if d.Part.Antenna.SizeMM.Set {
+		return nil
+	}
+	return []Lack{{"size_mm of " + d.Part.ID + ", which tells where its far field begins", d.Part.At}}
 }
 
 // referenceLevel is the profile's level for the general public.
 func (c *Case) referenceLevel() (*limits.Level, []Lack) {
 	if c.Profile == nil {
-		return nil, []Lack{{"a limit profile", c.JobAt()}}
+		return nil, []Lack{c.lackProfile()}
 	}
 	if l := c.Profile.Level("general"); l != nil {
 		return l, nil
 	}
-	return nil, []Lack{{"a reference level of profile " + c.Profile.ID, c.Plan.Job.Profile.At}}
+	return nil, []Lack{{"a reference level of profile " + c.Profile.ID, placeOr(c.Plan.Job.Profile.At, c.JobAt())}}
 }
 
-// shares adds up the shares of the reference level that each band takes, in free
-// space and with a reflection.
-func shares(e *emitter, level *limits.Level) (free, reflected float64, lacks []Lack) {
-	d := e.node.Device
+// density is what the known bands of an antenna come to, in per cent of the level.
+type density struct {
+	total float64
+	each  []string
+	lacks []Lack
+}
+
+// shares adds up what each band takes of the reference level in free space.
+func (e *emitter) shares(level *limits.Level) density {
+	d := e.device
 	metres, side := d.Row.People.V.Metres(), d.Part.Antenna.SizeMM.V/1000
+	var s density
+	begins := 0.0
 	for _, p := range e.parts {
 		far, ok := rf.FarFieldFrom(p.rad.MHz, side)
-		limit, known := level.DensityAt(p.rad.MHz)
-		if !ok || !known {
-			return 0, 0, []Lack{{"a reference level at " + p.rad.MHz.String(), d.At}}
+		limit, stated := level.DensityAt(p.rad.MHz)
+		if !ok || !stated {
+			s.lacks = append(s.lacks, Lack{"a reference level at " + p.rad.MHz.String(), d.At})
+			continue
 		}
-		s, ok := rf.PowerDensity(p.rad.EIRP.Most, rf.FreeField, metres, far)
+		v, ok := rf.PowerDensity(p.rad.EIRP.Most, rf.FreeField, metres, far)
 		if !ok {
-			return 0, 0, []Lack{{fmt.Sprintf("a far field at %s: in %s it begins at %s m", d.Row.People.V, p.band, unit.Fixed(far, 2)), d.Row.People.At}}
+			begins = max(begins, far)
+			continue
 		}
-		free += s / limit
-		reflected += s * rf.GroundReflection / limit
+		s.total += 100 * v / limit
+		s.each = append(s.each, fmt.Sprintf("%s %s %%", p.band, unit.Fixed(100*v/limit, 2)))
 	}
-	return free, reflected, nil
+	if begins > 0 {
+		s.lacks = append(s.lacks, Lack{fmt.Sprintf("a far field at %s, for it begins at %s m", d.Row.People.V, unit.Fixed(begins, 2)), d.Row.People.At})
+	}
+	return s
 }
 
 var exposureDistance = &Rule{
@@ -153,27 +120,27 @@ var exposureDistance = &Rule{
 	Weight:  Hold,
 	Grave:   true,
 	Check: func(c *Case, r *Report) {
-		if c.Profile == nil || c.Profile.Separation == nil {
-			return
-		}
-		s := c.Profile.Separation
-		basis := limits.Origin(s.Clause.V, s.Edition.Or(c.Profile.Edition.V), s.Proof.V)
-		seen := map[*bom.Device]bool{}
 		for _, e := range c.emitters() {
-			d := e.node.Device
-			if seen[d] {
-				continue
-			}
-			seen[d] = true
-			people := d.Row.People
-			switch {
-			case !people.Set:
-				r.Unknown(partAt(d), d.On(), "%s says nothing of people; whether they stay %s away is not assessed", d.ID, s.Least.V).
-					Then("add people = …, the nearest that a person stays").By(basis)
-			case people.V < s.Least.V:
-				r.Fails(people.At, d.On(), "%s is %s from people; at least %s is asked for", d.ID, people.V, s.Least.V).
-					Then("mount it further away").Under("distance_m", people.V.Metres(), "least_m", s.Least.V.Metres()).By(basis)
-			}
+			checkDistance(c, r, e.device)
 		}
 	},
+}
+
+func checkDistance(c *Case, r *Report, d *bom.Device) {
+	people := d.Row.People
+	lacks := needPeople(d)
+	if c.Profile == nil {
+		lacks = append([]Lack{c.lackProfile()}, lacks...)
+	} else if c.Profile.Separation == nil {
+		return // it asks for no distance
+	}
+	if len(lacks) > 0 {
+		r.Lacking(partAt(d), d.On(), lacks, "the distance of people from %s", d.ID)
+		return
+	}
+	if s := c.Profile.Separation; people.V < s.Least.V {
+		r.Fails(people.At, d.On(), "%s is %s from people; at least %s is asked for", d.ID, people.V, s.Least.V).
+			Then("mount it further away").Under("distance_m", people.V.Metres(), "least_m", s.Least.V.Metres()).
+			By(limits.Origin(s.Clause.V, s.Edition.Or(c.Profile.Edition.V), s.Proof.V))
+	}
 }
