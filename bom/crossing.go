@@ -12,6 +12,7 @@ type Crossing struct {
 	Outer int          // step of the line up to which it is outdoors
 	Inner int          // step of the line from which on it is indoors
 	In1st bool         // the line is indoors first and comes out
+	There bool         // what crosses is there already
 }
 
 // station is a place that a line passes, with the step that it belongs to.
@@ -46,10 +47,10 @@ func (l *Line) crossing(from, to station) Crossing {
 	for i := from.step; i <= to.step && i < len(l.Steps); i++ {
 		switch s := l.Steps[i]; {
 		case s.Cable != nil:
-			c.On, c.At = s.Cable.On(), s.Cable.At
+			c.On, c.At, c.There = s.Cable.On(), s.Cable.At, s.Cable.Row.Existing.V
 			return c
 		case s.Mate != nil && s.Mate.Joint != nil && s.Contact != nil:
-			c.On, c.At = s.Mate.On(), s.Mate.At
+			c.On, c.At, c.There = s.Mate.On(), s.Mate.At, s.Mate.existing()
 		}
 	}
 	return c

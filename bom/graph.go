@@ -61,14 +61,15 @@ func (d *Device) Node(port string) *Node {
 
 // Cable is one coaxial cable or jumper with its two ends.
 type Cable struct {
-	ID     string
-	At     source.Place
-	Row    *CableRow
-	Part   *catalog.Part // nil where it did not resolve
-	Length source.Val[unit.MM]
-	Way    []Section
-	Ends   [2]*Node
-	Like   *Cable
+	ID      string
+	At      source.Place
+	Row     *CableRow
+	Part    *catalog.Part // nil where it did not resolve
+	Length  source.Val[unit.MM]
+	Way     []Section
+	Ends    [2]*Node
+	Through []*catalog.Part // adapters at end 2 in the order of the row, nil where one did not resolve
+	Like    *Cable
 }
 
 // On is how findings refer to the cable.

@@ -181,22 +181,21 @@ func (g *Graph) tie(w joining, a, b *Node) {
 	g.Mates = append(g.Mates, m)
 }
 
-// adapters looks up what a cable passes through at its to end, each turned the way
-// it meets the end where that is known. gap reports one that did not resolve.
+// adapters lists what a cable passes through at its to end, each turned the way it
+// meets the end where that is known. gap reports one that did not resolve.
 func (g *Graph) adapters(c *Cable) (out []Adapter, gap bool) {
-	for _, id := range c.Row.Through.V {
-		p := g.part(id, c.On(), "adapter", "attenuator", "dc-block")
-		if p == nil {
+	for i, p := range c.Through {
+		at := c.Row.Through.V[i].At
+		switch {
+		case p == nil:
 			gap = true
-			continue
-		}
-		if len(p.Ports) != 2 {
-			g.hole(WrongKind, id.At, c.On(), fmt.Sprintf("%s has %d ports; what a cable passes through has two", p.ID, len(p.Ports)),
+		case len(p.Ports) != 2:
+			g.hole(WrongKind, at, c.On(), fmt.Sprintf("%s has %d ports; what a cable passes through has two", p.ID, len(p.Ports)),
 				"make it a device with a cable to each port", p.At)
 			gap = true
-			continue
+		default:
+			out = append(out, Adapter{Part: p, In: &p.Ports[0], Out: &p.Ports[1], At: at})
 		}
-		out = append(out, Adapter{Part: p, In: &p.Ports[0], Out: &p.Ports[1], At: id.At})
 	}
 	turnFrom(c.Ends[1].Face, out)
 	return out, gap

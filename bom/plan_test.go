@@ -199,6 +199,7 @@ func TestPlanCrossChecks(t *testing.T) {
 		{"an extra of none", "[[extra]]\npart = \"X\"\nqty = 0\n", []string{"3: qty: 0 is outside 1 to 1000000"}},
 		{"an extra by half", "[[extra]]\npart = \"X\"\nqty = 1.5\n", []string{"3: qty: the number 1.5 was read, a whole number is expected"}},
 		{"an extra without unit", "[[extra]]\npart = \"X\"\nqty = \"12\"\n", []string{`3: qty: "12" needs a number, a space and a unit`}},
+		{"an extra of no length", "[[extra]]\npart = \"X\"\nqty = \"0 m\"\n", []string{"3: qty: a length above 0 is expected"}},
 		{"two coordinates", "[[power_line]]\nat = [1, 2]\nkv = 1\n", []string{"2: at: 2 numbers were read, three are expected"}},
 		{"a reference with two dots", "[cable.a]\npart = \"b\"\nfrom = \"x.y.z\"\n", []string{`3: from: "x.y.z" is no reference`}},
 		{"a reference that ends in a dot", "[cable.a]\npart = \"b\"\nfrom = \"x.\"\n", []string{`3: from: "x." is no reference`}},

@@ -207,6 +207,9 @@ func (g *Graph) addCables() {
 		for n := range c.Ends {
 			c.Ends[n] = g.cableEnd(c, n)
 		}
+		for _, id := range c.Row.Through.V {
+			c.Through = append(c.Through, g.part(id, c.On(), "adapter", "attenuator", "dc-block"))
+		}
 	}
 }
 

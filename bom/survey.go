@@ -1,6 +1,8 @@
 package bom
 
 import (
+	"errors"
+
 	"driploop/catalog"
 	"driploop/catalog/source"
 	"driploop/catalog/unit"
@@ -204,7 +206,12 @@ func (e *Extra) keys(k *source.Keys) {
 	e.At = k.At()
 	source.Need(k, &e.Part, "part", source.Name, "part of the catalog")
 	each := source.Map(source.Count(1, 1000000), func(n int) (Amount, error) { return Amount{Each: n}, nil })
-	length := source.Map(source.Length, func(l unit.MM) (Amount, error) { return Amount{Length: l}, nil })
+	length := source.Map(source.Length, func(l unit.MM) (Amount, error) {
+		if l == 0 {
+			return Amount{}, errors.New("a length above 0 is expected")
+		}
+		return Amount{Length: l}, nil
+	})
 	source.Need(k, &e.Qty, "qty", source.Either(source.IsString, length, each, "a number or a length"), "how many, or how much of cut stock")
 }
 

@@ -87,11 +87,7 @@ func (c *counter) row(p *catalog.Part, at source.Place) *Quantity {
 	return q
 }
 
-func (c *counter) each(p *catalog.Part, n int, at source.Place) {
-	if p != nil {
-		c.row(p, at).Each += n
-	}
-}
+func (c *counter) each(p *catalog.Part, n int, at source.Place) { c.row(p, at).Each += n }
 
 func (c *counter) gap(on, says string, at source.Place) { c.gaps = append(c.gaps, Gap{on, says, at}) }
 
@@ -128,10 +124,13 @@ func (c *counter) cables() {
 
 // adapters counts what a cable passes through at its to end.
 func (c *counter) adapters(x *Cable) {
-	for _, id := range x.Row.Through.V {
-		if id.Set {
-			c.each(c.g.Catalog.Look(id.V), 1, id.At)
+	for i, p := range x.Through {
+		id := x.Row.Through.V[i]
+		if p == nil {
+			c.gap(x.On(), "the part "+source.Quote(id.V)+" that it passes through is not known", id.At)
+			continue
 		}
+		c.each(p, 1, id.At)
 	}
 }
 
@@ -175,7 +174,7 @@ func (c *counter) supply() {
 	for _, w := range c.g.Wires {
 		if !w.Row.Existing.V && !w.Row.SuppliedBy.Set {
 			c.piece(w.Part, w.Row.ID, w.On(), w.Row.Length, w.Row.At)
-			c.each(w.Fuse, 1, w.Row.At)
+			c.fuse(w)
 		}
 	}
 	for _, b := range c.g.Bonds {
@@ -183,6 +182,15 @@ func (c *counter) supply() {
 			continue
 		}
 		c.piece(b.Part, b.Row.ID, b.On(), b.Row.Length, b.Row.At)
+	}
+}
+
+func (c *counter) fuse(w *WireLine) {
+	switch id := w.Row.Fuse; {
+	case w.Fuse != nil:
+		c.each(w.Fuse, 1, w.Row.At)
+	case id.Set:
+		c.gap(w.On(), "its fuse "+source.Quote(id.V)+" is not known", id.At)
 	}
 }
 
@@ -255,11 +263,10 @@ func (q *Quantity) pack() {
 func Packages(p *catalog.Part, uses float64) int {
 	per := 1.0
 	if p.Consumable != nil && p.Consumable.Holds.Set {
-		if h := p.Consumable.Holds.V; h.Length > 0 {
-			per = h.Length.Metres()
-		} else {
-			per = h.Uses
-		}
+		per = max(p.Consumable.Holds.V.Length.Metres(), p.Consumable.Holds.V.Uses)
+	}
+	if per <= 0 {
+		per = 1 // a package that holds nothing would never be enough
 	}
 	return int(math.Ceil(uses/per - 1e-9))
 }
@@ -304,16 +311,19 @@ func (n *Node) existing() bool {
 	return n.Cable.Row.Existing.V
 }
 
-// Entries counts the lines that come in from outdoors, data lines included.
+// Entries counts the lines that this job brings in from outdoors, data lines
+// included.
 func (g *Graph) Entries() int {
 	seen := map[string]bool{}
 	for _, l := range g.Lines().All {
 		for _, c := range l.Crossings() {
-			seen[c.On] = true
+			if !c.There {
+				seen[c.On] = true
+			}
 		}
 	}
 	for _, d := range g.Data {
-		if d.Crosses() {
+		if d.Crosses() && !d.Row.Existing.V {
 			seen[d.On()] = true
 		}
 	}
