@@ -36,7 +36,7 @@ func inHook(t *testing.T, w work, hooks, root string, commit ...string) []string
 func TestReadForHook(t *testing.T) {
 	root, out := os.Getenv("REPO_ROOT"), os.Getenv("REPO_OUT")
 	if out == "" {
-		t.Skip("runs only inside the hooks of other tests")
+		return // no hook of another test calls
 	}
 	lines := read(t, at(t, open(t, root), Index))
 	if err := os.WriteFile(out, []byte(strings.Join(lines, "\n")), 0o600); err != nil {
