@@ -11,7 +11,6 @@ import (
 
 // The same input gives the same bytes, wherever and however often the program runs.
 func TestSameBytes(t *testing.T) {
-	const runs = 20
 	calls := allCalls(t, map[string][][]string{
 		"inspect": {{"--color", "always"}},
 		"budget":  {{"heron-clinic", "--terms"}},
@@ -23,7 +22,7 @@ func TestSameBytes(t *testing.T) {
 		t.Run(c.String(), func(t *testing.T) {
 			t.Parallel()
 			first := runElsewhere(t, c.args, 0)
-			for i := 1; i < runs; i++ {
+			for i := 1; i < sameBytesRuns; i++ {
 				if got := runElsewhere(t, c.args, i); !bytes.Equal(got, first) {
 					t.Fatalf("run %d gave other bytes than the first:\n%s", i+1, got)
 				}
