@@ -64,7 +64,7 @@ func TestHouse(t *testing.T) {
 func TestHouseComplains(t *testing.T) {
 	for _, c := range []struct {
 		name, want string
-		add        map[string]string
+		add        map[string]string // to a small house without fault; "-" takes a file away
 	}{
 		{"nothing", "", nil},
 		{"upward", "catalog imports rules", map[string]string{"catalog/a.go": `package catalog; import _ "driploop/rules"`}},
@@ -84,6 +84,7 @@ func TestHouseComplains(t *testing.T) {
 		{"a library that go.mod lacks", "bom imports example.org/x, which go.mod does not require", map[string]string{
 			"bom/a.go": `package bom; import _ "example.org/x"`}},
 		{"a folder at the top", "internal lies at the top", map[string]string{"internal/x/a.go": `package x`}},
+		{"a file missing", "LICENSE is missing", map[string]string{"LICENSE": "-"}},
 		{"a file at the top", "notes.txt lies at the top", map[string]string{"notes.txt": ``}},
 		{"an empty package name", "rules/helpers is called helpers", map[string]string{"rules/helpers/a.go": `package helpers`}},
 		{"an empty file name", "rules/utils.go is called utils", map[string]string{"rules/utils.go": `package rules`}},
@@ -98,9 +99,14 @@ func TestHouseComplains(t *testing.T) {
 				"cmd/driploop/main.go":  {Data: []byte(`package main; import _ "driploop/rules"`)},
 				"rules/rule.go":         {Data: []byte(`package rules; import _ "driploop/rules/limits"`)},
 				"testdata/x/helpers.go": {},
+				"bom/plan.go":           {Data: []byte(`package bom`)},
+				"catalog/part.go":       {Data: []byte(`package catalog`)},
+				"go.sum":                {}, "README.md": {}, "DEVELOPERS.md": {}, "LICENSE": {},
 			}
 			for name, text := range c.add {
-				tree[name] = &fstest.MapFile{Data: []byte(text)}
+				if tree[name] = (&fstest.MapFile{Data: []byte(text)}); text == "-" {
+					delete(tree, name)
+				}
 			}
 			got := strings.Join(readHouse(t, tree).complaints(), "\n")
 			if c.want == "" && got != "" || !strings.Contains(got, c.want) {
@@ -214,6 +220,11 @@ func (h *house) complaints() []string {
 	for _, e := range h.top {
 		if !slices.Contains(houseTop, e) {
 			out = append(out, e+" lies at the top, where only "+strings.Join(houseTop, " ")+" do")
+		}
+	}
+	for _, e := range houseTop {
+		if !slices.Contains(h.top, e) {
+			out = append(out, e+" is missing at the top")
 		}
 	}
 	for _, p := range h.packages {
