@@ -164,7 +164,11 @@ func (r *Report) merged() []*Finding {
 	for _, f := range r.findings {
 		k := key{f.At, f.On, f.Says, f.Outcome}
 		if one := first[k]; one != nil && f.bands != nil {
-			one.bands = append(one.bands, f.bands...)
+			for _, b := range f.bands {
+				if !slices.Contains(one.bands, b) {
+					one.bands = append(one.bands, b)
+				}
+			}
 			continue
 		}
 		if f.bands != nil {
