@@ -1,0 +1,93 @@
+package rules
+
+import (
+	"fmt"
+	"regexp"
+	"strconv"
+
+	"driploop/bom"
+	"driploop/catalog/source"
+	"driploop/catalog/unit"
+	"driploop/rules/rf"
+)
+
+// indoors is the path from a server antenna to a phone.
+type indoors struct {
+	loss, doubt unit.DB
+	how         []string // what it is made of, with its documents
+	lacks       []Lack
+}
+
+func noPath(at source.Place, what string) indoors { return indoors{lacks: []Lack{{what, at}}} }
+
+// indoors is the path loss from server antenna to phone: with walls, free space
+// and the walls; without, the indoor model, which holds the walls already.
+func (c *Case) indoors(a *bom.Area, f unit.MHz) indoors {
+	switch {
+	case !a.Distance.Set:
+		return noPath(a.At, "distance of the area "+a.Name.V)
+	case a.Walls.Set && a.Floors.V > 0:
+		return noPath(a.Floors.At, "loss_db of the floors of the area "+a.Name.V+" among its walls: floors belong to the indoor model, which takes no walls")
+	case a.Walls.Set:
+		return throughWalls(a, f)
+	}
+	kind := map[string]rf.Building{"residential": rf.Residential, "commercial": rf.Commercial}[a.Environment.V]
+	v, ok := rf.IndoorLoss(kind, f, a.Distance.V.Metres(), a.Floors.V)
+	if !ok {
+		return noPath(a.Distance.At, "a distance and floors that ITU-R P.1238 covers, for the area "+a.Name.V)
+	}
+	how := fmt.Sprintf("%s indoors (ITU-R P.1238-9, %s", a.Distance.V, a.Environment.Or("office"))
+	if a.Floors.V > 0 {
+		how += ", " + count(a.Floors.V, "floor", "floors")
+	}
+	return indoors{loss: v, how: []string{how + ")"}}
+}
+
+// throughWalls is free space and the walls; how good their losses are adds up as the
+// root of the sum of squares.
+func throughWalls(a *bom.Area, f unit.MHz) indoors {
+	p := indoors{how: []string{fmt.Sprintf("%s of free space (ITU-R P.525)", a.Distance.V)}}
+	var walls []unit.DB
+	var doubts []rf.Tolerance
+	for _, w := range a.Walls.V {
+		l, lack := wallLoss(&w.V, f)
+		if lack != "" {
+			return noPath(w.At, lack)
+		}
+		walls, doubts = append(walls, l.Loss), append(doubts, rf.Either(l.Tolerance))
+		p.how = append(p.how, fmt.Sprintf("%s %s dB (%s)", w.V.Name.V, unit.Fixed(float64(l.Loss), 2), l.Basis))
+	}
+	all, sure := rf.Together(doubts...)
+	loss, ok := rf.PathThrough(f, a.Distance.V.Metres(), walls...)
+	if !ok || !sure {
+		return noPath(a.Distance.At, "a distance in the far field for the area "+a.Name.V)
+	}
+	p.loss, p.doubt = loss, all.Above
+	return p
+}
+
+// slab is a wall with its thickness: "plasterboard 12.5 mm", "concrete 8 in".
+var slab = regexp.MustCompile(`^(.*\S)\s+([0-9.]+)\s*(mm|cm|in)$`)
+
+var millimetres = map[string]float64{"mm": 1, "cm": 10, "in": 25.4}
+
+// wallLoss is the plan's own figure, else that of the published tables, or what is
+// lacking.
+func wallLoss(w *bom.Wall, f unit.MHz) (rf.WallLoss, string) {
+	if w.LossDB.Set {
+		if v, ok := rf.Lookup(rfPoints(w.LossDB.V), unit.Span{}, f); ok {
+			return rf.WallLoss{Loss: v, Basis: "plan"}, ""
+		}
+		return rf.WallLoss{}, "a loss of the wall " + source.Quote(w.Name.V)
+	}
+	name, mm := w.Name.V, 0.0
+	if m := slab.FindStringSubmatch(name); m != nil {
+		name = m[1]
+		mm, _ = strconv.ParseFloat(m[2], 64)
+		mm *= millimetres[m[3]]
+	}
+	if v, ok := rf.Wall(name, mm, f); ok {
+		return v, ""
+	}
+	return rf.WallLoss{}, "loss_db of the wall " + source.Quote(w.Name.V) + ", for which no table here has a figure"
+}
