@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"strconv"
 	"strings"
+	"unicode/utf8"
 
 	"driploop/bom"
 	"driploop/catalog/unit"
@@ -28,7 +29,7 @@ func (t *Takeoff) Text(page Page) ([]byte, error) {
 	s := &sheet{page: page}
 	if len(t.Rows) == 0 {
 		s.line(0, strong, "These plans take nothing.")
-	} else if page.Width < 60 {
+	} else if page.Width < 72 {
 		t.blocks(s)
 	} else if err := t.table(s); err != nil {
 		return nil, err
@@ -44,16 +45,42 @@ func (t *Takeoff) Text(page Page) ([]byte, error) {
 }
 
 func (t *Takeoff) table(s *sheet) error {
+	columns := []column{{"part", false}, {"kind", false}, {"to bring", true}, {"installed", true}, {"for", false}}
 	var rows [][]Term
 	for _, r := range t.Rows {
 		rows = append(rows, []Term{Clean(r.Part.ID), Clean(r.Part.Kind.V), Clean(t.qty(r.Each, r.Length)), Clean(t.installed(r)), Clean(t.jobs(r))})
 	}
-	text, err := table(0, []column{{"part", false}, {"kind", false}, {"to bring", true}, {"installed", true}, {"for", false}}, rows)
+	text, err := table(0, columns, wrapLast(columns, rows, s.page.Width))
 	if err != nil {
 		return err
 	}
 	s.b.WriteString(string(text))
 	return nil
+}
+
+// wrapLast breaks the last cell of each row so that the table fits a page; what does
+// not fit goes on in the rows below.
+func wrapLast(columns []column, rows [][]Term, width int) [][]Term {
+	last := len(columns) - 1
+	for i, c := range columns[:last] {
+		widest := utf8.RuneCountInString(c.title)
+		for _, r := range rows {
+			widest = max(widest, utf8.RuneCountInString(string(r[i])))
+		}
+		width -= widest + 2
+	}
+	var out [][]Term
+	for _, r := range rows {
+		for i, part := range wrap(string(r[last]), max(width, 16), max(width, 16)) {
+			row := make([]Term, len(columns))
+			if i == 0 {
+				copy(row, r)
+			}
+			row[last] = Term(part)
+			out = append(out, row)
+		}
+	}
+	return out
 }
 
 func (t *Takeoff) blocks(s *sheet) {
