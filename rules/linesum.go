@@ -199,7 +199,6 @@ func (a *adder) lead(n *bom.Node) {
 }
 
 func (a *adder) pass(p *bom.Pass) {
-	a.meets(p.In.Impedance)
 	name := p.Part.ID
 	if p.Device != nil {
 		name = p.Device.ID
