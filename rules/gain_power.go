@@ -162,17 +162,28 @@ func (x *BandChain) eirpFinding(c *Case, report reportFunc, a limits.Assessment,
 		By(c.citation(a.Row)).Beside(x.Amp.Row.Part.At, "the amplifier").Beside(lineAt(ant.Line), "the line between them")
 }
 
-// lessEIRP says how an antenna could radiate less by an amount.
+// lessEIRP says how an antenna could radiate less by an amount: with another one,
+// what is on hand before what is not, and of those the one with the most gain.
 func (c *Case) lessEIRP(x *BandChain, ant *Antenna, by float64) string {
 	want := float64(ant.Worst.Gain) - by
 	var other *catalog.Part
+	var gain float64
+	better := func(p *catalog.Part, g float64) bool {
+		switch {
+		case other == nil:
+			return true
+		case c.Firm.held(p) != c.Firm.held(other):
+			return c.Firm.held(p)
+		}
+		return g > gain
+	}
 	for _, p := range c.Firm.Catalog.All() {
 		if p.Antenna == nil || p.ID == ant.Node.Device.Part.ID || p.Router != nil || len(p.Ports) != len(ant.Node.Device.Part.Ports) || !fitsInstead(p, ant.Node, x.Band) {
 			continue
 		}
 		g, ok := greatestGain(p, x.Band)
-		if ok && g <= want && c.kitTakes(x, ant.Line, p, g) && (other == nil || c.Firm.held(p) && !c.Firm.held(other)) {
-			other = p
+		if ok && !rf.Exceeds(g, want) && c.kitTakes(x, ant.Line, p, g) && better(p, g) {
+			other, gain = p, g
 		}
 	}
 	amount := unit.Fixed(math.Ceil(by*10-rf.Slack)/10, 1)
