@@ -114,6 +114,12 @@ func (r *Rule) Guarded() bool {
 	return r.Name == "power/fuse" || r.Name == "build/clearance"
 }
 
+// WeightOf is what an outcome of the rule weighs at a stage of the job, before the
+// workspace's override.
+func (r *Rule) WeightOf(o Outcome, stage string) Weight {
+	return r.weigh(&Finding{Outcome: o}, stage)
+}
+
 // weigh is the one table from which every finding gets its weight.
 func (r *Rule) weigh(f *Finding, stage string) Weight {
 	switch f.Outcome {

@@ -8,8 +8,7 @@ import (
 	"driploop/rules"
 )
 
-// ruleWeights is what the outcomes of a rule weigh, as rules.Rule has it; a test
-// holds both together.
+// ruleWeights is what the outcomes of a rule weigh.
 type ruleWeights struct {
 	Fails        string `json:"fails"` // before the workspace's override
 	AtWorst      string `json:"at_worst"`
@@ -29,10 +28,9 @@ type overrideJSON struct {
 }
 
 func (b *Basis) weights(r *rules.Rule) ruleWeights {
-	w := ruleWeights{r.Weight.String(), rules.Punch.String(), rules.Note.String(), rules.Note.String(), rules.Note.String(), nil}
-	if r.Grave {
-		w.Unknown, w.UnknownBuilt = rules.Punch.String(), rules.Hold.String()
-	}
+	of := func(o rules.Outcome, stage string) string { return r.WeightOf(o, stage).String() }
+	w := ruleWeights{of(rules.Fails, "review"), of(rules.AtWorst, "review"), of(rules.Unknown, "review"),
+		of(rules.Unknown, "construction"), of(rules.Advice, "review"), nil}
 	if b.Override == nil {
 		return w
 	}
