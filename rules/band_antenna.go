@@ -245,7 +245,7 @@ func (c *Case) antennaLeaves(left leftOut, a *antennaInUse, ports []antennaPort,
 	r.Fails(deviceAt(first.device), first.device.On(), "%s (%s) %s out %s; %s", list(names), part.ID, verb, left, first.bound(covers, left)).
 		Over("left_out_mhz", left.Width(), "allowed_mhz", 0).InBand(left.Band.Name).
 		Then("%s", c.coveringAntenna(part, left.Band)).
-		Beside(c.bandAt(left.Band), "%s is planned here", left.Band.Name).Beside(rangesAt(part), "its ranges")
+		Beside(c.bandAt(left.Band), "%s is planned here", left.Band.Name).Beside(part.Antenna.Ranges[0].At, "its ranges")
 }
 
 // bound says what a port covers: the ranges, or the bands that it is limited to
@@ -281,13 +281,6 @@ func portsOn(ports []antennaPort, d *bom.Device) int {
 		}
 	}
 	return n
-}
-
-func rangesAt(p *catalog.Part) source.Place {
-	if len(p.Antenna.Ranges) > 0 {
-		return p.Antenna.Ranges[0].At
-	}
-	return p.At
 }
 
 // coveringAntenna names an antenna of the catalog that is fixed in the same way,

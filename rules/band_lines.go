@@ -48,15 +48,11 @@ func (c *Case) bandWays() *bandWays {
 	return w
 }
 
-// meant reports whether a planned band is to go over a line. It is not where a port
+// meant reports whether a planned band is to go over a feed, leg or link. It is not where a port
 // at its end is for something else, where another amplifier or router of the plan
 // does the band, and where a diplexer or filter sends it another way.
 func (w *bandWays) meant(l *bom.Line, b catalog.Band) bool {
-	ends := activeEnds(l)
-	if len(ends) == 0 {
-		return false
-	}
-	for _, n := range ends {
+	for _, n := range activeEnds(l) {
 		if n.Port.Use.Or("cellular") != "cellular" || n.Port.Bands.Set && listLeavesOut(b, n.Port.Bands.V).All() {
 			return false
 		}
