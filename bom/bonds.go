@@ -1,10 +1,6 @@
 package bom
 
-import (
-	"slices"
-
-	"driploop/catalog"
-)
+import "driploop/catalog"
 
 // BondPath is a way over bonds from a device to where it ends.
 type BondPath struct {
@@ -16,34 +12,39 @@ type BondPath struct {
 // each other with metal contact stated as a bond, from a device to an electrode;
 // false where there is none.
 func (g *Graph) PathToElectrode(d *Device) (BondPath, bool) {
-	came := map[*Device]*Bond{d: nil} // the bond over which a device was first reached
-	queue := []*Device{d}
+	if _, reached := g.earth[d]; !reached {
+		return BondPath{}, false
+	}
+	var path []*Bond
+	for b := g.earth[d]; b != nil; b = g.earth[d] {
+		path = append(path, b)
+		d = b.Other(d)
+	}
+	return BondPath{path, d}, true
+}
+
+// findEarth searches from all electrodes at once, so that every device is reached
+// from the nearest.
+func (g *Graph) findEarth() {
+	g.earth = map[*Device]*Bond{}
+	var queue []*Device
+	for _, d := range g.Devices {
+		if d.Kind() == "electrode" {
+			g.earth[d] = nil
+			queue = append(queue, d)
+		}
+	}
 	for len(queue) > 0 {
 		at := queue[0]
 		queue = queue[1:]
-		if at.Kind() == "electrode" {
-			return BondPath{wayBack(came, at), at}, true
-		}
 		for _, b := range g.bonds[at] {
 			next := b.Other(at)
-			if _, seen := came[next]; !seen {
-				came[next] = b
+			if _, reached := g.earth[next]; !reached {
+				g.earth[next] = b
 				queue = append(queue, next)
 			}
 		}
 	}
-	return BondPath{}, false
-}
-
-// wayBack lists the bonds from where a search began to a device that it reached.
-func wayBack(came map[*Device]*Bond, at *Device) []*Bond {
-	var path []*Bond
-	for b := came[at]; b != nil; b = came[at] {
-		path = append(path, b)
-		at = b.Other(at)
-	}
-	slices.Reverse(path)
-	return path
 }
 
 // Other is the device at the far side of d, or nil where the bond does not touch

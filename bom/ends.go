@@ -116,9 +116,9 @@ func (g *Graph) lackConnector(c *Cable, e *Node, target Half) {
 }
 
 // target is what the end is to mate with: the near face of the first adapter, or
-// the node itself.
+// the node itself. Where two lines share the end nobody can say.
 func (n *Node) target() Half {
-	if len(n.Mates) == 0 {
+	if len(n.Mates) != 1 {
 		return Half{}
 	}
 	m := n.Mates[0]

@@ -23,7 +23,9 @@ type Graph struct {
 	cables  map[string]*Cable
 	places  map[string]*Place
 	bonds   map[*Device][]*Bond // those that lead somewhere, by either end
+	earth   map[*Device]*Bond   // the first bond on the way to the nearest electrode
 	lines   *Lines
+	guesses int
 }
 
 // Device is one thing that is put up: a row of the plan, or one copy of it.

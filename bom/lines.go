@@ -304,9 +304,24 @@ func kindOf(l *Line) LineKind {
 }
 
 // turned reports a line that was found against its direction: a feed from the
-// radio, or a link from a donor side.
+// radio, or a link to a server side. Where the two ends are alike their names decide,
+// so that nothing depends on the order of the file.
 func (l *Line) turned() bool {
-	return l.Kind == Feed || l.Kind == Link && l.From.Port.Side.V != "server" && l.To.Port.Side.V == "server"
+	switch l.Kind {
+	case Feed:
+		return true
+	case Leg:
+		return false
+	case Link:
+		if from, to := l.From.Port.Side.V == "server", l.To.Port.Side.V == "server"; from != to {
+			return to
+		}
+	case Stub:
+		if l.Open || l.From.Device.Kind() != "antenna" || l.To.Device.Kind() != "antenna" {
+			return false
+		}
+	}
+	return l.From.Name() > l.To.Name()
 }
 
 func (l *Line) reverse() {

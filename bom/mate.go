@@ -243,9 +243,8 @@ func (g *Graph) node(r source.Val[Ref], on string, facing []Half) (*Node, func()
 	switch {
 	case d == nil:
 		return nil, func() {
-			known := append(sortedKeys(g.devices), sortedKeys(g.cables)...)
 			g.hole(BadRef, r.At, on, "the plan has no device or cable "+source.Quote(r.V.Name),
-				didYouMean(source.Nearest(r.V.Name, known), "add it, or correct the name"))
+				g.guess(r.V.Name, g.ends, "add it, or correct the name"))
 		}
 	case d.Part == nil:
 		return nil, nil // the part has a finding already, or has no ports that anybody knows
@@ -259,6 +258,20 @@ func (g *Graph) node(r source.Val[Ref], on string, facing []Half) (*Node, func()
 		}
 	}
 	return port, miss
+}
+
+// ends yields the names that a coaxial line may go to.
+func (g *Graph) ends(yield func(string) bool) {
+	for name := range g.devices {
+		if !yield(name) {
+			return
+		}
+	}
+	for name := range g.cables {
+		if !yield(name) {
+			return
+		}
+	}
 }
 
 func radioPorts(d *Device) string {

@@ -207,6 +207,8 @@ func TestPlanCrossChecks(t *testing.T) {
 		{"a way with a length", "[cable.a]\npart = \"b\"\nway = [\"entry 0.5 m\", \"roof\"]\n", nil},
 		{"a way with a length that is none", "[cable.a]\npart = \"b\"\nway = [\"entry 0.5\", \"entry \", \"a.b\"]\n",
 			[]string{`3: way: "0.5" needs a number`, `3: way: "" needs a number`, `3: way: "a.b" names no place`}},
+		{"a way of 100 places", "[cable.a]\npart = \"b\"\nway = [" + strings.Repeat("\"p\", ", 100) + "]\n", nil},
+		{"a longer one", "[cable.a]\npart = \"b\"\nway = [" + strings.Repeat("\"p\", ", 101) + "]\n", []string{"3: way: 101 places were read, 100 are the most"}},
 		{"back-off of no band", "[device.a]\npart = \"b\"\nset = { B5 = { back_off_db = 3 }, B0 = { back_off_db = 3 } }\n", []string{`3: set: "B0" is no band`}},
 		{"back-off left out", "[device.a]\npart = \"b\"\nset = { B5 = { } }\n", []string{"3: B5: this table has no back_off_db"}},
 		{"a copy with a name that cannot be referred to", "[device.a]\npart = \"b\"\ncopies = { \"a b\" = [1, 2, 3] }\n", []string{`3: copies: "a b" is no name`}},

@@ -2,7 +2,9 @@ package bom
 
 import (
 	"fmt"
-	"sort"
+	"iter"
+	"maps"
+	"slices"
 	"strings"
 
 	"driploop/catalog"
@@ -44,11 +46,11 @@ func (g *Graph) part(id source.Val[string], on string, kinds ...string) *catalog
 	}
 	p := g.Catalog.Look(id.V)
 	if p == nil {
-		do := "add it to the catalog, or correct the ID"
-		if near := g.Catalog.Nearest(id.V); near != "" {
-			do = "did you mean " + near + "?"
+		near := ""
+		if g.mayGuess() {
+			near = g.Catalog.Nearest(id.V)
 		}
-		g.hole(NoPart, id.At, on, "the catalog has no part "+source.Quote(id.V), do)
+		g.hole(NoPart, id.At, on, "the catalog has no part "+source.Quote(id.V), didYouMean(near, "add it to the catalog, or correct the ID"))
 		return nil
 	}
 	if !p.Kind.Set {
@@ -106,13 +108,32 @@ func (g *Graph) place(id source.Val[string], on string) *Place {
 	}
 	p := g.places[id.V]
 	if p == nil {
-		g.hole(BadRef, id.At, on, "the plan has no place "+source.Quote(id.V), g.nearPlace(id.V))
+		g.hole(BadRef, id.At, on, "the plan has no place "+source.Quote(id.V),
+			g.guess(id.V, maps.Keys(g.places), "add it under [place], or correct the name"))
 	}
 	return p
 }
 
-func (g *Graph) nearPlace(id string) string {
-	return didYouMean(source.Nearest(id, sortedKeys(g.places)), "add it under [place], or correct the name")
+// mostGuesses bounds how many names a plan gets guesses for: each compares all that
+// are known, and nobody reads that many.
+const mostGuesses = 100
+
+func (g *Graph) mayGuess() bool {
+	g.guesses++
+	return g.guesses <= mostGuesses
+}
+
+// guess says which of the known names may have been meant, or what to do otherwise.
+func (g *Graph) guess(name string, known iter.Seq[string], otherwise string) string {
+	if !g.mayGuess() {
+		return otherwise
+	}
+	return didYouMean(source.Nearest(name, slices.Collect(known)), otherwise)
+}
+
+// guessDevice is guess among the devices.
+func (g *Graph) guessDevice(name string) string {
+	return g.guess(name, maps.Keys(g.devices), "add it, or correct the name")
 }
 
 func didYouMean(near, otherwise string) string {
@@ -132,59 +153,60 @@ func (g *Graph) stand() {
 		d.Stands = g.devices[d.Row.On.V]
 		if d.Stands == nil && d.ID == d.Row.ID { // once, and not for each copy
 			g.hole(BadRef, d.Row.On.At, d.On(), "the plan has no device "+source.Quote(d.Row.On.V),
-				didYouMean(source.Nearest(d.Row.On.V, sortedKeys(g.devices)), "add it, or correct the name"))
+				g.guessDevice(d.Row.On.V))
 		}
 	}
+	g.openRings()
+	settled := map[*Device]bool{}
 	for _, d := range g.Devices {
-		if g.standsOnItself(d) {
-			g.hole(BadRef, d.Row.On.At, d.On(), "what "+d.ID+" stands on stands on "+d.ID+" again", "let the chain end at a place")
-			d.openRing()
+		d.settle(settled)
+	}
+}
+
+// openRings reports the devices that stand on each other in a ring, and lets none of
+// these stand on another, so that nothing depends on which of them the file names
+// first. What only stands on a ring stays where it is.
+func (g *Graph) openRings() {
+	walk := map[*Device]int{} // the walk in which a device was first met
+	for i, d := range g.Devices {
+		s := d
+		for s != nil && walk[s] == 0 {
+			walk[s] = i + 1
+			s = s.Stands
+		}
+		if s == nil || walk[s] != i+1 {
+			continue
+		}
+		g.hole(BadRef, s.Row.On.At, s.On(), "what "+s.ID+" stands on stands on "+s.ID+" again", "let the chain end at a place")
+		for s != nil {
+			next := s.Stands
+			s.Stands = nil
+			s = next
 		}
 	}
-	for _, d := range g.Devices {
-		d.Place, d.Point = d.position()
-	}
 }
 
-// standsOnItself reports a device that is part of a ring, not one that only stands
-// on a ring.
-func (g *Graph) standsOnItself(d *Device) bool {
-	s := d.Stands
-	for left := len(g.Devices); s != nil && s != d && left > 0; left-- {
-		s = s.Stands
-	}
-	return s == d
-}
-
-// openRing lets no device of the ring stand on another, so that nothing depends on
-// which of them the file names first.
-func (d *Device) openRing() {
-	for s := d; s != nil; {
-		next := s.Stands
-		s.Stands = nil
-		s = next
-	}
-}
-
-// position is the device's place, and its point where that is known: its own,
-// else that of what it stands on plus up, else its place's. A device whose place is
+// settle finds the device's place, and its point where that is known: its own, else
+// that of what it stands on plus up, else its place's. A device whose place is
 // another than that of what it is said to stand on has nothing of that one's point.
-func (d *Device) position() (*Place, source.Val[Point]) {
-	place, at := d.Place, d.Point
-	if d.Stands != nil {
-		basePlace, base := d.Stands.position()
-		if place == nil {
-			place = basePlace
+func (d *Device) settle(settled map[*Device]bool) {
+	if settled[d] {
+		return
+	}
+	settled[d] = true
+	if base := d.Stands; base != nil {
+		base.settle(settled)
+		if d.Place == nil {
+			d.Place = base.Place
 		}
-		if !at.Set && base.Set && (basePlace == nil || place == basePlace) {
-			at = base
-			at.V.Up += d.Row.Up.V.Metres()
+		if !d.Point.Set && base.Point.Set && (base.Place == nil || d.Place == base.Place) {
+			d.Point = base.Point
+			d.Point.V.Up += d.Row.Up.V.Metres()
 		}
 	}
-	if !at.Set && place != nil {
-		at = place.Point
+	if !d.Point.Set && d.Place != nil {
+		d.Point = d.Place.Point
 	}
-	return place, at
 }
 
 func (g *Graph) addCables() {
@@ -220,7 +242,7 @@ func (g *Graph) takeAfter(c *Cable) {
 	switch {
 	case model == nil:
 		g.hole(BadRef, c.Row.Like.At, c.On(), "the plan has no cable "+source.Quote(c.Row.Like.V),
-			didYouMean(source.Nearest(c.Row.Like.V, sortedKeys(g.cables)), "correct the name"))
+			g.guess(c.Row.Like.V, maps.Keys(g.cables), "correct the name"))
 		return
 	case model.Row.Like.Set || model == c:
 		g.hole(BadRef, c.Row.Like.At, c.On(), model.ID+" is itself like another cable", "name the cable that has the keys")
@@ -323,13 +345,4 @@ func (g *Graph) uniqueNames() {
 	for i := range g.Plan.Wires {
 		claim(g.Plan.Wires[i].ID, g.Plan.Wires[i].At, "wire."+g.Plan.Wires[i].ID)
 	}
-}
-
-func sortedKeys[V any](m map[string]V) []string {
-	out := make([]string, 0, len(m))
-	for k := range m {
-		out = append(out, k)
-	}
-	sort.Strings(out)
-	return out
 }

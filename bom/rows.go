@@ -126,7 +126,15 @@ var bothEnds = source.Map(source.ListOf(end), func(v []source.Val[EndRow]) ([]so
 	return v, nil
 })
 
-var way = source.ListOf(stretch)
+// mostPlaces bounds a way, which every line through it passes.
+const mostPlaces = 100
+
+var way = source.Map(source.ListOf(stretch), func(v []source.Val[Stretch]) ([]source.Val[Stretch], error) {
+	if len(v) > mostPlaces {
+		return nil, fmt.Errorf("%d places were read, %d are the most", len(v), mostPlaces)
+	}
+	return v, nil
+})
 
 func (d *DeviceRow) keys(k *source.Keys) {
 	d.ID, d.At = k.ID(), k.At()

@@ -190,19 +190,19 @@ place.room = { kind = "indoor", at = [2, 0, 2] }
 place.store = { kind = "indoor", at = [9, 9, 2] }
 `
 
-var shopParts = sync.OnceValues(func() ([]*catalog.Part, []source.Problem) {
+var shopParts = sync.OnceValues(func() (*catalog.Catalog, []source.Problem) {
 	d, problems := source.Parse(&source.File{Path: "catalog/shop.toml", Src: []byte(shop)})
 	list, more := catalog.ReadParts(d)
-	return list, append(problems, more...)
+	return catalog.New(list), append(problems, more...)
 })
 
 func shopCatalog(t *testing.T) *catalog.Catalog {
 	t.Helper()
-	list, problems := shopParts()
+	c, problems := shopParts()
 	for _, p := range problems {
 		t.Fatalf("the shop's catalog, line %d: %s", p.At.Line(), p.Says)
 	}
-	return catalog.New(list)
+	return c
 }
 
 // lay resolves a plan, which must read without a problem, with the shop's parts.

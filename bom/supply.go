@@ -2,6 +2,7 @@ package bom
 
 import (
 	"fmt"
+	"slices"
 
 	"driploop/catalog"
 	"driploop/catalog/source"
@@ -62,7 +63,7 @@ func (g *Graph) plug(r source.Val[Ref], on, use string) *Node {
 	switch {
 	case d == nil:
 		g.hole(BadRef, r.At, on, "the plan has no device "+source.Quote(r.V.Name),
-			didYouMean(source.Nearest(r.V.Name, sortedKeys(g.devices)), "add it, or correct the name"))
+			g.guessDevice(r.V.Name))
 		return nil
 	case d.Part == nil:
 		return nil
@@ -112,6 +113,7 @@ func (g *Graph) addBonds() {
 			g.bonds[b.To] = append(g.bonds[b.To], b)
 		}
 	}
+	g.findEarth()
 }
 
 func (g *Graph) bonded(r source.Val[Ref], on string) *Device {
@@ -121,7 +123,7 @@ func (g *Graph) bonded(r source.Val[Ref], on string) *Device {
 	d := g.devices[r.V.Name]
 	if d == nil {
 		g.hole(BadRef, r.At, on, "the plan has no device "+source.Quote(r.V.Name),
-			didYouMean(source.Nearest(r.V.Name, sortedKeys(g.devices)), "add it, or correct the name"))
+			g.guessDevice(r.V.Name))
 	}
 	return d
 }
@@ -172,7 +174,7 @@ func (g *Graph) operator(o source.Val[string], on string) {
 			return
 		}
 	}
-	g.hole(BadRef, o.At, on, "the plan has no operator "+source.Quote(o.V), didYouMean(source.Nearest(o.V, known), "add it, or correct the name"))
+	g.hole(BadRef, o.At, on, "the plan has no operator "+source.Quote(o.V), g.guess(o.V, slices.Values(known), "add it, or correct the name"))
 }
 
 func (g *Graph) readingRef(r source.Val[Ref], on string) {

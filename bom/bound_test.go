@@ -1,0 +1,8 @@
+//go:build !race
+
+package bom_test
+
+import "time"
+
+// bound is how long following one plan may take.
+const bound = time.Second
