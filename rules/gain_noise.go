@@ -5,6 +5,7 @@ import (
 
 	"driploop/bom"
 	"driploop/catalog/unit"
+	"driploop/rules/limits"
 	"driploop/rules/rf"
 )
 
@@ -16,6 +17,7 @@ var gainNoise = &Rule{
 		house("reference_dbm (18 dBm where it says nothing, ± 3 dB)")},
 	Caution: mindOperator,
 	Weight:  Punch,
+	Lighter: "advice where only a limit that depends on the received level is in question and the amplifier keeps it by itself (network_protection)",
 	Grave:   true,
 	Check: func(c *Case, r *Report) {
 		for _, direction := range directions {
@@ -32,22 +34,36 @@ var gainNoise = &Rule{
 // off reports a direction that is known to have no gain left.
 func (d *Direction) off() bool { return d.Runs.OK && !d.Runs.V.On }
 
+// checkPortNoise holds the noise of one direction against the rows of the band, and
+// where those hold against the ones that depend on the site, which an amplifier with
+// network protection keeps by itself.
 func checkPortNoise(c *Case, r *Report, x *BandChain, d *Direction) {
-	a := c.Profile.Assess(x.query("noise_per_mhz", d.Name), x.inputs())
-	if a.None() || d.off() {
+	q := x.query("noise_per_mhz", d.Name)
+	a, site := c.gainLimit(x, q, false), c.gainLimit(x, q, true)
+	if a.None() && site.None() || d.off() {
 		return
 	}
 	k := c.portNoise(x, d)
-	switch lacks := slices.Concat(k.Lacks, c.rowsLack(x, a)); {
-	case k.OK && a.Exceeded(k.V):
-		gain, nf := float64(d.Runs.V.Gain), d.Spec.NF.V
-		r.Fails(x.settingAt(), x.Amp.On(), "%s puts out %s dBm/MHz of %s noise in %s: %s + noise figure %s dB + gain that runs %s dB; the limit is %s dBm/MHz (%s)", x.Amp.ID,
-			unit.Fixed(k.V, 2), d.Name, x.Band.Name, unit.Fixed(k.V-gain-nf, 2), plainFigure(nf), hundredths(gain), unit.Fixed(a.Value, 2), x.formula(a.Row)).
-			Then("set it back: set = { %s = { back_off_db = %s } }, or take an amplifier with a lower noise figure", x.Band.Name, x.backOff(d, gain-(k.V-a.Value))).
-			InBand(x.Band.Name).Over("noise_dbm_per_mhz", k.V, "limit_dbm_per_mhz", a.Value).By(c.citation(a.Row)).Beside(d.Spec.NF.At, "its noise figure")
+	lacks := slices.Concat(k.Lacks, c.rowsLack(x, a), c.rowsLack(x, site))
+	switch protects := x.Amp.Part.Amplifier.NetworkProtection.V; {
+	case k.OK && a.Exceeded(k.V) && (!site.Exceeded(k.V) || a.Value < site.Value || protects):
+		x.noisy(c, r.Fails, d, k.V, a)
+	case k.OK && site.Exceeded(k.V) && protects:
+		x.noisy(c, r.Advice, d, k.V, site).Says += "; its network protection keeps it there"
+	case k.OK && site.Exceeded(k.V):
+		x.noisy(c, r.Fails, d, k.V, site)
 	case len(lacks) > 0:
 		x.unassessed(r, "the "+d.Name+" noise at the port", dedupe(lacks))
 	}
+}
+
+// noisy shows the sum.
+func (x *BandChain) noisy(c *Case, report reportFunc, d *Direction, v float64, a limits.Assessment) *Finding {
+	gain, nf := float64(d.Runs.V.Gain), d.Spec.NF.V
+	return report(x.settingAt(), x.Amp.On(), "%s puts out %s dBm/MHz of %s noise in %s: %s + noise figure %s dB + gain that runs %s dB; the limit is %s dBm/MHz (%s)", x.Amp.ID,
+		unit.Fixed(v, 2), d.Name, x.Band.Name, unit.Fixed(v-gain-nf, 2), plainFigure(nf), hundredths(gain), unit.Fixed(a.Value, 2), x.formula(a.Row)).
+		Then("set it back: set = { %s = { back_off_db = %s } }, or take an amplifier with a lower noise figure", x.Band.Name, x.backOff(d, gain-(v-a.Value))).
+		InBand(x.Band.Name).Over("noise_dbm_per_mhz", v, "limit_dbm_per_mhz", a.Value).By(c.citation(a.Row)).Beside(d.Spec.NF.At, "its noise figure")
 }
 
 // portNoise is the noise that the amplifier puts out in 1 MHz at the gain that
