@@ -18,6 +18,7 @@ type Block struct {
 	Text  []string
 	Items []Item
 	Table *Grid
+	how   ink // of the sentences, on a terminal
 }
 
 // Item is a line with a name to look it up by; without one it is a bullet.
@@ -27,7 +28,11 @@ type Item struct{ Name, Text string }
 type Grid struct {
 	Columns []string
 	Rows    [][]string
+	Words   int // how many columns hold words, from the first on; 0 is one. The others hold figures
 }
+
+// isWords reports a column that holds words.
+func (g *Grid) isWords(i int) bool { return i < max(1, g.Words) }
 
 // Text lays the page out for a terminal or a log.
 func (d *Document) Text(page Page) ([]byte, error) {
@@ -39,7 +44,7 @@ func (d *Document) Text(page Page) ([]byte, error) {
 			s.para("", fine, Clean(b.Head))
 		}
 		for _, t := range b.Text {
-			s.para("", plain, Clean(t))
+			s.para("", b.how, Clean(t))
 		}
 		s.items(b.Items)
 		if err := s.grid(b.Table); err != nil {
@@ -77,14 +82,15 @@ func (s *sheet) items(items []Item) {
 	}
 }
 
-// grid writes a table; where the page is too narrow for it, each row is a line.
+// grid writes a table; where the page is too narrow for it, each row is a line under
+// the title of the first column.
 func (s *sheet) grid(g *Grid) error {
 	if g == nil {
 		return nil
 	}
 	var columns []column
 	for i, c := range g.Columns {
-		columns = append(columns, column{c, i > 0})
+		columns = append(columns, column{c, !g.isWords(i)})
 	}
 	rows := make([][]Term, len(g.Rows))
 	for i, r := range g.Rows {
@@ -100,14 +106,19 @@ func (s *sheet) grid(g *Grid) error {
 		s.b.WriteString(string(text))
 		return nil
 	}
+	s.hang("  ", plain, 2, plain, Clean(g.Columns[0]))
 	for _, r := range g.Rows {
 		var cells []string
 		for i, c := range r[1:] {
-			if c != "" {
+			switch {
+			case c == "":
+			case g.isWords(i + 1):
+				cells = append(cells, c)
+			default:
 				cells = append(cells, g.Columns[i+1]+" "+c)
 			}
 		}
-		s.hang("  ", plain, 4, plain, Terms("%s: %s", r[0], strings.Join(cells, ", ")))
+		s.hang("    ", plain, 6, plain, Terms("%s: %s", r[0], strings.Join(cells, ", ")))
 	}
 	return nil
 }
@@ -167,7 +178,15 @@ func gridMD(g *Grid) string {
 		}
 		return out + "\n"
 	}
-	out := "\n" + row(g.Columns) + "|---" + strings.Repeat("|---:", len(g.Columns)-1) + "|\n"
+	out := "\n" + row(g.Columns)
+	for i := range g.Columns {
+		if g.isWords(i) {
+			out += "|---"
+		} else {
+			out += "|---:"
+		}
+	}
+	out += "|\n"
 	for _, r := range g.Rows {
 		out += row(r)
 	}
