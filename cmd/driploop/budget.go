@@ -2,12 +2,10 @@ package main
 
 import (
 	"errors"
-	"fmt"
 
 	"github.com/spf13/cobra"
 
 	"driploop/cmd/driploop/show"
-	"driploop/rules"
 )
 
 func (c *Command) budget() *cobra.Command {
@@ -42,7 +40,7 @@ arrives there. --terms shows every addend.`,
 			if broken {
 				return errors.New(e.Path + " cannot be read whole; inspect says why")
 			}
-			b, err := budgetAs(cs.Budget(), form, page, terms)
+			b, err := budgetAs(&show.Budget{Budget: cs.Budget(), Terms: terms}, form, page)
 			if err != nil {
 				return failure{err}
 			}
@@ -53,12 +51,14 @@ arrives there. --terms shows every addend.`,
 	return cmd
 }
 
-func budgetAs(b *rules.Budget, form string, page show.Page, terms bool) ([]byte, error) {
+func budgetAs(b *show.Budget, form string, page show.Page) ([]byte, error) {
 	switch form {
 	case "json":
-		return show.BudgetJSON(b)
-	case "text":
-		return show.BudgetText(b, page, terms)
+		return b.JSON()
+	case "csv":
+		return b.CSV()
+	case "markdown":
+		return b.Markdown(), nil
 	}
-	return nil, fmt.Errorf("the form %s is not made yet", form)
+	return b.Text(page)
 }

@@ -2,312 +2,314 @@ package show
 
 import (
 	"fmt"
+	"slices"
 	"sort"
 	"strings"
 
 	"driploop/catalog/unit"
 	"driploop/rules"
-	"driploop/rules/rf"
 )
 
-// BudgetText writes a radio chain for a lead who is about to sign: the tightest
-// margin on top, then one block for each band and direction.
-func BudgetText(b *rules.Budget, page Page, terms bool) ([]byte, error) {
-	t := &budgetText{sheet: &sheet{page: page}, terms: terms}
-	t.head(b)
-	for _, x := range b.Bands {
-		if err := t.band(x); err != nil {
-			return nil, err
-		}
-	}
-	if err := t.areas(b.Areas); err != nil {
-		return nil, err
-	}
-	t.para("", faint, "Losses: least is the coldest and best matched, greatest the hottest and worst. EIRP limits meet the least, levels the greatest.")
-	return []byte(t.b.String()), nil
+// Budget is the radio chain of a plan, ready to be shown: what a lead reads before
+// signing. The smallest margin stands on top, then one block for each band.
+type Budget struct {
+	*rules.Budget
+	Terms bool // with every addend
 }
 
-type budgetText struct {
-	*sheet
-	terms bool
-}
+// Text writes the chain as text, in tables where the page is wide enough for them.
+func (b *Budget) Text(page Page) ([]byte, error) { return b.document().Text(page) }
 
-func (t *budgetText) head(b *rules.Budget) {
+// Markdown writes the chain for a pull request.
+func (b *Budget) Markdown() []byte { return b.document().Markdown() }
+
+func (b *Budget) document() *Document {
 	p := b.Case.Plan
-	title := p.ID
+	d := &Document{Title: p.ID}
 	if p.Job.Title.Set {
-		title += " · " + p.Job.Title.V
+		d.Title += " · " + p.Job.Title.V
 	}
-	t.para("", strong, Clean(title))
-	t.para("", faint, Terms("limits %s, %s", or(b.Case.ProfileName(), "none named"), b.Case.Today()))
-	if len(b.Bands) == 0 {
-		t.para("", plain, "No amplifier and no router works in a planned band.")
-		return
+	d.Blocks = append(d.Blocks, b.about(), b.verdict())
+	groups := b.groups()
+	d.Blocks = append(d.Blocks, b.summary(groups)...)
+	d.Blocks = append(d.Blocks, b.sharedIsolation(groups)...)
+	for _, g := range groups {
+		d.Blocks = append(d.Blocks, b.band(g)...)
 	}
-	how, text := fine, tightest(b)
-	if strings.HasPrefix(text, "Beyond") {
-		how = stop
-	}
-	t.para("", how, Clean(text))
-	t.gap()
+	d.Blocks = append(d.Blocks, b.routers()...)
+	d.Blocks = append(d.Blocks, b.areas()...)
+	d.Blocks = append(d.Blocks, b.howToRead()...)
+	return d
 }
 
-// tightest is the smallest margin of all limits in words.
-func tightest(b *rules.Budget) string {
-	var best *rules.LimitCheck
-	var band *rules.BudgetBand
-	open := 0
-	for _, x := range b.Bands {
-		for i := range x.Limits {
-			l := &x.Limits[i]
-			m, ok := l.Margin()
-			if l.Outcome == "unknown" {
-				open++
-			}
-			if !ok || l.Outcome == "advice" {
-				continue // what the amplifier keeps by itself is not the tightest
-			}
-			if best == nil {
-				best, band = l, x
-				continue
-			}
-			if old, _ := best.Margin(); m < old {
-				best, band = l, x
-			}
-		}
-	}
-	if best == nil {
-		return "No limit could be assessed."
-	}
-	m, _ := best.Margin()
-	lead := "Tightest"
-	if best.Outcome == "fails" {
-		lead = "Beyond a limit"
-	}
-	out := fmt.Sprintf("%s: %s in %s, %s, %s %s against %s, margin %s dB.", lead, best.Rule, band.Band, band.Direction,
-		unit.Fixed(best.Value.V, 2), best.Unit, unit.Fixed(best.Limit.V, 2), unit.Fixed(m, 2))
-	if open > 0 {
-		out += fmt.Sprintf(" %s not assessed.", words(open, "limit is", "limits are"))
+// about says what the figures were made from.
+func (b *Budget) about() Block {
+	c := b.Case
+	out := Block{how: faint, Text: []string{fmt.Sprintf("%s, stage %s, limits %s; %s, on %s.", c.Plan.File.Path, c.Stage(),
+		or(c.ProfileName(), "none named"), treeName(c.Firm.Tree.Name()), c.Today())}}
+	for _, o := range c.Firm.Overrides() {
+		out.Items = append(out.Items, Item{Text: "changed here: " + o})
 	}
 	return out
 }
 
-func (t *budgetText) band(x *rules.BudgetBand) error {
-	t.para("", strong, Terms("%s %s, %s, %s", x.Band, x.Direction, x.Device.ID, x.MHz))
-	t.para("  ", plain, Clean(runsWords(x)))
-	for _, l := range x.Lines {
-		t.line1(l)
-	}
-	if x.Worst != nil {
-		w := x.Worst.Worst
-		t.para("  ", plain, Terms("EIRP at rated output, worst at %s: %s dBm + %s dBi − %s dB = %s dBm from %s", w.MHz,
-			unit.Fixed(w.Out.Value(), 1), unit.Fixed(float64(w.Gain), 1), unit.Fixed(float64(w.Line.Loss.Least), 2), unit.Fixed(w.EIRP.Most.Value(), 2), x.Worst.Node.Name()))
-	}
-	if x.Direction == "downlink" && x.EIRP.OK {
-		t.para("  ", plain, Terms("EIRP that runs: %s dBm", unit.Fixed(x.EIRP.V.Value(), 2)))
-	}
-	for _, ch := range x.Chains {
-		if err := t.chain(ch); err != nil {
-			return err
+// check is one limit with the band and direction that it is about.
+type check struct {
+	*rules.LimitCheck
+	band *rules.BudgetBand
+}
+
+// checks are all limits of some bands, the smallest margin first, and those without
+// one last.
+func checks(bands ...*rules.BudgetBand) []check {
+	var out []check
+	for _, x := range bands {
+		if x == nil {
+			continue
+		}
+		for i := range x.Limits {
+			out = append(out, check{&x.Limits[i], x})
 		}
 	}
-	if err := t.limits(x); err != nil {
-		return err
-	}
-	t.gap()
-	return nil
-}
-
-// runsWords says what gain runs and what binds it.
-func runsWords(x *rules.BudgetBand) string {
-	var out []string
-	if x.Input.OK {
-		out = append(out, "in "+unit.Fixed(x.Input.V.Value(), 1)+" dBm")
-	}
-	if x.Set.OK {
-		out = append(out, "set "+unit.Fixed(float64(x.Set.V), 1)+" dB")
-	}
-	switch {
-	case x.Runs.OK && x.Runs.V.On:
-		out = append(out, fmt.Sprintf("runs at %s dB, bound by %s", unit.Fixed(float64(x.Runs.V.Gain), 1), x.Runs.V.By))
-	case x.Runs.OK:
-		out = append(out, fmt.Sprintf("off: %s leaves no gain", x.Runs.V.By))
-	case len(x.Runs.Lacks) > 0:
-		out = append(out, "gain that runs not assessed: it lacks "+lackList(x.Runs.Lacks))
-	}
-	if len(out) == 0 {
-		return "transmits by itself"
-	}
-	return strings.Join(out, ", ")
-}
-
-func lackList(lacks []rules.Lack) string {
-	var out []string
-	for _, l := range lacks {
-		out = append(out, l.What)
-	}
-	return strings.Join(out, ", ")
-}
-
-func (t *budgetText) line1(l rules.BudgetLine) {
-	name := fmt.Sprintf("%s %s", l.Line.Kind, l.Line.Name())
-	if !l.Sum.Known() {
-		t.para("  ", plain, Terms("%s: not assessed, it lacks %s", name, lackList(l.Sum.Missing)))
-		return
-	}
-	t.para("  ", plain, Terms("%s: %s dB at least, %s dB at most", name, unit.Fixed(float64(l.Sum.Loss.Least), 2), unit.Fixed(float64(l.Sum.Loss.Greatest), 2)))
-	if t.terms {
-		for _, a := range l.Sum.Terms {
-			t.para("    ", faint, Terms("%s  %s", spread(a.Loss), a.What))
-		}
-	}
-}
-
-// spread prints a loss, or its least and greatest where they differ.
-func spread(l rf.Loss) string {
-	if l.Least == l.Greatest {
-		return unit.Fixed(float64(l.Nominal), 3)
-	}
-	return unit.Fixed(float64(l.Least), 3) + "…" + unit.Fixed(float64(l.Greatest), 3)
-}
-
-func (t *budgetText) chain(ch rules.StageChain) error {
-	if len(ch.Lacks) > 0 {
-		t.para("  ", plain, Terms("%s to %s not assessed: it lacks %s", ch.From, ch.To, lackList(ch.Lacks)))
-		return nil
-	}
-	t.para("  ", plain, Terms("%s to %s, from %s dBm:", ch.From, ch.To, unit.Fixed(ch.Start.Value(), 1)))
-	var rows [][]Term
-	for _, s := range ch.Stages {
-		at := s.At
-		if s.Held {
-			at += " (held at rated output)"
-		}
-		rows = append(rows, []Term{Clean(at), Clean(unit.Fixed(float64(s.Gain), 2)), Clean(unit.Fixed(float64(s.Total), 2)),
-			Clean(unit.Fixed(float64(s.NF), 2)), Clean(unit.Fixed(s.Level.Value(), 1))})
-	}
-	text, err := table(4, []column{{"stage", false}, {"gain dB", true}, {"total dB", true}, {"NF dB", true}, {"level dBm", true}}, rows)
-	if err != nil {
-		return err
-	}
-	t.b.WriteString(string(text))
-	return nil
-}
-
-func (t *budgetText) limits(x *rules.BudgetBand) error {
-	checks := append([]rules.LimitCheck(nil), x.Limits...)
-	sort.SliceStable(checks, func(i, j int) bool {
-		a, aok := checks[i].Margin()
-		b, bok := checks[j].Margin()
+	sort.SliceStable(out, func(i, j int) bool {
+		a, aok := out[i].Margin()
+		b, bok := out[j].Margin()
 		return aok && (!bok || a < b)
 	})
-	var rows [][]Term
-	for _, l := range checks {
-		value, limit, margin := "?", "?", "?"
-		if l.Value.OK {
-			value = unit.Fixed(l.Value.V, 2)
-			if l.Tolerance > 0 {
-				value += " ±" + unit.Fixed(l.Tolerance, 1)
-			}
-		}
-		if l.Limit.OK {
-			limit = unit.Fixed(l.Limit.V, 2)
-		}
-		if m, ok := l.Margin(); ok {
-			margin = unit.Fixed(m, 2)
-		}
-		rows = append(rows, []Term{Clean(l.Rule), Clean(value), Clean(limit), Clean(margin), Clean(l.Unit), Clean(outcomeWords(l.Outcome))})
-	}
-	if len(rows) == 0 {
-		return nil
-	}
-	text, err := table(2, []column{{"limit", false}, {"value", true}, {"limit", true}, {"margin", true}, {"unit", false}, {"", false}}, rows)
-	if err != nil {
-		return err
-	}
-	t.b.WriteString(string(text))
-	if t.terms {
-		for _, l := range checks {
-			if l.Formula != "" {
-				t.para("    ", faint, Terms("%s: %s; %s", l.Rule, l.Formula, l.Basis))
-			}
-			if len(l.Limit.Lacks) > 0 {
-				t.para("    ", faint, Terms("%s lacks %s", l.Rule, lackList(l.Limit.Lacks)))
-			}
-		}
-	}
-	return nil
+	return out
 }
 
-func outcomeWords(o string) string {
-	switch o {
+// name is the rule, with the direction where the rule does not say it.
+func (c check) name() string {
+	if strings.Contains(c.Rule, c.band.Direction) || c.Rule == "gain/radio-eirp" {
+		return c.Rule
+	}
+	return c.Rule + " (" + c.band.Direction + ")"
+}
+
+func (c check) value() string {
+	if !c.Value.OK {
+		return "?"
+	}
+	out := unit.Fixed(c.Value.V, 2)
+	if c.Tolerance > 0 {
+		out += " ± " + unit.Fixed(c.Tolerance, 1)
+	}
+	return out
+}
+
+func (c check) limit() string { return orUnknown(c.Limit.V, c.Limit.OK, 2) }
+
+func (c check) margin() string {
+	m, ok := c.Margin()
+	return orUnknown(m, ok, 2)
+}
+
+// binds reports a limit that its figure has a margin to, and that the amplifier does
+// not keep by itself.
+func (c check) binds() bool {
+	_, ok := c.Margin()
+	return ok && c.Outcome != "advice"
+}
+
+func (c check) outcome() string {
+	switch c.Outcome {
 	case "fails":
-		return "BEYOND"
+		return "EXCEEDED"
 	case "at-worst":
-		return "within tolerance only"
+		return "nominal only"
 	case "unknown":
 		return "not assessed"
 	case "advice":
-		return "network protection keeps it"
+		return "protected"
 	}
 	return "holds"
 }
 
-func (t *budgetText) areas(all []*rules.AreaReach) error {
-	if len(all) == 0 {
-		return nil
+func orUnknown(v float64, ok bool, decimals int) string {
+	if !ok {
+		return "?"
 	}
-	t.line(0, strong, "Areas")
-	var rows [][]Term
-	for _, r := range all {
-		after, before, target, up := "not assessed", "", "", "?"
-		if r.RSRP.OK {
-			after = unit.Fixed(r.RSRP.V.Value(), 1)
-			if r.Doubt > 0 {
-				after += " ±" + unit.Fixed(float64(r.Doubt), 0)
-			}
-		}
-		if r.Before.Set {
-			before = unit.Fixed(r.Before.V, 0)
-		}
-		if r.Area.Target.Set {
-			target = unit.Fixed(r.Area.Target.V, 0)
-		}
-		if r.Up.OK {
-			up = unit.Fixed(float64(r.Up.V.Level.Minus(r.Up.V.Needed)), 1)
-		}
-		rows = append(rows, []Term{Clean(r.Area.Name.V), Clean(r.Signal.Band.V), Clean(r.Signal.Operator.V), Clean(before), Clean(after), Clean(target), Clean(up), Clean(r.Ends())})
-	}
-	text, err := table(2, []column{{"area", false}, {"band", false}, {"operator", false}, {"before", true}, {"RSRP dBm", true}, {"target", true}, {"uplink margin", true}, {"limits", false}}, rows)
-	if err != nil {
-		return err
-	}
-	t.b.WriteString(string(text))
-	if t.terms {
-		for _, r := range all {
-			t.para("  ", plain, Terms("%s, %s, %s at %s:", r.Area.Name.V, r.Signal.Band.V, r.Signal.Operator.V, r.MHz))
-			if !r.RSRP.OK {
-				t.para("    ", faint, Terms("lacks %s", lackList(r.RSRP.Lacks)))
-				continue
-			}
-			t.para("    ", faint, Terms("survey %s%s = %s dBm", unit.Fixed(r.Signal.RSRP.V, 1), reachSum(r.Terms), unit.Fixed(r.RSRP.V.Value(), 2)))
-			if r.Up.OK {
-				t.para("    ", faint, Terms("uplink from a phone of 23 dBm%s = %s dBm, needed %s dBm", reachSum(r.Up.V.Terms), unit.Fixed(r.Up.V.Level.Value(), 2), unit.Fixed(r.Up.V.Needed.Value(), 1)))
-			}
-		}
-	}
-	t.gap()
-	return nil
+	return unit.Fixed(v, decimals)
 }
 
-func reachSum(terms []rules.ReachTerm) string {
-	var b strings.Builder
-	for _, a := range terms {
-		sign, v := "+", float64(a.DB)
-		if v < 0 {
-			sign, v = "−", -v
-		}
-		fmt.Fprintf(&b, " %s %s %s", sign, unit.Fixed(v, 2), a.What)
+// verdict counts the limits, names the tightest, and says what is left out.
+func (b *Budget) verdict() Block {
+	all := checks(b.Bands...)
+	n := map[string]int{}
+	for _, c := range all {
+		n[c.Outcome]++
 	}
-	return b.String()
+	out := Block{how: fine}
+	if n["fails"] > 0 {
+		out.how = stop
+	}
+	if len(all) > 0 {
+		out.Text = append(out.Text, verdictWords(n, len(all)))
+	}
+	for _, c := range all {
+		if c.binds() {
+			out.Text = append(out.Text, c.sentence())
+			break
+		}
+	}
+	for _, notice := range b.Notices() {
+		out.Items = append(out.Items, Item{Text: notice + "."})
+	}
+	return out
+}
+
+// sentence names a limit with its figures, as the one that a reader must know of.
+func (c check) sentence() string {
+	lead := "Tightest"
+	if c.Outcome == "fails" {
+		lead = "Furthest beyond"
+	}
+	return fmt.Sprintf("%s: %s in %s of %s, %s %s against %s, margin %s dB.", lead, c.name(), c.band.Band, c.band.Device.ID, c.value(), c.Unit, c.limit(), c.margin())
+}
+
+// verdictWords counts outcomes in words.
+func verdictWords(n map[string]int, all int) string {
+	limits := words(all, "limit", "limits")
+	var more []string
+	if n["at-worst"] > 0 {
+		more = append(more, fmt.Sprintf("%d at nominal figures only", n["at-worst"]))
+	}
+	if n["advice"] > 0 {
+		more = append(more, fmt.Sprintf("%d kept by the amplifier itself", n["advice"]))
+	}
+	if n["unknown"] > 0 {
+		more = append(more, fmt.Sprintf("%d not assessed", n["unknown"]))
+	}
+	out := fmt.Sprintf("Of %s %d %s", limits, n["holds"], verb(n["holds"], "holds", "hold"))
+	switch {
+	case n["fails"] > 0:
+		out = fmt.Sprintf("Of %s %d %s exceeded", limits, n["fails"], verb(n["fails"], "is", "are"))
+		more = append([]string{fmt.Sprintf("%d %s", n["holds"], verb(n["holds"], "holds", "hold"))}, more...)
+	case n["unknown"] == all:
+		return fmt.Sprintf("None of %s could be assessed.", limits)
+	case len(more) == 0:
+		return "All " + limits + " hold."
+	}
+	return out + ", " + strings.Join(more, ", ") + "."
+}
+
+func verb(n int, one, many string) string {
+	if n == 1 {
+		return one
+	}
+	return many
+}
+
+// group is both directions of an amplifier in one band.
+type group struct {
+	name     string // "B12", with the amplifier's where there are several
+	chain    *rules.BandChain
+	up, down *rules.BudgetBand
+	apart    string // the isolation in words, where other bands have another
+}
+
+func (g *group) both() []*rules.BudgetBand { return []*rules.BudgetBand{g.up, g.down} }
+
+// first is a direction that there is.
+func (g *group) first() *rules.BudgetBand {
+	if g.up != nil {
+		return g.up
+	}
+	return g.down
+}
+
+// groups are the amplifiers' bands in the order of the plan.
+func (b *Budget) groups() []*group {
+	var out []*group
+	amps := map[string]bool{}
+	for _, x := range b.Case.Chain().Bands {
+		g := &group{name: x.Band.Name, chain: x}
+		for _, d := range b.Bands {
+			switch {
+			case d.Device != x.Amp || d.Band != x.Band.Name:
+			case d.Direction == "uplink":
+				g.up = d
+			default:
+				g.down = d
+			}
+		}
+		if g.first() != nil {
+			out = append(out, g)
+			amps[x.Amp.ID] = true
+		}
+	}
+	if len(amps) > 1 {
+		for _, g := range out {
+			g.name += " " + g.chain.Amp.ID
+		}
+	}
+	return out
+}
+
+// summary is a row for each band of an amplifier, the smallest margin first.
+func (b *Budget) summary(groups []*group) []Block {
+	if len(groups) < 2 {
+		return nil
+	}
+	sorted := append([]*group(nil), groups...)
+	sort.SliceStable(sorted, func(i, j int) bool {
+		a, aok := sorted[i].tightest()
+		b, bok := sorted[j].tightest()
+		return aok && (!bok || a.Limit.V-a.Value.V < b.Limit.V-b.Value.V)
+	})
+	grid := &Grid{Words: 2, Columns: []string{"band", "tightest limit", "margin", "uplink", "downlink"}}
+	for _, g := range sorted {
+		row := []string{g.name, "not assessed", ""}
+		if c, ok := g.tightest(); ok {
+			row[1], row[2] = c.name(), c.margin()
+		}
+		for _, d := range g.both() {
+			gain, by := gainThatRuns(d)
+			row = append(row, strings.TrimSpace(gain+" "+by))
+		}
+		grid.Rows = append(grid.Rows, row)
+	}
+	return []Block{{Head: "Smallest margins, and the gain that runs, in dB", Table: grid}}
+}
+
+// tightest is the limit with the smallest margin.
+func (g *group) tightest() (check, bool) {
+	for _, c := range checks(g.both()...) {
+		if c.binds() {
+			return c, true
+		}
+	}
+	return check{}, false
+}
+
+// gainThatRuns is the gain and what binds it, in words.
+func gainThatRuns(d *rules.BudgetBand) (gain, by string) {
+	switch {
+	case d == nil:
+		return "", ""
+	case !d.Runs.OK:
+		return "?", ""
+	case !d.Runs.V.On:
+		return "off", string(d.Runs.V.By)
+	}
+	return unit.Fixed(float64(d.Runs.V.Gain), 1), string(d.Runs.V.By)
+}
+
+// howToRead explains what the tables do not say by themselves.
+func (b *Budget) howToRead() []Block {
+	out := Block{how: faint}
+	if len(b.Bands) > 0 {
+		out.Text = append(out.Text, "A loss is printed as least…greatest: the least is the coldest and best matched, the greatest the hottest and worst. Limits meet the least, levels the greatest.")
+	}
+	if slices.ContainsFunc(b.Bands, func(x *rules.BudgetBand) bool { return len(x.Chains) > 0 }) {
+		out.Text = append(out.Text, "Stages: the level at the first antenna's port, its line, the level at the amplifier, the gain that runs, the level behind it (* held at the rated output), the other line, the level at the last antenna's port; gain and noise figure of the whole. Uplink from a phone of 23 dBm at the distance of certification, downlink from what the survey brings at full load.")
+	}
+	if len(b.Areas) > 0 {
+		out.Text = append(out.Text, "Areas: the level at a phone from the weakest of the antennas that serve it. The uplink margin is what a phone arrives with above what a base station needs (* held at the rated output).")
+	}
+	if len(out.Text) == 0 {
+		return nil
+	}
+	return []Block{out}
 }
