@@ -1,6 +1,8 @@
 package rules
 
 import (
+	"slices"
+
 	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/source"
@@ -311,9 +313,12 @@ func couplingOf(d *bom.Device) string {
 }
 
 // bscl is the coupling loss to the base station as the profile has it found: from
-// the strongest channel, which is the base station that comes closest.
+// the strongest channel, which is the base station that comes closest. Only where
+// nobody surveyed anything is it what the profile assumes; a survey that cannot be
+// added up leaves it open.
 func (c *Case) bscl(x *BandChain) (limits.Input, string) {
-	if c.Profile == nil {
+	surveyed := !x.Loud.OK && !slices.ContainsFunc(x.Loud.Lacks, func(l Lack) bool { return l.What == noSurvey })
+	if c.Profile == nil || surveyed {
 		return limits.Input{}, ""
 	}
 	return c.Profile.BSCLFrom(limits.Input{}, limits.Figure(x.Loud.V.Value(), x.Loud.OK))

@@ -48,6 +48,9 @@ func loudestOf(levels []unit.DBm) Known[unit.DBm] {
 	return Known[unit.DBm]{V: top, OK: ok}
 }
 
+// noSurvey is what is missing where the plan has no signal in the band.
+const noSurvey = "a survey ([[signal]])"
+
 // signals are the surveyed signals in the amplifier's band as they come in through
 // a feed.
 func (c *Case) signals(x *BandChain, feed *bom.Line) Known[[]rf.Signal] {
@@ -68,7 +71,7 @@ func (c *Case) signals(x *BandChain, feed *bom.Line) Known[[]rf.Signal] {
 		out = append(out, k.V)
 	}
 	if len(out) == 0 {
-		return unknown[[]rf.Signal](c.JobAt(), "a survey ([[signal]])")
+		return unknown[[]rf.Signal](c.JobAt(), noSurvey)
 	}
 	return known(out)
 }

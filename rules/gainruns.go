@@ -114,7 +114,7 @@ func (x *BandChain) lacking(open []limits.Open) []Lack {
 
 // lack says what stands behind one input or selector of a row.
 func (x *BandChain) lack(name string) []Lack {
-	behind := map[string][]Lack{"RSSI": x.RSSI.Lacks, "MSCL": x.MSCL.Lacks}[name]
+	behind := map[string][]Lack{"RSSI": x.RSSI.Lacks, "MSCL": x.MSCL.Lacks, "BSCL": x.Loud.Lacks}[name]
 	if len(behind) > 0 {
 		return behind
 	}
