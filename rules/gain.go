@@ -34,6 +34,7 @@ var gainProfile = &Rule{
 	Lighter: "an amplifier with network protection lowers its gain by itself: then it is said as advice, with the gain that will run",
 	Grave:   true,
 	Check: func(c *Case, r *Report) {
+		c.sayNoPart(r)
 		if !c.haveLimits(r) {
 			return
 		}
@@ -53,10 +54,25 @@ var gainAmplifier = &Rule{
 	Weight:  Hold,
 	Grave:   true,
 	Check: func(c *Case, r *Report) {
+		for _, d := range c.amplifiers() {
+			settingsLead(r, d)
+		}
 		for _, direction := range directions {
 			c.eachDirection(direction, func(x *BandChain, d *Direction) { checkGain(c, r, x, d, false) })
 		}
 	},
+}
+
+// settingsLead says where an amplifier is set in a band that it has no row for: the
+// setting goes nowhere, and a slip in it would leave another band at full gain.
+func settingsLead(r *Report, d *bom.Device) {
+	for _, s := range d.Row.Set {
+		b, known := catalog.LookBand(s.Name)
+		if row, _ := ampRow(d.Part.Amplifier, b); known && row == nil {
+			r.Advice(s.At, d.On(), "%s is set back in %s, and part %s has no row for it; nothing is set by that", d.ID, s.Name, d.Part.ID).
+				Then("name a band of the amplifier: %s", list(words(ampBands(d.Part.Amplifier))))
+		}
+	}
 }
 
 var directions = []string{"uplink", "downlink"}
@@ -214,12 +230,16 @@ func (x *BandChain) formula(row *limits.Row) string {
 	out := row.Formula()
 	var with []string
 	in := x.inputs()
+	f := in.UplinkMid
+	if row.FAt.V == "downlink-mid" {
+		f = in.DownlinkMid
+	}
 	for _, t := range []struct {
 		k, v float64
 		name string
 		unit string
 	}{
-		{row.KF.V, in.UplinkMid.V, "f", "MHz"}, {row.KR.V, in.RSSI.V, "RSSI", "dBm"},
+		{row.KF.V, f.V, "f", "MHz"}, {row.KR.V, in.RSSI.V, "RSSI", "dBm"},
 		{row.KM.V, in.MSCL.V, "MSCL", "dB"}, {row.KB.V, in.BSCL.V, "BSCL", "dB"},
 	} {
 		if t.k != 0 {
@@ -252,6 +272,17 @@ func (c *Case) sayCutOff(r *Report) {
 			said[x.Amp] = true
 			r.Unknown(partAt(x.Amp), x.Amp.On(), "%s has no whole line to a donor antenna and to where the phones are; what comes in and what it radiates is not assessed", x.Amp.ID).
 				Then("connect it")
+		}
+	}
+}
+
+// sayNoPart says of an amplifier that is there already and that nobody knows the
+// part of that nothing is assessed of it.
+func (c *Case) sayNoPart(r *Report) {
+	for _, d := range c.Graph.Devices {
+		if d.Part == nil && !d.Row.Part.Set && d.Kind() == "amplifier" {
+			r.Unknown(d.At, d.On(), "%s is an amplifier and no part is named for it; its gain and power are not assessed", d.ID).
+				Then("read its label, add it to the catalog, and name it as part")
 		}
 	}
 }
