@@ -3,6 +3,7 @@ package rules
 import (
 	"driploop/bom"
 	"driploop/catalog"
+	"driploop/catalog/unit"
 )
 
 // emitter is one antenna with what it radiates in each band.
@@ -12,10 +13,10 @@ type emitter struct {
 	lacks  []Lack
 }
 
-// emission is what an antenna radiates in one band at its worst edge.
+// emission is what an antenna radiates at the edges and in the middle of a band.
 type emission struct {
 	band string
-	rad  Radiation
+	at   []Radiation
 }
 
 // emitters lists the antennas that amplifiers and routers transmit from, those that
@@ -25,12 +26,16 @@ func (c *Case) emitters() []*emitter {
 	for _, x := range c.Chain().Bands {
 		for _, d := range x.directions() {
 			for i := range d.Antennas {
-				all.add(x.Band, &d.Antennas[i])
+				all.add(c, x.Band, d.Span, &d.Antennas[i])
 			}
 		}
 	}
 	for _, x := range c.Chain().Radios {
-		all.addRadio(x)
+		if len(x.Feeds) == 0 && x.Own {
+			all.addOwn(x)
+		} else {
+			all.addRadio(c, x)
+		}
 	}
 	return all.list
 }
@@ -51,29 +56,36 @@ func (all *emitters) of(d *bom.Device) *emitter {
 
 // add adds what an antenna radiates in a band. Where it does not work in the band,
 // band/antenna says so.
-func (all *emitters) add(band catalog.Band, a *Antenna) {
-	if !reaches(a.Line, band) || len(a.Lacks) == 0 && a.Worst.MHz == 0 {
+func (all *emitters) add(c *Case, band catalog.Band, span unit.Span, a *Antenna) {
+	if !reaches(a.Line, band) || span.Empty() {
 		return
 	}
 	e := all.of(a.Node.Device)
-	if e.lacks = append(e.lacks, a.Lacks...); len(a.Lacks) == 0 {
-		e.parts = append(e.parts, emission{band.Name, a.Worst})
+	if len(a.Lacks) > 0 {
+		e.lacks = append(e.lacks, a.Lacks...)
+		return
+	}
+	var at []Radiation
+	for _, f := range points(span) {
+		r, lacks := c.radiation(a.Line, a.Node, a.Worst.Out, f)
+		e.lacks = append(e.lacks, lacks...)
+		at = append(at, r)
+	}
+	e.parts = append(e.parts, emission{band.Name, at})
+}
+
+// addOwn adds what a router radiates from its own antenna.
+func (all *emitters) addOwn(x *RadioChain) {
+	e := all.of(x.Router)
+	at, lacks := x.ownRadiation()
+	if e.lacks = append(e.lacks, lacks...); len(lacks) == 0 {
+		e.parts = append(e.parts, emission{x.Band.Name, at})
 	}
 }
 
 // addRadio adds what a router radiates in its band. Its power is the total over its
 // ports, so of several ports of one antenna the strongest stands for all.
-func (all *emitters) addRadio(x *RadioChain) {
-	if len(x.Feeds) == 0 {
-		if x.Own {
-			e := all.of(x.Router)
-			rad, lacks := x.ownRadiation()
-			if e.lacks = append(e.lacks, lacks...); len(lacks) == 0 {
-				e.parts = append(e.parts, emission{x.Band.Name, rad})
-			}
-		}
-		return
-	}
+func (all *emitters) addRadio(c *Case, x *RadioChain) {
 	strongest := map[*bom.Device]*Antenna{}
 	for i := range x.Antennas {
 		a := &x.Antennas[i]
@@ -83,7 +95,7 @@ func (all *emitters) addRadio(x *RadioChain) {
 	}
 	for i := range x.Antennas {
 		if a := &x.Antennas[i]; len(a.Lacks) > 0 || strongest[a.Node.Device] == a {
-			all.add(x.Band, a)
+			all.add(c, x.Band, x.Band.Uplink, a)
 		}
 	}
 }

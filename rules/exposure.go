@@ -84,31 +84,44 @@ type density struct {
 	lacks []Lack
 }
 
-// shares adds up what each band takes of the reference level in free space.
+// shares adds up what each band takes of the reference level in free space, at the
+// edge or middle of the band where that is most.
 func (e *emitter) shares(level *limits.Level) density {
-	d := e.device
-	metres, side := d.Row.People.V.Metres(), d.Part.Antenna.SizeMM.V/1000
 	var s density
 	begins := 0.0
 	for _, p := range e.parts {
-		far, ok := rf.FarFieldFrom(p.rad.MHz, side)
-		limit, stated := level.DensityAt(p.rad.MHz)
-		if !ok || !stated {
-			s.lacks = append(s.lacks, Lack{"a reference level at " + p.rad.MHz.String(), d.At})
-			continue
+		share := 0.0
+		for _, r := range p.at {
+			v, far, lack := e.share(level, r)
+			if lack != "" {
+				s.lacks = append(s.lacks, Lack{lack, e.device.At})
+			}
+			share, begins = max(share, v), max(begins, far)
 		}
-		v, ok := rf.PowerDensity(p.rad.EIRP.Most, rf.FreeField, metres, far)
-		if !ok {
-			begins = max(begins, far)
-			continue
-		}
-		s.total += 100 * v / limit
-		s.each = append(s.each, fmt.Sprintf("%s %s %%", p.band, unit.Fixed(100*v/limit, 2)))
+		s.total += share
+		s.each = append(s.each, fmt.Sprintf("%s %s %%", p.band, unit.Fixed(share, 2)))
 	}
 	if begins > 0 {
-		s.lacks = append(s.lacks, Lack{fmt.Sprintf("a far field at %s, for it begins at %s m", d.Row.People.V, unit.Fixed(begins, 2)), d.Row.People.At})
+		people := e.device.Row.People
+		s.lacks = append(s.lacks, Lack{fmt.Sprintf("a far field at %s, for it begins at %s m", people.V, unit.Fixed(begins, 2)), people.At})
 	}
+	s.lacks = dedupe(s.lacks)
 	return s
+}
+
+// share is what one frequency takes of the level, in per cent. Where people stay in
+// the near field, far is the distance at which that ends, and there is no figure.
+func (e *emitter) share(level *limits.Level, r Radiation) (percent, far float64, lack string) {
+	far, ok := rf.FarFieldFrom(r.MHz, e.device.Part.Antenna.SizeMM.V/1000)
+	limit, stated := level.DensityAt(r.MHz)
+	if !ok || !stated {
+		return 0, 0, "a reference level at " + r.MHz.String()
+	}
+	v, ok := rf.PowerDensity(r.EIRP.Most, rf.FreeField, e.device.Row.People.V.Metres(), far)
+	if !ok {
+		return 0, far, ""
+	}
+	return 100 * v / limit, 0, ""
 }
 
 var exposureDistance = &Rule{

@@ -76,7 +76,7 @@ func (x *RadioChain) holdEIRP(c *Case, r *Report, s *Antenna, a limits.Assessmen
 	case a.Exceeded(v) && a.Row.Per.Set:
 		// The power of the whole channel is known; how much of it stands in the
 		// stretch that the row counts is not.
-		return []Lack{{"the EIRP " + a.Row.Unit() + " of " + x.Router.Part.ID, x.Router.Part.At}}
+		return []Lack{{"the EIRP of " + x.Router.Part.ID + " in " + a.Row.Unit(), x.Router.Part.At}}
 	case a.Exceeded(v):
 		x.beyond(c, r.Fails, s, a, "").Then("take an antenna with %s dB less gain, or put that much more loss into the feed", tenthsUp(v-a.Value))
 		return nil

@@ -98,26 +98,24 @@ func (x *RadioChain) rowsLack(c *Case, a limits.Assessment) []Lack {
 	return dedupe(lacks)
 }
 
-// ownRadiation is what a router radiates from its own antenna, at the edge or middle
-// of its band where that is most.
-func (x *RadioChain) ownRadiation() (Radiation, []Lack) {
+// ownRadiation is what a router radiates from its own antenna at the edges and in
+// the middle of its band.
+func (x *RadioChain) ownRadiation() ([]Radiation, []Lack) {
 	part := x.Router.Part
 	if !part.Router.TxDBm.Set {
-		return Radiation{}, []Lack{x.noPower()}
+		return nil, []Lack{x.noPower()}
 	}
-	var worst Radiation
+	var out []Radiation
 	for _, f := range points(x.Band.Uplink) {
 		rng := part.Antenna.RangeAt("", f)
 		if rng == nil || !rng.Gain.Set {
-			return Radiation{}, []Lack{{"a gain of " + x.Router.ID + " all over the band", x.Router.At}}
+			return nil, []Lack{{"a gain of " + x.Router.ID + " all over the band", x.Router.At}}
 		}
 		r := Radiation{MHz: f, Out: unit.DBmOf(part.Router.TxDBm.V), Gain: unit.DB(rng.Gain.V)}
-		var ok bool
-		if r.EIRP, ok = rf.EIRP(r.Out, rf.Loss{}, r.Gain); ok && (worst.MHz == 0 || worst.EIRP.Most.Below(r.EIRP.Most)) {
-			worst = r
-		}
+		r.EIRP, _ = rf.EIRP(r.Out, rf.Loss{}, r.Gain)
+		out = append(out, r)
 	}
-	return worst, nil
+	return out, nil
 }
 
 // noPower is what is missing where a router's part does not state its power.
