@@ -282,12 +282,18 @@ func (g *Graph) OutdoorJoints() int {
 	return n
 }
 
-// Place is where the two nodes meet: the place of the device, else the end of the
-// cable's way, or nil.
+// Place is where the two nodes meet: the place of a device, else the end of the
+// cable's way, or nil. A port with a captive lead meets at the lead's free end, so
+// that what it is mated with goes before its own device.
 func (m *Mate) Place() *Place {
+	var far *Place
 	for _, n := range []*Node{m.A, m.B} {
-		if n.Device != nil && n.Device.Place != nil {
+		switch {
+		case n.Device == nil || n.Device.Place == nil:
+		case n.Port.Lead == nil:
 			return n.Device.Place
+		case far == nil:
+			far = n.Device.Place
 		}
 	}
 	for _, n := range []*Node{m.A, m.B} {
@@ -298,7 +304,7 @@ func (m *Mate) Place() *Place {
 			return n.Cable.Way[len(n.Cable.Way)-1].Place
 		}
 	}
-	return nil
+	return far
 }
 
 // existing reports a mate of two things that are already there.
