@@ -194,11 +194,17 @@ func (c *Case) lessEIRP(x *BandChain, ant *Antenna, by float64) string {
 	return fmt.Sprintf("take an antenna with less gain such as %s, or %s", c.Firm.OnHand(other), add)
 }
 
-// fitsInstead reports an antenna with the same connector, held the same way.
+// fitsInstead reports an antenna that goes where another one is: the same
+// connector and impedance, held the same way, for the weather where that one is.
 func fitsInstead(p *catalog.Part, n *bom.Node, b catalog.Band) bool {
-	now := n.Device.Part
-	return len(p.Ports) > 0 && p.Ports[0].Connector.Set && n.Face.Set && p.Ports[0].Connector.V == n.Face.V &&
-		p.Antenna.Fixing.V == now.Antenna.Fixing.V && p.Antenna.RangeAt(p.Ports[0].Name, b.Uplink.Mid()) != nil
+	if len(p.Ports) == 0 {
+		return false
+	}
+	now, port := n.Device.Part, &p.Ports[0]
+	joins := port.Connector.Set && n.Face.Set && sameHalf(port.Connector.V, n.Face.V) && port.Impedance.V == n.Ohm.V
+	held := now.Antenna.Fixing.Set && p.Antenna.Fixing.V == now.Antenna.Fixing.V
+	weather := catalog.Has(p.Rated, "outdoor") || !catalog.Has(now.Rated, "outdoor")
+	return joins && held && weather && p.Antenna.RangeAt(port.Name, b.Uplink.Mid()) != nil
 }
 
 func greatestGain(p *catalog.Part, b catalog.Band) (float64, bool) {

@@ -103,6 +103,8 @@ func TestGainFindingsProposeWhatWouldDo(t *testing.T) {
 		// 24.01 + 10 − 2 = 32.01: 8 dBi would not do.
 		{"a smaller one", "gain/uplink-eirp", benchOf("OUT", "24.01"), "such as ANT-7 (none on hand), or put 2.1 dB more loss into the line"},
 		{"one of the kit", "gain/uplink-eirp", benchOf("OUT", "24", "KIT", `kit = [{ side = "donor", antenna = "ANT-10" }, { side = "donor", antenna = "ANT-7" }]`), "such as ANT-7 (none on hand)"},
+		{"in the weather", "gain/uplink-eirp", strings.NewReplacer("[part.ANT-10]\n", "[part.ANT-10]\nrated  = [\"outdoor\"]\n", "[part.ANT-7]\n", "[part.ANT-7]\nrated  = [\"outdoor\"]\n").Replace(benchOf("OUT", "24")), "such as ANT-7 (none on hand)"},
+		{"none held alike", "gain/uplink-eirp", strings.Replace(benchOf("OUT", "24"), `fixing = "mast"`, "", 1), "take an antenna with 2.0 dB less gain"},
 		{"none", "gain/uplink-eirp", benchOf("OUT", "30"), "take an antenna with 8.0 dB less gain, or put 8.0 dB more loss into the line"},
 		// 70 − 64.95 = 5.05 dB, in steps of 1 dB.
 		{"back-off in steps", "gain/amplifier", benchOf("GAIN", "70"), "set it back: set = { B5 = { back_off_db = 6 } }"},
