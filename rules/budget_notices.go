@@ -94,6 +94,8 @@ func (c *Case) unheld(d *bom.Device) []string {
 		why = "there is no profile " + c.ProfileName()
 	case amp == nil && !c.feeds(d):
 		why = "it sends from its own antenna, or behind an amplifier"
+	case amp == nil && len(c.Profile.Radio) == 0:
+		why = "profile " + c.Profile.ID + " has no rows for routers"
 	case amp == nil:
 	case c.Profile.NeedsOperatorPermission():
 		why = "profile " + c.Profile.ID + " has no figures of its own, the operator's permission sets them"
@@ -106,7 +108,7 @@ func (c *Case) unheld(d *bom.Device) []string {
 	if why == "" {
 		return nil
 	}
-	return []string{"no limit is held against " + d.ID + ": " + why}
+	return []string{"no limit of a profile is held against " + d.ID + ": " + why}
 }
 
 // feeds reports whether a feed comes to the device.

@@ -79,8 +79,12 @@ func checks(bands ...*rules.BudgetBand) []check {
 	return out
 }
 
-// name is the rule, with the direction where the rule does not say it.
+// name is the rule with what the figure is of, or with the direction where the rule
+// does not say it.
 func (c check) name() string {
+	if c.Of != "" {
+		return c.Rule + " " + c.Of
+	}
 	if strings.Contains(c.Rule, c.band.Direction) || c.Rule == "gain/radio-eirp" {
 		return c.Rule
 	}

@@ -2,7 +2,6 @@ package show
 
 import (
 	"fmt"
-	"strings"
 
 	"driploop/catalog/unit"
 	"driploop/rules"
@@ -57,29 +56,28 @@ func (b *Budget) router(bands []*rules.BudgetBand) []Block {
 // routerBands is what the router radiates in each band against its limits, the
 // smallest margin first; bands without a limit stand last.
 func routerBands(bands []*rules.BudgetBand, gaps *gaps) *Grid {
-	grid := &Grid{Words: 3, Columns: []string{"band", "outcome", "antenna", "MHz", "EIRP dBm", "limit dBm", "margin"}}
-	row := func(x *rules.BudgetBand, outcome string, figures ...string) {
-		antenna, at := "", ""
+	grid := &Grid{Words: 4, Columns: []string{"band", "of", "outcome", "antenna", "value", "limit", "margin"}}
+	row := func(x *rules.BudgetBand, of, outcome string, figures ...string) {
+		antenna := ""
 		if x.Worst != nil {
-			antenna, at = x.Worst.Node.Name(), plainMHz(x.Worst.Worst.MHz)
+			antenna = x.Worst.Node.Name()
 		}
-		grid.Rows = append(grid.Rows, append([]string{x.Band, outcome, antenna, at}, figures...))
+		grid.Rows = append(grid.Rows, append([]string{x.Band, of, outcome, antenna}, figures...))
 	}
 	for _, c := range checks(bands...) {
+		of := or(c.Of, "EIRP")
 		if c.Outcome == "unknown" {
-			gaps.add("EIRP in "+c.band.Band, append(append([]rules.Lack(nil), c.Value.Lacks...), c.Limit.Lacks...))
+			gaps.add(of+" in "+c.band.Band, append(append([]rules.Lack(nil), c.Value.Lacks...), c.Limit.Lacks...))
 		}
-		row(c.band, c.outcome(), c.value(), c.limit()+strings.TrimPrefix(c.Unit, "dBm"), c.margin())
+		row(c.band, of+", "+c.Unit, c.outcome(), c.value(), c.limit(), c.margin())
 	}
 	for _, x := range bands {
 		if len(x.Limits) == 0 {
-			row(x, "not held", eirpAtRated(x), "", "")
+			row(x, "EIRP, dBm", "not held", eirpAtRated(x), "", "")
 		}
 	}
 	return withoutEmpty(grid)
 }
-
-func plainMHz(f unit.MHz) string { return strings.TrimSuffix(f.String(), " MHz") }
 
 // feedsOf is the loss of each feed, a column for each band at the middle of its
 // uplink.

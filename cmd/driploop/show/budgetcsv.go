@@ -148,7 +148,7 @@ func (s *figureSheet) chain(ch rules.StageChain) {
 
 func (s *figureSheet) limit(c check) {
 	m, ok := c.Margin()
-	s.add("limit", "", c.Rule, c.Unit, figure(c.Value.V, c.Value.OK), append(append([]rules.Lack(nil), c.Value.Lacks...), c.Limit.Lacks...)...)
+	s.add("limit", c.Of, c.Rule, c.Unit, figure(c.Value.V, c.Value.OK), append(append([]rules.Lack(nil), c.Value.Lacks...), c.Limit.Lacks...)...)
 	f := &s.rows[len(s.rows)-1]
 	f.limit, f.margin, f.tolerance, f.outcome = figure(c.Limit.V, c.Limit.OK), figure(m, ok), c.Tolerance, c.Outcome
 	if f.says == "" {

@@ -123,6 +123,7 @@ type worstJSON struct {
 
 type limitJSON struct {
 	Rule      string   `json:"rule"`
+	Of        string   `json:"of"`
 	Value     *float64 `json:"value"`
 	Limit     *float64 `json:"limit"`
 	Margin    *float64 `json:"margin"`
@@ -212,7 +213,7 @@ func (b *Budget) bandOf(x *rules.BudgetBand, chain *rules.BandChain) bandJSON {
 	}
 	for _, l := range x.Limits {
 		m, ok := l.Margin()
-		j.Limits = append(j.Limits, limitJSON{l.Rule, figure(l.Value.V, l.Value.OK), figure(l.Limit.V, l.Limit.OK), figure(m, ok),
+		j.Limits = append(j.Limits, limitJSON{l.Rule, l.Of, figure(l.Value.V, l.Value.OK), figure(l.Limit.V, l.Limit.OK), figure(m, ok),
 			rules.Round(l.Tolerance), l.Unit, l.Outcome, l.Formula, l.Basis, lacksOf(l.Value.Lacks, l.Limit.Lacks)})
 	}
 	return j
