@@ -72,7 +72,7 @@ func (a *Amplifier) keys(k *source.Keys) {
 	source.Opt(k, &a.Class, "class", source.OneOf("wideband", "provider-specific", "industrial"), "class it is certified in")
 	source.Opt(k, &a.Mobility, "mobility", source.OneOf("fixed", "mobile"), "for buildings or for vehicles")
 	source.Opt(k, &a.Coupling, "coupling", source.ListOf(source.OneOf("antenna", "cradle", "wired")), "how phones may be coupled to it")
-	source.Opt(k, &a.CouplingDB, "coupling_db", source.Between(0, 100, "dB"), "coupling loss of its cradle")
+	source.Opt(k, &a.CouplingDB, "coupling_db", source.Between(0, 100, "dB"), "coupling loss of its cradle or wire")
 	source.Opt(k, &a.NetworkProtection, "network_protection", source.Flag, "lowers its gain by itself to the limits that depend on the received level")
 	source.Opt(k, &a.IsolationControl, "isolation_control", source.Flag, "lowers its gain by itself where isolation is short")
 	source.Opt(k, &a.StepDB, "step_db", source.Between(0, 20, "dB"), "step of its gain setting")
