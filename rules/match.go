@@ -18,7 +18,7 @@ var matchImpedance = &Rule{
 	Why: "a step sends part of the signal back; two of them make ripple across the band, and a 50 ohm pin in a 75 ohm socket of the same " +
 		"series breaks it for good",
 	Basis: []Basis{
-		{Document: "definition of the reflection coefficient: Γ = (VSWR − 1)/(VSWR + 1), return loss −20·log10 Γ, mismatch loss −10·log10(1 − Γ²)", Kind: "practice", Proof: "calculated"},
+		{Document: "definition of the reflection coefficient: Γ = (VSWR − 1)/(VSWR + 1), return loss −20·log10 Γ, mismatch loss −10·log10(1 − Γ²)", Kind: "calculated"},
 		practice("50 and 75 ohm halves of N harm each other; other series of two impedances join without harm"),
 	},
 	Weight: Hold,
