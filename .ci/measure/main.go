@@ -2,7 +2,7 @@
 // least and the middle of its times by the clock and of the processor time that it
 // used, and the most memory that it held at once.
 //
-//	go run .ci/measure/main.go -runs 30 -time 150ms -memory 200 driploop inspect
+//	go run .ci/measure/main.go -runs 30 -time 1s -memory 200 driploop inspect
 //
 // The command may exit with 0 or 1. It is a failure when both least times are above
 // the limit (on a busy machine only the clock is), or the memory is.
