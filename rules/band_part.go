@@ -259,7 +259,7 @@ func adapterNamedAt(m *bom.Mate, p *catalog.Part) source.Place {
 	return m.At
 }
 
-// contact meets the connector series of both halves, each once for a mate.
+// contact meets the connector series of both halves, each once for a cable or joint.
 func (w *bandWalk) contact(k *bom.Contact, m *bom.Mate, b catalog.Band) {
 	for _, h := range []bom.Half{k.A, k.B} {
 		if !h.Face.Set || !h.Ohm.Set {

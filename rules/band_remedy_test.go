@@ -142,3 +142,31 @@ func port(name, face, more string) string {
 func part(id, kind string, keys ...string) string {
 	return "[part." + id + "]\nkind = \"" + kind + "\"\n" + strings.Join(keys, "\n") + "\n"
 }
+
+// A limit that is not the part's own names its document before the rule's basis; a
+// finding on one band says which.
+func TestBandPartSaysWhereALimitComesFrom(t *testing.T) {
+	tree := map[string]string{
+		rules.WorkspaceFile: "[workspace]\nname = \"x\"\n",
+		"catalog/own.toml": part("W", "antenna", port("rf", "FME female", ""), "range = [{ mhz = [600, 4200], gain_dbi = 3 }]") +
+			part("R-NOW", "router", "bands = [\"B4\", \"B66\"]", port("a", "FME male", "")) + splitter("S-NOW", "FME female", 2000),
+		"plans/a.toml": "[job]\nbands = [\"B4\"]\n[device]\nw = { part = \"W\" }\nr = { part = \"R-NOW\" }\n[[joint]]\na = \"w\"\nb = \"r.a\"\n",
+		"plans/b.toml": "[job]\nbands = [\"B4\", \"B66\"]\n[device]\nw = { part = \"W\" }\nr = { part = \"R-NOW\" }\n[[joint]]\na = \"w\"\nb = \"r.a\"\n",
+	}
+	var bands []string
+	for _, f := range findings(t, memory{tree}, today(t, "")) {
+		if f.Rule.Name != "band/part" {
+			continue
+		}
+		bands = append(bands, f.Band)
+		if len(f.Basis) != 2 || !strings.Contains(f.Basis[0], "from memory") || f.Basis[1] != f.Rule.Basis[0].String() {
+			t.Errorf("it stands on %q", f.Basis)
+		}
+		if !strings.HasPrefix(f.Do, "use connectors of a series that is made for it, or take B4") {
+			t.Errorf("it says to %s", f.Do)
+		}
+	}
+	if strings.Join(bands, "|") != "B4|" {
+		t.Errorf("the findings are on the bands %q", bands)
+	}
+}
