@@ -71,7 +71,6 @@ func (x *RadioChain) unassessed(r *Report, lacks []Lack) {
 // keeps the others from being assessed.
 func (x *RadioChain) holdEIRP(c *Case, r *Report, s *Antenna, a limits.Assessment) []Lack {
 	v, tolerance := s.Worst.EIRP.Most.Value(), c.eirpTolerance(s)
-	lacks := x.rowsLack(c, a)
 	switch {
 	case a.Exceeded(v) && a.Row.Per.Set:
 		// The power of the whole channel is known; how much of it stands in the
@@ -80,13 +79,11 @@ func (x *RadioChain) holdEIRP(c *Case, r *Report, s *Antenna, a limits.Assessmen
 	case a.Exceeded(v):
 		x.beyond(c, r.Fails, s, a, "").Then("take an antenna with %s dB less gain, or put that much more loss into the feed", tenthsUp(v-a.Value))
 		return nil
-	case len(lacks) > 0:
-		return lacks
 	case a.Exceeded(v+tolerance) && !a.Row.Per.Set:
 		x.beyond(c, r.AtWorst, s, a, " ± "+unit.Fixed(tolerance, 2)+" dB").With("tolerance_db", tolerance).
 			Then("put %s dB more loss into the feed, or take an antenna with less gain", tenthsUp(v+tolerance-a.Value))
 	}
-	return nil
+	return x.rowsLack(c, a)
 }
 
 // beyond shows the sum.
