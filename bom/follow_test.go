@@ -132,6 +132,29 @@ yagi = { part = "YAGI" }
 	)
 }
 
+// A contact knows both faces, their impedances, and the loss that a connector part
+// states for its pair.
+func TestContacts(t *testing.T) {
+	g := whole(t, `
+cable.C = { part = "CX", length = "1 m", from = "yagi.rf", to = "radio.main", ends = ["NF", "NM"], through = ["AD-N-S"] }
+device.yagi = { part = "WHIP" }
+device.radio = { part = "RADIO" }
+`)
+	var got []string
+	for _, m := range g.Mates {
+		for _, x := range m.Contacts() {
+			for _, h := range []bom.Half{x.A, x.B} {
+				got = append(got, fmt.Sprintf("%s %v %v ohm, loss %v %v", h.Name, h.Face.V, h.Ohm.V, h.Loss.V, h.Loss.Set))
+			}
+		}
+	}
+	same(t, "halves", got, []string{
+		"C.1 N female 50 ohm, loss 0 false", "yagi.rf N male 50 ohm, loss 0 false",
+		"C.2 N male 50 ohm, loss 0.15 true", "AD-N-S N female 50 ohm, loss 0 false",
+		"AD-N-S SMA male 50 ohm, loss 0 false", "radio.main SMA female 50 ohm, loss 0 false",
+	})
+}
+
 func TestSplitters(t *testing.T) {
 	g := whole(t, cx("L0", "amp.server", "split.in", nn)+cx("L1", "split.out1", "dome", nn)+cx("L2", "split.out2", "split-2.in", nn)+
 		cx("L3", "split-2.out1", "dome-2", nn)+`

@@ -253,6 +253,32 @@ way = ["room", "wall 0.2 m", "roof"]
 	}
 }
 
+// Findings about a mate stand on its cable, or on the joint by the device's port.
+func TestOnOfMates(t *testing.T) {
+	g := whole(t, cx("A", "yagi", "", nn)+cx("B", "", "", `ends = ["NF", "NM"]`)+`
+joint = [{ a = "A.2", b = "B.1" }, { a = "B.2", b = "amp.donor" }, { a = "load.rf", b = "amp.server" }]
+device.yagi = { part = "YAGI" }
+device.amp = { part = "AMP" }
+device.load = { part = "LOAD" }
+`)
+	for pair, want := range map[string]string{
+		"A.1 = yagi.rf": "cable.A", "A.2 = B.1": "cable.A", "B.2 = amp.donor": "joint.amp-donor", "load.rf = amp.server": "joint.load-rf",
+	} {
+		found := false
+		for _, m := range g.Mates {
+			if m.A.Name()+" = "+m.B.Name() == pair {
+				found = true
+				if m.On() != want {
+					t.Errorf("%s stands on %s, want %s", pair, m.On(), want)
+				}
+			}
+		}
+		if !found {
+			t.Errorf("%s are not joined", pair)
+		}
+	}
+}
+
 func TestJumpersBringLengthAndEnds(t *testing.T) {
 	g := whole(t, `
 device.yagi = { part = "YAGI" }
@@ -356,4 +382,60 @@ dome = { part = "DOME" }
 		`shared port, "amp.server", device.amp: amp.server already mates with C.1; a port takes one line: use a splitter, or another port`,
 	)
 	hasMates(t, "one bad part", g, "A.1 = yagi.rf", "B.2 = amp.donor", "C.1 = amp.server", "C.2 = dome.rf", "D.1 = dome.rf", "D.2 = amp.server")
+}
+
+// Every jumper is turned, wherever it stands among the cables, and none without need.
+func TestJumpersAreTurnedEach(t *testing.T) {
+	g := whole(t, cx("A", "", "", nn)+`
+cable.J1 = { part = "J-NS", from = "radio.main", to = "split.in" }
+cable.B = { part = "CX", length = "1 m", ends = ["NM", "NM"] }
+cable.J2 = { part = "J-NS", from = "radio.div", to = "split.out1" }
+cable.J3 = { part = "J-NS", from = "split.out2", to = "yagi.rf" }
+cable.J4 = { part = "J-NS", from = "mixed.n" }
+[device]
+radio = { part = "RADIO" }
+split = { part = "SPLIT-2" }
+yagi = { part = "YAGI" }
+mixed = { part = "MIXED" }
+`)
+	for id, want := range map[string]string{
+		"J1": "SMA male, N male", "J2": "SMA male, N male",
+		"J3": "N male, SMA male", // one end fits either way: it stays as it is listed
+		"J4": "N male, SMA male",
+	} {
+		ends := g.Cable(id).Ends
+		if got := ends[0].Face.V.Written + ", " + ends[1].Face.V.Written; got != want {
+			t.Errorf("%s has the ends %s, want %s", id, got, want)
+		}
+	}
+}
+
+// A connector part whose face cannot be read is no choice, and hides no other.
+func TestConnectorsWithoutFace(t *testing.T) {
+	p, problems := readPlan(t, "cable.A = { part = \"K\", length = \"1 m\", ends = [\"N male\", \"N male\"] }\n")
+	if len(problems) > 0 {
+		t.Fatal(problems)
+	}
+	g := bom.Resolve(p, ownCatalog(t, `
+[part.K]
+kind = "cable"
+impedance_ohm = 50
+loss_db_per_100m = 3
+[part.A-BAD]
+kind = "connector"
+connector = "N mail"
+impedance_ohm = 50
+fits = ["K"]
+[part.B-GOOD]
+kind = "connector"
+connector = "N male"
+impedance_ohm = 50
+fits = ["K"]
+`))
+	hasHoles(t, "a connector without face", g)
+	for _, e := range g.Cable("A").Ends {
+		if e.Fit == nil || e.Fit.ID != "B-GOOD" {
+			t.Errorf("end %d is made with %v", e.End, e.Fit)
+		}
+	}
 }

@@ -113,6 +113,7 @@ loss_db_per_100m = [[1000, 20]]
 kind = "connector"
 connector = "N male"
 impedance_ohm = 50
+loss_db = 0.15
 fits = ["CX"]
 [part.NF]
 kind = "connector"
