@@ -22,10 +22,10 @@ func (b *Budget) Notices() []string {
 	c := b.Case
 	var out []string
 	if n := len(c.Problems); n > 0 {
-		out = append(out, fmt.Sprintf("the plan file has %s of its own, which inspect lists; what they leave out is missing here", count(n, "fault", "faults")))
+		out = append(out, fmt.Sprintf("The plan file has %s of its own, which inspect lists; what could not be read is missing here", count(n, "fault", "faults")))
 	}
 	if !c.Lines().Whole {
-		out = append(out, "the plan has more ways through its splitters than can be followed; the rest of them is missing here")
+		out = append(out, "The plan has more ways through its splitters than can be followed; the rest of them is missing here")
 	}
 	var radios []*bom.Device
 	for _, d := range c.Graph.Devices {
@@ -35,9 +35,9 @@ func (b *Budget) Notices() []string {
 	}
 	switch {
 	case len(radios) == 0:
-		return append(out, "the plan has no amplifier and no router, and so no radio chain")
+		return append(out, "The plan has no amplifier and no router, and so no radio chain")
 	case len(c.bands) == 0:
-		return append(out, "the plan names no bands (bands = […]), and no radio chain can be added up")
+		return append(out, "The plan names no bands (bands = […]), and no radio chain can be added up")
 	}
 	for _, d := range radios {
 		out = append(out, c.bandsLeftOut(d)...)
@@ -108,7 +108,7 @@ func (c *Case) unheld(d *bom.Device) []string {
 	if why == "" {
 		return nil
 	}
-	return []string{"no limit of a profile is held against " + d.ID + ": " + why}
+	return []string{"No limit of a profile is held against " + d.ID + ": " + why}
 }
 
 // feeds reports whether a feed comes to the device.

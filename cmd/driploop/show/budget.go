@@ -29,16 +29,15 @@ func (b *Budget) document() *Document {
 	if p.Job.Title.Set {
 		d.Title += " · " + p.Job.Title.V
 	}
-	d.Blocks = append(d.Blocks, b.about(), b.verdict())
+	var gaps gaps
 	groups := b.groups()
-	d.Blocks = append(d.Blocks, b.summary(groups)...)
-	d.Blocks = append(d.Blocks, b.sharedIsolation(groups)...)
+	figures := append(b.summary(groups), b.sharedIsolation(groups)...)
 	for _, g := range groups {
-		d.Blocks = append(d.Blocks, b.band(g)...)
+		figures = append(figures, b.band(g, &gaps)...)
 	}
-	d.Blocks = append(d.Blocks, b.routers()...)
-	d.Blocks = append(d.Blocks, b.areas()...)
-	d.Blocks = append(d.Blocks, b.howToRead()...)
+	figures = append(figures, b.routers(&gaps)...)
+	figures = append(figures, b.areas(&gaps)...)
+	d.Blocks = slices.Concat([]Block{b.about(), b.verdict()}, gaps.block(), figures, b.howToRead())
 	return d
 }
 
@@ -191,7 +190,7 @@ func verdictWords(n map[string]int, all int) string {
 		out = fmt.Sprintf("Of %s %d %s exceeded", limits, n["fails"], verb(n["fails"], "is", "are"))
 		more = append([]string{fmt.Sprintf("%d %s", n["holds"], verb(n["holds"], "holds", "hold"))}, more...)
 	case n["unknown"] == all:
-		return fmt.Sprintf("None of %s could be assessed.", limits)
+		return "No limit could be assessed."
 	case len(more) == 0:
 		return "All " + limits + " hold."
 	}
@@ -300,13 +299,17 @@ func gainThatRuns(d *rules.BudgetBand) (gain, by string) {
 	return unit.Fixed(float64(d.Runs.V.Gain), 1), string(d.Runs.V.By)
 }
 
+func hasStages(x *rules.BudgetBand) bool {
+	return slices.ContainsFunc(x.Chains, func(ch rules.StageChain) bool { return len(ch.Stages) > 0 })
+}
+
 // howToRead explains what the tables do not say by themselves.
 func (b *Budget) howToRead() []Block {
 	out := Block{how: faint}
 	if len(b.Bands) > 0 {
 		out.Text = append(out.Text, "A loss is printed as least…greatest: the least is the coldest and best matched, the greatest the hottest and worst. Limits meet the least, levels the greatest.")
 	}
-	if slices.ContainsFunc(b.Bands, func(x *rules.BudgetBand) bool { return len(x.Chains) > 0 }) {
+	if slices.ContainsFunc(b.Bands, hasStages) {
 		out.Text = append(out.Text, "Stages: the level at the first antenna's port, its line, the level at the amplifier, the gain that runs, the level behind it (* held at the rated output), the other line, the level at the last antenna's port; gain and noise figure of the whole. Uplink from a phone of 23 dBm at the distance of certification, downlink from what the survey brings at full load.")
 	}
 	if len(b.Areas) > 0 {

@@ -10,22 +10,17 @@ import (
 )
 
 // areas is what arrives in each area, from each surveyed signal.
-func (b *Budget) areas() []Block {
+func (b *Budget) areas(gaps *gaps) []Block {
 	if len(b.Areas) == 0 {
 		return nil
 	}
-	var gaps gaps
 	grid := &Grid{Words: 3, Columns: []string{"area", "band", "operator", "before", "RSRP dBm", "target", "up margin", "limited by"}}
 	for _, r := range b.Areas {
-		name := fmt.Sprintf("%s %s %s", r.Area.Name.V, r.Signal.Band.V, r.Signal.Operator.V)
-		gaps.add(name, r.RSRP.Lacks)
-		if r.RSRP.OK {
-			gaps.add(name+" uplink", r.Up.Lacks)
-		}
+		gaps.add("level in the area "+r.Area.Name.V, r.Signal.Band.V, r.RSRP.Lacks)
+		gaps.add("uplink from the area "+r.Area.Name.V, r.Signal.Band.V, r.Up.Lacks)
 		grid.Rows = append(grid.Rows, areaCells(r))
 	}
 	out := []Block{{Head: "Areas", Table: withoutEmpty(grid)}}
-	out = append(out, gaps.block()...)
 	if !b.Terms {
 		return out
 	}
@@ -100,7 +95,7 @@ func sumWords(terms []rules.ReachTerm) string {
 		if v < 0 {
 			sign, v = "−", -v
 		}
-		fmt.Fprintf(&b, " %s %s %s", sign, unit.Fixed(v, 2), t.What)
+		fmt.Fprintf(&b, " %s %s dB %s", sign, unit.Fixed(v, 2), t.What)
 	}
 	return b.String()
 }

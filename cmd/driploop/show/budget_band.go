@@ -11,21 +11,20 @@ import (
 )
 
 // band is both directions of an amplifier in one band: its figures, lines, stages
-// and limits, what is not assessed, and the addends where they are asked for.
-func (b *Budget) band(g *group) []Block {
-	var gaps gaps
-	out := []Block{{Head: g.heading(), Table: g.figures(&gaps)}}
+// and limits, and the addends where they are asked for.
+func (b *Budget) band(g *group, all *gaps) []Block {
+	if b.CutOff(g.chain) {
+		all = new(gaps) // a notice says what its figures lack
+	}
+	out := []Block{{Head: g.heading(), Table: g.figures(all)}}
 	if g.apart != "" {
 		out[0].Text = []string{g.apart}
 	}
-	out = append(out, tableOf(linesOf(g.both(), &gaps))...)
+	out = append(out, tableOf(linesOf(g.both(), all))...)
 	for _, d := range g.both() {
-		out = append(out, tableOf(g.stages(d, &gaps))...)
+		out = append(out, tableOf(g.stages(d, all))...)
 	}
-	out = append(out, tableOf(limitsOf(checks(g.both()...), &gaps))...)
-	if !b.CutOff(g.chain) { // a notice says what its figures lack
-		out = append(out, gaps.block()...)
-	}
+	out = append(out, tableOf(limitsOf(checks(g.both()...), all))...)
 	if b.Terms {
 		out = append(out, b.terms(g)...)
 	}
@@ -84,50 +83,11 @@ func (b *Budget) isolation(g *group) string {
 		}
 	}
 	margin := b.IsolationMargin()
-	return fmt.Sprintf("Isolation %s (%s); less the margin of %s it carries %s of gain.", i.V, how, margin, i.V-margin)
-}
-
-// gaps collects what is not assessed, by what it lacks.
-type gaps struct {
-	lacks []string
-	what  map[string][]string
-}
-
-func (g *gaps) add(what string, lacks []rules.Lack) {
-	if len(lacks) == 0 {
-		return
+	carries := "no gain"
+	if i.V >= margin {
+		carries = (i.V - margin).String() + " of gain"
 	}
-	key := lackList(lacks)
-	if g.what == nil {
-		g.what = map[string][]string{}
-	}
-	if g.what[key] == nil {
-		g.lacks = append(g.lacks, key)
-	}
-	if !slices.Contains(g.what[key], what) {
-		g.what[key] = append(g.what[key], what)
-	}
-}
-
-func (g *gaps) block() []Block {
-	if len(g.lacks) == 0 {
-		return nil
-	}
-	var out Block
-	for _, l := range g.lacks {
-		out.Items = append(out.Items, Item{Text: fmt.Sprintf("Not assessed: %s. Lacks %s.", strings.Join(g.what[l], ", "), l)})
-	}
-	return []Block{out}
-}
-
-func lackList(lacks []rules.Lack) string {
-	var out []string
-	for _, l := range lacks {
-		if !slices.Contains(out, l.What) {
-			out = append(out, l.What)
-		}
-	}
-	return strings.Join(out, ", ")
+	return fmt.Sprintf("Isolation %s (%s); less the margin of %s it carries %s.", i.V, how, margin, carries)
 }
 
 // sides are the columns of a table with one for each direction that there is.
@@ -160,14 +120,22 @@ func (g *group) figures(gaps *gaps) *Grid {
 		if d.Direction == "uplink" {
 			return ""
 		}
-		gaps.add("the input", d.Input.Lacks)
+		gaps.add("input", d.Band, d.Input.Lacks)
 		return orUnknown(d.Input.V.Value(), d.Input.OK, 1)
 	})
+	row("coupling loss to the phone, dB", func(d *rules.BudgetBand) string {
+		if d.Direction == "downlink" {
+			return ""
+		}
+		gaps.add("coupling loss", d.Band, g.chain.MSCL.Lacks)
+		return orUnknown(float64(g.chain.MSCL.V), g.chain.MSCL.OK, 1)
+	})
 	row("gain as set, dB", func(d *rules.BudgetBand) string {
+		gaps.add(d.Direction+" gain", d.Band, d.Set.Lacks)
 		return orUnknown(float64(d.Set.V), d.Set.OK, 1)
 	})
 	row("gain that runs, dB", func(d *rules.BudgetBand) string {
-		gaps.add(d.Direction+" gain that runs", d.Runs.Lacks)
+		gaps.add(d.Direction+" gain that runs", d.Band, d.Runs.Lacks)
 		gain, _ := gainThatRuns(d)
 		return gain
 	})
@@ -205,7 +173,7 @@ func linesOf(both []*rules.BudgetBand, gaps *gaps) *Grid {
 			if i == len(grid.Rows) {
 				grid.Rows = append(grid.Rows, []string{name})
 			}
-			gaps.add(d.Direction+" loss of the "+name, l.Sum.Missing)
+			gaps.add("loss of the "+name, d.Band, l.Sum.Missing)
 			grid.Rows[i] = append(grid.Rows[i], lossWords(l.Sum.Loss, l.Sum.Known(), 2))
 		}
 	}
@@ -234,7 +202,7 @@ func (g *group) stages(d *rules.BudgetBand, gaps *gaps) *Grid {
 	grid := &Grid{Columns: []string{d.Direction + " by", "start", "line", "in", "gain", "out", "line", "end", "total", "NF"}}
 	for _, ch := range d.Chains {
 		name := g.way(d, ch)
-		gaps.add(d.Direction+" stages by "+name, ch.Lacks)
+		gaps.add(d.Direction+" stages", d.Band, ch.Lacks)
 		if len(ch.Stages) == 3 {
 			grid.Rows = append(grid.Rows, append([]string{name}, stageCells(ch)...))
 		}
@@ -280,7 +248,7 @@ func limitsOf(all []check, gaps *gaps) *Grid {
 	grid := &Grid{Words: 2, Columns: []string{"rule", "outcome", "value", "limit", "margin"}}
 	for i, c := range all {
 		if c.Outcome == "unknown" {
-			gaps.add(c.name(), append(append([]rules.Lack(nil), c.Value.Lacks...), c.Limit.Lacks...))
+			gaps.add(c.name(), c.band.Band, c.Value.Lacks, c.Limit.Lacks)
 		}
 		row := []string{c.name() + ", " + c.Unit, c.outcome(), c.value(), c.limit(), c.margin()}
 		if i > 0 && all[i-1].Rule == c.Rule && all[i-1].Unit == c.Unit && slices.Equal(grid.Rows[len(grid.Rows)-1][1:], row[1:]) {

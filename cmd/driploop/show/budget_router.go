@@ -9,7 +9,7 @@ import (
 
 // routers are a block for each router, with a row for each of its bands: a router
 // has one direction to be held against limits, and no stages.
-func (b *Budget) routers() []Block {
+func (b *Budget) routers(all *gaps) []Block {
 	var out []Block
 	var mine []*rules.BudgetBand
 	for i, x := range b.Bands {
@@ -18,23 +18,21 @@ func (b *Budget) routers() []Block {
 		}
 		mine = append(mine, x)
 		if i+1 == len(b.Bands) || b.Bands[i+1].Device != x.Device {
-			out = append(out, b.router(mine)...)
+			out = append(out, b.router(mine, all)...)
 			mine = nil
 		}
 	}
 	return out
 }
 
-func (b *Budget) router(bands []*rules.BudgetBand) []Block {
-	var gaps gaps
+func (b *Budget) router(bands []*rules.BudgetBand, all *gaps) []Block {
 	d := bands[0].Device
 	head := "Router · " + d.ID
 	if tx := d.Part.Router.TxDBm; tx.Set {
 		head += fmt.Sprintf(", uplink %s dBm over its ports", unit.Fixed(tx.V, 1))
 	}
-	out := []Block{{Head: head, Table: routerBands(bands, &gaps)}}
-	out = append(out, tableOf(feedsOf(bands, &gaps))...)
-	out = append(out, gaps.block()...)
+	out := []Block{{Head: head, Table: routerBands(bands, all)}}
+	out = append(out, tableOf(feedsOf(bands, all))...)
 	if !b.Terms {
 		return out
 	}
@@ -67,7 +65,7 @@ func routerBands(bands []*rules.BudgetBand, gaps *gaps) *Grid {
 	for _, c := range checks(bands...) {
 		of := or(c.Of, "EIRP")
 		if c.Outcome == "unknown" {
-			gaps.add(of+" in "+c.band.Band, append(append([]rules.Lack(nil), c.Value.Lacks...), c.Limit.Lacks...))
+			gaps.add(c.band.Device.ID+" "+of, c.band.Band, c.Value.Lacks, c.Limit.Lacks)
 		}
 		row(c.band, of+", "+c.Unit, c.outcome(), c.value(), c.limit(), c.margin())
 	}
@@ -89,7 +87,7 @@ func feedsOf(bands []*rules.BudgetBand, gaps *gaps) *Grid {
 			if i == 0 {
 				grid.Rows = append(grid.Rows, []string{l.Line.Name()})
 			}
-			gaps.add("the loss of "+l.Line.Name()+" in "+x.Band, l.Sum.Missing)
+			gaps.add("loss of the "+lineName(l), x.Band, l.Sum.Missing)
 			grid.Rows[j] = append(grid.Rows[j], lossWords(l.Sum.Loss, l.Sum.Known(), 2))
 		}
 	}

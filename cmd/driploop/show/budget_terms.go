@@ -22,8 +22,9 @@ func (b *Budget) terms(g *group) []Block {
 func (b *Budget) inputTerms(g *group) []Item {
 	var out []Item
 	for _, a := range b.Case.Arrivals(g.chain) {
-		out = append(out, Item{Text: fmt.Sprintf("Input of %s in %s: %s dBm%s = %s dBm.", a.Survey.Operator.V, a.Survey.Band.V, level(a.Signal.RSRP),
-			sumWords([]rules.ReachTerm{{What: words(a.Signal.Blocks, "block", "blocks") + " at full load", DB: a.Load}, {What: "donor antenna", DB: a.Signal.Gain}, {What: "feed", DB: -a.Signal.Feed}}), level(a.Level))})
+		sum := []rules.ReachTerm{{What: words(a.Signal.Blocks, "block", "blocks") + " at full load", DB: a.Load},
+			{What: a.Line.From.Device.ID, DB: a.Signal.Gain}, {What: "feed", DB: -a.Signal.Feed}}
+		out = append(out, Item{Text: fmt.Sprintf("Input of %s in %s: %s dBm%s = %s dBm.", a.Survey.Operator.V, a.Survey.Band.V, level(a.Signal.RSRP), sumWords(sum), level(a.Level))})
 	}
 	if g.up == nil {
 		return out
