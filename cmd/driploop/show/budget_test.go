@@ -187,6 +187,51 @@ type planBudget struct {
 	}
 }
 
+// The JSON form has the keys of the interface, whatever else it has: an entry for
+// each band and direction at its middle frequency, and for each area and signal.
+func TestBudgetJSONKeys(t *testing.T) {
+	page, err := demoBudgets(t)["saltmarsh/plans/quay-lane.toml"].JSON()
+	if err != nil {
+		t.Fatal(err)
+	}
+	var top map[string]any
+	if err := json.Unmarshal(page, &top); err != nil {
+		t.Fatal(err)
+	}
+	hasKeys(t, top, "plan", "at", "today", "profile", "overrides", "bands", "areas")
+	seen := map[string]float64{}
+	for _, entry := range top["bands"].([]any) {
+		x := entry.(map[string]any)
+		hasKeys(t, x, "band", "direction", "mhz", "lines", "stages", "gain_runs_db", "bound_by", "eirp_dbm", "worst", "limits")
+		for _, l := range x["lines"].([]any) {
+			hasKeys(t, l.(map[string]any), "from", "to", "loss_db", "least_db")
+		}
+		for _, s := range x["stages"].([]any) {
+			hasKeys(t, s.(map[string]any), "at", "gain_db", "total_db", "nf_db", "level_dbm")
+		}
+		for _, l := range x["limits"].([]any) {
+			hasKeys(t, l.(map[string]any), "rule", "value", "limit", "margin", "tolerance", "outcome")
+		}
+		hasKeys(t, x["worst"].(map[string]any), "mhz", "eirp_dbm")
+		seen[x["band"].(string)+" "+x["direction"].(string)] = x["mhz"].(float64)
+	}
+	for _, a := range top["areas"].([]any) {
+		hasKeys(t, a.(map[string]any), "name", "band", "operator", "mhz", "rsrp_dbm")
+	}
+	if len(seen) != 10 || seen["B12 uplink"] != 707.5 || seen["B4 downlink"] != 2132.5 {
+		t.Errorf("the entries are %v, not five bands in two directions at their middle", seen)
+	}
+}
+
+func hasKeys(t *testing.T, object map[string]any, keys ...string) {
+	t.Helper()
+	for _, k := range keys {
+		if _, ok := object[k]; !ok {
+			t.Errorf("the key %s is not in %v", k, object)
+		}
+	}
+}
+
 func readBudget(t *testing.T, b *Budget) planBudget {
 	t.Helper()
 	page, err := b.JSON()
