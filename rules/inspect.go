@@ -3,12 +3,14 @@ package rules
 import (
 	"context"
 	"fmt"
+	"maps"
 	"runtime"
-	"sort"
+	"slices"
 
 	"golang.org/x/sync/errgroup"
 
 	"driploop/bom"
+	"driploop/catalog"
 	"driploop/catalog/source"
 )
 
@@ -30,7 +32,7 @@ type PlanResult struct {
 	Profile, Code string
 	Findings      []*Finding
 	Runs          []Runs   // gain that runs, per band
-	Parts         []string // parts that the plan names, by ID
+	Parts         []string // parts that the plan stands on, by ID
 	Cautions      []string
 	Counts
 }
@@ -242,46 +244,31 @@ func weightNamed(word string) Weight {
 	return Hold
 }
 
-// parts lists the parts that the plan names, by ID.
+// parts lists the parts that the plan names, and the cables that its jumpers and
+// captive leads are made of, by ID.
 func (c *Case) parts() []string {
 	seen := map[string]bool{}
-	note := func(v source.Val[string]) {
-		if v.Set {
-			seen[v.V] = true
-		}
-	}
-	g := c.Graph
-	for _, d := range g.Devices {
-		note(d.Row.Part)
-	}
-	for _, x := range g.Cables {
-		note(x.Row.Part)
-		for _, e := range x.Ends {
-			if e.Fit != nil {
-				seen[e.Fit.ID] = true
+	for _, u := range c.partUses() {
+		seen[u.id.V] = true
+		if p := c.Firm.Catalog.Look(u.id.V); p != nil {
+			for _, of := range madeOf(p) {
+				seen[of] = true
 			}
 		}
-		for _, t := range x.Row.Through.V {
-			note(t)
+	}
+	return slices.Sorted(maps.Keys(seen))
+}
+
+// madeOf lists the cables that a jumper or a captive lead is made of.
+func madeOf(p *catalog.Part) []string {
+	var out []string
+	if p.Jumper != nil && p.Jumper.Cable.Set {
+		out = append(out, p.Jumper.Cable.V)
+	}
+	for i := range p.Ports {
+		if l := p.Ports[i].Lead; l != nil && l.Cable.Set {
+			out = append(out, l.Cable.V)
 		}
 	}
-	for _, d := range g.Data {
-		note(d.Row.Part)
-	}
-	for _, w := range g.Wires {
-		note(w.Row.Part)
-		note(w.Row.Fuse)
-	}
-	for _, b := range g.Bonds {
-		note(b.Row.Part)
-	}
-	for i := range c.Plan.Extras {
-		note(c.Plan.Extras[i].Part)
-	}
-	var out []string
-	for id := range seen {
-		out = append(out, id)
-	}
-	sort.Strings(out)
 	return out
 }
