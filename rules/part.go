@@ -253,12 +253,16 @@ var partStatus = &Rule{
 	Lighter: "A part on its last buy is a note.",
 	Check: func(c *Case, r *Report) {
 		for _, q := range c.Graph.Takeoff(&c.House().House).Rows {
+			at := q.At
+			if at.Path() != c.Plan.File.Path {
+				at = c.JobAt() // what joints use up is named nowhere in the plan
+			}
 			switch q.Part.Status.V {
 			case "withdrawn":
-				r.Fails(q.At, c.onOf(q.Part.ID), "%s is withdrawn, and %s of it", c.Firm.OnHand(q.Part), takes(q)).
+				r.Fails(at, c.onOf(q.Part.ID), "%s is withdrawn, and %s of it", c.Firm.OnHand(q.Part), takes(q)).
 					Then("%s", c.Firm.otherwise(q.Part)).Beside(q.Part.Status.At, "its status")
 			case "last-buy":
-				r.Fails(q.At, c.onOf(q.Part.ID), "%s can be ordered one last time, and %s of it", c.Firm.OnHand(q.Part), takes(q)).
+				r.Fails(at, c.onOf(q.Part.ID), "%s can be ordered one last time, and %s of it", c.Firm.OnHand(q.Part), takes(q)).
 					Then("order what later jobs need as well; %s", c.Firm.otherwise(q.Part)).Beside(q.Part.Status.At, "its status").Lighter(Note)
 			}
 		}
