@@ -40,7 +40,7 @@ func checkDensity(c *Case, r *Report, e *emitter) {
 	}
 	s := e.shares(level)
 	basis := limits.Origin(level.Clause.V, level.Edition.Or(c.Profile.Edition.V), level.Proof.V)
-	says := fmt.Sprintf("%s at %s from people comes to %s %% of the reference level (%s)", d.ID, d.Row.People.V, unit.Fixed(s.total, 2), strings.Join(s.each, " + "))
+	says := fmt.Sprintf("%s at %s from people comes to %s %% of the reference level: %s", d.ID, d.Row.People.V, unit.Fixed(s.total, 2), strings.Join(s.each, " + "))
 	lacks = slices.Concat(e.lacks, s.lacks)
 	reflected := s.total * rf.GroundReflection
 	if rf.Exceeds(reflected, 100) && d.Place == nil {
@@ -90,16 +90,21 @@ func (e *emitter) shares(level *limits.Level) density {
 	var s density
 	begins := 0.0
 	for _, p := range e.parts {
-		share := 0.0
+		var worst share
 		for _, r := range p.at {
-			v, far, lack := e.share(level, r)
-			if lack != "" {
-				s.lacks = append(s.lacks, Lack{lack, e.device.At})
+			at := e.share(level, r)
+			if at.lack != "" {
+				s.lacks = append(s.lacks, Lack{at.lack, e.device.At})
 			}
-			share, begins = max(share, v), max(begins, far)
+			if begins = max(begins, at.far); at.percent > worst.percent {
+				worst = at
+			}
 		}
-		s.total += share
-		s.each = append(s.each, fmt.Sprintf("%s %s %%", p.band, unit.Fixed(share, 2)))
+		if worst.limit == 0 {
+			continue
+		}
+		s.total += worst.percent
+		s.each = append(s.each, fmt.Sprintf("%s %s %% (%s of %s W/m²)", p.band, unit.Fixed(worst.percent, 2), unit.Fixed(worst.density, 2), unit.Fixed(worst.limit, 2)))
 	}
 	if begins > 0 {
 		people := e.device.Row.People
@@ -109,19 +114,25 @@ func (e *emitter) shares(level *limits.Level) density {
 	return s
 }
 
-// share is what one frequency takes of the level, in per cent. Where people stay in
-// the near field, far is the distance at which that ends, and there is no figure.
-func (e *emitter) share(level *limits.Level, r Radiation) (percent, far float64, lack string) {
+// share is what one frequency takes of the level. Where people stay in the near
+// field, far is the distance at which that ends, and there is no figure.
+type share struct {
+	percent, density, limit float64
+	far                     float64
+	lack                    string
+}
+
+func (e *emitter) share(level *limits.Level, r Radiation) share {
 	far, ok := rf.FarFieldFrom(r.MHz, e.device.Part.Antenna.SizeMM.V/1000)
 	limit, stated := level.DensityAt(r.MHz)
 	if !ok || !stated {
-		return 0, 0, "a reference level at " + r.MHz.String()
+		return share{lack: "a reference level at " + r.MHz.String()}
 	}
 	v, ok := rf.PowerDensity(r.EIRP.Most, rf.FreeField, e.device.Row.People.V.Metres(), far)
 	if !ok {
-		return 0, far, ""
+		return share{far: far}
 	}
-	return 100 * v / limit, 0, ""
+	return share{percent: 100 * v / limit, density: v, limit: limit}
 }
 
 var exposureDistance = &Rule{

@@ -47,12 +47,12 @@ func (c *Case) sayUnsurveyed(r *Report, a *bom.Area) {
 		}
 	}
 	if len(heard) == 0 {
-		r.Lacking(a.At, areaOn(a), []Lack{{"a survey ([[signal]])", c.JobAt()}}, "the level in the area %s", a.Name.V)
+		r.Lacking(a.At, areaOn(a), []Lack{{noSurvey, c.JobAt()}}, "the level in the area %s", a.Name.V)
 		return
 	}
 	for _, o := range c.wanted(a) {
 		if !heard[o] {
-			r.Lacking(a.At, areaOn(a), []Lack{{"a survey ([[signal]]) of " + o, c.JobAt()}}, "the level of %s in the area %s", o, a.Name.V)
+			r.Lacking(a.At, areaOn(a), []Lack{{noSurvey + " of " + o, c.JobAt()}}, "the level of %s in the area %s", o, a.Name.V)
 		}
 	}
 }
