@@ -70,11 +70,13 @@ func towardOutside(l *bom.Line, p protector) (port string, known bool) {
 	}
 	xs := crossingsOf(l)
 	for i, x := range xs {
-		for _, g := range guarding([]protector{p}, xs, i) {
-			if x.In1st {
-				return g.pass.Out.Name, true
-			}
-			return g.pass.In.Name, true
+		g := guarding([]protector{p}, xs, i)
+		switch {
+		case len(g) == 0:
+		case x.In1st:
+			return g[0].pass.Out.Name, true
+		default:
+			return g[0].pass.In.Name, true
 		}
 	}
 	return "", false

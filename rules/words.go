@@ -67,5 +67,4 @@ func addends(s LineSum, of func(rf.Loss) unit.DB) string {
 	return strings.Join(out, " + ")
 }
 
-func least(l rf.Loss) unit.DB    { return l.Least }
 func greatest(l rf.Loss) unit.DB { return l.Greatest }
