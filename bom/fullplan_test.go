@@ -34,6 +34,11 @@ wind_basis = "asce7-strength"
 terrain = "C"
 electrode = "building"
 lightning_system = "II"
+lightning_down_conductors = 3
+lightning_length = "9 m"
+lightning_gap = "0.4 m"
+lightning_medium = "brick"
+lightning_earths_differ = false
 mains = "protected"
 volts = 12
 skin = "aluminium"
@@ -67,12 +72,15 @@ free = "1.5 m"
 part = "ANT-LP-11"
 on = "mast"
 up = "1.3 m"
+below_roof_edge = "2.2 m"
+off_wall = "1.2 m"
 aim_deg = 214
 people = "2.5 m"
 [device.rod]
 existing = true
 kind = "electrode"
 place = "entry"
+lightning = true
 [device.dome]
 part = "DOME-NF"
 place = "shop"
@@ -234,6 +242,11 @@ Site.WindBasis: asce7-strength
 Site.Terrain: C
 Site.Electrode: building
 Site.Lightning: II
+Site.Strike.Conductors: 3
+Site.Strike.Length: 9 m
+Site.Strike.Gap: 0.4 m
+Site.Strike.Medium: brick
+Site.Strike.EarthsDiffer: false
 Site.Mains: protected
 Site.Volts: 12
 Site.Skin: aluminium
@@ -262,12 +275,15 @@ Devices.2.ID: donor
 Devices.2.Part: ANT-LP-11
 Devices.2.On: mast
 Devices.2.Up: 1.3 m
+Devices.2.BelowEdge: 2.2 m
+Devices.2.OffWall: 1.2 m
 Devices.2.AimDeg: 214
 Devices.2.People: 2.5 m
 Devices.3.ID: rod
 Devices.3.Kind: electrode
 Devices.3.Existing: true
 Devices.3.Place: entry
+Devices.3.Lightning: true
 Devices.4.ID: dome
 Devices.4.Part: DOME-NF
 Devices.4.SuppliedBy: client

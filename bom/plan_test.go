@@ -18,11 +18,13 @@ operator.consent.state operator.consent.ref operator.consent.on operator.consent
 operator.registered.state operator.registered.ref operator.registered.on operator.registered.why
 paper.permit.state paper.permit.ref paper.permit.on paper.permit.why
 site.shell_db site.coldest site.hottest site.wind site.wind_basis site.terrain site.electrode site.lightning_system site.mains
+site.lightning_down_conductors site.lightning_length site.lightning_gap site.lightning_medium site.lightning_earths_differ
 site.volts site.skin
 power_line.at power_line.kv
 place.kind place.at place.hottest place.coldest place.access place.airbag
 between.a between.b between.loss_db
 device.part device.kind device.existing device.supplied_by device.place device.on device.up device.free device.at device.aim_deg
+device.below_roof_edge device.off_wall device.lightning
 device.people device.coupling device.serial device.set device.copies
 cable.part cable.like cable.length cable.from cable.to cable.ends cable.through cable.way cable.least_bend cable.existing cable.supplied_by
 joint.a joint.b joint.way

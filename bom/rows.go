@@ -20,6 +20,9 @@ type DeviceRow struct {
 	On         source.Val[string]  // the device that it stands on
 	Up         source.Val[unit.MM] // above that device's top fixing
 	Free       source.Val[unit.MM] // of a mast: above its top fixing
+	BelowEdge  source.Val[unit.MM] // of an antenna or mast: its highest part below the roof's edge
+	OffWall    source.Val[unit.MM] // and its farthest part from the wall
+	Lightning  source.Val[bool]    // it belongs to the building's lightning protection system
 	Point      source.Val[Point]
 	AimDeg     source.Val[float64] // from true north
 	People     source.Val[unit.MM] // nearest that a person stays
@@ -146,6 +149,9 @@ func (d *DeviceRow) keys(k *source.Keys) {
 	source.Opt(k, &d.On, "on", source.Name, "the device it stands on; its place comes with it")
 	source.Opt(k, &d.Up, "up", source.Length, "above the top fixing of what it stands on")
 	source.Opt(k, &d.Free, "free", source.Length, "length of a mast above its top fixing")
+	source.Opt(k, &d.BelowEdge, "below_roof_edge", source.Length, "of an antenna, or a mast with all it carries: from the roof's edge down to its highest part")
+	source.Opt(k, &d.OffWall, "off_wall", source.Length, "of an antenna, or a mast with all it carries: from the wall to its farthest part")
+	source.Opt(k, &d.Lightning, "lightning", source.Flag, "it belongs to the building's lightning protection system")
 	source.Opt(k, &d.Point, "at", point, "east, north, height in metres; in place of the place's")
 	source.Opt(k, &d.AimDeg, "aim_deg", degrees, "direction of an antenna, from true north")
 	source.Opt(k, &d.People, "people", source.Length, "nearest that a person stays")

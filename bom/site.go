@@ -20,9 +20,20 @@ type Site struct {
 	Terrain   source.Val[string]
 	Electrode source.Val[string]
 	Lightning source.Val[string]
+	Strike    Strike
 	Mains     source.Val[string]
 	Volts     source.Val[float64]
 	Skin      source.Val[string]
+}
+
+// Strike is what is known of the building's lightning protection system beside its
+// class: what the distance that metal keeps from it depends on.
+type Strike struct {
+	Conductors   source.Val[int]     // down conductors that share the current
+	Length       source.Val[unit.MM] // along them, from the nearest point to the next equipotential bond
+	Gap          source.Val[unit.MM] // what goes up keeps this distance
+	Medium       source.Val[string]  // what lies in the gap
+	EarthsDiffer source.Val[bool]    // in resistance, by more than a factor of 2
 }
 
 // PowerLine is an overhead line near the site.
@@ -93,9 +104,18 @@ func (s *Site) keys(k *source.Keys) {
 	source.Opt(k, &s.Terrain, "terrain", source.OneOf("B", "C", "D"), "exposure category of ASCE 7")
 	source.Opt(k, &s.Electrode, "electrode", source.OneOf("building", "separate-tied", "separate-untied", "none"), "ground electrode")
 	source.Opt(k, &s.Lightning, "lightning_system", source.OneOf("none", "I", "II", "III", "IV"), "lightning protection system of the building, by class")
+	s.Strike.keys(k)
 	source.Opt(k, &s.Mains, "mains", source.OneOf("plain", "protected", "none"), "mains supply of the gear")
 	source.Opt(k, &s.Volts, "volts", source.Between(0, 1000, "V"), "nominal voltage of the vehicle")
 	source.Opt(k, &s.Skin, "skin", source.OneOf("steel", "aluminium", "plastic"), "skin of the vehicle")
+}
+
+func (s *Strike) keys(k *source.Keys) {
+	source.Opt(k, &s.Conductors, "lightning_down_conductors", source.Count(1, 1000), "down conductors of the lightning protection system")
+	source.Opt(k, &s.Length, "lightning_length", source.Length, "along its conductors, from the point nearest to the antenna or mast to the next equipotential bond")
+	source.Opt(k, &s.Gap, "lightning_gap", source.Length, "distance of the antenna or mast from it, where they come closest")
+	source.Opt(k, &s.Medium, "lightning_medium", source.OneOf("air", "concrete", "brick", "wood"), "what lies in that distance; air only where nothing else does")
+	source.Opt(k, &s.EarthsDiffer, "lightning_earths_differ", source.Flag, "its earth electrodes differ in resistance by more than a factor of 2")
 }
 
 func (l *PowerLine) keys(k *source.Keys) {

@@ -3,8 +3,6 @@ package rules
 import (
 	"driploop/bom"
 	"driploop/catalog"
-	"driploop/catalog/source"
-	"driploop/catalog/unit"
 	"driploop/rules/limits"
 )
 
@@ -13,7 +11,7 @@ import (
 // same under either code; what a code is silent on is not asked for. In a vehicle
 // they have nothing to say.
 var groundRules = []*Rule{groundArrestor, groundBond, groundConductor, groundElectrodes,
-	groundDC, groundData, groundReversed, groundLength, groundEntry, groundSpark, groundMains}
+	groundSeparation, groundDC, groundData, groundReversed, groundLength, groundEntry, groundSpark, groundMains}
 
 // Cautions of the ground rules, in the order in which a crew needs them.
 const (
@@ -217,31 +215,4 @@ func reportUnplaced(r *Report, devices []*bom.Device, row *limits.CodeRow, what 
 	for _, d := range first[1:] {
 		f.Beside(d.At, "%s has no place either", d.ID)
 	}
-}
-
-// measured is a length that was measured from a device to something that has no
-// table of its own, such as the edge of the roof: a [[reading]] of a length. Of
-// several the newest of the latest stage goes.
-func (c *Case) measuredTo(d *bom.Device, what string) source.Val[unit.MM] {
-	var best *bom.Reading
-	for i := range c.Plan.Readings {
-		x := &c.Plan.Readings[i]
-		if x.What.V != "length" || x.From.V.Name != d.ID || x.Where.V != what || !x.Length.Set {
-			continue
-		}
-		if best == nil || newer(x, best) {
-			best = x
-		}
-	}
-	if best == nil {
-		return source.Val[unit.MM]{}
-	}
-	return best.Length
-}
-
-func newer(a, b *bom.Reading) bool {
-	if built := a.Stage.V == "as-built"; built != (b.Stage.V == "as-built") {
-		return built
-	}
-	return !a.On.V.Before(b.On.V)
 }

@@ -6,6 +6,7 @@ import (
 
 	"driploop/bom"
 	"driploop/catalog"
+	"driploop/catalog/source"
 	"driploop/catalog/unit"
 	"driploop/rules/limits"
 )
@@ -21,7 +22,7 @@ var groundArrestor = &Rule{
 		practice("an arrestor with a path for the centre conductor even where a bonded shield block does for the code")},
 	Weight: Hold,
 	Lighter: "a shield block alone is a punch: for coax the NEC lets it do, once bonded, and the trade does not. In the exempt zone of IEC/EN 60728-11 " +
-		"a missing arrestor is a note; the zone is shown by two readings of a length from the antenna, at = \"roof edge\" and at = \"wall\"",
+		"a missing arrestor is a note; the zone is shown by below_roof_edge and off_wall of the antenna or its mast",
 	Grave: true,
 	Check: func(c *Case, r *Report) {
 		if c.Vehicle() {
@@ -107,27 +108,60 @@ type zone struct {
 	says       string // why it does not hold, where the code has such a zone
 }
 
-// exempt compares the measured distances of an antenna with the exempt zone of the
-// plan's code. Both must hold, and both are strict: at the very figure an antenna
-// is outside.
+// exempt compares the distances of an antenna or a mast with the exempt zone of the
+// plan's code. Both must hold, and both are strict: at the very figure it is outside.
+// What is bonded to a lightning protection system is outside wherever it is.
 func (c *Case) exempt(d *bom.Device) zone {
 	low, near := c.codeRow("exempt-below-edge"), c.codeRow("exempt-off-wall")
-	if low == nil || near == nil || d.Kind() != "antenna" {
+	if low == nil || near == nil || d.Kind() != "antenna" && d.Kind() != "mount" {
 		return zone{}
 	}
-	below, off := c.measuredTo(d, "roof edge"), c.measuredTo(d, "wall")
-	if !below.Set || !off.Set {
-		return zone{says: "the exempt zone (" + low.Figure() + " below the roof's edge and " + near.Figure() + " from the wall) is not shown by readings"}
-	}
+	below, off := roofDistances(d)
 	z := zone{below: below.V, off: off.V, row: low}
 	okLow, _ := low.AllowsLength(below.V)
 	okNear, _ := near.AllowsLength(off.V)
-	z.holds = okLow && okNear
-	if !z.holds {
-		z.says = d.ID + " is outside the exempt zone: " + below.V.String() + " below the roof's edge (" + low.Figure() + ") and " +
-			off.V.String() + " from the wall (" + near.Figure() + ")"
+	var out []string
+	if below.Set && !okLow {
+		out = append(out, below.V.String()+" below the roof's edge ("+low.Figure()+")")
+	}
+	if off.Set && !okNear {
+		out = append(out, off.V.String()+" from the wall ("+near.Figure()+")")
+	}
+	switch {
+	case len(out) > 0:
+		z.says = d.ID + " is outside the exempt zone: " + list(out)
+	case !below.Set || !off.Set:
+		z.says = "the exempt zone (" + low.Figure() + " below the roof's edge and " + near.Figure() + " from the wall) is not shown: " + d.ID + " gives no " + zoneKeys(below.Set, off.Set)
+	case c.onLightning(d):
+		z.says = d.ID + " lies in the exempt zone and is bonded to the lightning protection system, whose current comes in on the line"
+	default:
+		z.holds = true
 	}
 	return z
+}
+
+// roofDistances are how far a device lies below the roof's edge and off the wall: by
+// its own keys, or where it has none by those of the mast that carries it.
+func roofDistances(d *bom.Device) (below, off source.Val[unit.MM]) {
+	for ; d != nil; d = d.Stands {
+		if !below.Set {
+			below = d.Row.BelowEdge
+		}
+		if !off.Set {
+			off = d.Row.OffWall
+		}
+	}
+	return below, off
+}
+
+func zoneKeys(below, off bool) string {
+	switch {
+	case below:
+		return "off_wall"
+	case off:
+		return "below_roof_edge"
+	}
+	return "below_roof_edge or off_wall"
 }
 
 // arrestorFor names a catalog arrestor for a line that comes in: of its impedance,

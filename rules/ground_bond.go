@@ -26,7 +26,6 @@ var groundBond = &Rule{
 			c.reportAstray(r, b, group)
 		}
 		c.reportSupports(r, b)
-		c.adviseLightning(r)
 		reportUnplaced(r, b.unplaced, c.codeRow("mast-bond"), "whether a bond is needed, as it is outdoors,")
 	},
 }
@@ -232,9 +231,13 @@ func (c *Case) besideSite(f *Finding) {
 	}
 }
 
-// allExempt reports a mount of which every antenna lies in the exempt zone.
+// allExempt reports a mount that lies in the exempt zone with every antenna on it, or
+// that gives no distances of its own while all its antennas lie there.
 func (c *Case) allExempt(mount *bom.Device) bool {
-	some := false
+	some := c.exempt(mount).holds
+	if below, off := roofDistances(mount); !some && (below.Set || off.Set) {
+		return false
+	}
 	for _, d := range c.Graph.Devices {
 		if d.Kind() != "antenna" || !standsOn(d, mount) {
 			continue
@@ -281,18 +284,6 @@ func (c *Case) reportSupports(r *Report, b *bonding) {
 	for _, d := range bare[1:] {
 		f.Beside(d.At, "an antenna too")
 	}
-}
-
-// adviseLightning says what a lightning protection system asks of what goes up
-// beside it; a plan does not show distances from its conductors.
-func (c *Case) adviseLightning(r *Report) {
-	system := c.Plan.Site.Lightning
-	if !system.Set || system.V == "none" || !c.anythingOutdoors() {
-		return
-	}
-	r.Advice(system.At, "site", "the building has a lightning protection system of class %s; whether what goes up keeps its distance from it is not in the plan", system.V).
-		Then("stay inside its protected zone and keep the distance, or join the two with its own size of conductor and an arrestor on every line; ask whoever looks after the system").
-		onRow(c.firstRow("separation", "lightning-conductor"))
 }
 
 // carried reports an antenna that has a bond of its own, or stands on something

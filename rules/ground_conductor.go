@@ -33,6 +33,7 @@ var groundConductor = &Rule{
 		}
 		j.gear()
 		j.ties()
+		j.lightning(b)
 	},
 }
 
@@ -108,6 +109,27 @@ func (j *judge) ties() {
 		for _, b := range bonds {
 			if !j.said[b] {
 				j.said[b] = j.size(b, row, "electrode "+first[0].ID+" to electrode "+other.ID)
+			}
+		}
+	}
+}
+
+// lightning judges what joins masts outdoors to a lightning protection system, where
+// the code has a size for that.
+func (j *judge) lightning(b *bonding) {
+	row := j.c.codeRow("lightning-conductor")
+	if row == nil {
+		return
+	}
+	isLightning := func(d *bom.Device) bool { return d.Row.Lightning.V }
+	for _, w := range b.wanted {
+		if !j.c.bondedToLightning(w.dev) {
+			continue
+		}
+		bonds, end := j.best(w.dev, isLightning, row)
+		for _, x := range bonds {
+			if !j.said[x] {
+				j.said[x] = j.size(x, row, w.dev.ID+" to "+end.ID+", part of the lightning protection system")
 			}
 		}
 	}

@@ -5,7 +5,8 @@
 // a height, by Kz of the terrain (wind.go); an area becomes an EffectiveArea once,
 // and only that makes a force (force.go); forces with their levers make a moment,
 // and a tube bends under it (tube.go); a mount that stands by its weight turns over
-// or slides (ballast.go); and what falls comes near a power line (fall.go).
+// or slides (ballast.go); what falls comes near a power line (fall.go); and metal
+// keeps its distance from a lightning protection system (separation.go).
 //
 // Constants that a code or standard gives are arguments: they are rows of package
 // limits, where each has its section, edition and proof.

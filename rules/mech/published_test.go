@@ -77,6 +77,9 @@ var quantities = map[string]func(*inputs) (float64, bool){
 	"approach": func(in *inputs) (float64, bool) {
 		return mech.ApproachSteps(in.num("kv"), in.num("least"), in.num("up_to"), in.num("step"), in.num("stretch"))
 	},
+	"separation": func(in *inputs) (float64, bool) {
+		return mech.Separation(in.num("ki"), in.num("kc"), in.num("km"), in.num("l"))
+	},
 	"ladder foot": func(in *inputs) (float64, bool) { return mech.LadderFoot(in.num("length")) },
 	"ladder angle": func(in *inputs) (float64, bool) {
 		foot, ok := mech.LadderFoot(in.num("length"))
