@@ -3,6 +3,8 @@ package rules
 import (
 	"driploop/bom"
 	"driploop/catalog"
+	"driploop/catalog/source"
+	"driploop/catalog/unit"
 	"driploop/rules/limits"
 )
 
@@ -215,4 +217,31 @@ func reportUnplaced(r *Report, devices []*bom.Device, row *limits.CodeRow, what 
 	for _, d := range first[1:] {
 		f.Beside(d.At, "%s has no place either", d.ID)
 	}
+}
+
+// measuredTo is a length that was measured from a device to something that has no
+// table of its own, such as the nearest power line: a [[reading]] of a length. Of
+// several the newest of the latest stage goes.
+func (c *Case) measuredTo(d *bom.Device, what string) source.Val[unit.MM] {
+	var best *bom.Reading
+	for i := range c.Plan.Readings {
+		x := &c.Plan.Readings[i]
+		if x.What.V != "length" || x.From.V.Name != d.ID || x.Where.V != what || !x.Length.Set {
+			continue
+		}
+		if best == nil || newer(x, best) {
+			best = x
+		}
+	}
+	if best == nil {
+		return source.Val[unit.MM]{}
+	}
+	return best.Length
+}
+
+func newer(a, b *bom.Reading) bool {
+	if built := a.Stage.V == "as-built"; built != (b.Stage.V == "as-built") {
+		return built
+	}
+	return !a.On.V.Before(b.On.V)
 }
