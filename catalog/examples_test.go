@@ -152,10 +152,14 @@ var supply = example{
 	`volts = 48
 amps = 0.6
 poe = "bt3"
+wind_area_m2 = 0.04
+size_mm = 210
 ` + portsExample,
 	portsValues + `Supply.Volts 48
 Supply.Amps 0.6
 Supply.PoE bt3
+Body.WindAreaM2 0.04
+Body.SizeMM 210
 `}
 
 var data = example{
@@ -265,6 +269,8 @@ step_db = 1.5
 max_in_dbm = -9
 damage_in_dbm = 11
 load = { volts = [11, 15], w = 18 }
+wind_area_m2 = 0.07
+size_mm = 320
 [[part.X.band]]
 band = "B12"
 uplink = { gain_db = 64, max_out_dbm = 24, nf_db = 5 }
@@ -307,6 +313,8 @@ Amplifier.Kits.2.Side server
 Amplifier.Kits.2.MaxGain 3
 Amplifier.Load.Volts [11 15]
 Amplifier.Load.W 18
+Body.WindAreaM2 0.07
+Body.SizeMM 320
 `},
 	"router": {
 		`bands = ["B4", "n71"]

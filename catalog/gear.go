@@ -19,6 +19,7 @@ func readSupply(p *Part, k *source.Keys) {
 	source.Opt(k, &s.Volts, "volts", volts, "nominal voltage")
 	source.Opt(k, &s.Amps, "amps", source.AtLeast(0, "A"), "greatest current")
 	source.Opt(k, &s.PoE, "poe", poe, "what it puts on a data line")
+	p.box(k)
 }
 
 // Data belongs to data lines: data-cable, data-arrestor.

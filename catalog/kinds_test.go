@@ -23,7 +23,8 @@ const (
 	antennaKeys = "range.mhz range.gain_dbi range.vswr range.front_to_back_db range.beam_deg range.ports xpd_db port_isolation_db " +
 		"max_w pim_dbc dc wind_area_m2 size_mm mast_mm needs_ground_plane fixing"
 	passiveKeys  = portKeys + " " + pathKeys + " dc max_w pim_dbc isolation_db"
-	supplyKeys   = portKeys + " volts amps poe"
+	supplyKeys   = portKeys + " volts amps poe " + bodyKeys
+	bodyKeys     = "wind_area_m2 size_mm"
 	dataKeys     = portKeys + " category screened conductor size fire poe"
 	loadKeys     = "load.volts load.w"
 	bondKeys     = "material size insulated"
@@ -41,7 +42,7 @@ var kindKeys = map[string]string{
 	"filter": passiveKeys, "attenuator": passiveKeys, "dc-block": passiveKeys, "bias-tee": passiveKeys, "load": passiveKeys,
 	"arrestor": portKeys + " " + pathKeys + " principle spark_v dc max_w bulkhead directional",
 	"amplifier": portKeys + " " + amplifierRow + " band.band " + gainKeys +
-		" kit.side kit.antenna kit.max_gain_dbi kit.least_loss_db kit.bands " + loadKeys,
+		" kit.side kit.antenna kit.max_gain_dbi kit.least_loss_db kit.bands " + loadKeys + " " + bodyKeys,
 	"router": portKeys + " bands tx_dbm nf_db streams max_antenna_gain_dbi " + loadKeys + " " + antennaKeys,
 	"supply": supplyKeys, "injector": supplyKeys, "switch": supplyKeys, "battery": supplyKeys,
 	"data-cable": dataKeys, "data-arrestor": dataKeys,

@@ -6,7 +6,8 @@ import (
 )
 
 // Part is one part of the catalog. Of the pointers at its end exactly those are
-// set that its kind describes; a router with its own antenna has two.
+// set that its kind describes; a router with its own antenna has two, and gear has a
+// body beside its own.
 type Part struct {
 	ID      string
 	At      source.Place // its ID in the file
@@ -44,6 +45,7 @@ type Part struct {
 	Bond       *Bond
 	Mount      *Mount
 	Consumable *Consumable
+	Body       *Body // of gear that can stand in the wind
 }
 
 // Words is a list of words, each with its place.
@@ -134,6 +136,34 @@ func (p *Part) CutStock() bool {
 		return true
 	}
 	return false
+}
+
+// Body is what a box of gear shows the wind.
+type Body struct {
+	WindAreaM2 source.Val[float64] // as a maker states it, drag in it
+	SizeMM     source.Val[float64] // largest side
+}
+
+func (p *Part) box(k *source.Keys) {
+	p.Body = &Body{}
+	p.Body.keys(k)
+}
+
+func (b *Body) keys(k *source.Keys) {
+	source.Opt(k, &b.WindAreaM2, "wind_area_m2", source.AtLeast(0, "m²"), "area that the wind meets; a maker's effective area holds the drag already")
+	source.Opt(k, &b.SizeMM, "size_mm", source.AtLeast(0, "mm"), "largest side")
+}
+
+// InWind is the area that the wind meets, in m² with its drag, and the largest side
+// in mm, of an antenna or of gear; both unset for what has neither.
+func (p *Part) InWind() (area, side source.Val[float64]) {
+	switch {
+	case p.Antenna != nil:
+		return p.Antenna.WindAreaM2, p.Antenna.SizeMM
+	case p.Body != nil:
+		return p.Body.WindAreaM2, p.Body.SizeMM
+	}
+	return area, side
 }
 
 // Title is the name a person knows the part by, or its ID.

@@ -212,3 +212,21 @@ func TestAmplifierAndRouterByBand(t *testing.T) {
 		t.Errorf("the grant's gain in B5 is %+v", g)
 	}
 }
+
+// Gear that hangs outdoors says what the wind meets like an antenna does; a router
+// says it once, with its own antenna or without.
+func TestInWind(t *testing.T) {
+	for text, want := range map[string][2]float64{
+		"kind = \"antenna\"\nwind_area_m2 = 0.06\nsize_mm = 620\n":                                                  {0.06, 620},
+		"kind = \"router\"\nwind_area_m2 = 0.05\nsize_mm = 300\n":                                                   {0.05, 300},
+		"kind = \"router\"\nwind_area_m2 = 0.05\nsize_mm = 300\n[[part.X.range]]\nmhz = [698, 960]\ngain_dbi = 2\n": {0.05, 300},
+		"kind = \"amplifier\"\nwind_area_m2 = 0.07\n":                                                               {0.07, 0},
+		"kind = \"injector\"\nsize_mm = 120\n":                                                                      {0, 120},
+		"kind = \"bond-point\"\n":                                                                                   {},
+	} {
+		area, side := one(t, "[part.X]\n"+text).InWind()
+		if area.V != want[0] || side.V != want[1] || area.Set != (want[0] > 0) || side.Set != (want[1] > 0) {
+			t.Errorf("%q shows the wind %v m² and %v mm, want %v", text, area.V, side.V, want)
+		}
+	}
+}

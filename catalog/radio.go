@@ -66,6 +66,7 @@ func readAmplifier(p *Part, k *source.Keys) {
 	a := &Amplifier{}
 	p.Amplifier = a
 	a.keys(k)
+	p.box(k)
 }
 
 func (a *Amplifier) keys(k *source.Keys) {
@@ -156,5 +157,7 @@ func readRouter(p *Part, k *source.Keys) {
 	if k.Recording() || k.Has("range") {
 		p.Antenna = &Antenna{}
 		p.Antenna.keys(k)
+		return
 	}
+	p.box(k)
 }
