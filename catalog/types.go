@@ -20,7 +20,6 @@ type Points []Point
 // Value types that several kinds of part share.
 var (
 	ohm      = source.Between(1, 1000, "ohm")
-	decibels = source.Between(-200, 200, "dB")
 	level    = source.Between(-200, 100, "dBm")
 	face     = source.Checked("connector", `"N male"`, ParseFace)
 	bandName = source.Checked("band", `"B12"`, readBandName)
