@@ -42,6 +42,13 @@ type House struct {
 	BondLength source.Val[unit.MM]
 	EntryReach source.Val[unit.MM]
 
+	BallastFactor source.Val[float64]
+	RoofFriction  source.Val[float64]
+	LineClearance source.Val[unit.MM]
+	BendPerOD     source.Val[float64]
+	ClosedRiseC   source.Val[float64]
+	PlaneWaves    source.Val[float64]
+
 	BodyLossDB      source.Val[float64]
 	ReplacedGainDBi source.Val[float64]
 	PhoneGainDBi    source.Val[float64]
@@ -103,6 +110,12 @@ func (h *House) keys(k *source.Keys) {
 	source.Opt(k, &h.CableTolerance, "cable_tolerance_percent", source.Between(0, 50, "%"), "how far a cable's loss may be off; absent: 4")
 	source.Opt(k, &h.BondLength, "bond_length", source.Length, "longest way over bonds from an arrestor to its electrode; absent: 20 ft")
 	source.Opt(k, &h.EntryReach, "entry_reach", source.Length, "how far behind the entry an arrestor may sit; absent: 5 ft")
+	source.Opt(k, &h.BallastFactor, "ballast_factor", source.Between(1, 20, ""), "how many times a ballasted mount holds the wind; absent: 1.5, or what the code asks")
+	source.Opt(k, &h.RoofFriction, "roof_friction", source.Between(0.05, 2, ""), "of a ballasted mount whose part gives none; absent: 0.4")
+	source.Opt(k, &h.LineClearance, "line_clearance", source.Length, "from a power line to whatever could fall toward it; absent: what the code asks, else 10 ft")
+	source.Opt(k, &h.BendPerOD, "bend_per_od", source.Between(1, 50, ""), "least bend of a cable whose part gives none, in its diameters; absent: 5")
+	source.Opt(k, &h.ClosedRiseC, "closed_rise_c", source.Between(0, 60, "K"), "what the sun adds in an attic or a vehicle with no hottest of its own; absent: 15")
+	source.Opt(k, &h.PlaneWaves, "plane_wavelengths", source.Between(0, 2, ""), "of metal around an antenna that needs a ground plane; absent: 0.25")
 }
 
 func (o *Override) keys(k *source.Keys) {

@@ -1,0 +1,260 @@
+package rules
+
+import (
+	"driploop/bom"
+	"driploop/catalog"
+	"driploop/catalog/source"
+	"driploop/catalog/unit"
+	"driploop/rules/limits"
+)
+
+// Fire types of jackets by space. The rows of the code list what each space allows,
+// a stronger type standing in for a weaker one: plenum, riser, general, limited.
+// What a code does not speak about, as the European one leaves the classes to each
+// country, is not asked for.
+
+// space is a sort of place with its row for coaxial and for data cable.
+type space struct{ kind, words, coax, data string }
+
+// spaces are in the order of what they forbid, the strictest first.
+var spaces = []space{
+	{"plenum", "in an air space", "fire-plenum", "fire-data-plenum"},
+	{"riser", "in a riser", "fire-riser", "fire-data-riser"},
+	{"attic", "inside the building", "fire-indoor", "fire-data-indoor"},
+	{"indoor", "inside the building", "fire-indoor", "fire-data-indoor"},
+}
+
+// unmarked gathers the lines of a part without a fire marking.
+type unmarked struct {
+	part  *catalog.Part
+	lines []string
+	first spreadLine
+	row   *limits.CodeRow // of the strictest space
+	words string
+	rank  int
+}
+
+func (c *Case) checkFire(r *Report) {
+	open := map[*catalog.Part]*unmarked{}
+	var order []*unmarked
+	for _, s := range c.spread() {
+		if s.jacket == nil || s.jacket.Cable == nil && s.jacket.Data == nil {
+			continue // a wire, or a jumper of which only the loss is known
+		}
+		for i, sp := range spaces {
+			place := s.placeOf(sp.kind)
+			row := c.codeRow(sp.rowFor(s.jacket))
+			if place == nil || row == nil || s.cordAt(sp) {
+				continue
+			}
+			fire := fireOf(s.jacket)
+			if fire.Set {
+				if c.checkMarking(r, s, sp, place, row, fire) {
+					break // one space is enough to say of a line
+				}
+				continue
+			}
+			if c.entersUnlisted(s, sp) {
+				continue
+			}
+			u := open[s.jacket]
+			if u == nil {
+				u = &unmarked{part: s.jacket, first: s, row: row, words: sp.words, rank: i}
+				open[s.jacket] = u
+				order = append(order, u)
+			}
+			if i < u.rank {
+				u.row, u.words, u.rank = row, sp.words, i
+			}
+			u.lines = append(u.lines, s.id)
+			break
+		}
+	}
+	for _, u := range order {
+		r.Unknown(u.first.at, u.first.on, "%s has no fire marking in the catalog; whether %s may run %s is not assessed, where it has to be %s",
+			u.part.ID, list(u.lines), u.words, u.row.Figure()).onRow(u.row).Beside(u.part.At, "the part").
+			Then("read the marking on the jacket and add it as fire; otherwise %s", c.jacketFor(u.first, permitted(u.row)))
+	}
+}
+
+func (sp space) rowFor(p *catalog.Part) string {
+	if p.Data != nil {
+		return sp.data
+	}
+	return sp.coax
+}
+
+func fireOf(p *catalog.Part) source.Val[string] {
+	if p.Data != nil {
+		return p.Data.Fire
+	}
+	return p.Cable.Fire
+}
+
+func permitted(row *limits.CodeRow) func(*catalog.Part) bool {
+	return func(p *catalog.Part) bool {
+		ok, _ := row.Permits(fireOf(p).V)
+		return ok
+	}
+}
+
+func (s *spreadLine) placeOf(kind string) *bom.Place {
+	for _, p := range s.places() {
+		if p.Kind.V == kind {
+			return p
+		}
+	}
+	return nil
+}
+
+// cordAt reports a made-up jumper at the gear it belongs to, which is a cord and no
+// wiring of the building; in a riser or air space it is looked at like any cable.
+func (s *spreadLine) cordAt(sp space) bool {
+	return s.part.Jumper != nil && sp.coax == "fire-indoor"
+}
+
+// checkMarking holds one jacket against one space, and reports whether it had
+// something to say.
+func (c *Case) checkMarking(r *Report, s spreadLine, sp space, place *bom.Place, row *limits.CodeRow, fire source.Val[string]) bool {
+	if ok, _ := row.Permits(fire.V); ok {
+		return false
+	}
+	if european(fire.V) {
+		r.Unknown(s.at, s.on, "%s (%s) is marked %s and runs %s (%s); %s counts other types, so this is not assessed", s.id, s.part.ID, fire.V, sp.words, place.ID, c.CodeName()).
+			onRow(row).Beside(fire.At, "its marking").Then("find out which listed type the jacket is, and give that")
+		return true
+	}
+	if sp.coax == "fire-indoor" && limited(fire.V) {
+		return c.checkLimited(r, s, sp, place, row, fire)
+	}
+	c.reportForbidden(r, s, sp, place, row, fire)
+	return true
+}
+
+func (c *Case) reportForbidden(r *Report, s spreadLine, sp space, place *bom.Place, row *limits.CodeRow, fire source.Val[string]) *Finding {
+	return r.Fails(s.at, s.on, "%s (%s) is marked %s and runs %s (%s); %s is expected", s.id, s.part.ID, fire.V, sp.words, place.ID, row.Figure()).
+		onRow(row).Beside(fire.At, "its marking").Beside(place.At, "the place").
+		Then("%s; the code also takes metal raceway", c.jacketFor(s, permitted(row)))
+}
+
+// european reports a class of EN 13501-6, which no row of the American code lists.
+func european(fire string) bool {
+	switch fire {
+	case "B2ca", "Cca", "Dca", "Eca", "Fca":
+		return true
+	}
+	return false
+}
+
+// limited reports a type that serves only in dwellings and over short lengths in view.
+func limited(fire string) bool { return fire == "CATVX" || fire == "CMX" }
+
+// checkLimited looks at a limited type inside a building: it passes thin enough in a
+// dwelling, or short enough and in view.
+func (c *Case) checkLimited(r *Report, s spreadLine, sp space, place *bom.Place, row *limits.CodeRow, fire source.Val[string]) bool {
+	short, thin := c.codeRow("fire-limited"), c.codeRow("fire-limited-dwelling")
+	in := s.lengthIn(func(p *bom.Place) bool { return p.Kind.V == sp.kind })
+	var lacks []Lack
+	if short != nil && short.Length.Set {
+		most := float64(short.Length.V)
+		if in.most <= most {
+			r.Advice(s.at, s.on, "%s (%s) is marked %s: in %s that serves in view, and not behind anything", s.id, s.part.ID, fire.V, place.ID).
+				onRow(short).Then("keep it where it can be seen")
+			return true
+		}
+		if in.least <= most {
+			lacks = append(lacks, Lack{"its length in " + place.ID, s.at})
+		}
+	}
+	use, od := c.Plan.Job.Use, s.od()
+	if thin != nil {
+		limit, ok := thin.Constant(fire.V)
+		switch {
+		case !ok, od.Set && od.V >= limit, use.Set && use.V != "personal":
+		case use.Set && od.Set:
+			r.Advice(s.at, s.on, "%s (%s) is marked %s: that serves in a dwelling, which this job for personal use is taken for", s.id, s.part.ID, fire.V).
+				onRow(thin).Then("take a general type where it is none")
+			return true
+		case !use.Set:
+			lacks = append(lacks, Lack{"whether it is a dwelling (job.use)", c.JobAt()})
+		default:
+			lacks = append(lacks, Lack{"od_mm of " + s.jacket.ID, s.jacket.At})
+		}
+	}
+	if len(lacks) > 0 {
+		r.Lacking(s.at, s.on, lacks, "%s, marked %s, in %s,", s.id, fire.V, place.ID).onRow(row)
+		return true
+	}
+	c.reportForbidden(r, s, sp, place, row, fire)
+	return true
+}
+
+// od is the outer diameter of the jacket, where its part has one.
+func (s *spreadLine) od() source.Val[float64] {
+	if s.jacket.Cable == nil {
+		return source.Val[float64]{}
+	}
+	return s.jacket.Cable.ODmm
+}
+
+// entersUnlisted reports a coaxial line from outdoors that ends at an arrestor or
+// block no further in than the code lets an unlisted jacket run; its marking does
+// not matter.
+func (c *Case) entersUnlisted(s spreadLine, sp space) bool {
+	row := c.codeRow("fire-unlisted")
+	if row == nil || sp.coax != "fire-indoor" || s.cable == nil {
+		return false
+	}
+	outdoors, block := false, false
+	for _, p := range s.places() {
+		outdoors = outdoors || p.Outdoors()
+	}
+	for _, e := range s.cable.Ends {
+		for _, m := range e.Mates {
+			d := m.Other(e).Device
+			block = block || d != nil && d.Kind() == "arrestor"
+		}
+	}
+	in := s.lengthIn((*bom.Place).Indoors)
+	ok, known := row.AllowsLength(unit.MM(min(in.most, 1e9)))
+	return outdoors && block && known && ok
+}
+
+// jacketFor names a catalog cable in place of a line's that would do, and that is made
+// for the weather where the line sees it; where there is none for both, one to change
+// over to.
+func (c *Case) jacketFor(s spreadLine, would func(*catalog.Part) bool) string {
+	if s.part.Kind.V == "wire" || s.part.Kind.V == "jumper" {
+		return "take one whose jacket is made for the place"
+	}
+	outdoors := false
+	for _, p := range s.places() {
+		outdoors = outdoors || p.Outdoors()
+	}
+	best := c.jacketLike(s.part, func(p *catalog.Part) bool { return would(p) && (!outdoors || rated(p, "outdoor")) })
+	if best != nil {
+		return "make it of " + c.Firm.OnHand(best) + ", if its loss is low enough"
+	}
+	if best = c.jacketLike(s.part, would); best != nil && outdoors {
+		return "change over at the entry to " + c.Firm.OnHand(best) + "; the catalog has no cable for both"
+	}
+	return "lead it another way; the catalog has no cable for this"
+}
+
+// jacketLike is the nearest cable of the catalog that a condition lets pass, of the
+// same kind and impedance as another; nil where there is none.
+func (c *Case) jacketLike(as *catalog.Part, would func(*catalog.Part) bool) *catalog.Part {
+	var best *catalog.Part
+	for _, p := range c.Firm.Catalog.All() {
+		if p.Kind.V != as.Kind.V || p.ID == as.ID || p.Status.Or("active") != "active" || !would(p) {
+			continue
+		}
+		if p.Cable != nil && (p.Cable.Impedance.V != as.Cable.Impedance.V || len(c.Firm.Catalog.Connectors(p.ID)) == 0) {
+			continue
+		}
+		if best == nil || c.Firm.nearerThan(p, best) {
+			best = p
+		}
+	}
+	return best
+}
