@@ -23,6 +23,7 @@ type Case struct {
 
 	bands []catalog.Band
 	chain *Chain
+	power *supplies
 }
 
 // newCase makes the case of a plan that has been read.

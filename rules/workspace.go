@@ -42,6 +42,13 @@ type House struct {
 	BondLength source.Val[unit.MM]
 	EntryReach source.Val[unit.MM]
 
+	FuseReach        source.Val[unit.MM]
+	DropPercent      source.Val[float64]
+	SupplyPercent    source.Val[float64]
+	ConverterPercent source.Val[float64]
+	ChargingPercent  source.Val[float64]
+	CrankingPercent  source.Val[float64]
+
 	BallastFactor source.Val[float64]
 	RoofFriction  source.Val[float64]
 	LineClearance source.Val[unit.MM]
@@ -108,6 +115,13 @@ func (h *House) keys(k *source.Keys) {
 	source.Opt(k, &h.ReferenceDBm, "reference_dbm", level, "reference signal of a base station, per resource element; absent: 18")
 	source.Opt(k, &h.SensitivityDBm, "base_sensitivity_dbm", level, "base station, one resource block; absent: -118")
 	source.Opt(k, &h.CableTolerance, "cable_tolerance_percent", source.Between(0, 50, "%"), "how far a cable's loss may be off; absent: 4")
+	percent := source.Between(1, 200, "%")
+	source.Opt(k, &h.FuseReach, "fuse_reach", source.Length, "how far from the battery a fuse may sit; absent: 0.3 m")
+	source.Opt(k, &h.DropPercent, "drop_percent", percent, "greatest drop of a direct current lead, of the nominal voltage; absent: 5")
+	source.Opt(k, &h.SupplyPercent, "supply_load_percent", percent, "how far a supply may be loaded; absent: 100")
+	source.Opt(k, &h.ConverterPercent, "converter_percent", percent, "what a converter gives of what it takes; absent: 85")
+	source.Opt(k, &h.ChargingPercent, "charging_percent", percent, "voltage of a battery while it charges, of its nominal voltage; absent: 120")
+	source.Opt(k, &h.CrankingPercent, "cranking_percent", percent, "voltage of a vehicle while its engine starts, of the nominal voltage; absent: 75")
 	source.Opt(k, &h.BondLength, "bond_length", source.Length, "longest way over bonds from an arrestor to its electrode; absent: 20 ft")
 	source.Opt(k, &h.EntryReach, "entry_reach", source.Length, "how far behind the entry an arrestor may sit; absent: 5 ft")
 	source.Opt(k, &h.BallastFactor, "ballast_factor", source.Between(1, 20, ""), "how many times a ballasted mount holds the wind; absent: 1.5, or what the code asks")
