@@ -188,13 +188,17 @@ width_mhz   = 10
 rsrp_dbm    = {{.RSRP}}
 sinr_db     = 5
 bearing_deg = {{.Bearing}}
-{{range .Legs}}[[area]]
+{{range slice .Legs 1}}[[area]]
 name            = "room {{.N}}"
 served_by       = ["dome-{{.N}}"]
 distance        = "{{.Distant}} m"
 walls           = ["plasterboard 12.5 mm", { name = "wood shelf", loss_db = 3 }]
 target_rsrp_dbm = -105
-before          = [{ operator = "northbank", band = "B12", rsrp_dbm = -114 }, { operator = "harbourcell", band = "B5", rsrp_dbm = -116 }]
+before          = [
+  { operator = "northbank", band = "B12", rsrp_dbm = -114 }, { operator = "northbank", band = "B4", rsrp_dbm = -118 },
+  { operator = "northbank", band = "B2", rsrp_dbm = -117 }, { operator = "harbourcell", band = "B13", rsrp_dbm = -115 },
+  { operator = "harbourcell", band = "B5", rsrp_dbm = -116 },
+]
 {{end}}[[reading]]
 what     = "isolation"
 from     = "amp.server"
