@@ -1,73 +1,15 @@
-package rf_test
+package rules_test
 
 import (
-	"errors"
 	"fmt"
-	"math"
-	"strconv"
-	"strings"
 
 	"driploop/catalog/unit"
 	"driploop/rules/rf"
 )
 
-// inputs are the "key=value;key=value" of a row; every key must be asked for.
-type inputs struct {
-	values map[string]string
-	asked  map[string]bool
-	err    error
-}
-
-func parseInputs(s string) (*inputs, error) {
-	in := &inputs{map[string]string{}, map[string]bool{}, nil}
-	for pair := range strings.SplitSeq(s, ";") {
-		k, v, ok := strings.Cut(pair, "=")
-		if !ok || in.values[k] != "" {
-			return nil, fmt.Errorf("input %q is no key=value, or given twice", pair)
-		}
-		in.values[k] = v
-	}
-	return in, nil
-}
-
-func (in *inputs) has(key string) bool { return in.values[key] != "" }
-
-func (in *inputs) text(key string) string {
-	in.asked[key] = true
-	if !in.has(key) {
-		in.err = errors.Join(in.err, fmt.Errorf("input %q is missing", key))
-	}
-	return in.values[key]
-}
-
-func (in *inputs) list(key string) []float64 {
-	var out []float64
-	for _, word := range strings.Fields(in.text(key)) {
-		v, err := strconv.ParseFloat(word, 64)
-		in.err = errors.Join(in.err, err)
-		out = append(out, v)
-	}
-	return out
-}
-
-// num is one number, or the i-th of a list.
-func (in *inputs) num(key string, i ...int) float64 {
-	l := in.list(key)
-	at := 0
-	if len(i) > 0 {
-		at = i[0]
-	}
-	if at >= len(l) {
-		in.err = errors.Join(in.err, fmt.Errorf("input %q lacks number %d", key, at+1))
-		return math.NaN()
-	}
-	return l[at]
-}
-
 func (in *inputs) mhz(key string, i ...int) unit.MHz { return unit.MHz(in.num(key, i...)) }
 func (in *inputs) db(key string, i ...int) unit.DB   { return unit.DB(in.num(key, i...)) }
 func (in *inputs) dbm(key string, i ...int) unit.DBm { return unit.DBmOf(in.num(key, i...)) }
-func (in *inputs) count(key string) int              { return int(in.num(key)) }
 func (in *inputs) watts(key string) unit.DBm         { return unit.DBmOfWatt(in.num(key)) }
 func (in *inputs) coax() rf.Coax {
 	return rf.Coax{Outer: in.num("mm", 0), Inner: in.num("mm", 1), Permittivity: in.num("er")}
@@ -90,11 +32,9 @@ func (in *inputs) dbs(key string) []unit.DB {
 // points pairs the lists mhz and db.
 func (in *inputs) points() []rf.Point {
 	var out []rf.Point
-	dbs := in.list("db")
-	for i, f := range in.list("mhz") {
-		if i < len(dbs) {
-			out = append(out, rf.Point{MHz: unit.MHz(f), DB: unit.DB(dbs[i])})
-		}
+	mhz, db := in.paired("mhz", "db")
+	for i, f := range mhz {
+		out = append(out, rf.Point{MHz: unit.MHz(f), DB: unit.DB(db[i])})
 	}
 	return out
 }
@@ -105,23 +45,21 @@ func (in *inputs) cable() (rf.Cable, bool) {
 		max = in.mhz("max")
 	}
 	c, err := rf.FitCable(in.points(), max)
-	in.err = errors.Join(in.err, err)
+	in.fail(err)
 	return c, err == nil
 }
 
 func (in *inputs) stages() []rf.Stage {
 	var out []rf.Stage
-	gains := in.dbs("gain")
-	for i, nf := range in.dbs("nf") {
-		if i < len(gains) {
-			out = append(out, rf.Stage{Gain: gains[i], NF: nf})
-		}
+	gain, nf := in.paired("gain", "nf")
+	for i := range gain {
+		out = append(out, rf.Stage{Gain: unit.DB(gain[i]), NF: unit.DB(nf[i])})
 	}
 	return out
 }
 
 func (in *inputs) channel() rf.Channel {
-	columns := in.count("columns")
+	columns := max(1, in.count("columns"))
 	var h rf.Channel
 	for i, v := range in.list("h") {
 		if i%columns == 0 {
@@ -159,8 +97,8 @@ func (in *inputs) coupling() (unit.DB, bool) {
 		Feed: in.db("feed"), Leg: in.db("leg")}.Isolation()
 }
 
-// quantities are the names that rows may use.
-var quantities = map[string]func(*inputs) (float64, bool){
+// rfQuantities are what the table of the radio chain may ask for.
+var rfQuantities = map[string]func(*inputs) (float64, bool){
 	"quarter wave mm": func(in *inputs) (float64, bool) {
 		v, ok := rf.QuarterWave(in.mhz("mhz"), in.num("velocity"))
 		return scaled(1000, v, ok)
@@ -242,7 +180,7 @@ var quantities = map[string]func(*inputs) (float64, bool){
 	"p1238 newer": func(in *inputs) (float64, bool) {
 		row, found := rf.SurroundingsNamed(in.text("row"))
 		if !found {
-			in.err = fmt.Errorf("no row %q", in.text("row"))
+			in.fail(fmt.Errorf("no row %q", in.text("row")))
 		}
 		return ofDB(row.Loss(in.mhz("mhz"), in.num("m")))
 	},
@@ -266,7 +204,7 @@ var quantities = map[string]func(*inputs) (float64, bool){
 	"slab": func(in *inputs) (float64, bool) {
 		m, found := in.material()
 		if !found {
-			in.err = fmt.Errorf("no material %q", in.text("material"))
+			in.fail(fmt.Errorf("no material %q", in.text("material")))
 		}
 		return ofDB(m.Slab(in.mhz("mhz"), in.num("mm")))
 	},
