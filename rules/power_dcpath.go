@@ -75,7 +75,7 @@ func (p *pathCheck) follow(l *bom.Line, f feeder) {
 		}
 		return
 	}
-	if !l.Open && end.Device != nil && end.Device.Part != nil {
+	if !(l.Open && f.on) && end.Device != nil && end.Device.Part != nil {
 		p.arrives(f, end)
 	}
 }
@@ -162,13 +162,13 @@ func (p *pathCheck) arrives(f feeder, end *bom.Node) {
 	}
 }
 
-// reachesRadio looks at current into the radio port of a device that has a supply
-// of its own. Ports do not say what direct current they stand.
+// reachesRadio looks at current into the radio port of a device that does not live on
+// it. Ports do not say what direct current they stand.
 func (p *pathCheck) reachesRadio(f feeder, s spot, end *bom.Node) {
 	if p.c.lives(end) == yes || !p.once(f, s) {
 		return
 	}
-	p.r.Unknown(s.at, s.on, "%s run into %s, and %s has its supply elsewhere; whether the port stands them is not assessed", f, end.Name(), end.Device.ID).
+	p.r.Unknown(s.at, s.on, "%s run into %s, and %s does not live on its coax; whether the port stands them is not assessed", f, end.Name(), end.Device.ID).
 		Then("turn what feeds the line round if it looks the wrong way; else %s", p.c.blockFor(f)).Beside(f.at, "the port that feeds the line")
 }
 
@@ -182,15 +182,15 @@ const (
 )
 
 // lives reports whether what stands at the end of a line lives on its current: an
-// active part without another supply does, and an antenna for satellite signals that
-// is no short.
+// amplifier without another supply does, a router only where it has no other port
+// for one, and an antenna for satellite signals that is no short.
 func (c *Case) lives(end *bom.Node) answer {
 	d := end.Device
 	if d == nil || d.Part == nil {
 		return no
 	}
 	if d.Active() {
-		if c.wired(d) {
+		if c.wired(d) || fedElsewhere(d) {
 			return no
 		}
 		return yes
@@ -202,6 +202,12 @@ func (c *Case) lives(end *bom.Node) answer {
 		return notKnown
 	}
 	return yes
+}
+
+// fedElsewhere reports a router that has a port for its supply; an amplifier with one
+// is fed over its coax all the same where a mast is far from a socket.
+func fedElsewhere(d *bom.Device) bool {
+	return d.Part.Router != nil && (hasPowerPort(d.Part) || takesPoE(d.Part))
 }
 
 // livesOnCoax reports an amplifier that asks for power and has no port for it but

@@ -76,7 +76,7 @@ func (c *Case) findCoaxFeeds(all *supplies) {
 				all.toward[node.Device] = true
 			}
 			key := f.name + " " + node.Name()
-			if l.Open || end == nil || seen[key] || c.lives(node) != yes || node.Port.DCOut != nil {
+			if l.Open && f.on || end == nil || seen[key] || c.lives(node) != yes || node.Port.DCOut != nil {
 				continue
 			}
 			seen[key] = true

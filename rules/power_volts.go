@@ -150,7 +150,9 @@ func takesPoE(p *catalog.Part) bool {
 }
 
 // supplied reports a device to which the plan brings power, whether enough or not.
-func (c *Case) supplied(d *bom.Device) bool { return c.wired(d) || c.fedOverCoax(d) }
+func (c *Case) supplied(d *bom.Device) bool {
+	return c.wired(d) || c.fedOverCoax(d) && !fedElsewhere(d)
+}
 
 // wired reports a device with a wire, or with a data line in a port that takes power.
 func (c *Case) wired(d *bom.Device) bool {
