@@ -28,6 +28,8 @@ var houseTop = []string{"cmd", "bom", "rules", "catalog", "testdata",
 var housePure = map[string][]string{
 	"catalog/unit": {},
 	"bom/cut":      {},
+	"rules/elec":   {"catalog/unit"},
+	"rules/mech":   {"catalog/unit"},
 	"rules/rf":     {"catalog/unit"},
 }
 
