@@ -62,7 +62,10 @@ func (k PoE) Left(loopOhm float64) (watt float64, ok bool) {
 		return 0, false
 	}
 	left := k.Watt - float64(k.PairSets)*k.amps()*k.amps()*loopOhm
-	return left, left > 0
+	if !(left > 0) {
+		return 0, false
+	}
+	return left, true
 }
 
 // Pairs is the resistance of a data cable out and back over a number of pair sets,

@@ -1,6 +1,7 @@
 package limits
 
 import (
+	"math"
 	"slices"
 
 	"driploop/catalog/source"
@@ -105,8 +106,11 @@ func (r *CodeRow) SizeFor(material string) (unit.Gauge, bool) {
 }
 
 // StepFor is the step that holds at a value of the input, such as the voltage of a
-// line; nil above the last one.
+// line; nil above the last one, and where the value is no number.
 func (r *CodeRow) StepFor(v float64) *Step {
+	if math.IsNaN(v) {
+		return nil
+	}
 	for i := range r.Steps {
 		if to := r.Steps[i].To; !to.Set || !rf.Exceeds(v, to.V) {
 			return &r.Steps[i]
