@@ -76,9 +76,9 @@ var mechQuantities = map[string]func(*inputs) (float64, bool){
 	"separation": func(in *inputs) (float64, bool) {
 		return mech.Separation(in.num("ki"), in.num("kc"), in.num("km"), in.num("l"))
 	},
-	"ladder foot": func(in *inputs) (float64, bool) { return mech.LadderFoot(in.num("length")) },
+	"ladder foot": func(in *inputs) (float64, bool) { return mech.LadderFoot(in.num("length"), in.num("share")) },
 	"ladder angle": func(in *inputs) (float64, bool) {
-		foot, ok := mech.LadderFoot(in.num("length"))
+		foot, ok := mech.LadderFoot(in.num("length"), in.num("share"))
 		if !ok {
 			return 0, false
 		}

@@ -28,13 +28,14 @@ func ApproachSteps(kv, least, upTo, step, stretch float64) (float64, bool) {
 	return figure(least + step*math.Ceil(over/stretch-1e-9))
 }
 
-// LadderFoot is how far out the foot of a ladder stands for a working length: a
-// quarter of it (29 CFR 1926.1053(b)(5)(i); read). Any unit of length will do.
-func LadderFoot(length float64) (float64, bool) {
-	if !positive(length) {
+// LadderFoot is how far out the foot of a ladder stands for a working length, by the
+// share of it that a code gives: a quarter (29 CFR 1926.1053(b)(5)(i); read). Any unit
+// of length will do.
+func LadderFoot(length, share float64) (float64, bool) {
+	if !positive(length, share) {
 		return 0, false
 	}
-	return figure(length / 4)
+	return figure(length * share)
 }
 
 // Vec is a point in metres: east, north, up.

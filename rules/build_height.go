@@ -1,0 +1,62 @@
+package rules
+
+import (
+	"fmt"
+	"math"
+
+	"driploop/catalog/unit"
+	"driploop/rules/mech"
+)
+
+// What the cautions on heights and power lines say of the plan at hand, so that they
+// are read.
+
+// heightFigures says how high the work goes, and how a ladder to it stands where the
+// plan's code speaks of ladders; "" where the plan gives no height.
+func (c *Case) heightFigures() string {
+	work, landing := 0.0, 0.0
+	for _, d := range c.Graph.Devices {
+		if !atHeight(d) || !d.Point.Set {
+			continue
+		}
+		low, _, _ := heightOf(d)
+		work = max(work, low)
+		if d.Place.Point.Set {
+			landing = max(landing, d.Place.Point.V.Up)
+		}
+	}
+	if work == 0 {
+		return ""
+	}
+	out := fmt.Sprintf(" Here the work goes up to %s m.", unit.Fixed(work, 1))
+	foot, top := c.codeRow("ladder-foot"), c.codeRow("ladder-top")
+	if foot == nil || top == nil || landing == 0 {
+		return out
+	}
+	share, _ := foot.Constant("share_of_length")
+	off, ok := mech.LadderFoot(landing, share)
+	if !ok {
+		return out
+	}
+	return out + fmt.Sprintf(" A ladder up %s m stands %s m out at its foot, and its rails reach %s m above where it lands.",
+		unit.Fixed(landing, 1), unit.Fixed(off, 1), unit.Fixed(top.Length.V.Metres(), 1))
+}
+
+// fallFigures says how far each thing reaches that could fall, with what is kept
+// beyond it from lines of ordinary voltage.
+func (c *Case) fallFigures() string {
+	keep, _ := c.lineClearance(0)
+	var out []string
+	for _, d := range c.Graph.Devices {
+		if !falls(d) || unresolved(d) || !d.Place.Outdoors() {
+			continue
+		}
+		if f := c.fallOf(d); !math.IsInf(f.radius.most, 1) {
+			out = append(out, fmt.Sprintf("%s m around %s", unit.Fixed(math.Ceil((f.radius.most+keep)*10-1e-9)/10, 1), d.ID))
+		}
+	}
+	if out == nil {
+		return ""
+	}
+	return " Here that is " + list(out) + "; high voltage needs more."
+}
