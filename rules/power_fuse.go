@@ -17,7 +17,8 @@ var powerFuse = &Rule{
 	Basis: []Basis{
 		practice("every lead is fused at the battery, by the thinnest conductor behind the fuse"),
 		house("fuse_reach (0.3 m where it says nothing)"),
-		{"NFPA 70 (NEC) 240.4(D) for 18 to 10 AWG, table 310.16 at 60 °C for 8 to 4 AWG, where the wire's part states no amps", "2020", "code", "copy"}},
+		{"NFPA 70 (NEC) 240.4(D) for 18 to 10 AWG, where the wire's part states no amps", "2020", "code", "copy"},
+		{"NFPA 70 (NEC) table 310.16, 60 °C column, for 8 to 4 AWG, likewise", "2020", "code", "memory"}},
 	Weight: Hold,
 	Lighter: "A fuse further from the battery than the house allows is a punch, and so is one that the load itself would blow. " +
 		"A mains supply limits its own current: its lead wants a fuse only where the supply gives more than the wire stands.",

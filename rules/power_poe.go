@@ -16,7 +16,8 @@ var powerPoE = &Rule{
 	Why:     "passive 48 V in a port for 24 V burns it, negotiated power leaves a passive port dark, and a class too low starts over at full load",
 	Caution: "A passive injector puts its voltage on the line without asking. Read what both ends say before anything is plugged in.",
 	Basis: []Basis{
-		{"IEEE 802.3 clauses 33 and 145 (af, at, bt types 3 and 4): power, voltage and loop of a channel", "2018", "standard", "copy"},
+		{"IEEE 802.3 clauses 33 and 145 (af, at, bt types 3 and 4): power and voltage at source and device", "2018", "standard", "copy"},
+		{"IEEE 802.3 clauses 33 and 145: loop of a channel, 20 Ω for af, 12.5 Ω a pair set for the others", "2018", "standard", "memory"},
 		{"ISO/IEC 11801-1 and TIA-568.2: channel of 100 m, solid copper", "2017", "standard", "memory"},
 		practice("passive kinds run over two pairs out and back without any talk; their voltage at the gear is the injector's less the loss of the line")},
 	Weight: Hold,
