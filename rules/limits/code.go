@@ -162,7 +162,7 @@ func (c *Code) keys(k *source.Keys) {
 	source.Opt(k, &c.Checked, "checked", source.Day, "when the rows were last compared with their sources")
 	source.Rows(k, &c.Rows, "row", (*CodeRow).keys, "requirements and figures")
 	var cautions source.Val[[]source.Val[string]]
-	source.Opt(k, &cautions, "cautions", source.ListOf(source.Text), "printed with every result")
+	source.Opt(k, &cautions, "cautions", source.ListOf(source.Text), "what a plan that grounds something is told beside the rows")
 	c.Cautions = cautions.V
 	seen := map[string]source.Place{}
 	for i := range c.Rows {

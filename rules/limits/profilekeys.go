@@ -39,7 +39,7 @@ func (p *Profile) keys(k *source.Keys) {
 	p.Separation = one(k, "separation", (*Separation).keys, "least distance between antennas and people")
 	source.Rows(k, &p.Conditions, "condition", (*Duty).keys, "what a plan cannot show")
 	var cautions source.Val[[]source.Val[string]]
-	source.Opt(k, &cautions, "cautions", source.ListOf(source.Text), "printed with every result")
+	source.Opt(k, &cautions, "cautions", source.ListOf(source.Text), "what its plans are told where it has no limit to hold them against")
 	p.Cautions = cautions.V
 	p.fillEdition()
 }
