@@ -155,6 +155,21 @@ device.radio = { part = "RADIO" }
 	})
 }
 
+func TestLeadsOfRadiosAndPassives(t *testing.T) {
+	g := whole(t, cx("C", "yagi", "radio.main", `ends = ["NM", "NM"]`)+`
+joint = [{ a = "tail.a", b = "radio-2" }, { a = "tail.b", b = "dome.rf" }]
+[device]
+radio = { part = "RADIO-L", copies = { radio-2 = {} } }
+yagi = { part = "YAGI" }
+dome = { part = "DOME" }
+tail = { part = "TAIL" }
+`)
+	hasLines(t, "leads", followed(g, true),
+		"feed yagi.rf > radio.main: yagi.rf~C.1 C C.2~radio.main lead(radio.main)",
+		"feed dome.rf > radio-2.main: dome.rf~tail.b lead(tail.b) tail(b>a) lead(tail.a) tail.a~radio-2.main lead(radio-2.main)",
+	)
+}
+
 func TestSplitters(t *testing.T) {
 	g := whole(t, cx("L0", "amp.server", "split.in", nn)+cx("L1", "split.out1", "dome", nn)+cx("L2", "split.out2", "split-2.in", nn)+
 		cx("L3", "split-2.out1", "dome-2", nn)+`
@@ -177,6 +192,9 @@ amp = { part = "AMP" }
 	}
 	if got := len(g.Lines().Of(bom.Leg)); got != 2 {
 		t.Errorf("%d legs, want 2", got)
+	}
+	if got := g.Lines().At(g.Device("dome-2").Node("rf")); len(got) != 1 || got[0].Kind != bom.Leg {
+		t.Errorf("at a dome are %v", got)
 	}
 	l := g.Lines().Of(bom.Leg)[0]
 	if !l.Passes(g.Device("split")) || l.Passes(g.Device("amp")) || l.Name() != "amp.server to dome.rf" || l.On() != "cable.L0" || l.At().Text() != "L0" {
@@ -243,16 +261,8 @@ func TestPassiveAntennas(t *testing.T) {
 		"donor last":  "dome = { part = \"DOME\" }\ndome-2 = { part = \"DOME\" }\nsplit = { part = \"SPLIT-2\" }\nyagi = { part = \"YAGI\" }\n",
 	} {
 		g := whole(t, cables+"[device]\n"+devices)
-		var ends []string
-		for _, l := range g.Lines().All {
-			pair := []string{l.From.Name(), l.To.Name()}
-			slices.Sort(pair)
-			ends = append(ends, strings.Join(pair, " "))
-		}
-		slices.Sort(ends)
-		if want := []string{"dome-2.rf yagi.rf", "dome.rf yagi.rf"}; !slices.Equal(ends, want) {
-			t.Errorf("%s: joined are %v, want %v", name, ends, want)
-		}
+		// Nothing decides the direction, so the names do.
+		hasLines(t, name, short(g), "stub dome.rf > yagi.rf: B A'", "stub dome-2.rf > yagi.rf: C A'")
 	}
 }
 
@@ -303,9 +313,38 @@ split = { part = "SPLIT-2" }
 	}
 	g = lay(t, cx("A", "A.2", "", nn)+cx("B", "amp.server", "B2.1", nn)+"cable.B2 = { part = \"CX\", length = \"1 m\", to = \"B2.1\", ends = [\"NM\", \"NM\"] }\n"+`device.amp = { part = "AMP" }
 `)
-	if n := len(g.Lines().Loops); n == 0 {
-		t.Error("a cable that is joined to itself is no loop")
+	at = nil
+	for _, n := range g.Lines().Loops {
+		at = append(at, n.Name())
 	}
+	if want := []string{"B2.1"}; !slices.Equal(at, want) {
+		t.Errorf("a cable that is joined to itself comes back at %v, want %v", at, want)
+	}
+	g = lay(t, cx("A", "amp.server", "split.in", nn)+cx("B", "split.out1", "amp.server", nn)+`device.amp = { part = "AMP" }
+device.split = { part = "SPLIT-2" }
+`)
+	hasLines(t, "back to where it began", short(g), "stub amp.server > split.out2 (open): A")
+	if n := len(g.Lines().Loops); n != 2 { // once round each way
+		t.Errorf("%d ways come back to where they began, want 2", n)
+	}
+}
+
+// A hybrid passes on between all of its ports: a way that comes back in at one of them
+// goes on to those that it has not passed.
+func TestHybrids(t *testing.T) {
+	const devices = `
+[device]
+amp = { part = "AMP" }
+hybrid = { part = "HYBRID" }
+dome = { part = "DOME" }
+yagi = { part = "YAGI" }
+`
+	g := whole(t, cx("A", "amp.server", "hybrid.in", nn)+cx("B", "hybrid.a", "hybrid.b", nn)+cx("C", "hybrid.c", "dome", nn)+devices)
+	hasLines(t, "a ring beside the way", short(g), "leg amp.server > dome.rf: A C", "leg amp.server > dome.rf: A B C", "leg amp.server > dome.rf: A B' C")
+	// What an antenna reaches beside the amplifier that it belongs to is no line of its own.
+	g = whole(t, cx("A", "amp.server", "hybrid.in", nn)+cx("C", "hybrid.c", "dome", nn)+cx("D", "hybrid.b", "yagi", nn)+devices)
+	hasLines(t, "two antennas and an open port", short(g),
+		"leg amp.server > dome.rf: A C", "leg amp.server > yagi.rf: A D", "stub amp.server > hybrid.a (open): A")
 }
 
 // A plan with more ways than are kept says so: three rows of splitters of 16 have

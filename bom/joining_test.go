@@ -2,6 +2,7 @@ package bom_test
 
 import (
 	"fmt"
+	"strings"
 	"testing"
 
 	"driploop/bom"
@@ -189,8 +190,26 @@ cable.A = { part = "CX", length = "1 m", to = "radio.main", ends = ["NM", "NM"],
 	hasHoles(t, "a splitter", g, `wrong kind, "SPLIT-2", cable.A: SPLIT-2 is of kind splitter; adapter or attenuator or dc-block is expected here; name a part of that kind`)
 	g = lay(t, fmt.Sprintf(text, `"TEE"`))
 	hasHoles(t, "of three ports", g, `wrong kind, "TEE", cable.A: TEE has 3 ports; what a cable passes through has two; make it a device with a cable to each port`)
-	// Across a gap nothing is joined: what would meet there is not known.
+	// Across a gap nothing is joined: what would meet there is not known. What the cable
+	// goes to is looked up all the same.
 	hasMates(t, "of three ports", g)
+	const gap = `no part, "AD-N-X", cable.A: the catalog has no part "AD-N-X"; did you mean AD-N-S?`
+	across := strings.ReplaceAll(text, `"radio.main"`, "%q")
+	for to, want := range map[string]string{
+		"radio":       "", // which port it means nobody can say
+		"radio.mainn": `no port, "radio.mainn", cable.A: radio (part RADIO) has no port "mainn"; did you mean radio.main?`,
+		"radios":      `bad reference, "radios", cable.A: the plan has no device or cable "radios"; did you mean radio?`,
+		"A":           "",
+		"A.1":         "",
+	} {
+		g := lay(t, fmt.Sprintf(across, to, `"AD-N-X"`))
+		if want == "" {
+			hasHoles(t, to, g, gap)
+		} else {
+			hasHoles(t, to, g, gap, want)
+		}
+		hasMates(t, to, g)
+	}
 }
 
 func TestJoints(t *testing.T) {
@@ -202,8 +221,9 @@ arrest = { part = "ARREST-MF" }
 amp = { part = "AMP" }
 load = { part = "LOAD" }
 split = { part = "SPLIT-2" }
-pad = { part = "PAD" }
-pad-2 = { part = "PAD" }
+pad = { part = "PAD", copies = { pad-2 = {} } }
+line = { part = "ARREST", copies = { line-2 = {} } }
+load-2 = { part = "LOAD" }
 `
 	joint := func(a, b string) string { return fmt.Sprintf("joint = [{ a = %q, b = %q }]\n", a, b) }
 	for name, c := range map[string]struct{ a, b, want string }{
@@ -231,6 +251,21 @@ pad-2 = { part = "PAD" }
 		`no port, "arrest", joint.arrest: "arrest" alone does not say which port: arrest.line, arrest.gear are free; write one of them`,
 		`no port, "amp", joint.arrest: "amp" alone does not say which port: amp.donor, amp.server are free; write one of them`)
 	hasMates(t, "one port of one, two of the other", g)
+	g = lay(t, joint("yagi.rf", "amp.zz")+devices)
+	hasHoles(t, "the second leads nowhere", g, `no port, "amp.zz", joint.yagi-rf: amp (part AMP) has no port "zz"; its ports are donor, server, dc`)
+	g = lay(t, joint("yag", "amp.donor")+devices)
+	hasHoles(t, "the first leads nowhere", g, `bad reference, "yag", joint.yag: the plan has no device or cable "yag"; did you mean yagi?`)
+	// A joint with a bare name, whichever of its sides it is, waits for those without.
+	g = whole(t, `joint = [{ a = "line", b = "load.rf" }, { a = "line.line", b = "pad.m" }, { a = "load-2.rf", b = "line-2" }, { a = "line-2.line", b = "pad-2.m" }]
+`+devices)
+	hasMates(t, "bare names wait", g, "line.gear = load.rf", "line.line = pad.m", "load-2.rf = line-2.gear", "line-2.line = pad-2.m")
+	p, problems := readPlan(t, "joint = [{ a = \"yagi.rf\", b = 3 }, { a = 3, b = \"yagi.rf\" }]\n"+devices)
+	if len(problems) != 2 {
+		t.Errorf("problems are %v", problems)
+	}
+	g = bom.Resolve(p, shopCatalog(t))
+	hasHoles(t, "a side that cannot be read", g)
+	hasMates(t, "a side that cannot be read", g)
 	g = lay(t, joint("yag", "amp.donr")+devices)
 	hasHoles(t, "both lead nowhere", g,
 		`bad reference, "yag", joint.yag: the plan has no device or cable "yag"; did you mean yagi?`,

@@ -45,6 +45,21 @@ port.div = { connector = "SMA female", impedance_ohm = 50 }
 port.poe = { use = "data" }
 port.lan = { use = "data" }
 port.dc = { use = "power" }
+[part.RADIO-L]
+kind = "router"
+port.main = { connector = "N female", impedance_ohm = 50, lead = { cable = "THIN", length = "30 cm" } }
+[part.TAIL]
+kind = "filter"
+port.a = { connector = "N male", impedance_ohm = 50, lead = { cable = "THIN", length = "10 cm" } }
+port.b = { connector = "N male", impedance_ohm = 50, lead = { cable = "THIN", length = "20 cm" } }
+path = [{ from = "b", to = "a", loss_db = 1 }]
+[part.HYBRID]
+kind = "coupler"
+port.in = { connector = "N female", impedance_ohm = 50 }
+port.a = { connector = "N female", impedance_ohm = 50 }
+port.b = { connector = "N female", impedance_ohm = 50 }
+port.c = { connector = "N female", impedance_ohm = 50 }
+path = [{ from = "in", to = ["a", "b", "c"], loss_db = 6 }, { from = "a", to = ["b", "c"], loss_db = 6 }, { from = "b", to = "c", loss_db = 6 }]
 [part.MIXED]
 kind = "router"
 port.n = { connector = "N female", impedance_ohm = 50 }
