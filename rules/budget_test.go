@@ -1,6 +1,8 @@
 package rules_test
 
 import (
+	"math"
+	"strings"
 	"testing"
 
 	"driploop/rules"
@@ -50,6 +52,34 @@ func TestStagesOfABudget(t *testing.T) {
 		if x := band(t, b, "B5", direction); !x.EIRP.OK || !nearly(x.EIRP.V.Value(), want, 0.001) {
 			t.Errorf("%s EIRP %+v, want %v dBm", direction, x.EIRP, want)
 		}
+	}
+}
+
+// What is radiated meets the least loss of the line, levels stage by stage the
+// greatest: 20 m of cable that lose 2 dB per 20 m at 20 °C, and 10 % less or more in a
+// loft, at 881.5 MHz with two pairs of 0.047 dB.
+func TestBudgetNamesTwoSums(t *testing.T) {
+	text := strings.NewReplacer(`L = { part = "J-2", from = "amp.server", to = "dome" }`,
+		`L = { part = "CX", length = "20 m", from = "amp.server", to = "dome", ends = ["N male", "N male"], way = ["loft"] }`,
+		"[device]\n", "loft = { kind = \"attic\", coldest = \"-30 C\", hottest = \"70 C\" }\n[device]\n").
+		Replace(chainPlan(fixedWideband, heard("-99")+apart("90"))) + `
+-- catalog/cx.toml --
+[part.CX]
+kind             = "cable"
+impedance_ohm    = 50
+loss_db_per_100m = [[881, 10], [881.5, 10], [882, 10]]
+max_mhz          = 6000
+`
+	x := band(t, planCase(t, text, "shop").Budget(), "B5", "downlink")
+	pairs := 2 * 0.05 * math.Sqrt(0.8815)
+	if want := -99 + 27.7815 + 8 + 60 + 3 - 1.8 - pairs; !nearly(x.EIRP.V.Value(), want, 0.002) {
+		t.Errorf("EIRP that runs %.4f dBm, want %.4f", x.EIRP.V.Value(), want)
+	}
+	if want := 12 + 3 - 1.8 - pairs; !nearly(x.Worst.Mid.EIRP.Most.Value(), want, 0.002) {
+		t.Errorf("EIRP at rated output %.4f dBm, want %.4f", x.Worst.Mid.EIRP.Most.Value(), want)
+	}
+	if last := x.Chains[0].Stages[2]; !nearly(float64(last.Gain), -2.2-pairs, 0.002) {
+		t.Errorf("the leg stands with %.4f dB among the stages", float64(last.Gain))
 	}
 }
 

@@ -36,9 +36,8 @@ func checkIsolation(c *Case, r *Report, x *BandChain) {
 		case rf.Below(float64(v), float64(need)):
 			c.shortIsolation(r.Fails, x, d)
 			return
-		case len(lacks) == 0 && rf.Below(float64(v-x.Apart.doubt()), float64(need)):
+		case rf.Below(float64(v-x.Apart.doubt()), float64(need)):
 			c.shortIsolation(r.AtWorst, x, d).With("tolerance_db", float64(x.Apart.doubt()))
-			return
 		}
 	}
 	if len(lacks) > 0 {
