@@ -16,13 +16,8 @@ import (
 type Chain struct {
 	Bands  []*BandChain // by device in the plan's order, then by band
 	Radios []*RadioChain
-	sums   map[sumKey]LineSum
+	lines  map[*bom.Line]*recipe
 	reach  []*AreaReach
-}
-
-type sumKey struct {
-	line *bom.Line
-	f    unit.MHz
 }
 
 // BandChain is one amplifier in one planned band.
@@ -88,7 +83,7 @@ func unknown[T any](at source.Place, what string) Known[T] {
 
 // newChain computes the chain of a case.
 func newChain(c *Case) *Chain {
-	ch := &Chain{sums: map[sumKey]LineSum{}}
+	ch := &Chain{lines: map[*bom.Line]*recipe{}}
 	c.chain = ch
 	for _, d := range c.Graph.Devices {
 		if d.Part == nil || d.Part.Amplifier == nil {
@@ -122,13 +117,12 @@ func ampRow(a *catalog.Amplifier, b catalog.Band) (*catalog.AmpBand, catalog.Ban
 // Sum is the loss of a line at a frequency, added up once.
 func (c *Case) Sum(l *bom.Line, f unit.MHz) LineSum {
 	ch := c.Chain()
-	key := sumKey{l, f}
-	if s, ok := ch.sums[key]; ok {
-		return s
+	r := ch.lines[l]
+	if r == nil {
+		r = c.recipeOf(l)
+		ch.lines[l] = r
 	}
-	s := c.lineSum(l, f)
-	ch.sums[key] = s
-	return s
+	return r.sum(f)
 }
 
 func (c *Case) bandChain(d *bom.Device, b catalog.Band, row *catalog.AmpBand, own catalog.Band) *BandChain {

@@ -236,7 +236,7 @@ func TestSumsAreTheSumOfTheirTerms(t *testing.T) {
 		for _, a := range append(x.Up.Antennas, x.Down.Antennas...) {
 			s := a.Worst.Line
 			var least, nominal, greatest unit.DB
-			for _, term := range s.Terms {
+			for _, term := range s.Terms() {
 				least, nominal, greatest = least+term.Loss.Least, nominal+term.Loss.Nominal, greatest+term.Loss.Greatest
 			}
 			if math.Abs(float64(least-s.Loss.Least))+math.Abs(float64(nominal-s.Loss.Nominal))+math.Abs(float64(greatest-s.Loss.Greatest)) > 1e-9 {

@@ -11,12 +11,16 @@ import (
 	"driploop/rules/rf"
 )
 
-// LineSum is the loss of a line at one frequency with its addends. Where Missing
-// names something, the sum is not known and Loss holds only what is.
+// LineSum is the loss of a line at one frequency. Where Missing names something,
+// the sum is not known and Loss holds only what is.
 type LineSum struct {
 	Loss    rf.Loss
-	Terms   []Term
 	Missing []Lack
+
+	by    [kindsOfTerm]rf.Loss // Loss by kind of addend
+	kinds []TermKind           // that count; nil: all
+	of    *recipe
+	at    unit.MHz
 }
 
 // Known reports whether every addend is known.
@@ -37,6 +41,8 @@ const (
 	OfPair
 	OfPass  // through a passive part
 	OfSteps // impedance steps, all together
+
+	kindsOfTerm
 )
 
 // Lack is something that a figure needs and the plan or catalog does not give.
@@ -46,93 +52,137 @@ type Lack struct {
 }
 
 // Sum is the loss of the kinds of addend that are named.
-func (s LineSum) Sum(kinds ...TermKind) rf.Loss { return s.Only(kinds...).Loss }
+func (s LineSum) Sum(kinds ...TermKind) rf.Loss {
+	var out rf.Loss
+	for _, k := range kinds {
+		out = out.Plus(s.by[k])
+	}
+	return out
+}
 
 // Only is the sum of the kinds of addend that are named, with these alone.
 func (s LineSum) Only(kinds ...TermKind) LineSum {
-	out := LineSum{Missing: s.Missing}
-	for _, t := range s.Terms {
-		if slices.Contains(kinds, t.Kind) {
-			out.Terms = append(out.Terms, t)
-			out.Loss = out.Loss.Plus(t.Loss)
+	s.Loss, s.kinds = s.Sum(kinds...), kinds
+	return s
+}
+
+// Terms are the addends of the sum in the order of the line. They are put into
+// words here, because most sums are never shown.
+func (s LineSum) Terms() []Term {
+	if s.of == nil {
+		return nil
+	}
+	var out []Term
+	for _, a := range s.of.addends {
+		loss, ok := a.loss(s.at)
+		if ok && (s.kinds == nil || slices.Contains(s.kinds, a.kind)) {
+			out = append(out, Term{a.kind, a.what(), loss})
 		}
 	}
 	return out
 }
 
-// adder walks a line at one frequency.
-type adder struct {
-	c     *Case
-	f     unit.MHz
-	sum   LineSum
+// addend is one thing on a line that takes something. lack says what is missing
+// where loss has no figure at a frequency.
+type addend struct {
+	kind TermKind
+	what func() string
+	loss func(unit.MHz) (rf.Loss, bool)
+	lack func(unit.MHz) Lack
+}
+
+// recipe is what a line is made of, as far as it does not depend on frequency. It
+// is written once for a line and added up for each frequency.
+type recipe struct {
+	c       *Case
+	addends []addend
+	lacks   []Lack // at every frequency
+	sums    map[unit.MHz]LineSum
+
 	ohms  []float64 // impedances in the order of the line
 	vswrs []float64
 	whole map[*bom.Cable]bool // jumpers whose loss holds their pairs
 }
 
-// lineSum adds up a line at a frequency.
-func (c *Case) lineSum(l *bom.Line, f unit.MHz) LineSum {
-	a := adder{c: c, f: f, whole: map[*bom.Cable]bool{}}
+// recipeOf writes down what a line is made of.
+func (c *Case) recipeOf(l *bom.Line) *recipe {
+	r := &recipe{c: c, sums: map[unit.MHz]LineSum{}, whole: map[*bom.Cable]bool{}}
 	for _, s := range l.Steps {
 		if s.Cable != nil && s.Cable.Part != nil && s.Cable.Part.Jumper != nil && s.Cable.Part.Jumper.Loss.Set {
-			a.whole[s.Cable] = true
+			r.whole[s.Cable] = true
 		}
 	}
 	for _, s := range l.Steps {
 		switch {
 		case s.Contact != nil:
-			a.contact(s)
+			r.contact(s)
 		case s.Cable != nil:
-			a.cable(s.Cable)
+			r.cable(s.Cable)
 		case s.Lead != nil:
-			a.lead(s.Lead)
+			r.lead(s.Lead)
 		case s.Pass != nil:
-			a.pass(s.Pass)
+			r.pass(s.Pass)
 		}
 	}
-	a.steps()
-	return a.sum
+	r.steps()
+	return r
 }
 
-func (a *adder) term(kind TermKind, loss rf.Loss, what string, args ...any) {
-	a.sum.Terms = append(a.sum.Terms, Term{kind, fmt.Sprintf(what, args...), loss})
-	a.sum.Loss = a.sum.Loss.Plus(loss)
+// sum adds the line up at a frequency, once for each.
+func (r *recipe) sum(f unit.MHz) LineSum {
+	if s, ok := r.sums[f]; ok {
+		return s
+	}
+	s := LineSum{Missing: slices.Clip(r.lacks), of: r, at: f}
+	for _, a := range r.addends {
+		loss, ok := a.loss(f)
+		if !ok {
+			s.Missing = append(s.Missing, a.lack(f))
+			continue
+		}
+		s.by[a.kind] = s.by[a.kind].Plus(loss)
+		s.Loss = s.Loss.Plus(loss)
+	}
+	r.sums[f] = s
+	return s
 }
 
-func (a *adder) lack(at source.Place, what string, args ...any) {
-	a.sum.Missing = append(a.sum.Missing, Lack{fmt.Sprintf(what, args...), at})
+func (r *recipe) add(a addend) { r.addends = append(r.addends, a) }
+
+func (r *recipe) lack(at source.Place, what string, args ...any) {
+	r.lacks = append(r.lacks, Lack{fmt.Sprintf(what, args...), at})
 }
 
 // meets notes the next impedance on the line; where it differs from the one
 // before, there is a step.
-func (a *adder) meets(ohm source.Val[float64]) {
+func (r *recipe) meets(ohm source.Val[float64]) {
 	if !ohm.Set {
 		return
 	}
-	if n := len(a.ohms); n > 0 && a.ohms[n-1] != ohm.V {
-		if v, ok := rf.StepVSWR(a.ohms[n-1], ohm.V); ok {
-			a.vswrs = append(a.vswrs, v)
+	if n := len(r.ohms); n > 0 && r.ohms[n-1] != ohm.V {
+		if v, ok := rf.StepVSWR(r.ohms[n-1], ohm.V); ok {
+			r.vswrs = append(r.vswrs, v)
 		}
 	}
-	a.ohms = append(a.ohms, ohm.V)
+	r.ohms = append(r.ohms, ohm.V)
 }
 
 // resumes notes an impedance that a part has matched to by itself.
-func (a *adder) resumes(ohm source.Val[float64]) {
+func (r *recipe) resumes(ohm source.Val[float64]) {
 	if ohm.Set {
-		a.ohms = append(a.ohms, ohm.V)
+		r.ohms = append(r.ohms, ohm.V)
 	}
 }
 
-func (a *adder) contact(s bom.Step) {
+func (r *recipe) contact(s bom.Step) {
 	first, second := s.Contact.A, s.Contact.B
 	if s.Reverse {
 		first, second = second, first
 	}
-	a.meets(first.Ohm)
-	a.meets(second.Ohm)
+	r.meets(first.Ohm)
+	r.meets(second.Ohm)
 	for _, n := range []*bom.Node{s.Mate.A, s.Mate.B} {
-		if n.Cable != nil && a.whole[n.Cable] && (first.Name == n.Name() || second.Name == n.Name()) {
+		if n.Cable != nil && r.whole[n.Cable] && (first.Name == n.Name() || second.Name == n.Name()) {
 			return // the jumper's loss holds this pair
 		}
 	}
@@ -142,108 +192,138 @@ func (a *adder) contact(s bom.Step) {
 			stated = append(stated, unit.DB(h.Loss.V))
 		}
 	}
-	if d, ok := rf.PairLoss(a.f, stated...); ok {
-		a.term(OfPair, rf.Exactly(d), "pair %s to %s", first.Name, second.Name)
-	}
+	what := func() string { return "pair " + first.Name + " to " + second.Name }
+	r.add(addend{kind: OfPair, what: what,
+		loss: func(f unit.MHz) (rf.Loss, bool) {
+			d, ok := rf.PairLoss(f, stated...)
+			return rf.Exactly(d), ok
+		},
+		lack: func(f unit.MHz) Lack { return Lack{fmt.Sprintf("a loss of %s at %s", what(), f), s.Mate.At} }})
 }
 
-func (a *adder) cable(x *bom.Cable) {
+func (r *recipe) cable(x *bom.Cable) {
 	switch {
 	case x.Part == nil:
-		a.lack(x.At, "the part of %s", x.ID)
-	case a.whole[x]:
-		a.table(x.Part.Jumper.Loss.V, unit.Span{}, OfCable, x.At, fmt.Sprintf("jumper %s with its pairs", x.ID))
+		r.lack(x.At, "the part of %s", x.ID)
+	case r.whole[x]:
+		r.table(x.Part.Jumper.Loss.V, unit.Span{}, OfCable, x.At, func() string { return "jumper " + x.ID + " with its pairs" })
 	case x.Part.Jumper != nil:
-		a.meets(x.Ends[0].Ohm)
-		a.run(x.Part.Jumper.Cable.V, x.Length, x.Way, x.At, fmt.Sprintf("jumper %s", x.ID), a.c.endsOf(x))
+		r.meets(x.Ends[0].Ohm)
+		r.run(x.Part.Jumper.Cable.V, x.Length, x.Way, x.At, "jumper "+x.ID, r.c.endsOf(x))
 	default:
-		a.meets(x.Part.Cable.Impedance)
-		a.run(x.Part.ID, x.Length, x.Way, x.At, x.ID, a.c.endsOf(x))
+		r.meets(x.Part.Cable.Impedance)
+		r.run(x.Part.ID, x.Length, x.Way, x.At, x.ID, r.c.endsOf(x))
 	}
 }
 
 // run adds a length of cable at the temperatures of its way.
-func (a *adder) run(part string, length source.Val[unit.MM], way []bom.Section, at source.Place, name string, ends []*bom.Place) {
-	p := a.c.Firm.Catalog.Look(part)
+func (r *recipe) run(part string, length source.Val[unit.MM], way []bom.Section, at source.Place, name string, ends []*bom.Place) {
+	p := r.c.Firm.Catalog.Look(part)
 	switch {
 	case p == nil || p.Cable == nil:
-		a.lack(at, "the cable of %s", name)
+		r.lack(at, "the cable of %s", name)
 		return
 	case !length.Set:
-		a.lack(at, "the length of %s", name)
+		r.lack(at, "the length of %s", name)
 		return
 	}
-	fit, err := a.c.Firm.fit(p)
+	fit, err := r.c.Firm.fit(p)
 	if err != nil {
-		a.lack(p.At, "a loss table of %s that can be used: %s", p.ID, err)
+		r.lack(p.At, "a loss table of %s that can be used: %s", p.ID, err)
 		return
 	}
-	cold, hot := a.c.temperatures(way, ends)
-	loss, ok := fit.LossBetween(a.f, length.V, cold, hot)
-	if !ok {
-		a.lack(p.At, "a loss of %s beyond %s, where its table ends", p.ID, fit.Max)
-		return
-	}
-	a.term(OfCable, loss, "%s, %s of %s", name, length.V, p.ID)
+	cold, hot := r.c.temperatures(way, ends)
+	r.add(addend{kind: OfCable,
+		what: func() string { return fmt.Sprintf("%s, %s of %s", name, length.V, p.ID) },
+		loss: func(f unit.MHz) (rf.Loss, bool) { return fit.LossBetween(f, length.V, cold, hot) },
+		lack: func(unit.MHz) Lack {
+			return Lack{fmt.Sprintf("a loss of %s beyond %s, where its table ends", p.ID, fit.Max), p.At}
+		}})
 }
 
-func (a *adder) lead(n *bom.Node) {
+func (r *recipe) lead(n *bom.Node) {
 	l := n.Port.Lead
 	if !l.InGain.V {
 		var ends []*bom.Place
 		if n.Device.Place != nil {
 			ends = []*bom.Place{n.Device.Place}
 		}
-		a.run(l.Cable.V, l.Length, nil, n.Device.At, "lead of "+n.Name(), ends)
+		r.run(l.Cable.V, l.Length, nil, n.Device.At, "lead of "+n.Name(), ends)
 	}
 }
 
-func (a *adder) pass(p *bom.Pass) {
+func (r *recipe) pass(p *bom.Pass) {
 	name := p.Part.ID
 	if p.Device != nil {
 		name = p.Device.ID
 	}
-	a.rows(p, name)
+	r.rows(p, name)
 	if p.Part.Kind.V == "adapter" {
-		a.meets(p.Out.Impedance)
+		r.meets(p.Out.Impedance)
 	} else {
-		a.resumes(p.Out.Impedance)
+		r.resumes(p.Out.Impedance)
 	}
 }
 
-// rows adds the row of a passive part that holds at the frequency.
-func (a *adder) rows(p *bom.Pass, name string) {
-	what := fmt.Sprintf("%s, %s to %s", name, p.In.Name, p.Out.Name)
-	if len(p.Rows) == 0 {
-		a.lack(p.Part.At, "a path through %s from %s to %s", name, p.In.Name, p.Out.Name)
+// rows adds a passive part by the row that holds at the frequency.
+func (r *recipe) rows(p *bom.Pass, name string) {
+	what := func() string { return name + ", " + p.In.Name + " to " + p.Out.Name }
+	switch len(p.Rows) {
+	case 0:
+		r.lack(p.Part.At, "a path through %s from %s to %s", name, p.In.Name, p.Out.Name)
 		return
-	}
-	for _, row := range p.Rows {
-		if !row.MHz.Set || row.MHz.V.Contains(a.f) {
-			a.table(row.Loss.V, row.MHz.V, OfPass, row.At, what)
+	case 1:
+		if !p.Rows[0].MHz.Set {
+			r.table(p.Rows[0].Loss.V, unit.Span{}, OfPass, p.Rows[0].At, what)
 			return
 		}
 	}
-	a.lack(p.Rows[0].At, "a loss of %s outside %s", what, p.Rows[0].MHz.V)
+	points := make([][]rf.Point, len(p.Rows))
+	for i, row := range p.Rows {
+		points[i] = rfPoints(row.Loss.V)
+	}
+	holds := func(f unit.MHz) int {
+		return slices.IndexFunc(p.Rows, func(row *catalog.Path) bool { return !row.MHz.Set || row.MHz.V.Contains(f) })
+	}
+	r.add(addend{kind: OfPass, what: what,
+		loss: func(f unit.MHz) (rf.Loss, bool) {
+			i := holds(f)
+			if i < 0 {
+				return rf.Loss{}, false
+			}
+			d, ok := rf.Lookup(points[i], p.Rows[i].MHz.V, f)
+			return rf.Exactly(d), ok
+		},
+		lack: func(f unit.MHz) Lack {
+			if i := holds(f); i >= 0 {
+				return Lack{fmt.Sprintf("a loss of %s at %s", what(), f), p.Rows[i].At}
+			}
+			return Lack{fmt.Sprintf("a loss of %s outside %s", what(), p.Rows[0].MHz.V), p.Rows[0].At}
+		}})
 }
 
-func (a *adder) table(points catalog.Points, valid unit.Span, kind TermKind, at source.Place, what string) {
-	d, ok := rf.Lookup(rfPoints(points), valid, a.f)
-	if !ok {
-		a.lack(at, "a loss of %s at %s", what, a.f)
-		return
-	}
-	a.term(kind, rf.Exactly(d), "%s", what)
+func (r *recipe) table(points catalog.Points, valid unit.Span, kind TermKind, at source.Place, what func() string) {
+	table := rfPoints(points)
+	r.add(addend{kind: kind, what: what,
+		loss: func(f unit.MHz) (rf.Loss, bool) {
+			d, ok := rf.Lookup(table, valid, f)
+			return rf.Exactly(d), ok
+		},
+		lack: func(f unit.MHz) Lack { return Lack{fmt.Sprintf("a loss of %s at %s", what(), f), at} }})
 }
 
 // steps adds what all impedance steps of the line take together.
-func (a *adder) steps() {
-	if len(a.vswrs) == 0 {
+func (r *recipe) steps() {
+	if len(r.vswrs) == 0 {
 		return
 	}
-	if loss, ok := rf.MismatchRun(a.vswrs...); ok {
-		a.term(OfSteps, loss, "%s", count(len(a.vswrs), "impedance step", "impedance steps"))
+	loss, ok := rf.MismatchRun(r.vswrs...)
+	if !ok {
+		return
 	}
+	r.add(addend{kind: OfSteps,
+		what: func() string { return count(len(r.vswrs), "impedance step", "impedance steps") },
+		loss: func(unit.MHz) (rf.Loss, bool) { return loss, true }})
 }
 
 func rfPoints(points catalog.Points) []rf.Point {

@@ -61,7 +61,7 @@ func spans(list []unit.Span) string {
 // addends prints a sum of losses with its terms, by one of the three figures.
 func addends(s LineSum, of func(rf.Loss) unit.DB) string {
 	var out []string
-	for _, t := range s.Terms {
+	for _, t := range s.Terms() {
 		out = append(out, fmt.Sprintf("%s %s", t.What, unit.Fixed(float64(of(t.Loss)), 2)))
 	}
 	return strings.Join(out, " + ")

@@ -103,7 +103,7 @@ func (s sheet) band(x *rules.BudgetBand) {
 		} else if server != "amp" {
 			continue
 		}
-		for _, t := range l.Sum.Terms {
+		for _, t := range l.Sum.Terms() {
 			s.loss(name+" / "+t.What, t.Loss)
 		}
 		s.loss(name+" / in all", l.Sum.Loss)

@@ -129,7 +129,7 @@ func (s *figureSheet) line(b *Budget, l rules.BudgetLine) {
 	if !b.Terms {
 		return
 	}
-	for _, t := range l.Sum.Terms {
+	for _, t := range l.Sum.Terms() {
 		s.add("term", lineName(l), t.What+", least", "dB", figure(float64(t.Loss.Least), true))
 		s.add("term", lineName(l), t.What+", greatest", "dB", figure(float64(t.Loss.Greatest), true))
 	}

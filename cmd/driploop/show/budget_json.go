@@ -239,7 +239,7 @@ func (b *Budget) inputsOf(chain *rules.BandChain) []inputJSON {
 func lineOf(l rules.BudgetLine) lineJSON {
 	j := lineJSON{From: l.Line.From.Name(), To: l.Line.To.Name(), Kind: l.Line.Kind.String(), Terms: []termJSON{}, Lacks: lacksOf(l.Sum.Missing),
 		Loss: figure(float64(l.Sum.Loss.Greatest), l.Sum.Known()), Least: figure(float64(l.Sum.Loss.Least), l.Sum.Known())}
-	for _, t := range l.Sum.Terms {
+	for _, t := range l.Sum.Terms() {
 		j.Terms = append(j.Terms, termJSON{t.What, ratioOf(t.Loss.Least), ratioOf(t.Loss.Nominal), ratioOf(t.Loss.Greatest)})
 	}
 	return j

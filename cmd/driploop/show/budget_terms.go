@@ -108,7 +108,7 @@ func addTerms(g *Grid, column int, sum rules.LineSum) {
 		g.Rows = slices.Insert(g.Rows, next, row)
 		next++
 	}
-	for _, t := range sum.Terms {
+	for _, t := range sum.Terms() {
 		put(t.What, lossWords(t.Loss, true, 3))
 	}
 	put("in all", lossWords(sum.Loss, sum.Known(), 3))
