@@ -25,6 +25,7 @@ type indexer struct {
 	uncounted int  // problems above MaxProblems
 	partial   bool // something was left out of the tree
 	stopped   bool // by a cap
+	odd       bool // something is written in a way that two readers could take differently
 }
 
 func newIndexer(f *File) *indexer {
@@ -83,6 +84,7 @@ func (x *indexer) key(e *unstable.Node, buf []part) []part {
 			return nil
 		}
 		x.refuseNewEscapes(at)
+		x.odd = x.odd || int(at.To-at.From) != len(n.Data) // in quotes
 		buf = append(buf, part{string(n.Data), at})
 	}
 	return buf

@@ -23,16 +23,30 @@ func (x *indexer) scalar(n *Node, e *unstable.Node) {
 	switch e.Kind {
 	case unstable.String:
 		x.refuseNewEscapes(n.At)
+		x.odd = x.odd || int(n.At.To-n.At.From) != len(e.Data)+len(`""`) // escapes, or several lines
 		n.Kind, n.Str = String, string(e.Data)
 	case unstable.Bool:
 		n.Kind, n.Bool = Bool, e.Data[0] == 't'
 	case unstable.Integer:
+		x.odd = x.odd || !plainNumber(e.Data)
 		x.integer(n, e.Data)
 	case unstable.Float:
+		x.odd = x.odd || !plainNumber(e.Data)
 		x.float(n, e.Data)
 	default:
+		x.odd = x.odd || e.Kind != unstable.LocalDate
 		x.time(n, timeKinds[e.Kind], e.Data)
 	}
+}
+
+// plainNumber reports digits with at most a minus and a point.
+func plainNumber(text []byte) bool {
+	for i, c := range text {
+		if (c < '0' || c > '9') && c != '.' && (c != '-' || i > 0) {
+			return false
+		}
+	}
+	return true
 }
 
 func (x *indexer) integer(n *Node, text []byte) {
