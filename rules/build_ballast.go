@@ -23,11 +23,16 @@ func (c *Case) checkBallast(r *Report, l *loaded) []Lack {
 		return nil // the part's file has a finding
 	}
 	c.reportRoofLoad(r, m)
-	foot, lacks := footBelow(m)
+	foot, lacks := c.footBelow(m)
 	if len(lacks) > 0 {
 		return append(lacks, l.lacks...)
 	}
 	moment, force := l.moment(foot), l.force()
+	if tubeOf(m) == ownTube && foot > 0 {
+		stub, _ := l.tubeLoad(mt.MastMM.V[1], 0, foot) // what the mast has below its top fixing
+		moment = moment.plus(exactly(stub.Force * stub.Lever))
+		force = force.plus(exactly(stub.Force))
+	}
 	least := c.ballastRatios(m, moment.least*l.wind.service, force.least*l.wind.service)
 	factor := c.ballastFactor()
 	if rf.Below(least.worst(), factor) {
@@ -40,11 +45,32 @@ func (c *Case) checkBallast(r *Report, l *loaded) []Lack {
 	return nil
 }
 
-// footBelow is how far the foot of a ballasted mount lies below the top fixing of
-// its mast.
-func footBelow(m *bom.Device) (float64, []Lack) {
+// footBelow is how far the foot of a ballasted mount lies below the top fixing that
+// its levers are counted from. A frame that only clamps a mast has that mast's foot.
+func (c *Case) footBelow(m *bom.Device) (float64, []Lack) {
+	if tubeOf(m) != noTube {
+		return tubeBelow(m)
+	}
+	below := 0.0
+	for _, d := range c.standing(m) {
+		if d.Kind() != "mount" {
+			continue
+		}
+		b, lacks := tubeBelow(d)
+		if len(lacks) > 0 {
+			return 0, lacks
+		}
+		below = max(below, b)
+	}
+	return below, nil
+}
+
+// tubeBelow is how much of a mast lies below its top fixing.
+func tubeBelow(m *bom.Device) (float64, []Lack) {
 	mt := mountOf(m)
 	switch {
+	case mt == nil:
+		return 0, []Lack{mastLack(m)}
 	case !mt.Length.Set:
 		return 0, []Lack{{"the length of " + m.Part.ID, m.Part.At}}
 	case !m.Row.Free.Set:

@@ -33,7 +33,7 @@ var buildClearance = &Rule{
 func (c *Case) checkClearance(r *Report) {
 	var up, placeless []*bom.Device
 	for _, d := range c.Graph.Devices {
-		if !falls(d) || unresolved(d) {
+		if !falls(d) || unresolved(d) || !c.ours(d) {
 			continue
 		}
 		if d.Place == nil {

@@ -29,9 +29,7 @@ type unmarked struct {
 	part  *catalog.Part
 	lines []string
 	first spreadLine
-	row   *limits.CodeRow // of the strictest space
-	words string
-	rank  int
+	rank  int // of the strictest space that one of them runs in
 }
 
 func (c *Case) checkFire(r *Report) {
@@ -41,40 +39,50 @@ func (c *Case) checkFire(r *Report) {
 		if s.jacket == nil || s.jacket.Cable == nil && s.jacket.Data == nil {
 			continue // a wire, or a jumper of which only the loss is known
 		}
-		for i, sp := range spaces {
-			place := s.placeOf(sp.kind)
-			row := c.codeRow(sp.rowFor(s.jacket))
-			if place == nil || row == nil || s.cordAt(sp) {
-				continue
-			}
-			fire := fireOf(s.jacket)
-			if fire.Set {
-				if c.checkMarking(r, s, sp, place, row, fire) {
-					break // one space is enough to say of a line
-				}
-				continue
-			}
-			if c.entersUnlisted(s, sp) {
-				continue
-			}
-			u := open[s.jacket]
-			if u == nil {
-				u = &unmarked{part: s.jacket, first: s, row: row, words: sp.words, rank: i}
-				open[s.jacket] = u
-				order = append(order, u)
-			}
-			if i < u.rank {
-				u.row, u.words, u.rank = row, sp.words, i
-			}
-			u.lines = append(u.lines, s.id)
+		rank, unknown := c.checkLineFire(r, s)
+		if !unknown {
+			continue
+		}
+		u := open[s.jacket]
+		if u == nil {
+			u = &unmarked{part: s.jacket, first: s, rank: rank}
+			open[s.jacket] = u
+			order = append(order, u)
+		}
+		u.rank = min(u.rank, rank)
+		u.lines = append(u.lines, s.id)
+	}
+	for _, u := range order {
+		c.reportUnmarked(r, u)
+	}
+}
+
+// checkLineFire holds one line against the spaces it runs in, the strictest first,
+// and stops at the first that has something to say. A line whose marking is needed
+// and not known is reported with the others of its part.
+func (c *Case) checkLineFire(r *Report, s spreadLine) (rank int, unknown bool) {
+	fire := fireOf(s.jacket)
+	for i, sp := range spaces {
+		place, row := s.placeOf(sp.kind), c.codeRow(sp.rowFor(s.jacket))
+		if place == nil || row == nil || s.cordAt(sp) {
+			continue
+		}
+		if !fire.Set && !s.existing && !c.entersUnlisted(s, sp) {
+			return i, true
+		}
+		if fire.Set && c.checkMarking(r, s, sp, place, row, fire) {
 			break
 		}
 	}
-	for _, u := range order {
-		r.Unknown(u.first.at, u.first.on, "%s has no fire marking in the catalog; whether %s may run %s is not assessed, where it has to be %s",
-			u.part.ID, list(u.lines), u.words, u.row.Figure()).onRow(u.row).Beside(u.part.At, "the part").
-			Then("read the marking on the jacket and add it as fire; otherwise %s", c.jacketFor(u.first, permitted(u.row)))
-	}
+	return 0, false
+}
+
+func (c *Case) reportUnmarked(r *Report, u *unmarked) {
+	sp := spaces[u.rank]
+	row := c.codeRow(sp.rowFor(u.part))
+	r.Unknown(u.first.at, u.first.on, "%s has no fire marking in the catalog; whether %s may run %s is not assessed, where it has to be %s",
+		u.part.ID, list(u.lines), sp.words, row.Figure()).onRow(row).Beside(u.part.At, "the part").
+		Then("read the marking on the jacket and add it as fire; otherwise %s", c.jacketFor(u.first, permitted(row)))
 }
 
 func (sp space) rowFor(p *catalog.Part) string {

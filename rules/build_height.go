@@ -54,7 +54,7 @@ func (c *Case) fallFigures() string {
 	keep, _ := c.lineClearance(0)
 	var out []string
 	for _, d := range c.Graph.Devices {
-		if !falls(d) || unresolved(d) || !d.Place.Outdoors() {
+		if !falls(d) || unresolved(d) || !d.Place.Outdoors() || !c.ours(d) {
 			continue
 		}
 		if f := c.fallOf(d); !math.IsInf(f.radius.most, 1) {

@@ -31,8 +31,11 @@ func (c *Case) siteAt() source.Place { return placeOr(c.Plan.Site.At, c.JobAt())
 func (c *Case) windLacks() []Lack {
 	s, at := &c.Plan.Site, c.siteAt()
 	row := c.codeRow("wind-pressure")
-	if row == nil {
+	switch {
+	case row == nil:
 		return []Lack{{"a code that gives a wind pressure", c.JobAt()}}
+	case c.firstRow("mast-stress", "mast-moment") == nil:
+		return []Lack{{"a limit of stress or moment in the code " + c.CodeName(), c.JobAt()}}
 	}
 	var lacks []Lack
 	lack := func(set bool, what string, at source.Place) {
@@ -59,7 +62,10 @@ func (c *Case) windAt(height float64) (wind, []Lack) {
 		return wind{}, []Lack{{"a wind-drag row in the code " + c.CodeName(), c.JobAt()}}
 	}
 	w := wind{gust: 1, service: 1, row: row}
-	w.tube, _ = drag.Constant("tube")
+	var ok bool
+	if w.tube, ok = drag.Constant("tube"); !ok {
+		return w, []Lack{{"the figure tube of the row wind-drag", drag.At}}
+	}
 	w.flat, _ = drag.Constant("flat")
 	if len(row.Steps) > 0 {
 		return c.fixedWind(w, height)

@@ -103,6 +103,7 @@ func (c *Case) rateDevices(r *Report, open *unrated) {
 			need = "outdoor" // a box in the ground is a chamber; its cable is what is buried
 		}
 		switch {
+		case !d.Part.Rated.Set && d.Row.Existing.V:
 		case !d.Part.Rated.Set:
 			open.add(d.ID, d.Part, partAt(d), d.On(), words)
 		case !rated(d.Part, need):
@@ -152,7 +153,7 @@ func (c *Case) rateLines(r *Report, open *unrated) {
 			p = s.jacket
 		}
 		switch {
-		case need == "":
+		case need == "", !p.Rated.Set && s.existing:
 		case !p.Rated.Set:
 			open.add(s.id, p, s.at, s.on, words)
 		case !rated(p, need):

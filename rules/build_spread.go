@@ -19,6 +19,8 @@ type spreadLine struct {
 	cable  *bom.Cable    // of a coaxial line
 	length source.Val[unit.MM]
 	stops  []bom.Section // ends included, with the lengths that the plan gives
+
+	existing bool
 }
 
 // spread lists the lines of the plan with their places. A line whose part did not
@@ -29,7 +31,7 @@ func (c *Case) spread() []spreadLine {
 		if x.Part == nil {
 			continue
 		}
-		s := spreadLine{id: x.ID, on: x.On(), at: placeOr(x.Row.Part.At, x.At), part: x.Part, jacket: x.Part, cable: x, length: x.Length}
+		s := spreadLine{id: x.ID, on: x.On(), at: placeOr(x.Row.Part.At, x.At), part: x.Part, jacket: x.Part, cable: x, length: x.Length, existing: x.Row.Existing.V}
 		if x.Part.Jumper != nil {
 			s.jacket = c.Firm.Catalog.Look(x.Part.Jumper.Cable.V)
 		}
@@ -38,13 +40,13 @@ func (c *Case) spread() []spreadLine {
 	}
 	for _, d := range c.Graph.Data {
 		if d.Part != nil {
-			out = append(out, spreadLine{id: d.Row.ID, on: d.On(), at: d.Row.Part.At, part: d.Part, jacket: d.Part, length: d.Row.Length,
+			out = append(out, spreadLine{id: d.Row.ID, on: d.On(), at: d.Row.Part.At, part: d.Part, jacket: d.Part, length: d.Row.Length, existing: d.Row.Existing.V,
 				stops: wholeWay(nodePlace(d.From), d.Way, nodePlace(d.To))})
 		}
 	}
 	for _, w := range c.Graph.Wires {
 		if w.Part != nil {
-			out = append(out, spreadLine{id: w.Row.ID, on: w.On(), at: w.Row.Part.At, part: w.Part, jacket: w.Part, length: w.Row.Length,
+			out = append(out, spreadLine{id: w.Row.ID, on: w.On(), at: w.Row.Part.At, part: w.Part, jacket: w.Part, length: w.Row.Length, existing: w.Row.Existing.V,
 				stops: wholeWay(nodePlace(w.From), w.Way, nodePlace(w.To))})
 		}
 	}

@@ -3,6 +3,7 @@ package rules
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 
 	"driploop/bom"
@@ -37,7 +38,7 @@ func (c *Case) checkWind(r *Report) {
 	var masts, placeless []*bom.Device
 	for _, d := range c.Graph.Devices {
 		switch {
-		case d.Kind() == "mount" && c.inTheWind(d):
+		case d.Kind() == "mount" && c.inTheWind(d) && c.ours(d):
 			if d.Place == nil {
 				placeless = append(placeless, unplaced(d))
 			} else if d.Place.Outdoors() && !c.carriesUnresolved(d) {
@@ -61,16 +62,16 @@ func (c *Case) checkWind(r *Report) {
 	}
 }
 
-// inTheWind reports a mount that carries an antenna or gear, one of which this job
-// puts up.
+// inTheWind reports a mount that carries an antenna or gear.
 func (c *Case) inTheWind(m *bom.Device) bool {
 	on, _ := c.perches(m)
-	for _, p := range on {
-		if catches(p.dev) && !(p.dev.Row.Existing.V && m.Row.Existing.V) {
-			return true
-		}
-	}
-	return false
+	return slices.ContainsFunc(on, func(p perch) bool { return catches(p.dev) })
+}
+
+// ours reports something that this job puts up, or puts something onto.
+func (c *Case) ours(d *bom.Device) bool {
+	on, _ := c.perches(d)
+	return !d.Row.Existing.V || slices.ContainsFunc(on, func(p perch) bool { return !p.dev.Row.Existing.V })
 }
 
 // carriesUnresolved reports a mount that is, or carries, a part which nobody has.
@@ -118,7 +119,10 @@ func (c *Case) checkMast(r *Report, m *bom.Device) {
 	lacks = append(lacks, c.checkClamped(r, m)...)
 	lacks = append(lacks, c.checkBallast(r, &l)...)
 	if len(lacks) > 0 {
-		r.Lacking(m.At, m.On(), lacks, "what the wind does to %s", m.ID).onRow(w.row)
+		f := r.Lacking(m.At, m.On(), lacks, "what the wind does to %s", m.ID).onRow(w.row)
+		if l.box != nil {
+			f.Then("set %s down off the mast, or have an engineer count it in and waive this; add what else is missing", l.box.ID)
+		}
 	}
 }
 
@@ -149,8 +153,11 @@ func (c *Case) checkStress(r *Report, l *loaded) []Lack {
 		return nil
 	}
 	share, ok := row.Constant("share_of_yield")
+	if !ok {
+		return []Lack{{"the figure share_of_yield of the row mast-stress", row.At}}
+	}
 	mt := mountOf(m)
-	if lacks := tubeLacks(m); len(lacks) > 0 || !ok {
+	if lacks := tubeLacks(m); len(lacks) > 0 {
 		return lacks
 	}
 	tube := mech.Tube{OD: mt.MastMM.V[1], Wall: mt.WallMM.V}
