@@ -28,7 +28,7 @@ func NewFile(path string, src []byte) (*File, []Problem) {
 // The problems are in document order, MaxProblems at most. Their kinds are
 // Syntax, Merge, and Value for numbers that no plan can mean (nan, inf, out of
 // range). A file that holds anything but plain keys, one-line strings without
-// escapes, plain numbers, days and tables in their order is read by a second
+// escapes, plain numbers, days and tables is read by a second
 // parser, and the two must agree on it. On plain files they always do: tests and
 // fuzzing hold both against each other on any file.
 func Parse(f *File) (*Doc, []Problem) {

@@ -90,7 +90,6 @@ func (x *indexer) open(t *Node, last part, at Place) {
 	case k == nil:
 		x.table = x.newTable(t, last, x.depth, byHeader)
 	case k.Value.made == onTheWay:
-		x.odd = true // its sub-tables stand before it
 		k.At, k.Value.made = last.at, byHeader
 		x.table = k.Value
 	default:
