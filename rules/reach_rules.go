@@ -9,7 +9,8 @@ import (
 var reachRules = []*Rule{reachDownlink, reachUplink, reachBenefit, reachNearFar, reachQuality, reachDominance}
 
 var reachBasis = []Basis{
-	{Document: "free space by ITU-R P.525; walls by ITU-R P.2040-3 table 3, or COST 231 outer walls; without walls ITU-R P.1238-9, older form", Kind: "standard", Proof: "read"},
+	{Document: "free space by ITU-R P.525", Edition: "P.525-5, 11/2024", Kind: "standard", Proof: "read"},
+	{Document: "walls by ITU-R P.2040-3 table 3, or outer walls by COST 231; without walls ITU-R P.1238-9, older form", Kind: "standard", Proof: "copy"},
 	practice("gain that runs, with the greatest losses along the way; of the server antennas that serve an area the one that brings least, at the distance to the nearest"),
 }
 
