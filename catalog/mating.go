@@ -3,6 +3,7 @@ package catalog
 import (
 	_ "embed"
 	"fmt"
+	"strconv"
 	"strings"
 	"sync"
 
@@ -172,8 +173,9 @@ func (e *encounter) is(a, b Face, aOhm, bOhm float64) bool {
 // LimitMHz is the highest frequency of the series at an impedance, or false where
 // no figure is known.
 func (s *Series) LimitMHz(ohm float64) (unit.MHz, bool) {
+	name := strconv.FormatFloat(ohm, 'f', -1, 64)
 	for _, m := range s.MaxMHz {
-		if m.Name == fmt.Sprint(ohm) {
+		if m.Name == name {
 			return unit.MHz(m.Val.V), true
 		}
 	}

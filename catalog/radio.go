@@ -14,6 +14,7 @@ type Amplifier struct {
 	MaxIn             source.Val[float64] // dBm
 	DamageIn          source.Val[float64] // dBm
 	Bands             []AmpBand
+	BandNames         Words // of Bands, in their order
 	Kits              []Kit
 	Load              *Load
 }
@@ -80,6 +81,9 @@ func (a *Amplifier) keys(k *source.Keys) {
 	source.Opt(k, &a.MaxIn, "max_in_dbm", level, "greatest input without overload")
 	source.Opt(k, &a.DamageIn, "damage_in_dbm", level, "input that damages it")
 	source.Rows(k, &a.Bands, "band", (*AmpBand).keys, "what it does in each band")
+	for i := range a.Bands {
+		a.BandNames = append(a.BandNames, a.Bands[i].Band)
+	}
 	source.Rows(k, &a.Kits, "kit", (*Kit).keys, "antennas and losses it is certified with")
 	a.Load = readLoad(k)
 }

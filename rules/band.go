@@ -150,13 +150,7 @@ func runsWithout(d *bom.Device, b catalog.Band) (leftOut, bool) {
 	return leftOut{Band: b}, false
 }
 
-func ampBands(a *catalog.Amplifier) catalog.Words {
-	var out catalog.Words
-	for i := range a.Bands {
-		out = append(out, a.Bands[i].Band)
-	}
-	return out
-}
+func ampBands(a *catalog.Amplifier) catalog.Words { return a.BandNames }
 
 // runners lists the amplifiers and routers of the plan whose part is known.
 func (c *Case) runners() []*bom.Device {

@@ -26,7 +26,7 @@ var bandPart = &Rule{
 				c.checkRouter(d, by, r)
 			}
 		}
-		w := &bandWalk{c: c, ways: c.bandWays(), by: map[string]*bounded{}}
+		w := &bandWalk{c: c, ways: c.bandWays(), by: map[met]*bounded{}}
 		for _, l := range c.Lines().All {
 			for _, b := range c.Bands() {
 				if w.ways.runOver(l, b) {
@@ -135,12 +135,23 @@ type bounded struct {
 type bandWalk struct {
 	c    *Case
 	ways *bandWays
-	by   map[string]*bounded
+	by   map[met]*bounded
 	list []*bounded
 }
 
+// met tells the things that bands meet apart: a cable, a port with a lead, a device
+// or a mate; of a part the way through it, of a joint the connector.
+type met struct {
+	thing  any
+	part   *catalog.Part
+	way    string
+	row    source.Place
+	series *catalog.Series
+	ohm    float64
+}
+
 // meet notes that a band passes a thing, which is made the first time.
-func (w *bandWalk) meet(key string, b catalog.Band, thing func() bounded) {
+func (w *bandWalk) meet(key met, b catalog.Band, thing func() bounded) {
 	x := w.by[key]
 	if x == nil {
 		made := thing()
@@ -183,7 +194,7 @@ func (w *bandWalk) cable(x *bom.Cable, b catalog.Band) {
 	if of == nil || of.Cable == nil {
 		return // a jumper that states its own loss, or whose cable is not known
 	}
-	w.meet(x.On(), b, func() bounded {
+	w.meet(met{thing: x}, b, func() bounded {
 		out := bounded{name: fmt.Sprintf("%s (%s)", x.ID, part.ID), on: x.On(), at: placeOr(x.Row.Part.At, x.At), would: w.c.likeCable(part)}
 		w.c.boundCable(&out, of)
 		return out
@@ -195,7 +206,7 @@ func (w *bandWalk) lead(n *bom.Node, b catalog.Band) {
 	if of == nil || of.Cable == nil {
 		return
 	}
-	w.meet("lead "+n.Name(), b, func() bounded {
+	w.meet(met{thing: n}, b, func() bounded {
 		out := bounded{name: fmt.Sprintf("the lead of %s (%s)", n.Name(), of.ID), on: n.On(), at: deviceAt(n.Device)}
 		w.c.boundCable(&out, of)
 		return out
@@ -219,16 +230,24 @@ func (c *Case) boundCable(x *bounded, p *catalog.Part) {
 
 // pass meets a passive device, or an adapter of the mate it belongs to.
 func (w *bandWalk) pass(p *bom.Pass, mate *bom.Mate, b catalog.Band) {
-	key, x := "", bounded{}
+	key := met{thing: p.Device, part: p.Part}
 	switch {
 	case p.Device != nil:
-		key, x = p.Device.On(), bounded{name: fmt.Sprintf("%s (%s)", p.Device.ID, p.Part.ID), on: p.Device.On(), at: deviceAt(p.Device)}
 	case mate != nil:
-		key, x = mate.On()+" "+p.Part.ID, bounded{name: "adapter " + p.Part.ID, on: mate.On(), at: adapterNamedAt(mate, p.Part)}
+		key.thing = ownerOf(mate)
 	default:
 		return
 	}
-	w.meet(key+" "+wayThrough(p), b, func() bounded {
+	if key.way = p.In.Name + p.Out.Name; len(p.Rows) > 0 { // outputs that share a row are one
+		key.way, key.row = "", p.Rows[0].At
+	}
+	w.meet(key, b, func() bounded {
+		x := bounded{name: "adapter " + p.Part.ID}
+		if p.Device != nil {
+			x = bounded{name: fmt.Sprintf("%s (%s)", p.Device.ID, p.Part.ID), on: p.Device.On(), at: deviceAt(p.Device)}
+		} else {
+			x.on, x.at = mate.On(), adapterNamedAt(mate, p.Part)
+		}
 		x.covers, x.known = passCovers(p)
 		x.covers = joined(x.covers)
 		x.would = likePassive(p.Part)
@@ -241,13 +260,17 @@ func (w *bandWalk) pass(p *bom.Pass, mate *bom.Mate, b catalog.Band) {
 	})
 }
 
-// wayThrough tells ways through a part apart by the rows that hold for them: outputs
-// that share a row are one.
-func wayThrough(p *bom.Pass) string {
-	if len(p.Rows) == 0 {
-		return p.In.Name + p.Out.Name
+// ownerOf is what a mate is made by: its joint, else its cable, else its port.
+func ownerOf(m *bom.Mate) any {
+	switch {
+	case m.Joint != nil:
+		return m.Joint
+	case m.A.Cable != nil:
+		return m.A.Cable
+	case m.B.Cable != nil:
+		return m.B.Cable
 	}
-	return fmt.Sprintf("%d", p.Rows[0].At.From)
+	return m.A
 }
 
 func adapterNamedAt(m *bom.Mate, p *catalog.Part) source.Place {
@@ -261,7 +284,7 @@ func adapterNamedAt(m *bom.Mate, p *catalog.Part) source.Place {
 
 // contact meets the connector series of both halves, each once for a cable or joint.
 func (w *bandWalk) contact(k *bom.Contact, m *bom.Mate, b catalog.Band) {
-	for _, h := range []bom.Half{k.A, k.B} {
+	for _, h := range [2]*bom.Half{&k.A, &k.B} {
 		if !h.Face.Set || !h.Ohm.Set {
 			continue
 		}
@@ -269,13 +292,13 @@ func (w *bandWalk) contact(k *bom.Contact, m *bom.Mate, b catalog.Band) {
 		if !ok {
 			continue
 		}
-		name := fmt.Sprintf("%s of %s ohm", series.Name, plainFigure(h.Ohm.V))
 		max, known := series.LimitMHz(h.Ohm.V)
-		key := m.On() + " " + name
-		if !known {
-			key = name // one gap in the table, however many joints
+		key := met{series: series, ohm: h.Ohm.V} // one gap in the table, however many joints
+		if known {
+			key.thing = ownerOf(m)
 		}
 		w.meet(key, b, func() bounded {
+			name := fmt.Sprintf("%s of %s ohm", series.Name, plainFigure(h.Ohm.V))
 			x := bounded{name: fmt.Sprintf("the joint of %s and %s (%s)", k.A.Name, k.B.Name, name), on: m.On(), at: m.At, known: known,
 				lacks: "a highest frequency of " + name, origin: series.Source + ", " + limits.ProofText(series.Proof)}
 			if known {

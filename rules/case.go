@@ -23,6 +23,8 @@ type Case struct {
 
 	bands []catalog.Band
 	chain *Chain
+	touch []touching
+	emit  []*emitter
 	power *supplies
 }
 

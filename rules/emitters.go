@@ -22,7 +22,14 @@ type emission struct {
 // emitters lists the antennas that amplifiers and routers transmit from, those that
 // routers have of their own among them.
 func (c *Case) emitters() []*emitter {
-	var all emitters
+	if c.emit == nil {
+		c.emit = c.findEmitters()
+	}
+	return c.emit
+}
+
+func (c *Case) findEmitters() []*emitter {
+	all := emitters{list: []*emitter{}}
 	for _, x := range c.Chain().Bands {
 		for _, d := range x.directions() {
 			for i := range d.Antennas {

@@ -86,9 +86,7 @@ func (r *Report) Advice(at source.Place, on, says string, args ...any) *Finding 
 
 func (r *Report) add(o Outcome, at source.Place, on, says string, args []any) *Finding {
 	f := &Finding{Rule: r.rule, Outcome: o, At: at, On: on, Says: fmt.Sprintf(says, args...)}
-	for _, b := range r.rule.Basis {
-		f.Basis = append(f.Basis, b.String())
-	}
+	f.Basis = r.rule.basisText()
 	r.findings = append(r.findings, f)
 	return f
 }

@@ -137,7 +137,13 @@ func (c *Case) worstLoss(l *bom.Line, b catalog.Band, kinds []TermKind) (LineSum
 // bandPoints are the low edge, the middle and the high edge of a band's uplink and
 // downlink.
 func bandPoints(b catalog.Band) []unit.MHz {
-	return append(points(b.Uplink), points(b.Downlink)...)
+	out := make([]unit.MHz, 0, 6)
+	for _, s := range [2]unit.Span{b.Uplink, b.Downlink} {
+		if !s.Empty() {
+			out = append(out, s.Lo, s.Mid(), s.Hi)
+		}
+	}
+	return out
 }
 
 // points are the low edge, the middle and the high edge of a stretch of spectrum.

@@ -81,9 +81,16 @@ type touching struct {
 	meets catalog.Meeting
 }
 
-// touchings lists the pairs of faces of the plan that are both known.
+// touchings lists the pairs of faces of the plan that are both known, found once.
 func (c *Case) touchings() []touching {
-	var out []touching
+	if c.touch == nil {
+		c.touch = c.findTouchings()
+	}
+	return c.touch
+}
+
+func (c *Case) findTouchings() []touching {
+	out := []touching{}
 	for _, m := range c.Graph.Mates {
 		for i, x := range m.Contacts() {
 			if x.A.Face.Set && x.B.Face.Set {

@@ -2,7 +2,9 @@ package rules
 
 import (
 	"fmt"
+	"slices"
 	"strings"
+	"sync"
 )
 
 // Weight says what a finding means for the work.
@@ -51,6 +53,9 @@ type Rule struct {
 	// rule has at least one of them.
 	Check      func(*Case, *Report)
 	CheckFiles func(*Firm, *Report)
+
+	tellOnce sync.Once
+	told     []string
 }
 
 // Basis is a document that a rule stands on.
@@ -97,6 +102,17 @@ func practice(what string) Basis { return Basis{Document: what, Kind: "common pr
 
 // house is the basis of what the firm asks of itself.
 func house(key string) Basis { return Basis{Document: "house figure " + key, Kind: "house"} }
+
+// basisText is the basis as findings print it, put into words once. The list is
+// shared; what changes it makes its own.
+func (r *Rule) basisText() []string {
+	r.tellOnce.Do(func() {
+		for _, b := range r.Basis {
+			r.told = append(r.told, b.String())
+		}
+	})
+	return slices.Clip(r.told)
+}
 
 // Area is the part of the name before the slash.
 func (r *Rule) Area() string {
