@@ -138,16 +138,13 @@ func (w wind) area(d *bom.Device) (span, []Lack) {
 	if d.Part == nil {
 		return span{0, math.Inf(1)}, []Lack{{"the part of " + d.ID, d.At}}
 	}
-	a := d.Part.Antenna
-	switch {
-	case a == nil:
-		return span{0, math.Inf(1)}, []Lack{{"the area of " + d.ID + " (" + d.Part.ID + "), which stands in the wind", partAt(d)}}
-	case a.WindAreaM2.Set:
-		return exactly(a.WindAreaM2.V), nil
+	area, side := d.Part.InWind()
+	if area.Set {
+		return exactly(area.V), nil
 	}
 	lack := []Lack{{"wind_area_m2 of " + d.Part.ID, d.Part.At}}
-	most, ok := mech.Drag(a.SizeMM.V*a.SizeMM.V/1e6, w.flat)
-	if !a.SizeMM.Set || !ok {
+	most, ok := mech.Drag(side.V*side.V/1e6, w.flat)
+	if !side.Set || !ok {
 		return span{0, math.Inf(1)}, lack
 	}
 	return span{0, float64(most)}, lack
