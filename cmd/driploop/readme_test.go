@@ -63,7 +63,7 @@ func content(t *testing.T, how, what string) string {
 func TestReadmeCommands(t *testing.T) {
 	t.Chdir(filepath.Join("..", ".."))
 	for plan, want := range map[string]int{"quay-lane": statusClear, "mill-cottage": statusClear, "fenmoor-farm": statusClear,
-		"eel-van": statusClear, "boathouse": statusClear, "heron-clinic": statusHeld} {
+		"eel-van": statusClear, "boathouse": statusClear, "sluice-house": statusClear, "north-pier": statusClear, "heron-clinic": statusHeld} {
 		out, _, status := run([]string{"inspect", "--root", "testdata/saltmarsh", plan})
 		if status != want {
 			t.Errorf("inspect %s has status %d, the README says %d:\n%s", plan, status, want, out)
