@@ -111,6 +111,7 @@ func joined(spans []unit.Span) []unit.Span {
 
 // bandSpans are the directions of the bands that a list names.
 func bandSpans(names catalog.Words) (up, down []unit.Span) {
+	up, down = make([]unit.Span, 0, len(names)), make([]unit.Span, 0, len(names))
 	for _, n := range names {
 		if b, ok := catalog.LookBand(n.V); ok {
 			down = append(down, b.Downlink)
@@ -124,6 +125,11 @@ func bandSpans(names catalog.Words) (up, down []unit.Span) {
 
 // listLeavesOut compares a band with a list of bands.
 func listLeavesOut(b catalog.Band, names catalog.Words) leftOut {
+	for _, n := range names {
+		if n.V == b.Name {
+			return leftOut{Band: b} // named as it is planned
+		}
+	}
 	up, down := bandSpans(names)
 	return leavesOut(b, up, down)
 }

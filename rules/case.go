@@ -25,6 +25,7 @@ type Case struct {
 	chain *Chain
 	touch []touching
 	emit  []*emitter
+	refs  []reference
 	power *supplies
 }
 

@@ -171,12 +171,46 @@ func (f *Firm) inspectPlan(e source.Entry) *PlanResult {
 	for _, x := range res.Findings {
 		res.count(x)
 	}
+	defer letGo(c.Plan.File, res.Findings)
 	if !broken {
 		res.Parts = c.parts()
 		res.Runs = c.runs()
 		res.Cautions = c.cautions(res.Findings)
 	}
 	return res
+}
+
+// letGo moves what outlives the work on a plan, the places of its findings and of
+// the waivers that cover them, off the plan's text.
+func letGo(f *source.File, findings []*Finding) {
+	var places []*source.Place
+	note := func(p *source.Place) {
+		if p.File == f {
+			places = append(places, p)
+		}
+	}
+	waivers := map[*Settled]*Settled{}
+	for _, x := range findings {
+		note(&x.At)
+		for i := range x.Related {
+			note(&x.Related[i].At)
+		}
+		if x.Waived == nil {
+			continue
+		}
+		if waivers[x.Waived] == nil {
+			waivers[x.Waived] = x.Waived.alone()
+		}
+		x.Waived = waivers[x.Waived]
+	}
+	offsets := make([]int32, len(places))
+	for i, p := range places {
+		offsets[i] = p.From
+	}
+	settled := f.Settled(offsets)
+	for _, p := range places {
+		p.File = settled
+	}
 }
 
 // Case reads one plan into a case. broken says that the file could not be read

@@ -17,10 +17,15 @@ type LineSum struct {
 	Loss    rf.Loss
 	Missing []Lack
 
-	by    [kindsOfTerm]rf.Loss // Loss by kind of addend
-	kinds []TermKind           // that count; nil: all
-	of    *recipe
-	at    unit.MHz
+	kinds []TermKind // that count; nil: all
+	*added
+}
+
+// added is a line as it was added up at one frequency.
+type added struct {
+	of *recipe
+	at unit.MHz
+	by [kindsOfTerm]rf.Loss // by kind of addend
 }
 
 // Known reports whether every addend is known.
@@ -54,6 +59,9 @@ type Lack struct {
 // Sum is the loss of the kinds of addend that are named.
 func (s LineSum) Sum(kinds ...TermKind) rf.Loss {
 	var out rf.Loss
+	if s.added == nil {
+		return out
+	}
 	for _, k := range kinds {
 		out = out.Plus(s.by[k])
 	}
@@ -69,7 +77,7 @@ func (s LineSum) Only(kinds ...TermKind) LineSum {
 // Terms are the addends of the sum in the order of the line. They are put into
 // words here, because most sums are never shown.
 func (s LineSum) Terms() []Term {
-	if s.of == nil {
+	if s.added == nil {
 		return nil
 	}
 	var out []Term
@@ -133,7 +141,7 @@ func (r *recipe) sum(f unit.MHz) LineSum {
 	if s, ok := r.sums[f]; ok {
 		return s
 	}
-	s := LineSum{Missing: slices.Clip(r.lacks), of: r, at: f}
+	s := LineSum{Missing: slices.Clip(r.lacks), added: &added{of: r, at: f}}
 	for _, a := range r.addends {
 		loss, ok := a.loss(f)
 		if !ok {

@@ -67,9 +67,16 @@ type reference struct {
 	on, name string
 }
 
-// references lists what the cables and joints of the plan name.
+// references lists what the cables and joints of the plan name, found once.
 func (c *Case) references() []reference {
-	var out []reference
+	if c.refs == nil {
+		c.refs = c.findReferences()
+	}
+	return c.refs
+}
+
+func (c *Case) findReferences() []reference {
+	out := []reference{}
 	add := func(to source.Val[bom.Ref], on, name string) {
 		if to.Set {
 			out = append(out, reference{to, on, name})

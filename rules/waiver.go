@@ -18,6 +18,15 @@ type Settled struct {
 	Beyond *Finding // a finding that it would cover but for its figure
 }
 
+// alone is the waiver as outputs show it, without the plan that it stands in.
+func (w *Settled) alone() *Settled {
+	without := func(v source.Val[string]) source.Val[string] { return source.Val[string]{V: v.V, Set: v.Set} }
+	return &Settled{Stands: w.Stands, Lacks: w.Lacks, Covers: w.Covers, Waiver: &bom.Waiver{
+		Rule: without(w.Rule), On: without(w.On), Band: without(w.Band), Because: without(w.Because), By: without(w.By),
+		UpTo:  source.Val[float64]{V: w.UpTo.V, Set: w.UpTo.Set},
+		Until: source.Val[unit.Date]{V: w.Until.V, Set: w.Until.Set}}}
+}
+
 // settle applies the waivers of a plan to its findings. A covered finding stays
 // where it is, marked; it stops holding.
 func settle(waivers []bom.Waiver, findings []*Finding, today unit.Date) []*Settled {

@@ -10,7 +10,21 @@ type File struct {
 	Path string // slash-separated, relative to the root of the tree
 	Src  []byte
 
-	lines []int32 // offset of the first byte of each line, filled on first use
+	lines   []int32            // offset of the first byte of each line, filled on first use
+	settled map[int32][2]int32 // line and column by offset, of a file whose text was let go
+}
+
+// Settled is the file without its text: of the places at the given offsets it
+// still knows line and column, and nothing else. Places that outlive the work on
+// their file are moved to it, so that a thousand findings do not keep a thousand
+// files in memory.
+func (f *File) Settled(offsets []int32) *File {
+	out := &File{Path: f.Path, settled: make(map[int32][2]int32, len(offsets))}
+	for _, o := range offsets {
+		p := Place{f, o, o}
+		out.settled[o] = [2]int32{int32(p.Line()), int32(p.Col())}
+	}
+	return out
 }
 
 // Place is a stretch of bytes in a file. The zero Place is nowhere.
@@ -22,9 +36,9 @@ type Place struct {
 // IsZero reports whether the place is nowhere.
 func (p Place) IsZero() bool { return p.File == nil }
 
-// Text is the bytes at the place.
+// Text is the bytes at the place, "" where the file was let go.
 func (p Place) Text() string {
-	if p.File == nil {
+	if p.File == nil || p.File.settled != nil {
 		return ""
 	}
 	return string(p.File.Src[p.From:p.To])
@@ -43,6 +57,9 @@ func (p Place) Line() int {
 	if p.File == nil {
 		return 0
 	}
+	if p.File.settled != nil {
+		return int(p.File.settled[p.From][0])
+	}
 	return p.File.line(p.From)
 }
 
@@ -51,6 +68,9 @@ func (p Place) Line() int {
 func (p Place) Col() int {
 	if p.File == nil {
 		return 0
+	}
+	if p.File.settled != nil {
+		return int(p.File.settled[p.From][1])
 	}
 	start := p.File.lineStart(p.Line())
 	return utf8.RuneCount(p.File.Src[start:p.From]) + 1
