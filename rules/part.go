@@ -37,7 +37,10 @@ var partUnknown = &Rule{
 			}
 			x := r.Fails(ref.id.At, ref.on(), "%s of %s: the catalog has no part %s", ref.role, ref.owner(), source.Quote(ref.id.V)).
 				Then("%s", f.suggest(ref.id.V, "add it to the catalog, or correct the ID"))
-			ref.weigh(x)
+			ref.mark(x)
+			if ref.idle {
+				x.Lighter(Punch)
+			}
 		})
 	},
 }
@@ -207,6 +210,7 @@ var partKind = &Rule{
 			}
 			x := r.Fails(ref.id.At, ref.on(), "%s of %s: %s is of kind %s; %s is expected here", ref.role, ref.owner(), p.ID, p.Kind.V, ref.kind).
 				Then("name %s", withArticle(ref.kind)).Beside(p.At, "the part")
+			ref.mark(x)
 			if ref.role == substitute {
 				x.Lighter(Punch)
 			}
@@ -293,7 +297,7 @@ func (f *Firm) otherwise(p *catalog.Part) string {
 // orList joins alternatives: "a", "a or b", "a, b or c".
 func orList(words []string) string {
 	if n := len(words); n > 1 {
-		return list(words[:n-1:n-1]) + " or " + words[n-1]
+		return strings.Join(words[:n-1], ", ") + " or " + words[n-1]
 	}
 	return list(words)
 }

@@ -85,13 +85,10 @@ func (r partRef) owner() string {
 	return r.part.ID
 }
 
-// weigh marks the part and makes a finding lighter that holds up no work.
-func (r partRef) weigh(f *Finding) {
+// mark says on which part a finding stands.
+func (r partRef) mark(f *Finding) {
 	if r.part != nil {
 		f.Part = r.part.ID
-	}
-	if r.idle {
-		f.Lighter(Punch)
 	}
 }
 
