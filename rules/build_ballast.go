@@ -125,7 +125,7 @@ func (c *Case) reportBallast(r *Report, l *loaded, got ballastRatios, factor, mo
 		name = "sliding"
 	}
 	f := r.Fails(partAt(m), m.On(), "%s (%s) weighs %s kg and is %s%s; that holds %s times, and %s times is expected. The wind: %s",
-		m.ID, m.Part.ID, plainFigure(b.MassKg.V), how, serviceWords(l.wind), unit.Fixed(got.worst(), 2), plainFigure(factor), l.wind.words).
+		m.ID, m.Part.ID, plainFigure(Round(b.MassKg.V)), how, serviceWords(l.wind), unit.Fixed(got.worst(), 2), plainFigure(factor), l.wind.words).
 		Under(name+"_times", got.worst(), "limit_times", factor).onRow(c.codeRow("ballast")).Beside(m.Part.At, "its ballast")
 	need, ok := mech.BallastFor(factor, b.Base.V.Metres(), c.friction(m), moment*service, force*service)
 	if !ok {
@@ -145,7 +145,7 @@ func (c *Case) reportRoofLoad(r *Report, m *bom.Device) {
 		return
 	}
 	f := r.Advice(partAt(m), m.On(), "%s (%s) puts %s kg on at least %s × %s m of the roof, up to %s kPa", m.ID, m.Part.ID,
-		plainFigure(b.MassKg.V), plainFigure(side), plainFigure(side), unit.Fixed(pressure/1000, 2)).
+		plainFigure(Round(b.MassKg.V)), plainFigure(side), plainFigure(side), unit.Fixed(pressure/1000, 2)).
 		Then("let a structural engineer say what this roof carries").With("roof_kpa", pressure/1000)
 	row := c.codeRow("roof-load")
 	if row == nil {

@@ -79,13 +79,13 @@ func (c *Case) gentler(x *bom.Cable) string {
 	if x.Part.Cable == nil {
 		return "give the bend more room"
 	}
-	for _, p := range c.Firm.Catalog.All() {
-		if p.Cable == nil || p.Cable.Impedance.V != x.Part.Cable.Impedance.V || !c.Firm.held(p) || !p.Cable.Bend.Set || p.Cable.Bend.V > x.Row.LeastBend.V {
-			continue
-		}
-		return "give the bend more room, or take " + c.Firm.OnHand(p) + " if its loss is low enough"
+	p := c.Firm.pick(func(p *catalog.Part) bool {
+		return c.likeCable(x.Part)(p) && p.Cable.Bend.Set && p.Cable.Bend.V <= x.Row.LeastBend.V
+	})
+	if p == nil {
+		return "give the bend more room"
 	}
-	return "give the bend more room"
+	return "give the bend more room, or take " + c.Firm.OnHand(p) + " if its loss is low enough"
 }
 
 // reportSilentBends says once for all cables whose bends the plan leaves out, and

@@ -239,30 +239,20 @@ func (c *Case) jacketFor(s spreadLine, would func(*catalog.Part) bool) string {
 	for _, p := range s.places() {
 		outdoors = outdoors || p.Outdoors()
 	}
-	best := c.jacketLike(s.part, func(p *catalog.Part) bool { return would(p) && (!outdoors || rated(p, "outdoor")) })
+	best := c.Firm.pick(c.jacketLike(s.part, func(p *catalog.Part) bool { return would(p) && (!outdoors || rated(p, "outdoor")) }))
 	if best != nil {
 		return "make it of " + c.Firm.OnHand(best) + ", if its loss is low enough"
 	}
-	if best = c.jacketLike(s.part, would); best != nil && outdoors {
+	if best = c.Firm.pick(c.jacketLike(s.part, would)); best != nil && outdoors {
 		return "change over at the entry to " + c.Firm.OnHand(best) + "; the catalog has no cable for both"
 	}
 	return "lead it another way; the catalog has no cable for this"
 }
 
-// jacketLike is the nearest cable of the catalog that a condition lets pass, of the
-// same kind and impedance as another; nil where there is none.
-func (c *Case) jacketLike(as *catalog.Part, would func(*catalog.Part) bool) *catalog.Part {
-	var best *catalog.Part
-	for _, p := range c.Firm.Catalog.All() {
-		if p.Kind.V != as.Kind.V || p.ID == as.ID || p.Status.Or("active") != "active" || !would(p) {
-			continue
-		}
-		if p.Cable != nil && (p.Cable.Impedance.V != as.Cable.Impedance.V || len(c.Firm.Catalog.Connectors(p.ID)) == 0) {
-			continue
-		}
-		if best == nil || c.Firm.nearerThan(p, best) {
-			best = p
-		}
+// jacketLike describes what could take the place of a cable: one of the same kind and
+// impedance that connectors are kept for, and that meets a condition.
+func (c *Case) jacketLike(as *catalog.Part, would func(*catalog.Part) bool) func(*catalog.Part) bool {
+	return func(p *catalog.Part) bool {
+		return p.Kind.V == as.Kind.V && p.ID != as.ID && (p.Cable == nil || c.likeCable(as)(p)) && would(p)
 	}
-	return best
 }

@@ -65,7 +65,7 @@ func (c *Case) checkSurface(r *Report, d *bom.Device) {
 		c.checkEdge(r, d)
 		return
 	}
-	r.Fails(partAt(d), d.On(), "%s (%s) %s", d.ID, d.Part.ID, says).Then("%s", c.otherFixing(skin.V)).
+	r.Fails(partAt(d), d.On(), "%s (%s) %s", d.ID, d.Part.ID, says).Then("%s", c.otherFixing(d.Part, skin.V)).
 		Beside(skin.At, "the skin").Beside(d.Part.At, "how it is held")
 }
 
@@ -124,21 +124,19 @@ func (c *Case) lowestOf(d *bom.Device) unit.MHz {
 	return 0
 }
 
-// otherFixing names what would hold: on plastic an antenna that needs no metal, on
-// aluminium one that is bolted, else a plate.
-func (c *Case) otherFixing(skin string) string {
-	for _, p := range c.Firm.Catalog.All() {
+// otherFixing names what would hold: on aluminium an antenna that is bolted, on plastic
+// one that needs no metal either, else a plate.
+func (c *Case) otherFixing(now *catalog.Part, skin string) string {
+	const or = "bond a steel plate to the skin and let it stand on that"
+	p := c.Firm.pick(func(p *catalog.Part) bool {
 		a := p.Antenna
-		if a == nil || p.Kind.V != "antenna" || p.Status.Or("active") != "active" || !a.Fixing.Set {
-			continue
+		if a == nil || p.Router != nil || !rated(p, "outdoor") || countRadioPorts(p) != countRadioPorts(now) || !c.coversPlan(p) {
+			return false
 		}
-		fits := skin == "plastic" && a.Fixing.V == "adhesive" && !a.GroundPlane.V && catalogOutdoor(p)
-		if fits || skin == "aluminium" && a.Fixing.V == "bolt" && catalogOutdoor(p) {
-			return "take an antenna such as " + c.Firm.OnHand(p) + ", or bond a steel plate to the skin and let it stand on that"
-		}
+		return a.Fixing.V == "bolt" && (skin == "aluminium" || !a.GroundPlane.V) || a.Fixing.V == "adhesive" && !a.GroundPlane.V
+	})
+	if p == nil {
+		return or
 	}
-	return "take an antenna that needs neither, or bond a steel plate to the skin and let it stand on that"
+	return or + ", or take " + c.Firm.OnHand(p)
 }
-
-// catalogOutdoor reports a part that is rated for outdoors.
-func catalogOutdoor(p *catalog.Part) bool { return rated(p, "outdoor") }

@@ -131,16 +131,11 @@ func (c *Case) besideExtras(f *Finding) {
 }
 
 func (c *Case) sealWith() string {
-	var best *catalog.Part
-	for _, p := range c.Firm.Catalog.All() {
-		if perJoint(p) && p.Status.Or("active") == "active" && uses(p) > 1 && (best == nil || c.Firm.nearerThan(p, best)) {
-			best = p
-		}
-	}
-	if best == nil {
+	p := c.Firm.pick(func(p *catalog.Part) bool { return perJoint(p) && uses(p) > 1 })
+	if p == nil {
 		return "bring self-amalgamating tape, and list it as an [[extra]]"
 	}
-	return fmt.Sprintf("bring %s: name it as sealing under [house], or list it as an [[extra]]", c.Firm.OnHand(best))
+	return fmt.Sprintf("bring %s: name it as sealing under [house], or list it as an [[extra]]", c.Firm.OnHand(p))
 }
 
 // checkSeries holds that the halves of a joint outdoors are of a series with a gasket,
@@ -187,10 +182,9 @@ func namesSeries(p *catalog.Part, series string) bool {
 
 func (c *Case) bootFor(face catalog.Face) string {
 	const or = "move the joint indoors, or take gear with N ports"
-	for _, p := range c.Firm.Catalog.All() {
-		if perJoint(p) && uses(p) == 1 && p.Status.Or("active") == "active" && namesSeries(p, face.Series) {
-			return "list a boot such as " + c.Firm.OnHand(p) + " as an [[extra]] for each, or " + or
-		}
+	p := c.Firm.pick(func(p *catalog.Part) bool { return perJoint(p) && uses(p) == 1 && namesSeries(p, face.Series) })
+	if p == nil {
+		return "list a boot for each as an [[extra]], or " + or
 	}
-	return "list a boot for each as an [[extra]], or " + or
+	return "list a boot such as " + c.Firm.OnHand(p) + " as an [[extra]] for each, or " + or
 }

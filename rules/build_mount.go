@@ -1,8 +1,6 @@
 package rules
 
 import (
-	"sort"
-
 	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/source"
@@ -136,18 +134,18 @@ func (c *Case) fittingMast(d, base *bom.Device, takes tubeRange) string {
 	if d.Kind() == "mount" {
 		mast = d
 	}
-	var would []*catalog.Part
-	for _, p := range c.Firm.Catalog.All() {
-		m := p.Mount
-		if m == nil || p.Status.Or("active") != "active" || !m.MastMM.Set || m.MastMM.V[0] != m.MastMM.V[1] || !m.Length.Set ||
-			m.MastMM.V[1] < takes.V[0] || m.MastMM.V[1] > takes.V[1] || m.Length.V < mountOf(mast).Length.V || (m.Ballast == nil) != (mountOf(mast).Ballast == nil) {
-			continue
-		}
-		would = append(would, p)
-	}
-	if len(would) == 0 {
+	as := mountOf(mast)
+	p := c.Firm.pick(func(p *catalog.Part) bool {
+		return isTube(p.Mount) && p.Mount.MastMM.V[1] >= takes.V[0] && p.Mount.MastMM.V[1] <= takes.V[1] &&
+			p.Mount.Length.V >= as.Length.V && (p.Mount.Ballast == nil) == (as.Ballast == nil)
+	})
+	if p == nil {
 		return "take a clamp for this tube; no mast of the catalog fits the one there is"
 	}
-	sort.SliceStable(would, func(i, j int) bool { return c.Firm.nearerThan(would[i], would[j]) })
-	return "take a clamp for this tube, or a mast such as " + c.Firm.OnHand(would[0])
+	return "take a clamp for this tube, or a mast such as " + c.Firm.OnHand(p)
+}
+
+// isTube reports a mast of which diameter and length are known.
+func isTube(m *catalog.Mount) bool {
+	return m != nil && m.MastMM.Set && m.MastMM.V[0] == m.MastMM.V[1] && m.Length.Set
 }

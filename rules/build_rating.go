@@ -124,18 +124,20 @@ func ratings(p *catalog.Part) string {
 	return strings.Join(out, ", ")
 }
 
-// ratedDevice names a catalog part of the kind that has the rating.
+// ratedDevice names a catalog part like a device's that has the rating.
 func (c *Case) ratedDevice(d *bom.Device, need string) string {
-	var best *catalog.Part
-	for _, p := range c.Firm.Catalog.All() {
-		if p.Kind.V == d.Part.Kind.V && rated(p, need) && p.Status.Or("active") == "active" && (best == nil || c.Firm.nearerThan(p, best)) {
-			best = p
+	const or = "move it, or put it into an enclosure that is made for the place"
+	p := c.Firm.pick(func(p *catalog.Part) bool {
+		like := likePassive(d.Part)(p)
+		if d.Part.Antenna != nil {
+			like = p.Kind.V == d.Part.Kind.V && countRadioPorts(p) == countRadioPorts(d.Part) && c.coversPlan(p)
 		}
+		return like && rated(p, need)
+	})
+	if p == nil {
+		return or
 	}
-	if best == nil {
-		return "move it, or put it into an enclosure that is made for the place"
-	}
-	return "move it, put it into an enclosure that is made for the place, or take one such as " + c.Firm.OnHand(best)
+	return or + ", or take " + c.Firm.OnHand(p)
 }
 
 // rateLines holds the jackets of lines against the weather. Fire has its own words.

@@ -1,10 +1,8 @@
 package rules
 
 import (
-	"fmt"
 	"math"
 	"slices"
-	"sort"
 
 	"driploop/bom"
 	"driploop/catalog"
@@ -54,7 +52,8 @@ func (c *Case) checkWind(r *Report) {
 		return
 	}
 	if lacks := c.windLacks(); len(lacks) > 0 {
-		r.Lacking(masts[0].At, masts[0].On(), lacks, "what the wind does to %s", list(ids(masts))).onRow(c.codeRow("wind-pressure"))
+		r.Lacking(masts[0].At, masts[0].On(), lacks, "what the wind does to %s", list(ids(masts))).onRow(c.codeRow("wind-pressure")).
+			Then("add under [site] the wind of the local map, in wind_basis what the map means (asce7-strength in editions from 7-10 on, asce7-service before, or en-60728-11 under the European code), and the terrain (B built-up, C open, D at the water)")
 		return
 	}
 	for _, m := range masts {
@@ -241,7 +240,9 @@ func (c *Case) checkClamped(r *Report, m *bom.Device) []Lack {
 	}
 	free := m.Row.Free.V
 	if ok, known := allowsLength(most, free); known && !ok {
-		return []Lack{{fmt.Sprintf("a method for a free length of %s; the code's simple one holds up to %s", free, most.Length.V), m.Row.Free.At}}
+		r.Unknown(m.Row.Free.At, m.On(), "%s of %s are free; the code's simple method holds up to %s, and beyond it this is not assessed", free, m.ID, most.Length.V).
+			Then("shorten its free end, or have a structural engineer prove it").onRow(most)
+		return nil
 	}
 	if sixth == nil {
 		return nil
@@ -268,22 +269,11 @@ func allowsLength(row *limits.CodeRow, l unit.MM) (ok, known bool) {
 // strongerMast names catalog masts that would carry the load.
 func (c *Case) strongerMast(l *loaded, share float64) string {
 	const or = "shorten its free end, set the antennas lower, or take smaller ones"
-	var would []*catalog.Part
-	for _, p := range c.Firm.Catalog.All() {
-		if p.Mount != nil && p.Status.Or("active") == "active" && c.wouldCarry(l, p.Mount, share) {
-			would = append(would, p)
-		}
-	}
-	sort.SliceStable(would, func(i, j int) bool {
-		if a, b := c.Firm.held(would[i]), c.Firm.held(would[j]); a != b {
-			return a
-		}
-		return would[i].Mount.MastMM.V[1] < would[j].Mount.MastMM.V[1]
-	})
-	if len(would) == 0 {
+	p := c.Firm.pick(func(p *catalog.Part) bool { return c.wouldCarry(l, p.Mount, share) })
+	if p == nil {
 		return or + "; no mast of the catalog would carry this"
 	}
-	return "take a stronger mast such as " + c.Firm.OnHand(would[0]) + ", or " + or
+	return "take a stronger mast such as " + c.Firm.OnHand(p) + ", or " + or
 }
 
 // wouldCarry reports a tube that carries the load of another: as long, taken by the
@@ -291,8 +281,7 @@ func (c *Case) strongerMast(l *loaded, share float64) string {
 // old tube's.
 func (c *Case) wouldCarry(l *loaded, mt *catalog.Mount, share float64) bool {
 	m := l.mount
-	if !mt.MastMM.Set || mt.MastMM.V[0] != mt.MastMM.V[1] || !mt.WallMM.Set || !mt.YieldMPa.Set || !mt.Length.Set ||
-		mt.Length.V < m.Part.Mount.Length.V || (mt.Ballast == nil) != (m.Part.Mount.Ballast == nil) {
+	if !isTube(mt) || !mt.WallMM.Set || !mt.YieldMPa.Set || mt.Length.V < m.Part.Mount.Length.V || (mt.Ballast == nil) != (m.Part.Mount.Ballast == nil) {
 		return false
 	}
 	for _, d := range c.standing(m) {
