@@ -14,9 +14,10 @@ import (
 func TestAPlanStandsOnTheCablesInsideItsParts(t *testing.T) {
 	tree := memory{map[string]string{
 		rules.WorkspaceFile: "[workspace]\nname = \"x\"\n",
-		"catalog/own.toml": bent("CX-J") + bent("CX-L") + bent("CX-OTHER") + jumper("J-NOW", "CX-J", "1 m", "N male", "N male") +
+		"catalog/own.toml": bent("CX-J") + bent("CX-L") + bent("CX-OTHER") + plug("NC-USED", "GEN-CX-10", "CX-NONE") + plug("NC-OTHER", "CX-NONE") + jumper("J-NOW", "CX-J", "1 m", "N male", "N male") +
 			part("DOME", "antenna", "port.rf = { connector = \"N female\", impedance_ohm = 50, lead = { cable = \"CX-L\", length = \"1 m\" } }"),
-		"plans/a.toml": "[device.dome]\npart = \"DOME\"\n[cable.C1]\npart = \"J-NOW\"\nto = \"dome\"\n",
+		"plans/a.toml": "[device.dome]\npart = \"DOME\"\n[cable.C1]\npart = \"J-NOW\"\nto = \"dome\"\n" +
+			"[cable.C2]\npart = \"GEN-CX-10\"\nends = [\"NC-USED\", \"N male\"]\n",
 	}}
 	firm, err := rules.Load(tree, rules.Options{Today: today(t, "")})
 	if err != nil {
@@ -30,7 +31,7 @@ func TestAPlanStandsOnTheCablesInsideItsParts(t *testing.T) {
 	for _, f := range res.Workspace {
 		parts = append(parts, f.Part)
 	}
-	if want := []string{"CX-J", "CX-L"}; !slices.Equal(parts, want) {
+	if want := []string{"CX-J", "CX-L", "NC-USED"}; !slices.Equal(parts, want) {
 		t.Errorf("findings stand on %q, not %q", parts, want)
 	}
 	if len(res.Notices) != 1 {

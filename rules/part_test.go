@@ -11,8 +11,14 @@ import (
 // partFindings runs the rules over one catalog and one plan, with two DOME on hand.
 func partFindings(t *testing.T, rule, catalog, plan string) []*rules.Finding {
 	t.Helper()
+	return houseFindings(t, rule, "", catalog, plan)
+}
+
+// houseFindings are those of a workspace whose house has something to say.
+func houseFindings(t *testing.T, rule, house, catalog, plan string) []*rules.Finding {
+	t.Helper()
 	tree := memory{map[string]string{
-		rules.WorkspaceFile:   "[workspace]\nname = \"x\"\n[shelf.shop]\nkind = \"shop\"\n",
+		rules.WorkspaceFile:   "[workspace]\nname = \"x\"\n[shelf.shop]\nkind = \"shop\"\n" + house,
 		"catalog/own.toml":    part("DOME", "antenna", port("rf", "N female", "")) + catalog,
 		"plans/a.toml":        plan,
 		"stock/counts/a.toml": "[[count]]\npart = \"DOME\"\nwhere = \"shop\"\nqty = 2\non = 2026-11-20\n",
@@ -77,16 +83,19 @@ func TestStatusNamesWhatCanBeHadInstead(t *testing.T) {
 func TestWhatWorkCanGoOnWithoutWeighsLess(t *testing.T) {
 	catalog := part("CX-Q", "cable", "impedance_ohm = 50", "loss_db_per_100m = [[100, 5.0], [400, 10.0], [900, 15.0]]", "instead = [\"NONE\", \"DOME\"]") +
 		jumper("J-1", "NONE", "1 m", "N male", "N male") + strings.Replace(jumper("J-2", "NONE", "1 m", "N male", "N male"), "length", "loss_db = 0.5\nlength", 1) +
-		jumper("J-3", "DOME", "1 m", "N male", "N male")
+		jumper("J-3", "DOME", "1 m", "N male", "N male") + plug("NC", "NONE") +
+		part("LEAD", "antenna", "port.rf = { connector = \"N female\", impedance_ohm = 50, lead = { cable = \"NONE\", length = \"1 m\" } }") +
+		part("AMP", "amplifier", port("donor", "N female", ", side = \"donor\""), "kit = [{ side = \"donor\", antenna = \"NONE\" }]")
 	weights := map[string]rules.Weight{}
 	for _, rule := range []string{"part/unknown", "part/kind"} {
-		for _, f := range partFindings(t, rule, catalog, "") {
+		for _, f := range houseFindings(t, rule, "[house]\nsealing = \"NONE\"\n", catalog, "") {
 			weights[rule+" "+f.Part] = f.Weight
 		}
 	}
 	for name, want := range map[string]rules.Weight{
 		"part/unknown CX-Q": rules.Punch, "part/unknown J-1": rules.Hold, "part/unknown J-2": rules.Punch,
 		"part/kind CX-Q": rules.Punch, "part/kind J-3": rules.Hold,
+		"part/unknown NC": rules.Punch, "part/unknown LEAD": rules.Hold, "part/unknown AMP": rules.Punch, "part/unknown ": rules.Hold,
 	} {
 		if weights[name] != want {
 			t.Errorf("%s weighs %s, not %s", name, weights[name], want)
