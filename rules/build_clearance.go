@@ -96,21 +96,23 @@ func (c *Case) fallOf(d *bom.Device) fall {
 
 // extent is how far a thing reaches below and above where it is fixed, in metres. A
 // mast whose free end is not given is taken to stand wholly above its foot, which is
-// as far as it can reach.
+// as far as it can reach. Gear of unknown size is left out beside mast and antenna.
 func extent(d *bom.Device) (low float64, high span, lacks []Lack) {
 	switch {
 	case d.Kind() == "mount" && tubeOf(d) == noTube:
 		return 0, exactly(0), nil
 	case d.Kind() == "mount":
 		return mastExtent(d)
-	case !radiates(d):
-		return 0, exactly(0), nil
-	case d.Part == nil:
+	case radiates(d) && d.Part == nil:
 		return 0, span{0, math.Inf(1)}, []Lack{{"the part of " + d.ID + ", with its size", d.At}}
-	case !d.Part.Antenna.SizeMM.Set:
+	case d.Part == nil:
+		return 0, exactly(0), nil
+	}
+	_, side := d.Part.InWind()
+	if radiates(d) && !side.Set {
 		return 0, span{0, math.Inf(1)}, []Lack{{"size_mm of " + d.Part.ID, d.Part.At}}
 	}
-	half := d.Part.Antenna.SizeMM.V / 2000
+	half := side.V / 2000
 	return -half, exactly(half), nil
 }
 

@@ -85,7 +85,6 @@ type loaded struct {
 	wind    wind
 	burdens []burden
 	lacks   []Lack
-	box     *bom.Device // gear without an antenna, whose part has no area
 }
 
 // loadOn adds up what the wind does above the top fixing of a mount.
@@ -154,9 +153,6 @@ func (l *loaded) tubeLoad(mm, from, long float64) (load mech.Load, open bool) {
 func (l *loaded) area(p perch) {
 	area, lacks := l.wind.area(p.dev)
 	l.lacks = append(l.lacks, lacks...)
-	if p.dev.Part != nil && p.dev.Part.Antenna == nil {
-		l.box = p.dev
-	}
 	b := burden{name: p.dev.ID}
 	b.least = mech.Load{Force: l.wind.force(area.least), Lever: p.up.least}
 	if b.open = area.open() || p.up.open(); !b.open {
