@@ -14,9 +14,10 @@ type Amplifier struct {
 	MaxIn             source.Val[float64] // dBm
 	DamageIn          source.Val[float64] // dBm
 	Bands             []AmpBand
-	BandNames         Words // of Bands, in their order
 	Kits              []Kit
 	Load              *Load
+
+	names Words // of Bands
 }
 
 // AmpBand is what an amplifier does in one band.
@@ -52,6 +53,9 @@ type Load struct {
 	W     source.Val[float64]
 }
 
+// BandNames lists the bands of the rows in their order. The list is shared.
+func (a *Amplifier) BandNames() Words { return a.names }
+
 // Band finds the row of a band, or nil.
 func (a *Amplifier) Band(name string) *AmpBand {
 	for i := range a.Bands {
@@ -82,7 +86,7 @@ func (a *Amplifier) keys(k *source.Keys) {
 	source.Opt(k, &a.DamageIn, "damage_in_dbm", level, "input that damages it")
 	source.Rows(k, &a.Bands, "band", (*AmpBand).keys, "what it does in each band")
 	for i := range a.Bands {
-		a.BandNames = append(a.BandNames, a.Bands[i].Band)
+		a.names = append(a.names, a.Bands[i].Band)
 	}
 	source.Rows(k, &a.Kits, "kit", (*Kit).keys, "antennas and losses it is certified with")
 	a.Load = readLoad(k)

@@ -156,7 +156,7 @@ func runsWithout(d *bom.Device, b catalog.Band) (leftOut, bool) {
 	return leftOut{Band: b}, false
 }
 
-func ampBands(a *catalog.Amplifier) catalog.Words { return a.BandNames }
+func ampBands(a *catalog.Amplifier) catalog.Words { return a.BandNames() }
 
 // runners lists the amplifiers and routers of the plan whose part is known.
 func (c *Case) runners() []*bom.Device {

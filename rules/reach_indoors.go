@@ -2,8 +2,8 @@ package rules
 
 import (
 	"fmt"
-	"regexp"
 	"strconv"
+	"strings"
 
 	"driploop/bom"
 	"driploop/catalog/source"
@@ -66,10 +66,22 @@ func throughWalls(a *bom.Area, f unit.MHz) indoors {
 	return p
 }
 
-// slab is a wall with its thickness: "plasterboard 12.5 mm", "concrete 8 in".
-var slab = regexp.MustCompile(`^(.*\S)\s+([0-9.]+)\s*(mm|cm|in)$`)
-
-var millimetres = map[string]float64{"mm": 1, "cm": 10, "in": 25.4}
+// slab parts the name of a wall from its thickness in millimetres: "plasterboard
+// 12.5 mm", "concrete 8 in". A wall without one has 0.
+func slab(name string) (material string, mm float64) {
+	for suffix, per := range map[string]float64{"mm": 1, "cm": 10, "in": 25.4} {
+		rest, ok := strings.CutSuffix(name, suffix)
+		rest = strings.TrimRight(rest, " ")
+		i := strings.LastIndexByte(rest, ' ')
+		if !ok || i < 0 {
+			continue
+		}
+		if v, err := strconv.ParseFloat(rest[i+1:], 64); err == nil && v > 0 {
+			return strings.TrimRight(rest[:i], " "), v * per
+		}
+	}
+	return name, 0
+}
 
 // wallLoss is the plan's own figure, else that of the published tables, or what is
 // lacking.
@@ -80,12 +92,7 @@ func wallLoss(w *bom.Wall, f unit.MHz) (rf.WallLoss, string) {
 		}
 		return rf.WallLoss{}, "a loss of the wall " + source.Quote(w.Name.V)
 	}
-	name, mm := w.Name.V, 0.0
-	if m := slab.FindStringSubmatch(name); m != nil {
-		name = m[1]
-		mm, _ = strconv.ParseFloat(m[2], 64)
-		mm *= millimetres[m[3]]
-	}
+	name, mm := slab(w.Name.V)
 	if v, ok := rf.Wall(name, mm, f); ok {
 		return v, ""
 	}

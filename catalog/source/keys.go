@@ -30,6 +30,7 @@ type Keys struct {
 	at    Place
 	table *Node
 	known []string
+	room  [24]string     // for known, which few tables outgrow
 	lacks map[string]int // keys reported missing, each with its problem
 	mute  bool
 	read  *reading
@@ -118,6 +119,9 @@ func (k *Keys) take(d KeyDoc) *KeyNode {
 	if k.rec != nil {
 		k.rec.Keys = append(k.rec.Keys, d)
 		return nil
+	}
+	if k.known == nil {
+		k.known = k.room[:0]
 	}
 	k.known = append(k.known, d.Name)
 	return k.table.Get(d.Name)
