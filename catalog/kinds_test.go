@@ -260,7 +260,9 @@ func valuesOf(path string, v reflect.Value) []string {
 		}
 	case reflect.Struct:
 		for i := range v.NumField() {
-			out = append(out, valuesOf(path+"."+v.Type().Field(i).Name, v.Field(i))...)
+			if f := v.Type().Field(i); f.IsExported() {
+				out = append(out, valuesOf(path+"."+f.Name, v.Field(i))...)
+			}
 		}
 	default:
 		if !v.IsZero() {

@@ -47,6 +47,11 @@ func newCase(f *Firm, p *bom.Plan, problems []source.Problem) *Case {
 
 // checkNames holds that the profile, code and crew that the plan names exist.
 func (c *Case) checkNames() {
+	if !source.ValidID(c.Plan.ID) {
+		c.Problems = append(c.Problems, source.Problem{Kind: source.Value, At: c.Plan.File.Start(),
+			Says: "the file's name is the job's ID, and " + source.Quote(c.Plan.ID) + " cannot be referred to",
+			Do:   "rename the file: letters, digits, - and _, starting with a letter or digit"})
+	}
 	var crews []string
 	for _, crew := range c.Firm.Workspace.Premises.Crews {
 		crews = append(crews, crew.ID)

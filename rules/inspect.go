@@ -83,9 +83,10 @@ func (n *Counts) add(m Counts) {
 // sideBySide is how many files are worked on at a time.
 func sideBySide() int { return max(1, runtime.GOMAXPROCS(0)) }
 
-// Inspect runs the rules over the named plans, or over all where none is named.
+// Inspect runs the rules over the named plans, or over all where none is named. Of
+// the findings on the workspace's own files, those in changed files are always kept.
 // The same workspace and day give the same result, in the same order.
-func (f *Firm) Inspect(ctx context.Context, plans []source.Entry) (*Result, error) {
+func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...string) (*Result, error) {
 	whole := plans == nil
 	if whole {
 		plans = f.PlanFiles
@@ -105,7 +106,7 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry) (*Result, erro
 	}
 	r.Workspace = f.inspectFiles()
 	if !whole {
-		r.keepTouched()
+		r.keepTouched(changed)
 	}
 	for _, e := range f.Skipped {
 		r.Notices = append(r.Notices, fmt.Sprintf("%s is not read: it %s", e.Path, e.Skip))
@@ -119,9 +120,9 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry) (*Result, erro
 	return r, nil
 }
 
-// keepTouched drops the findings on the workspace's own files that stand on none
-// of the plans at hand, and says how many.
-func (r *Result) keepTouched() {
+// keepTouched drops the findings on the workspace's own files that stand neither on
+// the plans at hand nor in the changed files, and says how many.
+func (r *Result) keepTouched(changed []string) {
 	used, holes := map[string]bool{}, false
 	for _, p := range r.Plans {
 		for _, id := range p.Parts {
@@ -134,12 +135,12 @@ func (r *Result) keepTouched() {
 	var kept []*Finding
 	for _, f := range r.Workspace {
 		fileWide := f.Part == "" && (holes || f.At.Path() == WorkspaceFile)
-		if used[f.Part] || fileWide {
+		if used[f.Part] || fileWide || slices.Contains(changed, f.At.Path()) {
 			kept = append(kept, f)
 		}
 	}
 	if n := len(r.Workspace) - len(kept); n > 0 {
-		r.Notices = append(r.Notices, fmt.Sprintf("%d findings on the workspace's own files touch none of these plans and are left out; inspect without naming a plan shows them", n))
+		r.Notices = append(r.Notices, fmt.Sprintf("%s on the workspace's own files, in nothing that these plans need; inspect without naming a plan shows them", count(n, "finding", "findings")))
 	}
 	r.Workspace = kept
 }

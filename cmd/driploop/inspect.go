@@ -29,11 +29,11 @@ The status is 1 where a hold stands.`,
 				return err
 			}
 			defer done()
-			plans, err := c.plans(firm, args, cmd.ArgsLenAtDash())
+			plans, changed, err := c.plans(firm, args, cmd.ArgsLenAtDash())
 			if err != nil {
 				return err
 			}
-			res, err := firm.Inspect(cmd.Context(), plans)
+			res, err := firm.Inspect(cmd.Context(), plans, changed...)
 			if err != nil {
 				return failure{err}
 			}

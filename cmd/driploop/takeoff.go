@@ -31,7 +31,7 @@ is left out; so are cancelled jobs.`,
 				return err
 			}
 			defer done()
-			plans, err := c.plans(firm, args, cmd.ArgsLenAtDash())
+			plans, _, err := c.plans(firm, args, cmd.ArgsLenAtDash())
 			if err != nil {
 				return err
 			}

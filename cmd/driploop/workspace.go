@@ -84,9 +84,9 @@ func (c *Command) begins() error {
 // plans are the plan files that the arguments name: a job's ID, or a file. What
 // stands behind -- are file names as a hook passes them; a file that is no plan
 // stands for the plans it touches. Without arguments it is nil: all plans.
-func (c *Command) plans(firm *rules.Firm, args []string, dash int) ([]source.Entry, error) {
+func (c *Command) plans(firm *rules.Firm, args []string, dash int) (plans []source.Entry, changed []string, err error) {
 	if len(args) == 0 && dash < 0 {
-		return nil, nil
+		return nil, nil, nil
 	}
 	named, passed := args, []string(nil)
 	if dash >= 0 {
@@ -96,28 +96,27 @@ func (c *Command) plans(firm *rules.Firm, args []string, dash int) ([]source.Ent
 	for _, a := range named {
 		e, err := c.plan(firm, a)
 		if err != nil {
-			return nil, err
+			return nil, nil, err
 		}
 		chosen[e.Path] = true
 	}
-	var changed []string
 	for _, a := range passed {
 		path, err := c.inside(a)
 		if err != nil {
-			return nil, err
+			return nil, nil, err
 		}
 		changed = append(changed, path)
 	}
 	for _, e := range firm.Touched(changed) {
 		chosen[e.Path] = true
 	}
-	out := []source.Entry{}
+	plans = []source.Entry{}
 	for _, e := range firm.PlanFiles {
 		if chosen[e.Path] {
-			out = append(out, e)
+			plans = append(plans, e)
 		}
 	}
-	return out, nil
+	return plans, changed, nil
 }
 
 // plan finds the plan that an argument names.
