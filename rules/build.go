@@ -32,15 +32,18 @@ const (
 	cautionFirestop    = "A hole through a fire-rated wall or floor gets its rating back; the authority having jurisdiction decides what that is."
 )
 
-// standing lists what stands on a device itself, in the order of the plan.
+// standing lists what stands on a device itself, in the order of the plan. What has
+// a place of its own elsewhere, as a copy can, does not stand there.
 func (c *Case) standing(m *bom.Device) []*bom.Device {
-	var out []*bom.Device
-	for _, d := range c.Graph.Devices {
-		if d.Stands == m && (d.Place == m.Place || d.Place == nil) {
-			out = append(out, d)
+	if c.stood == nil {
+		c.stood = map[*bom.Device][]*bom.Device{}
+		for _, d := range c.Graph.Devices {
+			if d.Stands != nil && (d.Place == nil || d.Place == d.Stands.Place) {
+				c.stood[d.Stands] = append(c.stood[d.Stands], d)
+			}
 		}
 	}
-	return out
+	return c.stood[m]
 }
 
 // tubeKind says what a mount has: a tube of its own, none because it only clamps

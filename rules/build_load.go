@@ -59,16 +59,16 @@ type perch struct {
 
 // perches lists everything that a mount carries, and what is not known of where.
 func (c *Case) perches(m *bom.Device) (out []perch, lacks []Lack) {
-	for _, d := range c.standing(m) {
-		up, l := upOn(d)
-		lacks = append(lacks, l...)
-		out = append(out, perch{d, up})
-		above, l := c.perches(d)
-		lacks = append(lacks, l...)
-		for _, p := range above {
-			out = append(out, perch{p.dev, up.plus(p.up)})
+	var climb func(m *bom.Device, at span)
+	climb = func(m *bom.Device, at span) {
+		for _, d := range c.standing(m) {
+			up, l := upOn(d)
+			lacks = append(lacks, l...)
+			out = append(out, perch{d, at.plus(up)})
+			climb(d, at.plus(up))
 		}
 	}
+	climb(m, exactly(0))
 	return out, lacks
 }
 

@@ -21,6 +21,7 @@ type Case struct {
 	Code     *limits.Code     // likewise
 	Waivers  []*Settled       // filled before paper/waiver runs
 
+	stood map[*bom.Device][]*bom.Device // what stands on what, once it was asked for
 	bands []catalog.Band
 	chain *Chain
 	touch []touching
