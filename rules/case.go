@@ -27,7 +27,9 @@ type Case struct {
 	touch []touching
 	emit  []*emitter
 	refs  []reference
-	power *supplies
+
+	routers map[*bom.Device]*bom.Device // by the device at the other end of a line
+	power   *supplies
 }
 
 // newCase makes the case of a plan that has been read.

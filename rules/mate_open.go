@@ -184,19 +184,27 @@ func (c *Case) openAntenna(n *bom.Node) (opening, bool) {
 
 // routerAt is a router that some line leads to from an antenna, or nil.
 func (c *Case) routerAt(d *bom.Device) *bom.Device {
-	for _, l := range c.Lines().All {
-		if l.Kind != bom.Feed && l.Kind != bom.Leg {
-			continue
-		}
-		a, b := l.From.Device, l.To.Device
-		switch {
-		case a == d && b.Kind() == "router":
-			return b
-		case b == d && a.Kind() == "router":
-			return a
+	if c.routers == nil {
+		c.routers = c.findRouters()
+	}
+	return c.routers[d]
+}
+
+// findRouters is the first router on the lines of each device, found once.
+func (c *Case) findRouters() map[*bom.Device]*bom.Device {
+	out := map[*bom.Device]*bom.Device{}
+	note := func(d, router *bom.Device) {
+		if router.Kind() == "router" && out[d] == nil {
+			out[d] = router
 		}
 	}
-	return nil
+	for _, l := range c.Lines().All {
+		if l.Kind == bom.Feed || l.Kind == bom.Leg {
+			note(l.From.Device, l.To.Device)
+			note(l.To.Device, l.From.Device)
+		}
+	}
+	return out
 }
 
 // openBranches lists the cellular ports of a router or antenna that are open and
