@@ -21,6 +21,9 @@ type indexer struct {
 	nodes int
 	end   int // where the last expression that was read ends
 
+	spare     []Node // made in rows, because a file has hundreds
+	spareKeys []KeyNode
+
 	problems  []Problem
 	uncounted int  // problems above MaxProblems
 	partial   bool // something was left out of the tree
@@ -110,7 +113,7 @@ func (x *indexer) keyValue(t *Node, depth int, e *unstable.Node) {
 	}
 	from := x.afterEquals(int(last.at.To))
 	v, _ := x.value(e.Value(), from, depth+1)
-	t.add(&KeyNode{Name: last.name, At: last.at, Value: v})
+	t.add(x.entry(last, v))
 }
 
 // value turns a value that begins at an offset into a node, and returns the
@@ -173,7 +176,24 @@ func (x *indexer) node(at Place, depth int) *Node {
 	case depth > MaxDepth:
 		x.stop(at, fmt.Sprintf("the value lies more than %d levels deep", MaxDepth), "nest less")
 	}
-	return &Node{At: at}
+	if len(x.spare) == 0 {
+		x.spare = make([]Node, 64)
+	}
+	n := &x.spare[0]
+	x.spare = x.spare[1:]
+	n.At = at
+	return n
+}
+
+// entry makes a key with its value.
+func (x *indexer) entry(p part, v *Node) *KeyNode {
+	if len(x.spareKeys) == 0 {
+		x.spareKeys = make([]KeyNode, 64)
+	}
+	k := &x.spareKeys[0]
+	x.spareKeys = x.spareKeys[1:]
+	*k = KeyNode{Name: p.name, At: p.at, Value: v}
+	return k
 }
 
 func (x *indexer) raw(e *unstable.Node) Place {

@@ -30,7 +30,6 @@ type Keys struct {
 	at    Place
 	table *Node
 	known []string
-	room  [24]string     // for known, which few tables outgrow
 	lacks map[string]int // keys reported missing, each with its problem
 	mute  bool
 	read  *reading
@@ -40,8 +39,9 @@ type Keys struct {
 // reading collects what one file has to say.
 type reading struct {
 	problems []Problem
-	missing  []int // those of the problems that are missing keys
-	partial  bool  // keys that seem missing may well be there
+	rooms    [][]string // lists of known keys that tables are done with
+	missing  []int      // those of the problems that are missing keys
+	partial  bool       // keys that seem missing may well be there
 }
 
 // Read runs a bind function over the root of a document and returns the
@@ -104,6 +104,17 @@ func (r *reading) standing() []Problem {
 	return out
 }
 
+// room is an empty list for the known keys of one table.
+func (r *reading) room() []string {
+	n := len(r.rooms)
+	if n == 0 {
+		return make([]string, 0, 24)
+	}
+	room := r.rooms[n-1]
+	r.rooms = r.rooms[:n-1]
+	return room
+}
+
 func (r *reading) add(p Problem) { r.problems = append(r.problems, p) }
 
 // called is how messages speak of the table.
@@ -119,9 +130,6 @@ func (k *Keys) take(d KeyDoc) *KeyNode {
 	if k.rec != nil {
 		k.rec.Keys = append(k.rec.Keys, d)
 		return nil
-	}
-	if k.known == nil {
-		k.known = k.room[:0]
 	}
 	k.known = append(k.known, d.Name)
 	return k.table.Get(d.Name)
@@ -261,9 +269,10 @@ func (k *Keys) idStands(e *KeyNode, seen map[string]Place) bool {
 }
 
 func bindTable(k *Keys, name string, at Place, table *Node, bind func(*Keys)) {
-	s := &Keys{name: name, at: at, table: table, read: k.read}
+	s := &Keys{name: name, at: at, table: table, read: k.read, known: k.read.room()}
 	bind(s)
 	s.finish()
+	k.read.rooms = append(k.read.rooms, s.known[:0])
 }
 
 func (k *Keys) isTable(name string, v *Node) bool {

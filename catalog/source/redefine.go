@@ -105,7 +105,7 @@ func (x *indexer) row(t *Node, last part, at Place) {
 	if k == nil {
 		rows := x.node(at, x.depth)
 		rows.Kind, rows.made = Array, byRows
-		k = &KeyNode{Name: last.name, At: last.at, Value: rows}
+		k = x.entry(last, rows)
 		t.add(k)
 	}
 	if k.Value.made != byRows {
@@ -121,7 +121,7 @@ func (x *indexer) row(t *Node, last part, at Place) {
 func (x *indexer) newTable(t *Node, p part, depth int, how made) *Node {
 	n := x.node(p.at, depth)
 	n.Kind, n.made = Table, how
-	t.add(&KeyNode{Name: p.name, At: p.at, Value: n})
+	t.add(x.entry(p, n))
 	return n
 }
 
