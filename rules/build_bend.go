@@ -67,26 +67,12 @@ func (c *Case) checkBend(r *Report, x *bom.Cable) {
 	case bend.V < least:
 		r.Fails(bend.At, x.On(), "%s is bent to %s; %s is the least (%s)", x.ID, radius(bend.V), radius(least), how).
 			Under("bend_m", bend.V.Metres(), "limit_m", least.Metres()).Beside(at, "where that is stated").
-			Then("%s", c.gentler(x))
+			Then("give the bend more room; while it is pulled in, twice that")
 	}
 }
 
 // radius prints a radius in millimetres, as data sheets do.
 func radius(r unit.MM) string { return plainFigure(float64(r)) + " mm" }
-
-// gentler says how a bend could be made good.
-func (c *Case) gentler(x *bom.Cable) string {
-	if x.Part.Cable == nil {
-		return "give the bend more room"
-	}
-	p := c.Firm.pick(func(p *catalog.Part) bool {
-		return c.likeCable(x.Part)(p) && p.Cable.Bend.Set && p.Cable.Bend.V <= x.Row.LeastBend.V
-	})
-	if p == nil {
-		return "give the bend more room"
-	}
-	return "give the bend more room, or take " + c.Firm.OnHand(p) + " if its loss is low enough"
-}
 
 // reportSilentBends says once for all cables whose bends the plan leaves out, and
 // what each may be bent to.

@@ -70,7 +70,8 @@ func (c *Case) checkLineFire(r *Report, s spreadLine) (rank int, unknown bool) {
 		if !fire.Set && !s.existing && !c.entersUnlisted(s, sp) {
 			return i, true
 		}
-		if fire.Set && c.checkMarking(r, s, sp, place, row, fire) {
+		if fire.Set && !permitted(row)(s.jacket) {
+			c.checkMarking(r, marked{s, sp, place, row, fire})
 			break
 		}
 	}
@@ -121,28 +122,33 @@ func (s *spreadLine) cordAt(sp space) bool {
 	return s.part.Jumper != nil && sp.coax == "fire-indoor"
 }
 
-// checkMarking holds one jacket against one space, and reports whether it had
-// something to say.
-func (c *Case) checkMarking(r *Report, s spreadLine, sp space, place *bom.Place, row *limits.CodeRow, fire source.Val[string]) bool {
-	if ok, _ := row.Permits(fire.V); ok {
-		return false
-	}
-	if european(fire.V) {
-		r.Unknown(s.at, s.on, "%s (%s) is marked %s and runs %s (%s); %s counts other types, so this is not assessed", s.id, s.part.ID, fire.V, sp.words, place.ID, c.CodeName()).
-			onRow(row).Beside(fire.At, "its marking").Then("find out which listed type the jacket is, and give that")
-		return true
-	}
-	if sp.coax == "fire-indoor" && limited(fire.V) {
-		return c.checkLimited(r, s, sp, place, row, fire)
-	}
-	c.reportForbidden(r, s, sp, place, row, fire)
-	return true
+// marked is a line whose marking a space does not list.
+type marked struct {
+	line  spreadLine
+	space space
+	place *bom.Place
+	row   *limits.CodeRow
+	fire  source.Val[string]
 }
 
-func (c *Case) reportForbidden(r *Report, s spreadLine, sp space, place *bom.Place, row *limits.CodeRow, fire source.Val[string]) *Finding {
-	return r.Fails(s.at, s.on, "%s (%s) is marked %s and runs %s (%s); %s is expected", s.id, s.part.ID, fire.V, sp.words, place.ID, row.Figure()).
-		onRow(row).Beside(fire.At, "its marking").Beside(place.At, "the place").
-		Then("%s; the code also takes metal raceway", c.jacketFor(s, permitted(row)))
+func (c *Case) checkMarking(r *Report, m marked) {
+	s := m.line
+	switch {
+	case european(m.fire.V):
+		r.Unknown(s.at, s.on, "%s (%s) is marked %s and runs %s (%s); %s counts other types, so this is not assessed", s.id, s.part.ID, m.fire.V, m.space.words, m.place.ID, c.CodeName()).
+			onRow(m.row).Beside(m.fire.At, "its marking").Then("find out which listed type the jacket is, and give that")
+	case m.space.coax == "fire-indoor" && limited(m.fire.V):
+		c.checkLimited(r, m)
+	default:
+		c.reportForbidden(r, m)
+	}
+}
+
+func (c *Case) reportForbidden(r *Report, m marked) {
+	s := m.line
+	r.Fails(s.at, s.on, "%s (%s) is marked %s and runs %s (%s); %s is expected", s.id, s.part.ID, m.fire.V, m.space.words, m.place.ID, m.row.Figure()).
+		onRow(m.row).Beside(m.fire.At, "its marking").Beside(m.place.At, "the place").
+		Then("%s; the code also takes metal raceway", c.jacketFor(s, permitted(m.row)))
 }
 
 // european reports a class of EN 13501-6, which no row of the American code lists.
@@ -157,44 +163,61 @@ func european(fire string) bool {
 // limited reports a type that serves only in dwellings and over short lengths in view.
 func limited(fire string) bool { return fire == "CATVX" || fire == "CMX" }
 
-// checkLimited looks at a limited type inside a building: it passes thin enough in a
-// dwelling, or short enough and in view.
-func (c *Case) checkLimited(r *Report, s spreadLine, sp space, place *bom.Place, row *limits.CodeRow, fire source.Val[string]) bool {
-	short, thin := c.codeRow("fire-limited"), c.codeRow("fire-limited-dwelling")
-	in := s.lengthIn(func(p *bom.Place) bool { return p.Kind.V == sp.kind })
-	var lacks []Lack
-	if short != nil && short.Length.Set {
-		most := float64(short.Length.V)
-		if in.most <= most {
-			r.Advice(s.at, s.on, "%s (%s) is marked %s: in %s that serves in view, and not behind anything", s.id, s.part.ID, fire.V, place.ID).
-				onRow(short).Then("keep it where it can be seen")
-			return true
-		}
-		if in.least <= most {
-			lacks = append(lacks, Lack{"its length in " + place.ID, s.at})
-		}
+// checkLimited looks at a limited type inside a building: it serves where it is short
+// and in view, or thin enough in a dwelling.
+func (c *Case) checkLimited(r *Report, m marked) {
+	s := m.line
+	short, lacks := c.shortEnough(m)
+	thin, more := c.thinEnough(m)
+	lacks = append(lacks, more...)
+	switch {
+	case short != nil:
+		r.Advice(s.at, s.on, "%s (%s) is marked %s: in %s that serves in view, and not behind anything", s.id, s.part.ID, m.fire.V, m.place.ID).
+			onRow(short).Then("keep it where it can be seen")
+	case thin != nil:
+		r.Advice(s.at, s.on, "%s (%s) is marked %s: that serves in a dwelling, which this job for personal use is taken for", s.id, s.part.ID, m.fire.V).
+			onRow(thin).Then("take a general type where it is none")
+	case len(lacks) > 0:
+		r.Lacking(s.at, s.on, lacks, "%s, marked %s, in %s,", s.id, m.fire.V, m.place.ID).onRow(m.row)
+	default:
+		c.reportForbidden(r, m)
 	}
-	use, od := c.Plan.Job.Use, s.od()
-	if thin != nil {
-		limit, ok := thin.Constant(fire.V)
-		switch {
-		case !ok, od.Set && od.V >= limit, use.Set && use.V != "personal":
-		case use.Set && od.Set:
-			r.Advice(s.at, s.on, "%s (%s) is marked %s: that serves in a dwelling, which this job for personal use is taken for", s.id, s.part.ID, fire.V).
-				onRow(thin).Then("take a general type where it is none")
-			return true
-		case !use.Set:
-			lacks = append(lacks, Lack{"whether it is a dwelling (job.use)", c.JobAt()})
-		default:
-			lacks = append(lacks, Lack{"od_mm of " + s.jacket.ID, s.jacket.At})
-		}
+}
+
+// shortEnough is the row by which a limited type may run that far, or nil.
+func (c *Case) shortEnough(m marked) (*limits.CodeRow, []Lack) {
+	row := c.codeRow("fire-limited")
+	if row == nil || !row.Length.Set {
+		return nil, nil
 	}
-	if len(lacks) > 0 {
-		r.Lacking(s.at, s.on, lacks, "%s, marked %s, in %s,", s.id, fire.V, place.ID).onRow(row)
-		return true
+	in, most := m.line.lengthIn((*bom.Place).Indoors), float64(row.Length.V)
+	switch {
+	case in.most <= most:
+		return row, nil
+	case in.least <= most:
+		return nil, []Lack{{"its length in " + m.place.ID, m.line.at}}
 	}
-	c.reportForbidden(r, s, sp, place, row, fire)
-	return true
+	return nil, nil
+}
+
+// thinEnough is the row by which a limited type that thin serves in a dwelling, or
+// nil. A job for personal use is taken for one.
+func (c *Case) thinEnough(m marked) (*limits.CodeRow, []Lack) {
+	row := c.codeRow("fire-limited-dwelling")
+	if row == nil {
+		return nil, nil
+	}
+	limit, ok := row.Constant(m.fire.V)
+	use, od := c.Plan.Job.Use, m.line.od()
+	switch {
+	case !ok, od.Set && od.V >= limit, use.Set && use.V != "personal":
+		return nil, nil
+	case !use.Set:
+		return nil, []Lack{{"whether it is a dwelling (job.use)", c.JobAt()}}
+	case !od.Set:
+		return nil, []Lack{{"od_mm of " + m.line.jacket.ID, m.line.jacket.At}}
+	}
+	return row, nil
 }
 
 // od is the outer diameter of the jacket, where its part has one.

@@ -143,3 +143,44 @@ func TestCautionsCarryThePlansOwnFigures(t *testing.T) {
 		}
 	}
 }
+
+// What to do names a part that would do, of the same sort.
+func TestRemediesOfBuilding(t *testing.T) {
+	for file, want := range map[string]string{
+		"build-wind/bad":                     "take a stronger mast such as GEN-MAST-42-3 (none on hand)",
+		"build-wind/bad-en-sixth":            "so that less than 2.5 m is free",
+		"build-wind/bad-ballast-house":       "bring its weight to 66 kg", // 2 × 192 N·m over 0.6 m are 640 N
+		"build-wind/missing-basis":           "asce7-strength in editions from 7-10 on",
+		"build-wind/missing-en-long":         "have a structural engineer prove it",
+		"build-clearance/bad":                "set it at least 6.3 m from the line",
+		"build-clearance/bad-approach":       "set it at least 9.4 m from the line", // 6.096 + 3.235 m
+		"build-clearance/missing":            `a [[reading]] of a length from mast with at = "power line"`,
+		"build-ground-plane/bad":             "bond a steel plate to the skin",
+		"build-ground-plane/bad-edge":        "move it toward the middle",
+		"build-bend/bad":                     "give the bend more room",
+		"build-bend/bad-jumper":              "give the bend more room",
+		"build-rating/bad":                   "make it of GEN-CX-7-P (none on hand)",
+		"build-rating/bad-riser":             "make it of GEN-CX-10-R (none on hand)",
+		"build-rating/bad-data":              "make it of GEN-CAT6-R (none on hand)",
+		"build-rating/bad-burial":            "make it of GEN-CX-10-B (none on hand)",
+		"build-rating/bad-outdoors":          "make it of GEN-CX-10 (none on hand)",
+		"build-rating/bad-gear":              "or take GEN-ANT-LP-10 (none on hand)",
+		"build-rating/bad-gear-plenum":       "put it into an enclosure",
+		"build-rating/missing-unlisted-open": "change over at the entry to GEN-CX-10-R (none on hand)",
+		"build-mount/bad-thin":               "a mast such as GEN-MAST-48-3 (none on hand)",
+		"build-mount/bad-router":             "no mast of the catalog fits",
+		"build-outdoor-joint/bad":            "name it as sealing under [house], or list it as an [[extra]]",
+		"build-outdoor-joint/bad-sma":        "list a boot such as GEN-BOOT-SMA (none on hand)",
+		"build-heat/bad":                     "move it where it is cooler",
+	} {
+		var said []string
+		for _, f := range findings(t, archived(t, file, "review"), today(t, "")) {
+			if f.Rule.Name == ruleOf(file) {
+				said = append(said, f.Do)
+			}
+		}
+		if all := strings.Join(said, "\n"); !strings.Contains(all, want) {
+			t.Errorf("%s: %q, want %q", file, all, want)
+		}
+	}
+}
