@@ -97,7 +97,7 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 	g.SetLimit(sideBySide())
 	for i, e := range plans {
 		g.Go(func() error {
-			r.Plans[i] = f.inspectPlan(e)
+			r.Plans[i] = f.inspectPlan(e, !whole)
 			return ctx.Err()
 		})
 	}
@@ -160,8 +160,9 @@ func (f *Firm) inspectFiles() []*Finding {
 	return out
 }
 
-// inspectPlan runs the rules over one plan and lets go of it.
-func (f *Firm) inspectPlan(e source.Entry) *PlanResult {
+// inspectPlan runs the rules over one plan and lets go of it. Its parts are listed
+// where findings on the workspace's own files have to be told apart by them.
+func (f *Firm) inspectPlan(e source.Entry, withParts bool) *PlanResult {
 	c, broken := f.Case(e)
 	res := &PlanResult{Path: e.Path, Job: bom.JobOf(e.Path)}
 	if c.Plan != nil {
@@ -174,7 +175,9 @@ func (f *Firm) inspectPlan(e source.Entry) *PlanResult {
 	}
 	defer letGo(c.Plan.File, res.Findings)
 	if !broken {
-		res.Parts = c.parts()
+		if withParts {
+			res.Parts = c.parts()
+		}
 		res.Runs = c.runs()
 		res.Cautions = c.cautions(res.Findings)
 	}
