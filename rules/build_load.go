@@ -176,13 +176,18 @@ func (l *loaded) unknown(name string, lack Lack) {
 
 // moment is the moment at the fixing, or at a foot that far below it, in N·m.
 func (l *loaded) moment(below float64) span {
-	var out span
+	var least, most []mech.Load
+	open := false
 	for _, b := range l.burdens {
-		if b.open {
-			out.most = math.Inf(1)
-		}
-		out.least += b.least.Force * (b.least.Lever + below)
-		out.most += b.most.Force * (b.most.Lever + below)
+		open = open || b.open
+		least = append(least, mech.Load{Force: b.least.Force, Lever: b.least.Lever + below})
+		most = append(most, mech.Load{Force: b.most.Force, Lever: b.most.Lever + below})
+	}
+	var out span
+	var ok bool
+	out.least, _ = mech.Moment(least...)
+	if out.most, ok = mech.Moment(most...); open || !ok {
+		out.most = math.Inf(1)
 	}
 	return out
 }

@@ -81,7 +81,8 @@ func (c *Case) fixedWind(w wind, height float64) (wind, []Lack) {
 		return w, []Lack{{"a pressure for this height in the code " + c.CodeName(), c.JobAt()}}
 	}
 	w.q = step.Value.V
-	w.words = fmt.Sprintf("%s N/m² at %s m above ground", plainFigure(w.q), plainFigure(Round(height)))
+	speed, _ := mech.FreeSpeed(w.q)
+	w.words = fmt.Sprintf("%s N/m² (%s m/s) at %s m above ground", plainFigure(w.q), unit.Fixed(speed, 0), plainFigure(Round(height)))
 	if v := c.Plan.Site.Wind; v.Set {
 		if q, ok := mech.FreePressure(float64(v.V)); ok && q > w.q {
 			w.q = q
