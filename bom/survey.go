@@ -172,7 +172,7 @@ func (r *Reading) keys(k *source.Keys) {
 	source.Opt(k, &r.To, "to", ref, "to where")
 	source.Opt(k, &r.Band, "band", catalog.BandName, "in which band; absent: for all")
 	source.Opt(k, &r.Operator, "operator", source.Name, "whose signal")
-	source.Opt(k, &r.Where, "at", source.Text, "area or place")
+	source.Opt(k, &r.Where, "at", source.Text, "area or place; of a length also what it leads to, such as power line or edge")
 	source.Opt(k, &r.MHz, "mhz", source.Between(1, 300000, "MHz"), "at which frequency")
 	source.Opt(k, &r.DB, "value_db", decibels, "isolation or return loss")
 	source.Opt(k, &r.DBm, "value_dbm", level, "rsrp")
