@@ -239,6 +239,8 @@ dome = { part = "DOME", place = "room" }
 L1 = { part = "CX", length = "3 m", from = "amp.server", to = "dome", ends = ["N male", "N male"] }
 [wire.P1]
 part = "W"
+[data.E1]
+part = "CAT"
 [bond.G1]
 from = "amp"
 to = "dome"
@@ -271,6 +273,9 @@ to = "P1"
 what = "ground-ohm"
 from = "G1"
 to = "G2"
+[[reading]]
+what = "length"
+from = "E1"
 [[extra]]
 part = "TAPEE"
 qty = 1

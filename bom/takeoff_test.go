@@ -51,6 +51,8 @@ func same(t *testing.T, name string, got, want []string) {
 
 const fullJob = places + `
 [device]
+rod = { existing = true, part = "ROD", place = "wall" }
+psu = { part = "PSU", place = "room", supplied_by = "client" }
 yagi = { part = "YAGI", on = "mast" }
 mast = { part = "MAST", place = "roof" }
 arrest = { part = "ARREST", place = "wall" }
@@ -58,8 +60,6 @@ amp = { part = "AMP", place = "room" }
 split = { part = "SPLIT-2", place = "room" }
 dome = { part = "DOME", place = "room", copies = { dome-2 = {}, dome-3 = {} } }
 bar = { part = "BAR", place = "wall" }
-rod = { existing = true, part = "ROD", place = "wall" }
-psu = { part = "PSU", place = "room", supplied_by = "client" }
 radio = { part = "RADIO", place = "roof", existing = true }
 spare = { existing = true, kind = "amplifier" }
 [cable]
@@ -218,7 +218,9 @@ cable.B1 = { part = "CX", length = "2 m", to = "B2.1", ends = ["NM", "NM"], way 
 cable.B2 = { part = "CX", length = "2 m", to = "dome", ends = ["NF", "NM"], way = ["roof"] }
 joint = [{ a = "whip", b = "split.in" }]
 ` + "data.E1 = { part = \"CAT\", from = \"radio.poe\", way = [\"wall\", \"room\"] }\n" +
-		"data.E2 = { part = \"CAT\", from = \"radio.lan\", to = \"inj\", existing = true }\n" + places + `
+		"data.E2 = { part = \"CAT\", from = \"radio.lan\", to = \"inj\", existing = true }\n" +
+		"data.E3 = { part = \"CAT\", from = \"radio-2.poe\", way = [\"roof\", \"wall\"] }\n" +
+		"data.E4 = { part = \"CAT\", from = \"inj-2\", way = [\"wall\", \"room\"] }\n" + places + `
 [device]
 yagi = { part = "YAGI", place = "roof" }
 yagi-2 = { part = "YAGI", place = "roof", existing = true }
@@ -227,8 +229,8 @@ yagi-4 = { part = "YAGI", place = "roof", existing = true }
 panel = { part = "PANEL", place = "roof" }
 whip = { part = "WHIP", place = "roof" }
 split = { part = "SPLIT-2", place = "roof" }
-radio = { part = "RADIO", place = "roof" }
-inj = { part = "INJ", place = "room" }
+radio = { part = "RADIO", place = "roof", copies = { radio-2 = {} } }
+inj = { part = "INJ", place = "room", copies = { inj-2 = {} } }
 arrest = { part = "ARREST", place = "wall" }
 amp = { part = "AMP", place = "room" }
 dome = { part = "DOME", place = "room" }
@@ -240,7 +242,8 @@ dome = { part = "DOME", place = "room" }
 	if got := g.OutdoorJoints(); got != 1+2+1+3+1+1 {
 		t.Errorf("%d joints outdoors, want 9", got)
 	}
-	// C1 and E1 come in, B1 goes out and B2 comes back in; E2 and X2 were there before.
+	// C1 and E1 come in, B1 goes out and B2 comes back in; E2 and X2 were there
+	// before, E3 stays outdoors up to the entry, and E4 begins there.
 	if got := g.Entries(); got != 4 {
 		t.Errorf("%d entries, want 4", got)
 	}
@@ -291,6 +294,9 @@ func TestPackages(t *testing.T) {
 		if got := bom.Packages(p, c.uses); got != c.want {
 			t.Errorf("%q, %v uses: %d packages, want %d", c.holds, c.uses, got, c.want)
 		}
+	}
+	if got := bom.Packages(shopCatalog(t).Look("AMP"), 3); got != 3 {
+		t.Errorf("of what is no consumable %d pieces serve three uses", got)
 	}
 }
 
