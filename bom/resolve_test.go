@@ -259,18 +259,22 @@ served_by = ["dome", "domme"]
 operators = ["north", "south", "nroth"]
 [[reading]]
 what = "rsrp"
+value_dbm = -90
 from = "amp.server"
 to = "amp.servr"
 [[reading]]
 what = "return-loss"
+value_db = 18
 from = "L1"
 to = "L1.2"
 [[reading]]
 what = "length"
+length = "3 m"
 from = "L1.3"
 to = "P1"
 [[reading]]
 what = "ground-ohm"
+value_ohm = 5
 from = "G1"
 to = "G2"
 [[reading]]

@@ -184,6 +184,15 @@ func (r *Reading) keys(k *source.Keys) {
 	source.Opt(k, &r.Stage, "stage", source.OneOf("survey", "as-built"), "when in the job")
 	source.Opt(k, &r.On, "on", source.Day, "when")
 	source.Opt(k, &r.By, "by", source.Text, "who")
+	if value := valueOf[r.What.V]; value != "" && !k.Has(value) {
+		k.Missing(value, "a reading of "+r.What.V+" is that figure")
+	}
+}
+
+// valueOf is the key that holds what a kind of reading is about.
+var valueOf = map[string]string{
+	"isolation": "value_db", "return-loss": "value_db", "rsrp": "value_dbm", "vswr": "value", "ground-ohm": "value_ohm",
+	"voltage": "value_v", "length": "length", "serial": "serial",
 }
 
 func (r *Reserve) keys(k *source.Keys) {
