@@ -145,6 +145,9 @@ func (p protector) block() bool {
 	return a != nil && a.Arrestor != nil && a.Arrestor.Principle.V == "shield-block"
 }
 
+// full reports an arrestor that is known to have a way for the centre conductor.
+func (p protector) full() bool { return p.dev.Part != nil && !p.block() }
+
 // protectors lists the arrestors of a line in its direction.
 func protectors(l *bom.Line) []protector {
 	var out []protector

@@ -1,6 +1,7 @@
 package rules
 
 import (
+	"slices"
 	"sort"
 	"strings"
 
@@ -37,7 +38,7 @@ var groundArrestor = &Rule{
 					said[x.On] = c.checkCrossing(r, x, guarding(all, xs, i))
 				}
 			}
-			if len(xs) == 0 && len(all) == 0 {
+			if len(xs) == 0 && !slices.ContainsFunc(all, protector.full) {
 				unclear = append(unclear, unplaced(l.From.Device), unplaced(l.To.Device))
 			}
 		}

@@ -148,12 +148,9 @@ func (run *dataRun) crossings() []dataCrossing {
 // checkData holds one run and returns the devices whose missing places leave it
 // open.
 func (c *Case) checkData(r *Report, run dataRun) []*bom.Device {
-	xs := run.crossings()
+	xs, open := run.crossings(), []*bom.Device{unplaced(run.ends[0]), unplaced(run.ends[1])}
 	if len(xs) == 0 {
-		if len(run.spds) == 0 {
-			return []*bom.Device{unplaced(run.ends[0]), unplaced(run.ends[1])}
-		}
-		return nil
+		return open
 	}
 	row := c.codeRow("data-arrestor")
 	for i, x := range xs {
@@ -166,7 +163,7 @@ func (c *Case) checkData(r *Report, run dataRun) []*bom.Device {
 	for _, d := range run.spds {
 		c.checkProtector(r, run, d)
 	}
-	return nil
+	return open
 }
 
 // guarded reports a protector between the crossings next to a crossing.

@@ -105,6 +105,18 @@ func (c *Case) checkFed(r *Report, l *bom.Line, f feeder, said map[*bom.Device]b
 		}
 		said[p.Device] = c.checkCurrent(r, l, f, p)
 	}
+	for _, d := range []*bom.Device{l.From.Device, l.To.Device} {
+		if len(met) == 0 && pathless(d) && !said[d] {
+			said[d] = true
+			r.Unknown(placeOr(d.Row.Part.At, d.At), d.On(), "%s gets %s, and its part %s has no path from line to gear; what becomes of the current is not assessed", d.ID, f, d.Part.ID).
+				Then("add the path to the part, with its loss and its frequencies").Beside(d.Part.At, "the part").Beside(f.at, "the port that feeds the line")
+		}
+	}
+}
+
+// pathless reports an arrestor whose part does not say that anything gets through.
+func pathless(d *bom.Device) bool {
+	return d != nil && d.Part != nil && d.Part.Arrestor != nil && len(d.Part.Paths) == 0
 }
 
 func (c *Case) checkCurrent(r *Report, l *bom.Line, f feeder, p *bom.Pass) bool {

@@ -18,13 +18,24 @@ var groundReversed = &Rule{
 		}
 		lines := c.leadIns()
 		said := map[*bom.Device]bool{}
+		var unclear []*bom.Device
 		for _, l := range lines {
 			for _, p := range protectors(l) {
-				if p.pass != nil && !said[p.dev] {
-					said[p.dev] = c.checkSide(r, l, p)
+				if p.pass == nil && pathless(p.dev) && !p.block() && !said[p.dev] {
+					said[p.dev] = true
+					r.Unknown(placeOr(p.dev.Row.Part.At, p.dev.At), p.dev.On(), "the part %s of %s has no path from line to gear; which of its sides is toward the antenna is not assessed", p.dev.Part.ID, p.dev.ID).
+						Then("add the path to the part, with its loss and its frequencies").onRow(c.codeRow("reversed")).Beside(p.dev.Part.At, "the part")
+				}
+				if p.pass == nil || said[p.dev] {
+					continue
+				}
+				said[p.dev] = c.checkSide(r, l, p)
+				if _, known := towardOutside(l, p); !known && !p.block() && p.dev.Part.Arrestor.Directional.Or(true) {
+					unclear = append(unclear, unplaced(l.From.Device), unplaced(l.To.Device))
 				}
 			}
 		}
+		reportUnplaced(r, unclear, c.codeRow("reversed"), "which side of an arrestor is toward the outside")
 		for _, l := range lines {
 			c.checkBetween(r, lines, l, said)
 		}
