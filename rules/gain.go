@@ -35,6 +35,7 @@ var gainProfile = &Rule{
 	Grave:   true,
 	Check: func(c *Case, r *Report) {
 		c.sayNoPart(r)
+		c.sayNoBands(r)
 		if !c.haveLimits(r) {
 			return
 		}

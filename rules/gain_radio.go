@@ -16,6 +16,7 @@ var gainRadioEIRP = &Rule{
 	Weight:  Hold,
 	Grave:   true,
 	Check: func(c *Case, r *Report) {
+		c.saySilentRadios(r)
 		for _, x := range c.Chain().Radios {
 			// Without a feed its own antenna is what it was certified with, or an
 			// amplifier feeds it.
