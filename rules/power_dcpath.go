@@ -210,15 +210,18 @@ func fedElsewhere(d *bom.Device) bool {
 	return d.Part.Router != nil && (hasPowerPort(d.Part) || takesPoE(d.Part))
 }
 
-// livesOnCoax reports an amplifier that asks for power and has no port for it but
-// its radio ports.
+// livesOnCoax reports an amplifier that has no port for its power but its radio ports.
 func livesOnCoax(d *bom.Device) bool {
-	return d.Part != nil && d.Part.Amplifier != nil && d.Part.Amplifier.Load != nil && !d.Row.Existing.V &&
-		!hasPowerPort(d.Part) && !takesPoE(d.Part)
+	return d.Part != nil && d.Part.Amplifier != nil && !d.Row.Existing.V && !hasPowerPort(d.Part) && !takesPoE(d.Part)
 }
 
 // unfed reports an amplifier that only its coax could feed, and that none does.
 func (p *pathCheck) unfed(d *bom.Device) {
+	if d.Part.Amplifier.Load == nil {
+		p.r.Unknown(deviceAt(d), d.On(), "the part %s of %s gives neither a load nor a port for power; what feeds it is not assessed", d.Part.ID, d.ID).
+			Then("add its power port, or the load that its coax has to feed").Beside(d.Part.At, "the part")
+		return
+	}
 	for _, n := range d.Nodes {
 		for _, l := range p.c.Lines().At(n) {
 			if l.Open && l.To.Device == nil {
@@ -285,7 +288,7 @@ func (c *Case) teeFor(d *bom.Device) string {
 		takes = known(l.Volts.V)
 	}
 	p := c.best(c.Firm.Catalog.All(), func(p *catalog.Part) bool {
-		if p.Kind.V != "bias-tee" || !takes.OK {
+		if p.Kind.V != "bias-tee" || !takes.OK || len(d.Nodes) == 0 {
 			return false
 		}
 		for i := range p.Ports {

@@ -125,7 +125,7 @@ func asksFor(d *bom.Device) (takes Known[[2]float64], wants bool) {
 // one: what is there already has its own, what lives on its coax alone is the matter
 // of power/dc-path.
 func wantsPower(d *bom.Device) bool {
-	if d.Row.Existing.V || d.Part == nil || loadOf(d) == nil && d.Kind() != "bias-tee" {
+	if d.Row.Existing.V || d.Part == nil || loadOf(d) == nil && d.Kind() != "bias-tee" && !d.Active() {
 		return false
 	}
 	return hasPowerPort(d.Part) || takesPoE(d.Part)
