@@ -74,6 +74,7 @@ type fall struct {
 // from its foot to its highest end.
 func (c *Case) fallOf(d *bom.Device) fall {
 	low, high, lacks := extent(d)
+	tube := high.most
 	on, more := c.perches(d)
 	lacks = append(lacks, more...)
 	for _, p := range on {
@@ -82,7 +83,11 @@ func (c *Case) fallOf(d *bom.Device) fall {
 		if p.dev.Kind() == "mount" {
 			low = min(low, p.up.least+l)
 		}
-		high = span{max(high.least, p.up.least+h.least), max(high.most, p.up.most+h.most)}
+		most := p.up.most
+		if d.Kind() == "mount" && !d.Row.Free.Set {
+			most = max(most, tube) // it may sit at the end of a tube that stands far below its fixing
+		}
+		high = span{max(high.least, p.up.least+h.least), max(high.most, most+h.most)}
 	}
 	f := fall{radius: span{high.least - low, high.most - low}, lacks: lacks}
 	if !d.Point.Set {

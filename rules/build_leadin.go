@@ -33,8 +33,8 @@ func (c *Case) checkLeadIns(r *Report, up []*bom.Device, near map[*bom.PowerLine
 		said[d.Place] = said[d.Place] || !d.Point.Set // what its fall lacks is the same
 	}
 	for _, x := range c.outdoorRuns() {
-		for _, s := range x.stops {
-			if s.place.Outdoors() && !s.point.Set && !said[s.place] {
+		for i, s := range x.stops {
+			if x.hangs(i) && !s.point.Set && !said[s.place] {
 				said[s.place] = true
 				r.Unknown(s.place.At, x.on, "%s has no point; how near %s hangs to a power line there is not assessed", s.place.ID, x.id).
 					Then("give %s its point (at)", s.place.ID).onRow(c.firstRow("lead-in-high", "fall-zone"))
@@ -113,6 +113,16 @@ func (s *run) check(r *Report, line *bom.PowerLine, row *limits.CodeRow) {
 	r.Fails(s.at, s.on, "%s hangs %s m from the line of %s kV; %s is expected", s.id, unit.Fixed(nearest, 2), plainFigure(line.KV.V), row.Figure()).
 		Under("distance_m", nearest, "limit_m", row.Length.V.Metres()).onRow(row).Beside(placeOr(line.Point.At, line.At), "the line").
 		Then("lead it down on the other side, or ask the utility")
+}
+
+// hangs reports a stop outdoors, or one that a stretch from outdoors leads to.
+func (s *run) hangs(i int) bool {
+	for j := max(0, i-1); j < min(len(s.stops), i+2); j++ {
+		if s.stops[j].place.Outdoors() {
+			return true
+		}
+	}
+	return false
 }
 
 // nearest is the least distance of the stretches outdoors from a point.
