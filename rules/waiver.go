@@ -109,6 +109,7 @@ var paperWaiver = &Rule{
 func checkWaiver(w *Settled, r *Report) {
 	name := w.Rule.V
 	switch {
+	case !w.Rule.Set: // its table has a finding
 	case !w.Stands:
 		r.Fails(w.Waiver.Rule.At, waiverOn(w), "the waiver of %s does not hold: it lacks %s", name, strings.Join(w.Lacks, " and ")).
 			Then("complete or renew it, or put the matter right")
