@@ -74,7 +74,6 @@ type fall struct {
 // from its foot to its highest end.
 func (c *Case) fallOf(d *bom.Device) fall {
 	low, high, lacks := extent(d)
-	tube := high.most
 	on, more := c.perches(d)
 	lacks = append(lacks, more...)
 	for _, p := range on {
@@ -83,11 +82,7 @@ func (c *Case) fallOf(d *bom.Device) fall {
 		if p.dev.Kind() == "mount" {
 			low = min(low, p.up.least+l)
 		}
-		most := p.up.most
-		if d.Kind() == "mount" && !d.Row.Free.Set {
-			most = max(most, tube) // it may sit at the end of a tube that stands far below its fixing
-		}
-		high = span{max(high.least, p.up.least+h.least), max(high.most, most+h.most)}
+		high = span{max(high.least, p.up.least+h.least), max(high.most, p.up.most+h.most+belowFixing(p.dev, d))}
 	}
 	f := fall{radius: span{high.least - low, high.most - low}, lacks: lacks}
 	if !d.Point.Set {
@@ -97,6 +92,21 @@ func (c *Case) fallOf(d *bom.Device) fall {
 	f.foot = d.Point.V
 	f.foot.Up += low
 	return f
+}
+
+// belowFixing is how much further from its foot than from its fixings something may
+// be, on tubes of which the free length is not given: each may end where the thing
+// sits and reach as far below its fixing as the rest of it is long.
+func belowFixing(thing, foot *bom.Device) float64 {
+	more := 0.0
+	for d := thing; d != foot && d.Stands != nil; d = d.Stands {
+		m := d.Stands
+		if mt := mountOf(m); mt != nil && tubeOf(m) == ownTube && mt.Length.Set && !m.Row.Free.Set {
+			up, _ := upOn(d)
+			more += math.Max(0, mt.Length.V.Metres()-up.most)
+		}
+	}
+	return more
 }
 
 // extent is how far a thing reaches below and above where it is fixed, in metres. A
