@@ -29,8 +29,15 @@ const tries = 300
 func (p *problem) pack(counts []int, bins []int) ([]load, outcome) {
 	bins = slices.Clone(bins)
 	slices.Sort(bins)
+	slack, pieces := p.slack(counts, bins)
+	if slack < 0 {
+		return nil, infeasible
+	}
 	rng := rand.New(rand.NewPCG(1, uint64(len(bins))))
 	for try := range tries {
+		if p.nodes -= 1 + pieces*len(bins)/16; p.nodes <= 0 && try > 1 {
+			break
+		}
 		loads := p.pass(counts, bins, try, rng)
 		if loads == nil && try%4 == 3 {
 			loads = p.snug(counts, bins, rng)
@@ -41,6 +48,18 @@ func (p *problem) pack(counts []int, bins []int) ([]load, outcome) {
 		}
 	}
 	return p.complete(counts, bins)
+}
+
+// slack is the length of the bins less that of the pieces, and how many those are.
+func (p *problem) slack(counts, bins []int) (slack int64, pieces int) {
+	for _, s := range bins {
+		slack += p.stocks[s].Length
+	}
+	for k, n := range counts {
+		slack -= int64(n) * p.kinds[k].need
+		pieces += n
+	}
+	return slack, pieces
 }
 
 // pass packs longest first, each piece on the first (even try) or fullest (odd)
@@ -137,9 +156,7 @@ type completion struct {
 
 func (p *problem) complete(counts, bins []int) ([]load, outcome) {
 	c := &completion{p: p, bins: bins, left: slices.Clone(counts), failed: map[string]bool{}, last: make([]int, len(counts))}
-	var slack int64
 	for b, s := range bins {
-		slack += p.stocks[s].Length
 		c.fills = append(c.fills, make([]int, len(counts)))
 		for k := range counts {
 			if p.kinds[k].fits[s] {
@@ -147,13 +164,11 @@ func (p *problem) complete(counts, bins []int) ([]load, outcome) {
 			}
 		}
 	}
-	for k, n := range counts {
-		slack -= int64(n) * p.kinds[k].need
-		c.pieces += n
-	}
+	slack, pieces := p.slack(counts, bins)
 	if slack < 0 {
 		return nil, infeasible
 	}
+	c.pieces = pieces
 	c.steps = min(p.each, p.nodes)
 	start := c.steps
 	done := c.bin(0, slack)

@@ -76,6 +76,12 @@ func TestProvedOptima(t *testing.T) {
 		if p.Price != o.Cost || !p.Proved || len(p.Short) > 0 {
 			t.Errorf("%s: price %d, bound %d, proved %t, short %v; the optimum is %d", o.Name, p.Price, p.Bound, p.Proved, p.Short, o.Cost)
 		}
+		task.ScrapFirst = true
+		p = task.Plan()
+		t.Logf("%s: scrap %d with %d opened", o.Name, p.Scrap, len(p.Opened))
+		if len(task.Pieces) <= exactPieces && p.Scrap != o.Scrap {
+			t.Errorf("%s: scrap %d, want %d", o.Name, p.Scrap, o.Scrap)
+		}
 	}
 }
 

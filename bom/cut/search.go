@@ -28,7 +28,7 @@ func (b purchase) bins() []int {
 	return bins
 }
 
-// shortages takes out, from the last to the first in priority, the pieces that what
+// shortages takes out, the first in priority kept where possible, the pieces that what
 // is there once cannot hold; what can be bought any number of times never runs
 // short. It is not sure where the exact search ran out of steps.
 func (p *problem) shortages() (short []int, sure bool) {
@@ -47,15 +47,23 @@ func (p *problem) shortages() (short []int, sure bool) {
 	for _, x := range all {
 		counts[x.kind]++
 	}
-	if _, how := p.pack(counts, bins); how == feasible {
+	loads, how := p.pack(counts, bins)
+	if how == feasible {
+		p.base = loads
 		return nil, true
 	}
 	clear(counts)
+	p.base = p.empty(bins)
 	sure = true
 	for _, x := range all {
 		counts[x.kind]++
-		_, how := p.pack(counts, bins)
+		if at := p.place(p.base, x.kind, true); at >= 0 {
+			p.base[at].add(x.kind, p.kinds[x.kind].need)
+			continue
+		}
+		loads, how := p.pack(counts, bins)
 		if how == feasible {
+			p.base = loads
 			continue
 		}
 		counts[x.kind]--
@@ -103,9 +111,18 @@ func (p *problem) search() (loads []load, bound int64, proved bool) {
 			continue
 		}
 		if !ok {
-			return loads, cmp.Or(max(bound, 0), lo), false
+			if bound < 0 {
+				bound = lo
+			}
+			return loads, bound, bound == best
 		}
 		for i, b := range found {
+			if p.nodes <= 0 {
+				if bound < 0 {
+					bound = b.price
+				}
+				return loads, bound, bound == best
+			}
 			got, how := p.pack(p.counts(), b.bins())
 			if how == limit && bound < 0 && b.price < best {
 				bound = b.price
@@ -116,7 +133,7 @@ func (p *problem) search() (loads []load, bound int64, proved bool) {
 			if bound < 0 {
 				bound = b.price
 			}
-			return p.finest(got, found[i:], b.price), bound, bound == b.price
+			return p.finest(got, found[i:]), bound, bound == b.price
 		}
 		lo = hi + 1
 	}
@@ -160,13 +177,13 @@ func (p *problem) greedy() []load {
 // first, and opens the preferred size or else the cheapest that holds the piece.
 func (p *problem) fill(prefer int) []load {
 	counts := p.counts()
-	tied := make([]int, len(counts))
-	for k := range counts {
-		if !p.buyable(p.kinds[k]) {
-			tied[k], counts[k] = counts[k], 0
+	loads := slices.Clone(p.base)
+	for i := range loads {
+		loads[i].items = slices.Clone(loads[i].items)
+		for _, k := range loads[i].items {
+			counts[k]--
 		}
 	}
-	loads, _ := p.pack(tied, p.once())
 	for k, n := range counts {
 		for range n {
 			at := p.place(loads, k, true)

@@ -11,13 +11,7 @@ const snugSteps = 1500
 func (p *problem) snug(counts, bins []int, rng *rand.Rand) []load {
 	left := append([]int(nil), counts...)
 	loads := p.empty(bins)
-	var slack int64
-	for b := range loads {
-		slack += loads[b].room
-	}
-	for k, n := range counts {
-		slack -= int64(n) * p.kinds[k].need
-	}
+	slack, _ := p.slack(counts, bins)
 	// A fill is good enough when it leaves some multiple of a bin's share of the slack.
 	enough := max(0, slack) / int64(len(bins)+1) * rng.Int64N(9) / 4
 	order := make([]int, len(left)) // of the kinds: longest first or mixed anew for every bin

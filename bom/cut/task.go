@@ -16,8 +16,10 @@
 //  5. Stock in order of length, price and ID; of equal pieces the earlier one
 //     comes from the earlier stock.
 //
-// Proved is about 1 and 2. Levels 3 and 4 are not searched yet: any plan of the least
-// price stands.
+// Task.ScrapFirst puts 4 before 3. Proved is about 1 and 2. Levels 3 and 4 are exact
+// up to 14 pieces, unless that takes too many steps; beyond, they are the best of a
+// fixed number of tries.
+//
 // All limits are counts and the seed is fixed: the same task gives the same plan.
 package cut
 
@@ -60,6 +62,8 @@ type Task struct {
 	Allowance int64 // millimetres each piece consumes on top, also the last on a reel
 	Usable    int64 // millimetres from which a leftover is kept
 	Nodes     int   // limit of the exact search in steps; 0: the default
+
+	ScrapFirst bool // less scrap goes before fewer opened stocks
 }
 
 // Cut is one piece and where it comes from.
@@ -106,18 +110,22 @@ type problem struct {
 	stocks []supply
 	kinds  []kind
 	usable int64
-	nodes  int // steps left of the exact search
-	each   int // steps for one purchase
+
+	scrapFirst bool
+
+	base  []load // of the pieces that nothing bought can hold
+	nodes int    // steps left of the exact search
+	each  int    // steps for one purchase
 }
 
-const defaultNodes = 3_000_000
+const defaultNodes = 10_000_000
 
 func newProblem(t Task) (*problem, []int) {
-	p := &problem{usable: t.Usable, nodes: t.Nodes}
+	p := &problem{usable: max(0, min(t.Usable, maxLength+1)), scrapFirst: t.ScrapFirst, nodes: t.Nodes}
 	if p.nodes <= 0 {
 		p.nodes = defaultNodes
 	}
-	p.each = max(1, p.nodes/8)
+	p.each = max(1, p.nodes/16)
 	for i, s := range t.Stocks {
 		if i < maxStocks && s.Length > 0 && s.Length <= maxLength && s.Price >= 0 && s.Price <= maxPrice && s.Least <= maxLeast {
 			p.stocks = append(p.stocks, supply{s, i})
