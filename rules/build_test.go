@@ -156,6 +156,7 @@ func TestRemediesOfBuilding(t *testing.T) {
 		"build-clearance/bad-approach":       "set it at least 9.4 m from the line", // 6.096 + 3.235 m
 		"build-clearance/missing":            `a [[reading]] of a length from mast with at = "power line"`,
 		"build-ground-plane/bad":             "bond a steel plate to the skin",
+		"build-ground-plane/bad-aluminium":   "or take GEN-ANT-WHIP-FME-3 (none on hand)",
 		"build-ground-plane/bad-edge":        "move it toward the middle",
 		"build-bend/bad":                     "give the bend more room",
 		"build-bend/bad-jumper":              "give the bend more room",
