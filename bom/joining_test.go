@@ -169,6 +169,8 @@ split = { part = "SPLIT-2" }
 		"a bare name through a pad":         {through(nm, "mixed", `"PAD"`), "A.2 [PAD f m] = mixed.n"},
 		"a bare name, turned behind a pad":  {through(nm, "mixed", `"PAD", "AD-S-N"`), "A.2 [PAD f m] [AD-S-N n s] = mixed.s"},
 		"a bare name, turned by its port":   {through("", "mixed", `"AD-S-N"`), "A.2 [AD-S-N n s] = mixed.s"},
+		"each turned by the one before it":  {through(nm, "split.in", `"AD-N-S", "AD-NM-SF"`), "A.2 [AD-N-S n s] [AD-NM-SF s n] = split.in"},
+		"one that is alike on both sides":   {through(nm, "mixed.n", `"BARREL"`), "A.2 [BARREL a b] = mixed.n"},
 		"none that mates either way, first": {through(nm, "split.in", `"AD-N-S"`), "A.2 [AD-N-S n s] = split.in"},
 	} {
 		g := whole(t, c.text+devices)
@@ -176,6 +178,47 @@ split = { part = "SPLIT-2" }
 		if e := g.Cable("A").Ends[1]; e.Fit == nil || e.Fit.ID != "NM" {
 			t.Errorf("%s: the end is made with %v, want NM, which meets the adapter", name, e.Fit)
 		}
+	}
+}
+
+// The end that goes through an adapter decides how it is turned, and not the other;
+// an adapter is turned anew with the jumper that it is on.
+func TestThroughByEnd(t *testing.T) {
+	g := whole(t, `
+cable.A = { part = "THIN", length = "1 m", to = "mixed", ends = ["SM", "NM-CRIMP"], through = ["AD-S-N"] }
+cable.J = { part = "J-NS", from = "radio.main", to = "radio.div", through = ["AD-S-N"] }
+device.mixed = { part = "MIXED" }
+device.radio = { part = "RADIO" }
+`)
+	hasMates(t, "by its end", g, "A.2 [AD-S-N n s] = mixed.s", "J.1 = radio.main", "J.2 [AD-S-N n s] = radio.div")
+}
+
+// A guess may be a cable as well as a device, whichever of many.
+func TestGuessesAmongAll(t *testing.T) {
+	text := "cable.C = { part = \"CX\", length = \"1 m\", from = \"attic-feed-9.1\", to = \"hall-dome-9\", ends = [\"NM\", \"NM\"] }\n"
+	for i := range 5 {
+		text += cx(fmt.Sprint("attic-feed-", i), "", "", nn) + fmt.Sprintf("device.hall-dome-%d = { part = \"DOME\" }\n", i)
+	}
+	hasHoles(t, "guesses", lay(t, text),
+		`bad reference, "attic-feed-9.1", cable.C: the plan has no device or cable "attic-feed-9"; did you mean attic-feed-0?`,
+		`bad reference, "hall-dome-9", cable.C: the plan has no device or cable "hall-dome-9"; did you mean hall-dome-0?`)
+}
+
+// After a hundred guesses no more are made; what is wrong is said all the same.
+func TestGuessesEnd(t *testing.T) {
+	var b strings.Builder
+	b.WriteString("device.dome = { part = \"DOME\" }\n")
+	for i := range 110 {
+		fmt.Fprintf(&b, "cable.C%d = { part = \"J-NN\", to = \"domme\" }\n", i)
+	}
+	g, guessed := lay(t, b.String()), 0
+	for _, h := range g.Holes {
+		if strings.HasPrefix(h.Do, "did you mean dome") {
+			guessed++
+		}
+	}
+	if len(g.Holes) != 110 || guessed != 100 {
+		t.Errorf("%d holes, %d with a guess; want 110 and 100", len(g.Holes), guessed)
 	}
 }
 

@@ -106,6 +106,16 @@ kind = "adapter"
 port.s = { connector = "SMA male", impedance_ohm = 50 }
 port.n = { connector = "N female", impedance_ohm = 50 }
 path = [{ from = "s", to = "n", loss_db = 0.1 }]
+[part.AD-NM-SF]
+kind = "adapter"
+port.n = { connector = "N male", impedance_ohm = 50 }
+port.s = { connector = "SMA female", impedance_ohm = 50 }
+path = [{ from = "s", to = "n", loss_db = 0.1 }]
+[part.BARREL]
+kind = "adapter"
+port.a = { connector = "N female", impedance_ohm = 50 }
+port.b = { connector = "N female", impedance_ohm = 50 }
+path = [{ from = "a", to = "b", loss_db = 0.1 }]
 [part.TEE]
 kind = "adapter"
 port.a = { connector = "N male", impedance_ohm = 50 }
