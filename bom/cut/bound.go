@@ -86,17 +86,23 @@ func (p *problem) outnumbered(c class, copies []int) bool {
 	return false
 }
 
+// dearest is above every price of a plan, and twice it does not overflow.
+const dearest = 1 << 61
+
 // atLeast is the price of so many millimetres at the price of a stock, rounded up.
 func atLeast(length int64, s supply) int64 {
 	if length <= 0 {
 		return 0
 	}
 	hi, lo := bits.Mul64(uint64(length), uint64(s.Price))
-	q, rem := bits.Div64(hi, lo, uint64(s.Length)) // hi < Length: see below
+	if hi >= uint64(s.Length) {
+		return dearest
+	}
+	q, rem := bits.Div64(hi, lo, uint64(s.Length))
 	if rem > 0 {
 		q++
 	}
-	return int64(q)
+	return int64(min(q, dearest))
 }
 
 // purchase is how many copies of each stock there are, and what they cost.

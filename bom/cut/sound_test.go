@@ -114,6 +114,21 @@ func TestHostile(t *testing.T) {
 	}
 }
 
+// The price per millimetre of a stump times long pieces does not fit 64 bits.
+func TestDearStump(t *testing.T) {
+	task := Task{Stocks: []Stock{{Length: 1, Price: maxPrice, Many: true}, {Length: maxLength, Price: maxPrice, Many: true}}}
+	for range 20 {
+		task.Pieces = append(task.Pieces, Piece{Length: maxLength})
+	}
+	if got := atLeast(20*maxLength, supply{Stock: task.Stocks[0]}); got != dearest {
+		t.Errorf("got %d, want %d", got, int64(dearest))
+	}
+	p := task.Plan()
+	if err := task.Check(p); err != nil || p.Price != 20*maxPrice || !p.Proved {
+		t.Errorf("price %d, proved %t, %v", p.Price, p.Proved, err)
+	}
+}
+
 // The checker refuses a plan with any one thing changed.
 func TestCheckRefuses(t *testing.T) {
 	task := readTask(t, "job-15")
