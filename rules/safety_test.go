@@ -91,7 +91,14 @@ func isInput(what string) bool {
 }
 
 func inputsOf(path, text string) []removal {
-	return slices.DeleteFunc(removals(path, text), func(r removal) bool { return !isInput(r.what) })
+	n := 0
+	return slices.DeleteFunc(removals(path, text), func(r removal) bool {
+		if !isInput(r.what) {
+			return true
+		}
+		n++
+		return n%every != 0
+	})
 }
 
 // said is what findings say: what stands against one rule, by what it stands on, and
@@ -203,11 +210,11 @@ func TestNothingMissingSilencesAFinding(t *testing.T) {
 		}
 	})
 	for key := range mayClear {
-		if _, is := used.Load(key); !is && !testing.Short() {
+		if _, is := used.Load(key); !is && every == 1 && !testing.Short() {
 			t.Errorf("%s silences nothing any more; take it off the list", key)
 		}
 	}
-	if tried.Load() < 10000 {
+	if tried.Load() < 10000/every {
 		t.Errorf("only %d inputs were taken away", tried.Load())
 	}
 	t.Logf("%d inputs were taken away", tried.Load())
@@ -249,7 +256,12 @@ func TestTornPlansAreStillLookedAt(t *testing.T) {
 		if !strings.HasPrefix(path, "plans/") {
 			continue
 		}
-		cuts := removals(path, text)
+		var cuts []removal
+		for i, cut := range removals(path, text) {
+			if i%every == 0 {
+				cuts = append(cuts, cut)
+			}
+		}
 		for i, list := range inspectedWith(t, tree, path, cuts) {
 			for _, f := range list {
 				words := f.Says + " " + f.Do
