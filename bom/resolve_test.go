@@ -279,6 +279,7 @@ from = "G1"
 to = "G2"
 [[reading]]
 what = "length"
+length = "3 m"
 from = "E1"
 [[extra]]
 part = "TAPEE"
