@@ -5,6 +5,7 @@ import (
 	"testing"
 
 	"driploop/catalog"
+	"driploop/catalog/source"
 	"driploop/catalog/unit"
 )
 
@@ -23,7 +24,7 @@ func TestLookBand(t *testing.T) {
 }
 
 func TestIsBandNamesTheNearest(t *testing.T) {
-	for name, want := range map[string]string{"B12": "", "n77": "", "b12": "B12 is", "B-12": "B12 is", "band twelve": "is no band of 3GPP that is known here"} {
+	for name, want := range map[string]string{"B12": "", "n77": "", "b12": "B12 is", "B-12": "B12 is", "n-12": "n12 is", "band twelve": "is no band of 3GPP that is known here"} {
 		err := catalog.IsBand(name)
 		if (err == nil) != (want == "") || err != nil && !strings.Contains(err.Error(), want) {
 			t.Errorf("%q: %v, want %q", name, err, want)
@@ -85,5 +86,29 @@ func TestChannelNumbersAtTheEdges(t *testing.T) {
 		if f, ok := catalog.NRARFCN(n); ok {
 			t.Errorf("NR channel %d is at %v", n, f)
 		}
+	}
+}
+
+// A row comes from the table of its kind, where it does not say otherwise.
+func TestSourcesOfBands(t *testing.T) {
+	for name, want := range map[string]string{"B12": "36.104", "n77": "38.104"} {
+		if b, _ := catalog.LookBand(name); !strings.Contains(b.Source, want) {
+			t.Errorf("%s comes from %q, want %s", name, b.Source, want)
+		}
+	}
+}
+
+func TestKindName(t *testing.T) {
+	read := func(kind string) []source.Problem {
+		d, _ := source.Parse(&source.File{Path: "x.toml", Src: []byte("kind = \"" + kind + "\"\n")})
+		return source.Read(d, func(k *source.Keys) { source.Opt(k, new(source.Val[string]), "kind", catalog.KindName, "a kind") })
+	}
+	for _, kind := range catalog.KindNames() {
+		if problems := read(kind); len(problems) > 0 {
+			t.Errorf("%s: %s", kind, problems[0].Says)
+		}
+	}
+	if problems := read("rod"); len(problems) != 1 || !strings.Contains(problems[0].Says, `"rod" is no kind of part`) {
+		t.Errorf("a rod is a kind of part: %v", problems)
 	}
 }

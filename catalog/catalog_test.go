@@ -17,7 +17,7 @@ func TestOwnPartsComeFirst(t *testing.T) {
 	}
 	id := generic[0].ID
 	own, problems := parts(t, "[part."+id+"]\nkind = \"electrode\"\n[part.MINE]\nkind = \"electrode\"\n")
-	again, more := parts(t, "[part.MINE]\nkind = \"mount\"\n")
+	again, more := parts(t, "[part.MINE]\nkind = \"mount\"\n[part."+generic[3].ID+"]\nkind = \"mount\"\n[part."+generic[2].ID+"]\nkind = \"mount\"\n")
 	if len(problems)+len(more) > 0 {
 		t.Fatal(problems, more)
 	}
@@ -37,10 +37,10 @@ func TestOwnPartsComeFirst(t *testing.T) {
 	if len(c.Twice) != 1 || c.Twice[0].Kept != own[1] || c.Twice[0].Other != again[0] {
 		t.Errorf("twice are %+v", c.Twice)
 	}
-	if got := c.Overridden(); !slices.Equal(got, []string{id}) {
+	if got := c.Overridden(); !slices.Equal(got, sorted(id, generic[2].ID, generic[3].ID)) {
 		t.Errorf("overridden are %v", got)
 	}
-	if got := c.Own(); !slices.Equal(ids(got), sorted(id, "MINE")) {
+	if got := c.Own(); !slices.Equal(ids(got), sorted(id, "MINE", generic[2].ID, generic[3].ID)) {
 		t.Errorf("own are %v", ids(got))
 	}
 	all := ids(c.All())

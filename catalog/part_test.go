@@ -7,6 +7,7 @@ import (
 	"testing"
 
 	"driploop/catalog"
+	"driploop/catalog/source"
 )
 
 // says holds that a catalog file has exactly these problems, each "line: …".
@@ -192,6 +193,22 @@ ports = ["b"]
 		r := a.RangeAt(c.port, unitMHz(c.mhz))
 		if (r == nil) != (c.gain == 0) || r != nil && r.Gain.V != c.gain {
 			t.Errorf("port %s at %v MHz has the range %+v, want a gain of %v", c.port, c.mhz, r, c.gain)
+		}
+	}
+}
+
+// Every table of a part knows where it stands.
+func TestPlacesInParts(t *testing.T) {
+	p := one(t, "[part.X]\nkind = \"router\"\nload = { w = 1 }\n"+portsExample+rangesExample)
+	amp := one(t, "[part.X]\nkind = \"amplifier\"\n[[part.X.band]]\nband = \"B5\"\nuplink = { gain_db = 60 }\ndownlink = { gain_db = 61 }\n[[part.X.kit]]\nside = \"donor\"\n")
+	split := one(t, "[part.X]\nkind = \"splitter\"\n"+portsExample+pathsExample)
+	for at, want := range map[source.Place]string{
+		p.At: "X", p.Ports[1].At: "p2", p.Antenna.Ranges[0].At: "[[part.X.range]]", split.Paths[1].At: "[[part.X.path]]",
+		amp.Amplifier.Bands[0].At: "[[part.X.band]]", amp.Amplifier.Bands[0].Uplink.At: "uplink", amp.Amplifier.Bands[0].Downlink.At: "downlink",
+		amp.Amplifier.Kits[0].At: "[[part.X.kit]]",
+	} {
+		if at.Text() != want {
+			t.Errorf("a place shows %q, want %q", at.Text(), want)
 		}
 	}
 }

@@ -274,7 +274,7 @@ AMP = { name = "6" }
 
 func TestValidID(t *testing.T) {
 	for id, want := range map[string]bool{
-		"a": true, "7": true, "CX-10": true, "a_b-": true, strings.Repeat("x", 64): true,
+		"a": true, "7": true, "CX-10": true, "a_b-": true, "zZ": true, "Z9z0": true, "AaZz09": true, strings.Repeat("x", 64): true,
 		"": false, "-a": false, "_a": false, "a.b": false, "a b": false, "ä": false, strings.Repeat("x", 65): false, "a/b": false, "a\n": false,
 	} {
 		if ValidID(id) != want {
@@ -344,4 +344,34 @@ func TestRecordingReportsNothing(t *testing.T) {
 	if len(r.Keys) != 1 {
 		t.Errorf("recorded %+v", r.Keys)
 	}
+}
+
+// street has records in records, so that the keys of one are read while those of
+// another wait.
+type street struct{ masts []mast }
+
+func (s *street) keys(k *Keys) { Rows(k, &s.masts, "mast", (*mast).keys, "masts") }
+
+func TestKeysOfTablesInTables(t *testing.T) {
+	const one = `[[mast]]
+height = 1
+room = [{ name = "a" }, { name = "b", area = 1 }]
+named.x = { name = "c" }
+top = { name = "d" }
+share = { ab = 1 }
+`
+	var s street
+	wants(t, read(t, one+one+one, s.keys), nil)
+	if len(s.masts) != 3 || len(s.masts[2].Rooms) != 2 || s.masts[2].Top.Name.V != "d" {
+		t.Errorf("read %+v", s.masts)
+	}
+	wants(t, read(t, one+"nmae = 1\n"+one, (&street{}).keys), []string{`7:1 nmae: nothing reads the key "nmae" here; did you mean named?`})
+}
+
+// Of two slips of the pen one is taken for the key that is missing.
+func TestTwoSlipsOfOneKey(t *testing.T) {
+	wants(t, read(t, "heigth = 1\nhieght = 2\n", (&mast{}).keys), []string{
+		`1:1 heigth: nothing reads the key "heigth" here, and height is needed; did you mean height?`,
+		`2:1 hieght: nothing reads the key "hieght" here; did you mean height?`,
+	})
 }

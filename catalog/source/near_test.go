@@ -25,6 +25,8 @@ func TestNearest(t *testing.T) {
 		// The allowed distance grows with the length.
 		{"ab", "ax xy", "ax"},
 		{"ab", "xy", ""},
+		{"abc", "axy", "axy"}, // two of three, five or four
+		{"abcde", "abcxy", "abcxy"},
 		{"abcd", "abxy", "abxy"},
 		{"abcd", "axyz", ""},
 		{"abcdef", "abcdxy", "abcdxy"},
