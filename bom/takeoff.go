@@ -29,6 +29,9 @@ type Piece struct {
 	At     source.Place
 }
 
+// ExtraLine stands for the line of a piece that the plan asks for as an extra.
+const ExtraLine = "extra"
+
 // Takeoff is what a plan takes, by part.
 type Takeoff struct {
 	Rows []*Quantity
@@ -206,7 +209,7 @@ func (c *counter) extras() {
 			c.gap("job", "the extra "+p.ID+" is "+measured(p)+", its qty is not", x.At)
 		case p.CutStock():
 			q := c.row(p, x.At)
-			q.Pieces = append(q.Pieces, Piece{Line: "extra", Length: x.Qty.V.Length, Bare: x.Qty.V.Length, At: x.At})
+			q.Pieces = append(q.Pieces, Piece{Line: ExtraLine, Length: x.Qty.V.Length, Bare: x.Qty.V.Length, At: x.At})
 			q.Length += x.Qty.V.Length
 			q.Bare += x.Qty.V.Length
 		default:

@@ -170,11 +170,22 @@ func (s *Stock) IssuesOf(job string) []Issue {
 	return s.Issues[from:to]
 }
 
+// PiecesFor lists the pieces cut for a job by line, in the order of cutting.
+func (s *Stock) PiecesFor(job string) []Piece {
+	by := func(p Piece, job string) int { return strings.Compare(p.Job, job) }
+	from, _ := slices.BinarySearchFunc(s.Pieces, job, by)
+	to := from
+	for to < len(s.Pieces) && s.Pieces[to].Job == job {
+		to++
+	}
+	return s.Pieces[from:to]
+}
+
 // PiecesOf lists the pieces cut for a line of a job in the order of cutting.
 func (s *Stock) PiecesOf(job, cable string) []Piece {
 	var out []Piece
-	for _, p := range s.Pieces {
-		if p.Job == job && p.Cable == cable {
+	for _, p := range s.PiecesFor(job) {
+		if p.Cable == cable {
 			out = append(out, p)
 		}
 	}
