@@ -47,8 +47,8 @@ func (a *Antenna) RangesOf(port string) []*Range {
 
 // RangeAt is the range of a port that holds a frequency, or nil.
 func (a *Antenna) RangeAt(port string, f unit.MHz) *Range {
-	for _, r := range a.RangesOf(port) {
-		if r.MHz.Set && r.MHz.V.Contains(f) {
+	for i := range a.Ranges {
+		if r := &a.Ranges[i]; r.Serves(port) && r.MHz.Set && r.MHz.V.Contains(f) {
 			return r
 		}
 	}

@@ -95,8 +95,9 @@ func reaches(l *bom.Line, b catalog.Band) bool {
 
 // worksIn reports whether an antenna works at a port in some part of a band.
 func worksIn(a *catalog.Antenna, port string, b catalog.Band) bool {
-	for _, rng := range a.RangesOf(port) {
-		if !rng.MHz.V.Overlap(b.Uplink).Empty() || !rng.MHz.V.Overlap(b.Downlink).Empty() {
+	for i := range a.Ranges {
+		rng := &a.Ranges[i]
+		if rng.Serves(port) && (!rng.MHz.V.Overlap(b.Uplink).Empty() || !rng.MHz.V.Overlap(b.Downlink).Empty()) {
 			return true
 		}
 	}

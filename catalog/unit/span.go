@@ -1,6 +1,9 @@
 package unit
 
-import "strconv"
+import (
+	"slices"
+	"strconv"
+)
 
 // MHz is a frequency in megahertz.
 type MHz float64
@@ -31,7 +34,7 @@ func (s Span) Overlap(t Span) Span { return Span{max(s.Lo, t.Lo), min(s.Hi, t.Hi
 
 // Minus is what of s none of the given spans covers, from low to high.
 func (s Span) Minus(covers ...Span) []Span {
-	if s.Empty() {
+	if s.Empty() || slices.ContainsFunc(covers, func(c Span) bool { return c.Covers(s) }) {
 		return nil
 	}
 	left := []Span{s}
