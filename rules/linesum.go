@@ -23,10 +23,14 @@ type LineSum struct {
 
 // added is a line as it was added up at one frequency.
 type added struct {
-	of *recipe
-	at unit.MHz
-	by [kindsOfTerm]rf.Loss // by kind of addend
+	of      *recipe
+	at      unit.MHz
+	all     rf.Loss
+	missing []Lack
+	by      [kindsOfTerm]rf.Loss // by kind of addend
 }
+
+func (a *added) sum() LineSum { return LineSum{Loss: a.all, Missing: a.missing, added: a} }
 
 // Known reports whether every addend is known.
 func (s LineSum) Known() bool { return len(s.Missing) == 0 }
@@ -42,7 +46,7 @@ type Term struct {
 type TermKind int
 
 const (
-	OfCable TermKind = iota + 1
+	OfCable TermKind = iota
 	OfPair
 	OfPass  // through a passive part
 	OfSteps // impedance steps, all together
@@ -105,7 +109,9 @@ type recipe struct {
 	c       *Case
 	addends []addend
 	lacks   []Lack // at every frequency
-	sums    map[unit.MHz]LineSum
+
+	mhz  []unit.MHz // at which it has been added up
+	sums []added    // at each of them
 
 	ohms  []float64 // impedances in the order of the line
 	vswrs []float64
@@ -114,7 +120,8 @@ type recipe struct {
 
 // recipeOf writes down what a line is made of.
 func (c *Case) recipeOf(l *bom.Line) *recipe {
-	r := &recipe{c: c, sums: map[unit.MHz]LineSum{}, whole: map[*bom.Cable]bool{}}
+	most := 6 * len(c.bands) // by bandPoints; what else is asked for makes room by itself
+	r := &recipe{c: c, mhz: make([]unit.MHz, 0, most), sums: make([]added, 0, most), whole: map[*bom.Cable]bool{}}
 	for _, s := range l.Steps {
 		if s.Cable != nil && s.Cable.Part != nil && s.Cable.Part.Jumper != nil && s.Cable.Part.Jumper.Loss.Set {
 			r.whole[s.Cable] = true
@@ -138,21 +145,22 @@ func (c *Case) recipeOf(l *bom.Line) *recipe {
 
 // sum adds the line up at a frequency, once for each.
 func (r *recipe) sum(f unit.MHz) LineSum {
-	if s, ok := r.sums[f]; ok {
-		return s
+	if i := slices.Index(r.mhz, f); i >= 0 {
+		return r.sums[i].sum()
 	}
-	s := LineSum{Missing: slices.Clip(r.lacks), added: &added{of: r, at: f}}
-	for _, a := range r.addends {
+	s := added{of: r, at: f, missing: slices.Clip(r.lacks)}
+	for i := range r.addends {
+		a := &r.addends[i]
 		loss, ok := a.loss(f)
 		if !ok {
-			s.Missing = append(s.Missing, a.lack(f))
+			s.missing = append(s.missing, a.lack(f))
 			continue
 		}
 		s.by[a.kind] = s.by[a.kind].Plus(loss)
-		s.Loss = s.Loss.Plus(loss)
+		s.all = s.all.Plus(loss)
 	}
-	r.sums[f] = s
-	return s
+	r.mhz, r.sums = append(r.mhz, f), append(r.sums, s)
+	return r.sums[len(r.sums)-1].sum()
 }
 
 func (r *recipe) add(a addend) { r.addends = append(r.addends, a) }
