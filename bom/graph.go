@@ -130,6 +130,8 @@ type Mate struct {
 	At       source.Place // where the plan says so
 	Joint    *JointRow    // for ports that mate without a cable
 	Way      []Section    // of a joint that crosses places
+
+	contacts []Contact // once what meets is settled
 }
 
 // Other is the node at the far side of n.
@@ -160,8 +162,11 @@ type Half struct {
 
 // Contacts lists the pairs that meet between A and B, in order.
 func (m *Mate) Contacts() []Contact {
+	if m.contacts != nil {
+		return m.contacts
+	}
 	left := m.A.half()
-	var out []Contact
+	out := make([]Contact, 0, 1+len(m.Adapters))
 	for _, a := range m.Adapters {
 		out = append(out, Contact{left, Half{Name: a.Part.ID, Face: a.In.Connector, Ohm: a.In.Impedance}})
 		left = Half{Name: a.Part.ID, Face: a.Out.Connector, Ohm: a.Out.Impedance}

@@ -28,6 +28,9 @@ func Resolve(p *Plan, c *catalog.Catalog) *Graph {
 	g.mate()
 	g.turnJumpers()
 	g.dressEnds()
+	for _, m := range g.Mates {
+		m.contacts = m.Contacts()
+	}
 	g.addSupply()
 	g.addBonds()
 	g.checkRefs()

@@ -111,8 +111,9 @@ func (t *tracer) contact(s bom.Step) {
 
 // contactIndex is the number of a contact within its mate.
 func contactIndex(s bom.Step) int {
-	for i, x := range s.Mate.Contacts() {
-		if x == *s.Contact {
+	contacts := s.Mate.Contacts()
+	for i := range contacts {
+		if &contacts[i] == s.Contact {
 			return i
 		}
 	}

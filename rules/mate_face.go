@@ -75,7 +75,7 @@ func bothHalves(f catalog.Face) string {
 
 // touching is one pair of faces that meet in the plan, with what comes of it.
 type touching struct {
-	bom.Contact
+	*bom.Contact
 	mate  *bom.Mate
 	index int // among the contacts of the mate
 	meets catalog.Meeting
@@ -92,7 +92,9 @@ func (c *Case) touchings() []touching {
 func (c *Case) findTouchings() []touching {
 	out := []touching{}
 	for _, m := range c.Graph.Mates {
-		for i, x := range m.Contacts() {
+		contacts := m.Contacts()
+		for i := range contacts {
+			x := &contacts[i]
 			if x.A.Face.Set && x.B.Face.Set {
 				out = append(out, touching{x, m, i, catalog.Meet(x.A.Face.V, x.B.Face.V, x.A.Ohm.V, x.B.Ohm.V)})
 			}
