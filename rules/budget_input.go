@@ -56,7 +56,7 @@ func (c *Case) PhoneTerms(ch StageChain, f unit.MHz) (unit.DBm, []ReachTerm) {
 		return out, nil
 	}
 	return out, []ReachTerm{
-		{fmt.Sprintf("free space at %s m and 3 dB of polarization", plainFigure(metres)), -path},
-		{"server antenna", ch.Start.Minus(out) + path},
+		{What: fmt.Sprintf("free space at %s m and 3 dB of polarization", plainFigure(metres)), DB: -path},
+		{What: "server antenna", DB: ch.Start.Minus(out) + path},
 	}
 }

@@ -33,6 +33,17 @@ type AreaReach struct {
 type ReachTerm struct {
 	What string
 	DB   unit.DB
+
+	path *indoors // in place of What where the addend is the way indoors
+}
+
+// Words names the addend. The way indoors is put into words here, because most
+// areas need none.
+func (t ReachTerm) Words() string {
+	if t.path != nil {
+		return t.path.words()
+	}
+	return t.What
 }
 
 // UplinkReach is the phone's signal at the base station.

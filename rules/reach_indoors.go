@@ -14,8 +14,10 @@ import (
 // indoors is the path from a server antenna to a phone.
 type indoors struct {
 	loss, doubt unit.DB
-	how         []string // what it is made of, with its documents
 	lacks       []Lack
+
+	area *bom.Area
+	at   unit.MHz
 }
 
 func noPath(at source.Place, what string) indoors { return indoors{lacks: []Lack{{what, at}}} }
@@ -36,48 +38,63 @@ func (c *Case) indoors(a *bom.Area, f unit.MHz) indoors {
 	if !ok {
 		return noPath(a.Distance.At, "a distance and floors that ITU-R P.1238 covers, for the area "+a.Name.V)
 	}
+	return indoors{loss: v, area: a, at: f}
+}
+
+// words names what a path is made of, with its documents, in one line.
+func (p *indoors) words() string {
+	a := p.area
+	if a.Walls.Set {
+		out := fmt.Sprintf("%s of free space (ITU-R P.525)", a.Distance.V)
+		for i := range a.Walls.V {
+			w := &a.Walls.V[i].V
+			l, _ := wallLoss(w, p.at)
+			out += fmt.Sprintf(", %s %s dB (%s)", w.Name.V, unit.Fixed(float64(l.Loss), 2), l.Basis)
+		}
+		return out
+	}
 	how := fmt.Sprintf("%s indoors (ITU-R P.1238-9, %s", a.Distance.V, a.Environment.Or("office"))
 	if a.Floors.V > 0 {
 		how += ", " + count(a.Floors.V, "floor", "floors")
 	}
-	return indoors{loss: v, how: []string{how + ")"}}
+	return how + ")"
 }
 
 // throughWalls is free space and the walls; how good their losses are adds up as the
 // root of the sum of squares.
 func throughWalls(a *bom.Area, f unit.MHz) indoors {
-	p := indoors{how: []string{fmt.Sprintf("%s of free space (ITU-R P.525)", a.Distance.V)}}
-	var walls []unit.DB
-	var doubts []rf.Tolerance
-	for _, w := range a.Walls.V {
+	walls, doubts := make([]unit.DB, 0, len(a.Walls.V)), make([]rf.Tolerance, 0, len(a.Walls.V))
+	for i := range a.Walls.V {
+		w := &a.Walls.V[i]
 		l, lack := wallLoss(&w.V, f)
 		if lack != "" {
 			return noPath(w.At, lack)
 		}
 		walls, doubts = append(walls, l.Loss), append(doubts, rf.Either(l.Tolerance))
-		p.how = append(p.how, fmt.Sprintf("%s %s dB (%s)", w.V.Name.V, unit.Fixed(float64(l.Loss), 2), l.Basis))
 	}
 	all, sure := rf.Together(doubts...)
 	loss, ok := rf.PathThrough(f, a.Distance.V.Metres(), walls...)
 	if !ok || !sure {
 		return noPath(a.Distance.At, "a distance in the far field for the area "+a.Name.V)
 	}
-	p.loss, p.doubt = loss, all.Above
-	return p
+	return indoors{loss: loss, doubt: all.Above, area: a, at: f}
 }
 
 // slab parts the name of a wall from its thickness in millimetres: "plasterboard
 // 12.5 mm", "concrete 8 in". A wall without one has 0.
 func slab(name string) (material string, mm float64) {
-	for suffix, per := range map[string]float64{"mm": 1, "cm": 10, "in": 25.4} {
-		rest, ok := strings.CutSuffix(name, suffix)
+	for _, u := range [3]struct {
+		suffix string
+		per    float64
+	}{{"mm", 1}, {"cm", 10}, {"in", 25.4}} {
+		rest, ok := strings.CutSuffix(name, u.suffix)
 		rest = strings.TrimRight(rest, " ")
 		i := strings.LastIndexByte(rest, ' ')
 		if !ok || i < 0 {
 			continue
 		}
 		if v, err := strconv.ParseFloat(rest[i+1:], 64); err == nil && v > 0 {
-			return strings.TrimRight(rest[:i], " "), v * per
+			return strings.TrimRight(rest[:i], " "), v * u.per
 		}
 	}
 	return name, 0

@@ -114,7 +114,7 @@ func termWords(terms []ReachTerm) string {
 		if v < 0 {
 			sign, v = " − ", -v
 		}
-		out += sign + unit.Fixed(v, 2) + " " + t.What
+		out += sign + unit.Fixed(v, 2) + " " + t.Words()
 	}
 	return out
 }

@@ -2,7 +2,6 @@ package rules
 
 import (
 	"slices"
-	"strings"
 
 	"driploop/bom"
 	"driploop/catalog/unit"
@@ -27,10 +26,10 @@ func (c *Case) downward(r *AreaReach) Known[unit.DBm] {
 	}
 	r.Feed, r.Doubt = in.V.feed, path.doubt
 	r.Terms = []ReachTerm{
-		{"donor antenna toward the site", in.V.signal.Gain}, {"feed", -in.V.loss},
-		{"gain that runs (" + string(d.Runs.V.By) + ")", d.Runs.V.Gain},
-		{"leg to " + leg.V.node.Device.ID, -leg.V.line.Loss.Greatest}, {"server antenna", leg.V.gain},
-		{path.words(), -path.loss},
+		{What: "donor antenna toward the site", DB: in.V.signal.Gain}, {What: "feed", DB: -in.V.loss},
+		{What: "gain that runs (" + string(d.Runs.V.By) + ")", DB: d.Runs.V.Gain},
+		{What: "leg to " + leg.V.node.Device.ID, DB: -leg.V.line.Loss.Greatest}, {What: "server antenna", DB: leg.V.gain},
+		{path: &path, DB: -path.loss},
 	}
 	level := in.V.signal.RSRP
 	for _, t := range r.Terms {
@@ -121,7 +120,7 @@ func (c *Case) upward(r *AreaReach) Known[UplinkReach] {
 		return unknown[UplinkReach](x.Amp.At, "an uplink that adds up")
 	}
 	needed := unit.DBmOf(h.SensitivityDBm.Or(sensitivityRB)).Plus(unit.DB(h.FadeMarginDB.Or(fadeMarginDB)))
-	return known(UplinkReach{level, limited, needed, doubt.Above, uplinkTerms(up, limited, path, string(d.Runs.V.By))})
+	return known(UplinkReach{level, limited, needed, doubt.Above, uplinkTerms(up, limited, &path, string(d.Runs.V.By))})
 }
 
 // leaving is the outdoor half of the way back: the donor antenna that brings most of
@@ -146,19 +145,16 @@ func (c *Case) leaving(r *AreaReach, f unit.MHz) Known[rf.Uplink] {
 
 // uplinkTerms are the addends behind the phone's 23 dBm, with what the rated output
 // takes off.
-func uplinkTerms(u rf.Uplink, limited bool, path indoors, by string) []ReachTerm {
-	terms := []ReachTerm{
-		{"phone's antenna", u.Hand}, {"body", -u.Body}, {path.words(), -u.Path}, {"server antenna", u.Server}, {"leg", -u.Leg}, {"gain that runs (" + by + ")", u.Gain},
-	}
+func uplinkTerms(u rf.Uplink, limited bool, path *indoors, by string) []ReachTerm {
+	terms := append(make([]ReachTerm, 0, 10),
+		ReachTerm{What: "phone's antenna", DB: u.Hand}, ReachTerm{What: "body", DB: -u.Body}, ReachTerm{path: path, DB: -u.Path},
+		ReachTerm{What: "server antenna", DB: u.Server}, ReachTerm{What: "leg", DB: -u.Leg}, ReachTerm{What: "gain that runs (" + by + ")", DB: u.Gain})
 	if limited {
 		out := u.Phone
 		for _, t := range terms {
 			out = out.Plus(t.DB)
 		}
-		terms = append(terms, ReachTerm{"held at the rated output", u.MaxOut.Minus(out)})
+		terms = append(terms, ReachTerm{What: "held at the rated output", DB: u.MaxOut.Minus(out)})
 	}
-	return append(terms, ReachTerm{"feed", -u.Feed}, ReachTerm{"donor antenna", u.Donor}, ReachTerm{"path to the base station", -u.ToBase})
+	return append(terms, ReachTerm{What: "feed", DB: -u.Feed}, ReachTerm{What: "donor antenna", DB: u.Donor}, ReachTerm{What: "path to the base station", DB: -u.ToBase})
 }
-
-// words names the addends of a path in one line.
-func (p indoors) words() string { return strings.Join(p.how, ", ") }

@@ -156,10 +156,10 @@ func (s sheet) area(r *rules.AreaReach) {
 		return what
 	}
 	for _, t := range r.Terms {
-		s["counter / downlink / "+short(t.What)] = float64(t.DB)
+		s["counter / downlink / "+short(t.Words())] = float64(t.DB)
 	}
 	for _, t := range r.Up.V.Terms {
-		s["counter / uplink / "+short(t.What)] = float64(t.DB)
+		s["counter / uplink / "+short(t.Words())] = float64(t.DB)
 	}
 	s["counter / downlink / level"], s["counter / uplink / level"] = r.RSRP.V.Value(), r.Up.V.Level.Value()
 	s["counter / uplink / needed"] = r.Up.V.Needed.Value()

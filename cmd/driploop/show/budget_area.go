@@ -95,7 +95,7 @@ func sumWords(terms []rules.ReachTerm) string {
 		if v < 0 {
 			sign, v = "−", -v
 		}
-		fmt.Fprintf(&b, " %s %s dB %s", sign, unit.Fixed(v, 2), t.What)
+		fmt.Fprintf(&b, " %s %s dB %s", sign, unit.Fixed(v, 2), t.Words())
 	}
 	return b.String()
 }

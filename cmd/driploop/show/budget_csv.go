@@ -175,10 +175,10 @@ func (s *figureSheet) area(b *Budget, r *rules.AreaReach) {
 	f.tolerance = float64(r.Up.V.Doubt)
 	if b.Terms {
 		for _, t := range r.Terms {
-			s.add("term", of+" downlink", t.What, "dB", figure(float64(t.DB), true))
+			s.add("term", of+" downlink", t.Words(), "dB", figure(float64(t.DB), true))
 		}
 		for _, t := range r.Up.V.Terms {
-			s.add("term", of+" uplink", t.What, "dB", figure(float64(t.DB), true))
+			s.add("term", of+" uplink", t.Words(), "dB", figure(float64(t.DB), true))
 		}
 	}
 }

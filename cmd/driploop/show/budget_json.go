@@ -264,7 +264,7 @@ func areaOf(r *rules.AreaReach) areaJSON {
 func termsOf(terms []rules.ReachTerm) []reachTermJSON {
 	out := []reachTermJSON{}
 	for _, t := range terms {
-		out = append(out, reachTermJSON{t.What, ratioOf(t.DB)})
+		out = append(out, reachTermJSON{t.Words(), ratioOf(t.DB)})
 	}
 	return out
 }
