@@ -152,6 +152,9 @@ func (f *Finding) AcrossBands(band string) *Finding {
 
 // merged joins the findings that differ only in their band.
 func (r *Report) merged() []*Finding {
+	if len(r.findings) == 0 {
+		return nil
+	}
 	type key struct {
 		at       source.Place
 		on, says string

@@ -139,7 +139,7 @@ func dedupe(lacks []Lack) []Lack {
 
 // runs lists the gain that runs in each band, for the top of a report.
 func (c *Case) runs() []Runs {
-	var out []Runs
+	out := make([]Runs, 0, len(c.Chain().Bands))
 	for _, x := range c.Chain().Bands {
 		out = append(out, Runs{Device: x.Amp.ID, Band: x.Band.Name, Up: runsAt(x.Up.Runs), Down: runsAt(x.Down.Runs)})
 	}
@@ -153,6 +153,5 @@ func runsAt(k Known[rf.Running]) RunsAt {
 	case !k.V.On:
 		return RunsAt{By: string(k.V.By)}
 	}
-	v := float64(k.V.Gain)
-	return RunsAt{Gain: &v, By: string(k.V.By)}
+	return RunsAt{On: true, Gain: float64(k.V.Gain), By: string(k.V.By)}
 }

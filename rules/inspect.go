@@ -44,10 +44,11 @@ type Runs struct {
 }
 
 // RunsAt is the gain that runs and what binds it. Without either it is not
-// assessed; without a gain, what binds it leaves none and the band is off.
+// assessed; what is not On has no gain, and what binds it leaves the band off.
 type RunsAt struct {
-	Gain *float64 // dB
-	By   string   // set, output, protection, isolation
+	On   bool
+	Gain float64 // dB
+	By   string  // set, output, protection, isolation
 }
 
 // Counts counts findings by weight; what a waiver covers is counted apart.
@@ -207,6 +208,9 @@ func letGo(f *source.File, findings []*Finding) {
 		}
 		x.Waived = waivers[x.Waived]
 	}
+	if len(places) == 0 {
+		return
+	}
 	offsets := make([]int32, len(places))
 	for i, p := range places {
 		offsets[i] = p.From
@@ -237,10 +241,11 @@ func (f *Firm) Case(e source.Entry) (c *Case, broken bool) {
 // findings in their order. filesOnly leaves all but the file rules out.
 func (c *Case) run(filesOnly bool) []*Finding {
 	var out []*Finding
+	var r Report
 	check := func(rule *Rule) {
-		r := &Report{rule: rule}
-		rule.Check(c, r)
-		out = append(out, c.Firm.weigh(r, c.Stage())...)
+		r = Report{rule: rule}
+		rule.Check(c, &r)
+		out = append(out, c.Firm.weigh(&r, c.Stage())...)
 	}
 	for _, rule := range Rules {
 		if rule.Check != nil && rule != paperWaiver && (!filesOnly || rule.Area() == "file") {

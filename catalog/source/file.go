@@ -1,6 +1,9 @@
 package source
 
 import (
+	"bytes"
+	"cmp"
+	"slices"
 	"sort"
 	"unicode/utf8"
 )
@@ -10,21 +13,34 @@ type File struct {
 	Path string // slash-separated, relative to the root of the tree
 	Src  []byte
 
-	lines   []int32            // offset of the first byte of each line, filled on first use
-	settled map[int32][2]int32 // line and column by offset, of a file whose text was let go
+	lines   []int32   // offset of the first byte of each line, filled on first use
+	settled []settled // in order, of a file whose text was let go
 }
+
+// settled is line and column of a place whose text was let go.
+type settled struct{ at, line, col int32 }
 
 // Settled is the file without its text: of the places at the given offsets it
 // still knows line and column, and nothing else. Places that outlive the work on
 // their file are moved to it, so that a thousand findings do not keep a thousand
 // files in memory.
 func (f *File) Settled(offsets []int32) *File {
-	out := &File{Path: f.Path, settled: make(map[int32][2]int32, len(offsets))}
-	for _, o := range offsets {
+	offsets = slices.Compact(slices.Sorted(slices.Values(offsets)))
+	out := &File{Path: f.Path, settled: make([]settled, len(offsets))}
+	for i, o := range offsets {
 		p := Place{f, o, o}
-		out.settled[o] = [2]int32{int32(p.Line()), int32(p.Col())}
+		out.settled[i] = settled{o, int32(p.Line()), int32(p.Col())}
 	}
 	return out
+}
+
+// known is line and column of a place whose text was let go, 0 for any other.
+func (f *File) known(at int32) settled {
+	i, ok := slices.BinarySearchFunc(f.settled, at, func(s settled, at int32) int { return cmp.Compare(s.at, at) })
+	if !ok {
+		return settled{}
+	}
+	return f.settled[i]
 }
 
 // Place is a stretch of bytes in a file. The zero Place is nowhere.
@@ -58,7 +74,7 @@ func (p Place) Line() int {
 		return 0
 	}
 	if p.File.settled != nil {
-		return int(p.File.settled[p.From][0])
+		return int(p.File.known(p.From).line)
 	}
 	return p.File.line(p.From)
 }
@@ -70,7 +86,7 @@ func (p Place) Col() int {
 		return 0
 	}
 	if p.File.settled != nil {
-		return int(p.File.settled[p.From][1])
+		return int(p.File.known(p.From).col)
 	}
 	start := p.File.lineStart(p.Line())
 	return utf8.RuneCount(p.File.Src[start:p.From]) + 1
@@ -118,7 +134,7 @@ func (f *File) index() {
 	if f.lines != nil {
 		return
 	}
-	f.lines = append(f.lines, 0)
+	f.lines = append(make([]int32, 0, 1+bytes.Count(f.Src, []byte("\n"))), 0)
 	for i, b := range f.Src {
 		if b == '\n' {
 			f.lines = append(f.lines, int32(i+1))

@@ -167,7 +167,8 @@ func figure(v float64, ok bool) *float64 {
 	if !ok {
 		return nil
 	}
-	return rounded(&v)
+	r := rules.Round(v)
+	return &r
 }
 
 func ratioOf(d unit.DB) float64  { return rules.Round(float64(d)) }

@@ -176,10 +176,10 @@ func gainOr(r rules.RunsAt) string {
 	switch {
 	case r.By == "":
 		return "?"
-	case r.Gain == nil:
+	case !r.On:
 		return "off"
 	}
-	return unit.Fixed(*r.Gain, 1)
+	return unit.Fixed(r.Gain, 1)
 }
 
 // findings writes one block for each matter, worst first.

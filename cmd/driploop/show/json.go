@@ -178,17 +178,9 @@ func findingsJSON(all []*rules.Finding) []findingJSON {
 func runsJSON(runs []rules.Runs) []runJSON {
 	out := []runJSON{}
 	for _, r := range runs {
-		out = append(out, runJSON{r.Device, r.Band, rounded(r.Up.Gain), r.Up.By, rounded(r.Down.Gain), r.Down.By})
+		out = append(out, runJSON{r.Device, r.Band, figure(r.Up.Gain, r.Up.On), r.Up.By, figure(r.Down.Gain, r.Down.On), r.Down.By})
 	}
 	return out
-}
-
-func rounded(v *float64) *float64 {
-	if v == nil {
-		return nil
-	}
-	r := rules.Round(*v)
-	return &r
 }
 
 func orEmpty(s []string) []string {
