@@ -101,7 +101,7 @@ func (c *Case) antennasInUse() []*antennaInUse {
 
 // bandsAt lists the planned bands that are meant for an antenna's port.
 func (w *bandWays) bandsAt(n *bom.Node) []catalog.Band {
-	var out []catalog.Band
+	out := make([]catalog.Band, 0, len(w.c.bands))
 	for _, b := range w.c.Bands() {
 		for _, l := range w.at[n] {
 			if (l.Kind == bom.Feed || l.Kind == bom.Leg) && w.meant(l, b) {

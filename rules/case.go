@@ -27,6 +27,7 @@ type Case struct {
 	touch []touching
 	emit  []*emitter
 	refs  []reference
+	work  []workplace
 
 	routers map[*bom.Device]*bom.Device // by the device at the other end of a line
 	power   *supplies

@@ -51,7 +51,7 @@ const localCode = "The figures are a planning aid. The adopted code, its local a
 // profile and code have to say beside their figures, and what the rules with
 // findings add. A waiver takes no caution away.
 func (c *Case) cautions(findings []*Finding) []string {
-	var out []string
+	out := make([]string, 0, len(workCautions)+1)
 	add := func(text string) {
 		if text != "" && !slices.Contains(out, text) {
 			out = append(out, text)
@@ -131,8 +131,16 @@ func (c *Case) anyWorkplace(is func(workplace) bool) bool {
 	return slices.ContainsFunc(c.workplaces(), is)
 }
 
+// workplaces lists where the work of the plan goes on, found once.
 func (c *Case) workplaces() []workplace {
-	var out []workplace
+	if c.work == nil {
+		c.work = c.findWorkplaces()
+	}
+	return c.work
+}
+
+func (c *Case) findWorkplaces() []workplace {
+	out := []workplace{}
 	at := func(d *bom.Device) {
 		if d != nil && d.Place != nil {
 			out = append(out, workplace{d.Place, d.Point})

@@ -57,6 +57,8 @@ type Antenna struct {
 	Worst Radiation
 	Mid   Radiation
 	Lacks []Lack
+
+	at []Radiation // at the low edge, the middle and the high edge
 }
 
 // Radiation is the rated output behind a line and an antenna at one frequency.
@@ -150,6 +152,7 @@ func (c *Case) bandChain(d *bom.Device, b catalog.Band, row *catalog.AmpBand, ow
 func (c *Case) direction(x *BandChain, name string, span unit.Span, spec *catalog.Gain, lines []*bom.Line) Direction {
 	dir := Direction{Name: name, Span: span, Spec: spec}
 	dir.Set = setGain(x, spec)
+	dir.Antennas = make([]Antenna, 0, len(lines))
 	for _, l := range lines {
 		a := c.radiates(l, span, spec, x.Row.At)
 		if !dir.rated() {
@@ -206,12 +209,14 @@ func (c *Case) radiates(l *bom.Line, span unit.Span, spec *catalog.Gain, rowAt s
 		a.Lacks = append(a.Lacks, Lack{"max_out_dbm of the amplifier", rowAt})
 		return a
 	}
+	a.at = make([]Radiation, 0, 3)
 	for i, f := range points(span) {
 		r, lacks := c.radiation(l, node, unit.DBmOf(spec.MaxOut.V), f)
 		if len(lacks) > 0 {
 			a.Lacks = lacks
 			return a
 		}
+		a.at = append(a.at, r)
 		if i == 0 || a.Worst.EIRP.Most.Below(r.EIRP.Most) {
 			a.Worst = r
 		}

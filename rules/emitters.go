@@ -33,7 +33,7 @@ func (c *Case) findEmitters() []*emitter {
 	for _, x := range c.Chain().Bands {
 		for _, d := range x.directions() {
 			for i := range d.Antennas {
-				all.add(c, x.Band, d.Span, &d.Antennas[i])
+				all.add(x.Band, d.Span, &d.Antennas[i])
 			}
 		}
 	}
@@ -41,7 +41,7 @@ func (c *Case) findEmitters() []*emitter {
 		if len(x.Feeds) == 0 && x.Own {
 			all.addOwn(x)
 		} else {
-			all.addRadio(c, x)
+			all.addRadio(x)
 		}
 	}
 	return all.list
@@ -63,7 +63,7 @@ func (all *emitters) of(d *bom.Device) *emitter {
 
 // add adds what an antenna radiates in a band. Where it does not work in the band,
 // band/antenna says so.
-func (all *emitters) add(c *Case, band catalog.Band, span unit.Span, a *Antenna) {
+func (all *emitters) add(band catalog.Band, span unit.Span, a *Antenna) {
 	if !reaches(a.Line, band) || span.Empty() {
 		return
 	}
@@ -72,13 +72,7 @@ func (all *emitters) add(c *Case, band catalog.Band, span unit.Span, a *Antenna)
 		e.lacks = append(e.lacks, a.Lacks...)
 		return
 	}
-	var at []Radiation
-	for _, f := range points(span) {
-		r, lacks := c.radiation(a.Line, a.Node, a.Worst.Out, f)
-		e.lacks = append(e.lacks, lacks...)
-		at = append(at, r)
-	}
-	e.parts = append(e.parts, emission{band.Name, at})
+	e.parts = append(e.parts, emission{band.Name, a.at})
 }
 
 // addOwn adds what a router radiates from its own antenna.
@@ -92,7 +86,7 @@ func (all *emitters) addOwn(x *RadioChain) {
 
 // addRadio adds what a router radiates in its band. Its power is the total over its
 // ports, so of several ports of one antenna the strongest stands for all.
-func (all *emitters) addRadio(c *Case, x *RadioChain) {
+func (all *emitters) addRadio(x *RadioChain) {
 	strongest := map[*bom.Device]*Antenna{}
 	for i := range x.Antennas {
 		a := &x.Antennas[i]
@@ -102,7 +96,7 @@ func (all *emitters) addRadio(c *Case, x *RadioChain) {
 	}
 	for i := range x.Antennas {
 		if a := &x.Antennas[i]; len(a.Lacks) > 0 || strongest[a.Node.Device] == a {
-			all.add(c, x.Band, x.Band.Uplink, a)
+			all.add(x.Band, x.Band.Uplink, a)
 		}
 	}
 }

@@ -100,20 +100,21 @@ func (c *Case) eachDirection(name string, visit func(*BandChain, *Direction)) {
 // and mobility. Where they are not, gain/mobility says so, and figures made for
 // something else would only say it again in every band.
 func (c *Case) fits(d *bom.Device) bool {
-	return c.Profile != nil && misfit(c.Profile, d.Part.Amplifier) == nil
+	return c.Profile != nil && misfit(c.Profile, d.Part.Amplifier) == (trait{})
 }
 
 // trait is what an amplifier and a profile both state.
 type trait struct{ word, profile, amp string }
 
-// misfit is the first trait in which the two contradict each other, or nil.
-func misfit(p *limits.Profile, a *catalog.Amplifier) *trait {
-	for _, t := range []trait{{"class", p.Class.V, a.Class.V}, {"mobility", p.Mobility.V, a.Mobility.V}} {
+// misfit is the first trait in which the two contradict each other; none where they
+// do not.
+func misfit(p *limits.Profile, a *catalog.Amplifier) trait {
+	for _, t := range [2]trait{{"class", p.Class.V, a.Class.V}, {"mobility", p.Mobility.V, a.Mobility.V}} {
 		if t.profile != "" && t.amp != "" && t.profile != t.amp {
-			return &t
+			return t
 		}
 	}
-	return nil
+	return trait{}
 }
 
 // haveLimits reports whether there is a profile with figures to hold gains

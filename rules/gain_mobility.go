@@ -47,7 +47,7 @@ func againstProfile(c *Case, r *Report, d *bom.Device) {
 	if p == nil {
 		return // gain/profile says so
 	}
-	if t := misfit(p, amp); t != nil {
+	if t := misfit(p, amp); t != (trait{}) {
 		r.Fails(at, d.On(), "%s is %s by its %s, profile %s is for %s; gain and power are not held against figures that are not made for it", d.ID, t.amp, t.word, p.ID, t.profile).
 			Then("name the profile that fits the amplifier, or take an amplifier that fits the profile").Beside(c.Plan.Job.Profile.At, "the profile")
 		return

@@ -43,7 +43,7 @@ func (c *Case) bandsOver(x *bom.Cable) []catalog.Band {
 	if len(lines) == 0 {
 		return c.bands
 	}
-	var out []catalog.Band
+	out := make([]catalog.Band, 0, len(c.bands))
 	for _, b := range c.bands {
 		if slices.ContainsFunc(lines, func(l *bom.Line) bool { return carries(l, b) }) {
 			out = append(out, b)
