@@ -68,6 +68,9 @@ const fewKeys = 12
 // add puts a new key into a table. A Doc that is read no longer changes, so that
 // many may read it at once.
 func (n *Node) add(k *KeyNode) {
+	if n.Keys == nil {
+		n.Keys = make([]*KeyNode, 0, 4)
+	}
 	n.Keys = append(n.Keys, k)
 	if n.byName == nil && len(n.Keys) > fewKeys {
 		n.byName = make(map[string]*KeyNode, 2*len(n.Keys))
