@@ -208,16 +208,25 @@ func letGo(f *source.File, findings []*Finding) {
 		}
 		x.Waived = waivers[x.Waived]
 	}
-	if len(places) == 0 {
-		return
+	moveOff(f, places)
+}
+
+// moveOff moves those of the places that lie in the file off its text.
+func moveOff(f *source.File, places []*source.Place) {
+	offsets := make([]int32, 0, len(places))
+	for _, p := range places {
+		if p.File == f {
+			offsets = append(offsets, p.From)
+		}
 	}
-	offsets := make([]int32, len(places))
-	for i, p := range places {
-		offsets[i] = p.From
+	if len(offsets) == 0 {
+		return
 	}
 	settled := f.Settled(offsets)
 	for _, p := range places {
-		p.File = settled
+		if p.File == f {
+			p.File = settled
+		}
 	}
 }
 

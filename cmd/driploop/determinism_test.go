@@ -15,6 +15,8 @@ func TestSameBytes(t *testing.T) {
 		"inspect": {{"--color", "always"}},
 		"budget":  {{"heron-clinic", "--terms"}},
 		"takeoff": {{}},
+		"pick":    {{"quay-lane"}},
+		"stock":   {{}},
 		"basis":   {{}, {"us-fixed-wideband"}},
 		"parts":   {{"AMP-W-65"}},
 	}, "--root", "../../testdata/saltmarsh", "--today", "2026-12-01")

@@ -72,6 +72,8 @@ func TestHostileTexts(t *testing.T) {
 		"inspect": {{}, {"lane"}, {"--quiet"}},
 		"budget":  {{"lane"}, {"lane", "--terms"}, {"faults"}},
 		"takeoff": {{}},
+		"pick":    {{"lane"}},
+		"stock":   {{}, {"lane"}},
 		"basis":   {{}, {"own"}, {"bad"}, {"loss/leg"}, {"loss/cable"}, {"loss"}},
 		"parts":   {{}, {"CX-10"}, {"AMP-W-65"}, {"NC-10-NM"}, {"TAPE-SA"}, {"JMP-10-NN-1"}},
 	}, "--root", hostile)
@@ -110,6 +112,8 @@ func TestHostileFileNames(t *testing.T) {
 		"inspect": {{}},
 		"budget":  {{"::error::x"}, {filepath.Join(dir, "plans/a\nb.toml")}},
 		"takeoff": {{}},
+		"pick":    {{"=1+1"}, {"::error::x"}},
+		"stock":   {{}},
 		"basis":   {{"own"}},
 		"parts":   {{"F"}},
 	}, "--root", dir)
@@ -190,6 +194,8 @@ func TestHostileValues(t *testing.T) {
 			"inspect": {{}},
 			"budget":  {{"quay-lane", "--terms"}, {"heron-clinic"}},
 			"takeoff": {{}},
+			"pick":    {{"quay-lane"}},
+			"stock":   {{}},
 			"basis":   {{}},
 			"parts":   {{}, {"CX-10"}},
 		}, "--root", dir)

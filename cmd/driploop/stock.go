@@ -1,0 +1,82 @@
+package main
+
+import (
+	"context"
+
+	"github.com/spf13/cobra"
+
+	"driploop/bom"
+	"driploop/cmd/driploop/show"
+	"driploop/rules"
+)
+
+func (c *Command) stock() *cobra.Command {
+	return &cobra.Command{
+		Use:   "stock [PLAN…]",
+		Short: "what is on hand, on its way, claimed and free",
+		Long: `Adds up the stock sheets and orders as of today and shares them out over all open
+jobs: for each part and shelf what lies there, what is on its way, what is kept for
+jobs and what is free, and what each job is short of and who holds it. With plans,
+only the parts that they claim are shown.`,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			form, err := c.form("text", "json", "csv")
+			if err != nil {
+				return err
+			}
+			page, err := c.page()
+			if err != nil {
+				return err
+			}
+			firm, done, err := c.workspace(cmd.Context())
+			if err != nil {
+				return err
+			}
+			defer done()
+			plans, _, err := c.plans(firm, args, cmd.ArgsLenAtDash())
+			if err != nil {
+				return err
+			}
+			a, broken, err := c.allocate(cmd.Context(), firm)
+			if err != nil {
+				return err
+			}
+			s := &show.Stock{Allocation: a, Look: firm.Catalog.Look, At: firm.Tree.Name(), Today: firm.Today.String(), Feet: firm.Workspace.Lengths.V == "ft", Broken: broken}
+			if plans != nil {
+				s.Jobs = []string{}
+			}
+			for _, e := range plans {
+				s.Jobs = append(s.Jobs, bom.JobOf(e.Path))
+			}
+			b, err := stockAs(s, form, page)
+			if err != nil {
+				return failure{err}
+			}
+			return c.emit(b)
+		},
+	}
+}
+
+func stockAs(s *show.Stock, form string, page show.Page) ([]byte, error) {
+	switch form {
+	case "json":
+		return s.JSON()
+	case "csv":
+		return s.CSV()
+	}
+	return s.Text(page)
+}
+
+// allocate shares the stock out over all plans of the workspace. Plans that cannot
+// be read whole claim nothing and are named; the status tells of them.
+func (c *Command) allocate(ctx context.Context, firm *rules.Firm) (*bom.Allocation, []string, error) {
+	d, err := firm.Demands(ctx)
+	if err != nil {
+		return nil, nil, failure{err}
+	}
+	var broken []string
+	for _, e := range d.Broken {
+		broken = append(broken, e.Path)
+		c.held = true
+	}
+	return firm.Allocate(d), broken, nil
+}
