@@ -75,7 +75,7 @@ func (b *book) gather(sheets []*Sheet) {
 		if s.Head.Void.Set {
 			continue
 		}
-		if h := &s.Head; h.Complete.V && h.Where.Set && h.On.Set && b.past(h.At, h.On) {
+		if h := &s.Head; h.Complete.V && h.Where.Set && h.On.Set && b.past(h.At, h.On, "", "") {
 			b.complete = append(b.complete, s)
 		}
 		for i := range s.Counts {
@@ -93,10 +93,11 @@ func (b *book) gather(sheets []*Sheet) {
 	}
 }
 
-// past reports whether a row has happened by today, and notes one that has not.
-func (b *book) past(at source.Place, on source.Val[Moment]) bool {
+// past reports whether a row, about a part or a tag, has happened by today, and
+// notes one that has not.
+func (b *book) past(at source.Place, on source.Val[Moment], part, tag string) bool {
 	if on.V.Day.After(b.today) {
-		b.note(Note{Kind: NoteFuture, At: at, On: on.V})
+		b.note(Note{Kind: NoteFuture, At: at, Part: part, Tag: tag, On: on.V})
 		return false
 	}
 	return true
@@ -105,7 +106,7 @@ func (b *book) past(at source.Place, on source.Val[Moment]) bool {
 func (b *book) note(n Note) { b.stock.Notes = append(b.stock.Notes, n) }
 
 func (b *book) count(c *Count) {
-	if !c.On.Set || !c.Part.Set || !c.Where.Set || !c.Qty.Set || b.byLength(c.Part.V) || !b.past(c.At, c.On) {
+	if !c.On.Set || !c.Part.Set || !c.Where.Set || !c.Qty.Set || b.byLength(c.Part.V) || !b.past(c.At, c.On, c.Part.V, "") {
 		return
 	}
 	key, when := binKey{c.Part.V, c.Where.V}, stampOf(c.On.V, true)
@@ -120,7 +121,7 @@ func (b *book) move(m *Move) {
 		return
 	}
 	from, known := b.from(m)
-	if !known || !m.On.Set || !m.Part.Set || !m.To.Set || !m.Qty.Set || b.byLength(m.Part.V) || !b.past(m.At, m.On) {
+	if !known || !m.On.Set || !m.Part.Set || !m.To.Set || !m.Qty.Set || b.byLength(m.Part.V) || !b.past(m.At, m.On, m.Part.V, "") {
 		return
 	}
 	to, qty, when := end(m.To.V, m.Job.V), int64(m.Qty.V), stampOf(m.On.V, false)
@@ -255,6 +256,11 @@ func (b *book) finish() {
 	slices.SortFunc(s.Issues, func(x, y Issue) int {
 		return cmp.Or(strings.Compare(x.Job, y.Job), strings.Compare(x.Part, y.Part))
 	})
+	for i := range s.Notes {
+		if n := &s.Notes[i]; n.Part == "" && b.tags[n.Tag] != nil {
+			n.Part = b.tags[n.Tag].part
+		}
+	}
 	slices.SortStableFunc(s.Notes, Note.order)
 }
 

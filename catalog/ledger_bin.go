@@ -98,6 +98,9 @@ func (r *binReplay) counted(counts, before []binEvent) {
 		r.notes = append(r.notes, note)
 	}
 	r.bin.Qty, r.bin.Counted, r.bin.At, r.known = Quantity{Each: low.qty}, low.on, low.at, true
+	if r.bin.Began.IsZero() {
+		r.bin.Began, r.bin.BeganOn = low.at, low.on
+	}
 	r.sameDay(low, before)
 }
 
@@ -133,22 +136,24 @@ func (r *binReplay) moved(moves []binEvent) {
 	earlier := r.taken
 	for _, m := range moves {
 		if m.qty >= 0 {
-			in += m.qty
+			if in += m.qty; r.bin.Began.IsZero() {
+				r.bin.Began, r.bin.BeganOn = m.at, m.on
+			}
 			continue
 		}
 		out -= m.qty
 		r.taken = append(r.taken, m.at)
 		last = m.at
 	}
+	have, baseless := r.bin.Qty.Each+in, !r.known && in == 0
 	r.known = true
-	have := r.bin.Qty.Each + in
 	if out <= have {
 		r.bin.Qty.Each = have - out
 		return
 	}
 	also := append([]source.Place{r.bin.At}, earlier...)
 	r.notes = append(r.notes, Note{Kind: NoteBelow, At: last, Also: placesOf(last, append(also, r.taken...)...), Part: r.bin.Part, Where: r.bin.Where,
-		Book: Quantity{Each: have}, Read: Quantity{Each: out}, On: moves[0].on})
+		Book: Quantity{Each: have}, Read: Quantity{Each: out}, Baseless: baseless, On: moves[0].on})
 	r.bin.Qty.Each = 0
 	r.known = !r.bin.At.IsZero() // never counted: what it began with is anybody's guess
 }

@@ -40,6 +40,7 @@ type Note struct {
 	What, Name        string   // of NoteUnknown: part, shelf, order or tag, and the name that leads nowhere; of NoteClash one of the Clash words
 	Book, Read        Quantity // what the book says, and what was read, taken or arrived
 	Bag               int      // of NoteJump: the count is the book divided by this size of bag
+	Baseless          bool     // of NoteBelow: nothing was ever counted or put there, so that Book is no figure
 	On                Moment
 }
 

@@ -169,7 +169,9 @@ func (b *book) keepOpen(o *Order, lines []*Open) {
 		return
 	}
 	if o.Sent.V.After(b.today) {
-		b.note(Note{Kind: NoteFuture, At: o.Sent.At, Order: o.ID, On: Moment{Day: o.Sent.V}})
+		for _, l := range lines {
+			b.note(Note{Kind: NoteFuture, At: o.Sent.At, Also: []source.Place{l.Line.At}, Part: l.Part, Order: o.ID, On: Moment{Day: o.Sent.V}})
+		}
 		return
 	}
 	for _, l := range lines {
@@ -187,20 +189,17 @@ func (b *book) keepOpen(o *Order, lines []*Open) {
 
 // doubtOrder looks up what an order that is not yet here names.
 func (b *book) doubtOrder(o *Order, lines []*Open) {
-	d, open := b.doubt(0, ""), false
+	d := b.doubt(0, "")
 	for _, l := range lines {
 		if l.Complete {
 			continue
 		}
-		open = true
 		part := l.Line.Part
 		if !part.Set {
 			part = source.Val[string]{V: l.Part, At: l.Line.At, Set: true}
 		}
 		d.note.Part = l.Part
 		d.part(part)
-	}
-	if d.note.Part = ""; open {
 		d.shelf(o.To)
 	}
 }

@@ -29,6 +29,8 @@ type Bin struct {
 	Qty         Quantity
 	Counted     Moment       // of the newest count; zero where it was never counted
 	At          source.Place // of the newest count
+	Began       source.Place // of the first row that put something there, or counted it
+	BeganOn     Moment
 }
 
 // Pickable reports whether a crew may take from the bin.

@@ -65,7 +65,7 @@ func (b *book) tag(id string) *tagLog {
 }
 
 func (b *book) reel(r *Reel) {
-	if !r.On.Set || !r.Tag.Set || !r.Part.Set || !r.Where.Set || !r.Left.Set || !b.past(r.At, r.On) {
+	if !r.On.Set || !r.Tag.Set || !r.Part.Set || !r.Where.Set || !r.Left.Set || !b.past(r.At, r.On, r.Part.V, r.Tag.V) {
 		return
 	}
 	if p := b.look(r.Part.V); p != nil && !p.CutStock() {
@@ -85,7 +85,7 @@ func (b *book) reel(r *Reel) {
 
 func (b *book) tagMove(m *Move) {
 	from, known := b.from(m)
-	if !known || m.Arrival() || !m.On.Set || !m.To.Set || !b.past(m.At, m.On) {
+	if !known || m.Arrival() || !m.On.Set || !m.To.Set || !b.past(m.At, m.On, "", m.Tag.V) {
 		return
 	}
 	when := stampOf(m.On.V, false)
@@ -94,7 +94,7 @@ func (b *book) tagMove(m *Move) {
 }
 
 func (b *book) cut(c *Cut) {
-	if !c.On.Set || !c.Tag.Set || !c.Length.Set || !b.past(c.At, c.On) {
+	if !c.On.Set || !c.Tag.Set || !c.Length.Set || !b.past(c.At, c.On, "", c.Tag.V) {
 		return
 	}
 	when := stampOf(c.On.V, false)

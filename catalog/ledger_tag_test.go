@@ -645,7 +645,12 @@ open PO-31 PS-12 2
 order = { vendor = "tern", to = "shop" }
 line = [{ part = "NC-10-NM", pack = 25, packs = 2, due = 2026-11-01 }]
 `, want: ""},
-		{name: "one sent after today is no supply yet", today: "2026-10-31", files: order, want: "note future PO-31:1 PO-31\n"},
+		{name: "one sent after today is no supply yet", today: "2026-10-31", files: order, want: `
+note future PO-31:1+PO-31:5 AMP-W PO-31
+note future PO-31:1+PO-31:3 NC-10-NM PO-31
+note future PO-31:1+PO-31:4 NC-10-NM PO-31
+note future PO-31:1+PO-31:5 PS-12 PO-31
+`},
 		{name: "a reel closes the line whose pack it is", files: `
 -- orders/PO-33.toml --
 order = { vendor = "tern", sent = 2026-11-01, to = "shop" }
@@ -693,7 +698,7 @@ order = { vendor = "tern", sent = 2026-11-01, to = "shpo" }
 line = [{ part = "NOPE", packs = 1 }]
 `, want: `
 open PO-34 NOPE 1
-note unknown PO-34:1 shelf shpo
+note unknown PO-34:1 NOPE shelf shpo
 note unknown PO-34:2 NOPE part NOPE
 `},
 	})

@@ -322,7 +322,7 @@ sheet = { on = 2026-12-02, job = "x" }
 move = [{ part = "NC-10-NM", from = "shop", to = "job", qty = 3 }]
 `, want: `
 bin NC-10-NM shop 30
-note future x-1:2
+note future x-1:2 NC-10-NM
 `},
 		{name: "today in the past replays the ledger", today: "2026-11-20", files: `
 -- counts/a.toml --
@@ -333,7 +333,7 @@ sheet = { on = 2026-11-21, where = "shop" }
 count = [{ part = "NC-10-NM", qty = 3 }]
 `, want: `
 bin NC-10-NM shop 30
-note future b:2
+note future b:2 NC-10-NM
 `},
 	})
 }

@@ -31,6 +31,7 @@ type Finding struct {
 	bands    []string // of a finding that several bands may share
 	lighter  Weight   // weighs no more than this
 	override *Weight  // of the workspace
+	row      *Finding // of a finding on a plan that stands on a stock file as well: that one
 	worse    int      // +1: greater figures are worse; −1: smaller ones; 0: no figure to accept
 }
 

@@ -26,6 +26,7 @@ type Firm struct {
 	PlanFiles []source.Entry
 	Skipped   []source.Entry // files that a pattern names and that are not read
 
+	noShelf bool
 	weights map[string]*Override
 	fits    sync.Map // *catalog.Part to its fitted curve
 }
@@ -39,7 +40,8 @@ type FileProblem struct {
 
 // Options says how a workspace is read.
 type Options struct {
-	Today unit.Date
+	Today   unit.Date
+	NoShelf bool // inspections leave the rules of scope firm out
 }
 
 // ErrNoWorkspace is returned where a tree has no driploop.toml.
@@ -52,7 +54,7 @@ func Load(t source.Tree, o Options) (*Firm, error) {
 	if err != nil {
 		return nil, err
 	}
-	f := &Firm{Tree: t, Today: o.Today, Offers: &catalog.Offers{}, weights: map[string]*Override{}}
+	f := &Firm{Tree: t, Today: o.Today, noShelf: o.NoShelf, Offers: &catalog.Offers{}, weights: map[string]*Override{}}
 	if err := f.readWorkspace(entries); err != nil {
 		return nil, err
 	}

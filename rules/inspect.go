@@ -94,11 +94,12 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 	}
 	r := &Result{At: f.Tree.Name(), Today: f.Today.String(), Overrides: f.Overrides()}
 	r.Plans = make([]*PlanResult, len(plans))
+	kept := make([]shelfPlan, len(plans))
 	g, ctx := errgroup.WithContext(ctx)
 	g.SetLimit(sideBySide())
 	for i, e := range plans {
 		g.Go(func() error {
-			r.Plans[i] = f.inspectPlan(e, !whole)
+			r.Plans[i], kept[i] = f.inspectPlan(e, !whole)
 			return ctx.Err()
 		})
 	}
@@ -106,6 +107,7 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 		return nil, err
 	}
 	r.Workspace = f.inspectFiles()
+	f.inspectShelf(r, kept)
 	if !whole {
 		r.keepTouched(changed)
 	}
@@ -116,6 +118,9 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 		r.Counts.count(w)
 	}
 	for _, p := range r.Plans {
+		for _, x := range p.Findings {
+			p.count(x)
+		}
 		r.Counts.add(p.Counts)
 	}
 	return r, nil
@@ -124,19 +129,23 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 // keepTouched drops the findings on the workspace's own files that stand neither on
 // the plans at hand nor in the changed files, and says how many.
 func (r *Result) keepTouched(changed []string) {
-	used, holes := map[string]bool{}, false
+	used, holes, stands := map[string]bool{}, false, map[*Finding]bool{}
 	for _, p := range r.Plans {
 		for _, id := range p.Parts {
 			used[id] = true
 		}
 		for _, f := range p.Findings {
 			holes = holes || f.Rule.Name == "part/unknown"
+			stands[f.row] = true
 		}
 	}
 	var kept []*Finding
 	for _, f := range r.Workspace {
-		fileWide := f.Part == "" && (holes || f.At.Path() == WorkspaceFile)
-		if used[f.Part] || fileWide || slices.Contains(changed, f.At.Path()) {
+		concerns := used[f.Part] || f.Part == "" && (holes || f.At.Path() == WorkspaceFile)
+		if f.Rule.Firm() {
+			concerns = stands[f]
+		}
+		if concerns || slices.Contains(changed, f.At.Path()) {
 			kept = append(kept, f)
 		}
 	}
@@ -163,7 +172,7 @@ func (f *Firm) inspectFiles() []*Finding {
 
 // inspectPlan runs the rules over one plan and lets go of it. Its parts are listed
 // where findings on the workspace's own files have to be told apart by them.
-func (f *Firm) inspectPlan(e source.Entry, withParts bool) *PlanResult {
+func (f *Firm) inspectPlan(e source.Entry, withParts bool) (*PlanResult, shelfPlan) {
 	c, broken := f.Case(e)
 	res := &PlanResult{Path: e.Path, Job: bom.JobOf(e.Path)}
 	if c.Plan != nil {
@@ -171,24 +180,22 @@ func (f *Firm) inspectPlan(e source.Entry, withParts bool) *PlanResult {
 		res.Profile, res.Code = c.ProfileName(), c.CodeName()
 	}
 	res.Findings = c.run(broken || c.Stage() == "cancelled")
-	for _, x := range res.Findings {
-		res.count(x)
-	}
-	defer letGo(c.Plan.File, res.Findings)
+	kept := shelfPlan{}
 	if !broken {
+		kept = c.forShelf()
 		if withParts {
 			res.Parts = c.parts()
 		}
 		res.Runs = c.runs()
 		res.Cautions = c.cautions(res.Findings)
 	}
-	return res
+	letGo(c.Plan.File, res.Findings, kept.places())
+	return res, kept
 }
 
-// letGo moves what outlives the work on a plan, the places of its findings and of
-// the waivers that cover them, off the plan's text.
-func letGo(f *source.File, findings []*Finding) {
-	var places []*source.Place
+// letGo moves what outlives the work on a plan off the plan's text: the places of
+// its findings and of the waivers that cover them, and those that the shelf needs.
+func letGo(f *source.File, findings []*Finding, places []*source.Place) {
 	note := func(p *source.Place) {
 		if p.File == f {
 			places = append(places, p)
@@ -263,7 +270,8 @@ func (c *Case) run(filesOnly bool) []*Finding {
 	}
 	sortFindings(out)
 	if !filesOnly {
-		c.Waivers = settle(c.Plan.Waivers, out, c.Today())
+		here, _ := c.waivers()
+		c.Waivers = settle(here, out, c.Today())
 		check(paperWaiver)
 		sortFindings(out)
 	}

@@ -13,7 +13,7 @@ var byName = map[string]*Rule{}
 // The list is filled on start because paper/waiver itself looks rules up.
 func init() {
 	Rules = slices.Concat(fileRules, partRules, mateRules, matchRules, bandRules,
-		lossRules, groundRules, gainRules, gainSiteRules, []*Rule{gainRadioEIRP}, reachRules, exposureRules, buildRules, powerRules, paperRules, catalogRules)
+		lossRules, groundRules, gainRules, gainSiteRules, []*Rule{gainRadioEIRP}, reachRules, exposureRules, buildRules, powerRules, stockRules, paperRules, catalogRules)
 	if err := validate(Rules); err != nil {
 		panic(err) // a mistake of the program, met by the first test
 	}

@@ -28,11 +28,19 @@ var floor = map[string]string{
 	"catalog":  "fit range twice",
 }
 
+// awaited lists the rules of an area that are still to come. One that is there is
+// taken off.
+var awaited = strings.Fields("stock/short stock/late stock/stranded stock/issued stock/cut-was stock/claimed")
+
 func TestEveryRuleOfAnAreaIsThere(t *testing.T) {
 	for _, area := range areasOf(Rules) {
 		for name := range strings.FieldsSeq(floor[area]) {
-			if Find(area+"/"+name) == nil {
+			there, due := Find(area+"/"+name) != nil, !slices.Contains(awaited, area+"/"+name)
+			switch {
+			case !there && due:
 				t.Errorf("the design asks for %s/%s", area, name)
+			case there && !due:
+				t.Errorf("%s/%s is there and no longer awaited: take it off the list", area, name)
 			}
 		}
 	}
@@ -163,6 +171,7 @@ func TestRegistryRefusesWhatIsNotWhole(t *testing.T) {
 		{"basis", func(r *Rule) { r.Basis = nil }},
 		{"weight", func(r *Rule) { r.Weight = Off }},
 		{"checks nothing", func(r *Rule) { r.Check = nil }},
+		{"both scopes", func(r *Rule) { r.CheckShelf = func(*Shelf, *Report) {} }},
 	} {
 		r := whole()
 		c.spoil(r)

@@ -47,12 +47,14 @@ type Rule struct {
 	Weight  Weight // of a plain failure
 	Lighter string // which failures weigh less, for the documentation
 	Grave   bool   // concerns limits or safety: what is not assessed weighs more
-	Firm    bool   // needs the shelf, and so every plan
 
 	// Check looks at one plan. CheckFiles looks at the workspace's own files. A
-	// rule has at least one of them.
+	// rule has at least one of them, or it has CheckShelf alone: then it is of scope
+	// firm, looks at the shelf and what plans take of it, and stands on stock files
+	// and plans as it finds fit.
 	Check      func(*Case, *Report)
 	CheckFiles func(*Firm, *Report)
+	CheckShelf func(*Shelf, *Report)
 
 	tellOnce sync.Once
 	told     []string
@@ -114,6 +116,9 @@ func (r *Rule) basisText() []string {
 	return slices.Clip(r.told)
 }
 
+// Firm reports a rule of scope firm: it needs the shelf, and so all plans.
+func (r *Rule) Firm() bool { return r.CheckShelf != nil }
+
 // Area is the part of the name before the slash.
 func (r *Rule) Area() string {
 	area, _, _ := strings.Cut(r.Name, "/")
@@ -174,8 +179,10 @@ func (r *Rule) valid() string {
 		return "it has no basis"
 	case r.Weight == Off:
 		return "it has no weight"
-	case r.Check == nil && r.CheckFiles == nil:
+	case r.Check == nil && r.CheckFiles == nil && r.CheckShelf == nil:
 		return "it checks nothing"
+	case r.Firm() && (r.Check != nil || r.CheckFiles != nil):
+		return "it is of both scopes"
 	}
 	return ""
 }

@@ -36,6 +36,9 @@ func (d Date) After(e Date) bool { return d.ordinal() > e.ordinal() }
 // Add is the day n days later.
 func (d Date) Add(n int) Date { return DateOf(d.time().AddDate(0, 0, n)) }
 
+// DaysUntil is how many days later e is than d; below zero where it is earlier.
+func (d Date) DaysUntil(e Date) int { return int((e.time().Unix() - d.time().Unix()) / (24 * 60 * 60)) }
+
 // Weekday is the day of the week.
 func (d Date) Weekday() time.Weekday { return d.time().Weekday() }
 

@@ -69,6 +69,23 @@ func TestDateOrder(t *testing.T) {
 	}
 }
 
+func TestDaysUntil(t *testing.T) {
+	for _, c := range []struct {
+		from, to string
+		want     int
+	}{
+		{"2026-12-01", "2026-12-01", 0},
+		{"2026-10-02", "2026-12-01", 60},
+		{"2026-12-01", "2026-10-02", -60},
+		{"2028-02-28", "2028-03-01", 2}, // a leap year
+		{"0001-01-01", "9999-12-31", 3652058},
+	} {
+		if got := day(t, c.from).DaysUntil(day(t, c.to)); got != c.want {
+			t.Errorf("from %s to %s are %d days, want %d", c.from, c.to, got, c.want)
+		}
+	}
+}
+
 func TestNoDay(t *testing.T) {
 	var none unit.Date
 	if !none.IsZero() || day(t, "2026-12-01").IsZero() {

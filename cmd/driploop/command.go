@@ -26,6 +26,7 @@ type Command struct {
 
 	shared shared
 	held   bool // a hold stands
+	bare   bool // rules that need the shelf are left out
 }
 
 // shared are the flags that all commands have.

@@ -24,6 +24,7 @@ The status is 1 where a hold stands.`,
 			if err != nil {
 				return err
 			}
+			c.bare = !shelf
 			firm, done, err := c.workspace(cmd.Context())
 			if err != nil {
 				return err

@@ -26,7 +26,7 @@ func (c *Command) workspace(ctx context.Context) (firm *rules.Firm, close func()
 	if err != nil {
 		return nil, nil, err
 	}
-	firm, err = rules.Load(tree, rules.Options{Today: today})
+	firm, err = rules.Load(tree, rules.Options{Today: today, NoShelf: c.bare})
 	if err != nil {
 		close()
 		return nil, nil, fmt.Errorf("reading the workspace in %s: %w", c.shared.root, err)

@@ -78,7 +78,7 @@ type basisJSON struct {
 
 func (b *Basis) rule(r *rules.Rule) *Topic {
 	w := b.weights(r)
-	out := ruleJSON{Rule: r.Name, Title: r.Title, Why: r.Why, Shelf: r.Firm, Weights: w, Lighter: r.Lighter, Override: w.Override,
+	out := ruleJSON{Rule: r.Name, Title: r.Title, Why: r.Why, Shelf: r.Firm(), Weights: w, Lighter: r.Lighter, Override: w.Override,
 		Guarded: r.Guarded(), Basis: []basisJSON{}, Caution: r.Caution}
 	page := Document{Title: r.Name, Blocks: []Block{{Text: []string{sentence(r.Title), sentence(r.Why)}}, weightBlock(r, w)}}
 	if w.Override != nil {
@@ -118,7 +118,7 @@ func weightBlock(r *rules.Rule, w ruleWeights) Block {
 	if r.Lighter != "" {
 		block.Items = append(block.Items, Item{"lighter", sentence(r.Lighter)})
 	}
-	if r.Firm {
+	if r.Firm() {
 		block.Items = append(block.Items, Item{"needs", "the shelf, and so every plan of the workspace"})
 	}
 	if r.Guarded() {
