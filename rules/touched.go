@@ -1,6 +1,8 @@
 package rules
 
 import (
+	"slices"
+
 	"driploop/catalog"
 	"driploop/catalog/source"
 )
@@ -8,9 +10,11 @@ import (
 // Touched lists the plans that changed files concern: a plan file is one itself;
 // a catalog, offer or stock file touches the plans that name one of its parts; a
 // profile file those that use one of its profiles or codes; driploop.toml, and a
-// file of the workspace that is gone or cannot be read, touch all.
-func (f *Firm) Touched(changed []string) []source.Entry {
-	t := touch{firm: f, plans: map[string]bool{}, parts: map[string]bool{}, names: map[string]bool{}}
+// file of the workspace that is gone or cannot be read, touch all. Where base is
+// given, the workspace before the change, what a file says no longer counts as well,
+// and a file that is gone touches what it touched there.
+func (f *Firm) Touched(changed []string, base source.Tree) []source.Entry {
+	t := touch{firm: f, base: base, plans: map[string]bool{}, parts: map[string]bool{}, names: map[string]bool{}}
 	for _, path := range changed {
 		t.file(path)
 	}
@@ -25,6 +29,7 @@ func (f *Firm) Touched(changed []string) []source.Entry {
 
 type touch struct {
 	firm  *Firm
+	base  source.Tree // nil: not known
 	all   bool
 	plans map[string]bool
 	parts map[string]bool // IDs of parts
@@ -48,58 +53,77 @@ func (t *touch) file(path string) {
 	}
 }
 
-// doc reads a changed file, or makes every plan touched where that fails.
-func (t *touch) doc(path string) *source.Doc {
-	entries, err := t.firm.Tree.Files()
-	if err == nil {
-		for _, e := range entries {
-			if e.Path != path || e.Skip != "" {
-				continue
-			}
-			if d, _ := readDoc(t.firm.Tree, e); d != nil && !d.Ended {
-				return d
-			}
-		}
+// docs reads a changed file as it is and as it was, or makes every plan touched
+// where it is not there to be read. What could not be read before the change needs
+// no look: no plan stood on it.
+func (t *touch) docs(path string) []*source.Doc {
+	now, there := t.doc(t.firm.Tree, path)
+	was, _ := t.doc(t.base, path)
+	switch {
+	case now != nil && was != nil:
+		return []*source.Doc{was, now}
+	case now != nil:
+		return []*source.Doc{now}
+	case was != nil && !there:
+		return []*source.Doc{was}
 	}
 	t.all = true
 	return nil
 }
 
+// doc reads a file of a tree, nil where it is not there or cannot be read whole.
+func (t *touch) doc(tree source.Tree, path string) (d *source.Doc, there bool) {
+	if tree == nil {
+		return nil, false
+	}
+	entries, err := tree.Files()
+	if err != nil {
+		return nil, true
+	}
+	i := slices.IndexFunc(entries, func(e source.Entry) bool { return e.Path == path })
+	if i < 0 {
+		return nil, false
+	}
+	if entries[i].Skip != "" {
+		return nil, true
+	}
+	if d, _ = readDoc(tree, entries[i]); d == nil || d.Ended {
+		return nil, true
+	}
+	return d, true
+}
+
 // tables notes the names under [table.NAME].
 func (t *touch) tables(path, table string, into map[string]bool) {
-	d := t.doc(path)
-	if d == nil {
-		return
-	}
-	if k := d.Root.Get(table); k != nil {
-		for _, e := range k.Value.Keys {
-			into[e.Name] = true
+	for _, d := range t.docs(path) {
+		if k := d.Root.Get(table); k != nil {
+			for _, e := range k.Value.Keys {
+				into[e.Name] = true
+			}
 		}
 	}
 }
 
 // mentions notes the parts that an offer or stock file names.
 func (t *touch) mentions(path string) {
-	d := t.doc(path)
-	if d == nil {
-		return
-	}
-	if offers, _ := catalog.ReadOffers(d); offers != nil {
-		for i := range offers.Offers {
-			o := &offers.Offers[i]
-			t.parts[o.Part.V] = true
-			for _, b := range o.Brings {
-				t.parts[b.Name] = true
+	for _, d := range t.docs(path) {
+		if offers, _ := catalog.ReadOffers(d); offers != nil {
+			for i := range offers.Offers {
+				o := &offers.Offers[i]
+				t.parts[o.Part.V] = true
+				for _, b := range o.Brings {
+					t.parts[b.Name] = true
+				}
 			}
 		}
-	}
-	sheet, order, _ := catalog.ReadStock(d)
-	if sheet != nil {
-		t.sheet(sheet)
-	}
-	if order != nil {
-		for i := range order.Lines {
-			t.parts[order.Lines[i].Part.V] = true
+		sheet, order, _ := catalog.ReadStock(d)
+		if sheet != nil {
+			t.sheet(sheet)
+		}
+		if order != nil {
+			for i := range order.Lines {
+				t.parts[order.Lines[i].Part.V] = true
+			}
 		}
 	}
 }

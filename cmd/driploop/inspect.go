@@ -7,13 +7,15 @@ import (
 )
 
 func (c *Command) inspect() *cobra.Command {
-	shelf := true
+	shelf, staged := true, false
 	cmd := &cobra.Command{
 		Use:   "inspect [PLAN…] [-- FILE…]",
 		Short: "run the rules over plans",
 		Long: `Runs the rules over the named plans, or over all plans of the workspace.
 A PLAN is a job's ID or a file. Behind -- stand file names as a hook passes them:
-a catalog, offer, stock or profile file means the plans it touches.
+a catalog, offer, stock or profile file means the plans it touches. With --staged
+the next commit is looked at: what is staged is read, and the files that differ
+from HEAD, also those that are gone, count as if they stood behind --.
 The status is 1 where a hold stands.`,
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json")
@@ -25,15 +27,12 @@ The status is 1 where a hold stands.`,
 				return err
 			}
 			c.bare = !shelf
-			firm, done, err := c.workspace(cmd.Context())
-			if err != nil {
+			look, err := c.lookAt(cmd.Context(), args, cmd.ArgsLenAtDash(), staged)
+			if err != nil || look == nil {
 				return err
 			}
-			defer done()
-			plans, changed, err := c.plans(firm, args, cmd.ArgsLenAtDash())
-			if err != nil {
-				return err
-			}
+			defer look.done()
+			firm, plans, changed := look.firm, look.plans, look.changed
 			res, err := firm.Inspect(cmd.Context(), plans, changed...)
 			if err != nil {
 				return failure{err}
@@ -46,9 +45,13 @@ The status is 1 where a hold stands.`,
 				}
 				return c.emit(b)
 			}
+			if staged && c.shared.quiet && len(res.Plans)+len(res.Workspace) == 0 {
+				return nil // most commits of a repository that holds more than plans
+			}
 			return c.emit(show.InspectText(res, page, c.shared.quiet))
 		},
 	}
+	cmd.Flags().BoolVar(&staged, "staged", false, "the next commit: what is staged, and of that what differs from HEAD")
 	cmd.Flags().BoolVar(&shelf, "shelf", true, "also run the rules that need the shelf, and so all plans")
 	return cmd
 }

@@ -107,16 +107,21 @@ func (c *Command) plans(firm *rules.Firm, args []string, dash int) (plans []sour
 		}
 		changed = append(changed, path)
 	}
-	for _, e := range firm.Touched(changed) {
+	for _, e := range firm.Touched(changed, nil) {
 		chosen[e.Path] = true
 	}
-	plans = []source.Entry{}
+	return chosenOf(firm, chosen), changed, nil
+}
+
+// chosenOf lists the chosen plans in the firm's order; it is never nil.
+func chosenOf(firm *rules.Firm, chosen map[string]bool) []source.Entry {
+	plans := []source.Entry{}
 	for _, e := range firm.PlanFiles {
 		if chosen[e.Path] {
 			plans = append(plans, e)
 		}
 	}
-	return plans, changed, nil
+	return plans
 }
 
 // plan finds the plan that an argument names.

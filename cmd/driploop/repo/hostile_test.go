@@ -53,7 +53,15 @@ func all(t *testing.T, w work) {
 	if _, err := r.MergeBase(context.Background(), "HEAD", "HEAD~1"); err != nil {
 		t.Error(err)
 	}
-	if _, err := r.Branch(context.Background()); err != nil {
+	for _, branch := range []func(context.Context) (string, error){r.Branch, r.Upstream, r.DefaultBranch} {
+		if _, err := branch(context.Background()); err != nil {
+			t.Error(err)
+		}
+	}
+	if c, err := r.Staged(context.Background()); err != nil || len(read(t, c.Head)) == 0 {
+		t.Error(c, err)
+	}
+	if _, err := r.Hooks(context.Background()); err != nil {
 		t.Error(err)
 	}
 }

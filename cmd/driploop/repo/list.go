@@ -18,6 +18,20 @@ type row struct {
 	skip           string // known while listing
 }
 
+// Why a file of the index is not read.
+const (
+	unmerged  = "is unmerged (stage 1-3)"
+	announced = "is not staged yet (intent to add)"
+)
+
+// rows lists all files of a revision, or of the index.
+func (r *Repo) rows(ctx context.Context, rev string) ([]row, error) {
+	if rev == Index {
+		return r.listIndex(ctx)
+	}
+	return r.listCommit(ctx, rev)
+}
+
 // listCommit lists all files of a commit.
 func (r *Repo) listCommit(ctx context.Context, rev string) ([]row, error) {
 	id, err := r.commit(ctx, rev)
@@ -32,7 +46,7 @@ func (r *Repo) listCommit(ctx context.Context, rev string) ([]row, error) {
 }
 
 // listIndex lists all files that are staged, and those that are being merged.
-func (r *Repo) listIndex(ctx context.Context, _ string) ([]row, error) {
+func (r *Repo) listIndex(ctx context.Context) ([]row, error) {
 	if err := r.needIndex(); err != nil {
 		return nil, err
 	}
@@ -42,7 +56,7 @@ func (r *Repo) listIndex(ctx context.Context, _ string) ([]row, error) {
 	}
 	rows, err := parseRows(out, func(f []string) row {
 		if f[2] != "0" {
-			return row{mode: f[0], id: f[1], skip: "is unmerged (stage 1-3)"}
+			return row{mode: f[0], id: f[1], skip: unmerged}
 		}
 		return row{mode: f[0], id: f[1]}
 	})
@@ -86,6 +100,9 @@ var emptyBlob = map[string]string{
 	"473a0f4c3be8a93681a267e3b1e9a7dcda1185436fe141f7749120a303721813": "6ef19b41225c5369f1c104d45d8d85efa9b057b53b14b4b9b939dd74decc5321",
 }
 
+// plainDiff makes a diff a list of names and keeps it from running programs.
+var plainDiff = []string{"--name-only", "-z", "--no-renames", "--no-ext-diff", "--no-textconv"}
+
 // markUnstaged marks files that were only announced (git add --intent-to-add):
 // the index lists them as empty, and an empty plan would pass where the real one
 // fails. Truly empty files stay. git names the difference only in a diff.
@@ -110,7 +127,7 @@ func (r *Repo) markUnstaged(ctx context.Context, rows []row) error {
 	}
 	for i, row := range rows {
 		if _, empty := emptyBlob[row.id]; empty && row.skip == "" && !staged[row.path] {
-			rows[i].skip = "is not staged yet (intent to add)"
+			rows[i].skip = announced
 		}
 	}
 	return nil

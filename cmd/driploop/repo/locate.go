@@ -9,9 +9,11 @@ import (
 
 // place is where a workspace lies in a repository.
 type place struct {
-	git    git
-	prefix string
-	bare   bool
+	git     git
+	top     string // the top folder of the work tree; "" where bare
+	prefix  string // from the top of the repository to the workspace: "" or "demo/"
+	bare    bool   // without a work tree, and so without anything staged
+	foreign bool   // in another repository than the environment points at
 }
 
 // locate finds the repository of root, an absolute path without symbolic links.
@@ -23,10 +25,14 @@ func locate(ctx context.Context, root string) (place, error) {
 			return p, err
 		}
 	}
+	var p place
 	if err != nil {
-		return locateBare(ctx, root, err)
+		p, err = locateBare(ctx, root, err)
+	} else {
+		p, err = below(own, top, root)
 	}
-	return below(own, top, root)
+	p.foreign = pointed()
+	return p, err
 }
 
 // locatePointed looks where the environment points. It is not ok where root
@@ -79,9 +85,9 @@ func below(g git, top, root string) (place, error) {
 		return place{}, &Refusal{Doing: doingFind(root), Says: "its work tree is at " + clean(top)}
 	}
 	if rel == "." {
-		return place{git: g}, nil
+		return place{git: g, top: top}, nil
 	}
-	return place{git: g, prefix: filepath.ToSlash(rel) + "/"}, nil
+	return place{git: g, top: top, prefix: filepath.ToSlash(rel) + "/"}, nil
 }
 
 // doingFind says in errors whose repository is looked for; "" is the one that the

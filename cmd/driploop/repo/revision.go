@@ -4,18 +4,8 @@ import (
 	"context"
 	"errors"
 	"fmt"
-	"slices"
 	"strings"
 )
-
-// Branch is the branch that is checked out, "" where there is none (a detached HEAD).
-func (r *Repo) Branch(ctx context.Context) (string, error) {
-	out, err := r.git.run(ctx, "find the current branch", "symbolic-ref", "--quiet", "--short", "HEAD")
-	if refusedWith(err, 1) {
-		return "", nil
-	}
-	return strings.TrimSuffix(out, "\n"), err
-}
 
 // MergeBase is the id of the commit where the histories of two revisions part,
 // one of them where they part in several. Errors: a *Refusal where one is
@@ -33,46 +23,6 @@ func (r *Repo) MergeBase(ctx context.Context, a, b string) (string, error) {
 	}
 	base, _, _ := strings.Cut(out, "\n")
 	return base, r.git.adviseHistory(ctx, err)
-}
-
-// ChangedFiles lists the files of the workspace that differ between two
-// revisions, in order of path, relative to the workspace; head may be Index. A
-// renamed file is listed under both names.
-func (r *Repo) ChangedFiles(ctx context.Context, base, head string) ([]string, error) {
-	compare, revs := "diff-tree", []string{base, head}
-	only := []string{"-r"}
-	if head == Index {
-		if err := r.needIndex(); err != nil {
-			return nil, err
-		}
-		compare, revs = "diff-index", revs[:1]
-		only = []string{"--cached", "--ita-invisible-in-index"}
-	}
-	ids, err := r.commits(ctx, revs...)
-	if err != nil {
-		return nil, err
-	}
-	args := slices.Concat([]string{compare}, only, plainDiff, ids, []string{"--"})
-	out, err := r.git.run(ctx, fmt.Sprintf("compare %q with %q", base, head), args...)
-	if err != nil {
-		return nil, r.git.adviseObjects(ctx, err)
-	}
-	return r.inWorkspace(out), nil
-}
-
-// plainDiff makes a diff a list of names and keeps it from running programs.
-var plainDiff = []string{"--name-only", "-z", "--no-renames", "--no-ext-diff", "--no-textconv"}
-
-// inWorkspace cuts names that each end in a zero byte down to those of the workspace.
-func (r *Repo) inWorkspace(names string) []string {
-	var in []string
-	for name := range strings.SplitSeq(strings.TrimSuffix(names, "\x00"), "\x00") {
-		if rel, ok := strings.CutPrefix(name, r.prefix); ok && rel != "" {
-			in = append(in, rel)
-		}
-	}
-	slices.Sort(in)
-	return in
 }
 
 // commits finds the ids of several revisions.

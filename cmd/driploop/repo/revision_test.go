@@ -49,53 +49,6 @@ func TestMergeBase(t *testing.T) {
 	contains(t, "orphan", refusal(t, err).Error(), "no commit in common")
 }
 
-func TestChangedFiles(t *testing.T) {
-	w := repository(t, "demo/a.toml", "a", "demo/old.toml", "the same\n", "demo/gone.toml", "gone", "demo/same.toml", "s", "top.toml", "t")
-	w.git("rm", "-q", "demo/gone.toml")
-	w.git("mv", "demo/old.toml", "demo/new\nname.toml")
-	w.commit("demo/a.toml", "A", "top.toml", "T")
-	w.write("demo/same.toml", "staged", "demo/announced.toml", "x")
-	w.git("add", "demo/same.toml")
-	w.git("add", "-N", "demo/announced.toml")
-	w.write("demo/a.toml", "in the work tree only")
-
-	r := open(t, w.path("demo"))
-	for _, c := range []struct {
-		base, head string
-		want       []string
-	}{
-		{"HEAD~1", "HEAD", []string{"a.toml", "gone.toml", "new\nname.toml", "old.toml"}},
-		{"HEAD", Index, []string{"same.toml"}},
-		{"HEAD~1", Index, []string{"a.toml", "gone.toml", "new\nname.toml", "old.toml", "same.toml"}},
-		{"HEAD", "HEAD", nil},
-	} {
-		got, err := r.ChangedFiles(context.Background(), c.base, c.head)
-		if err != nil {
-			t.Fatal(err)
-		}
-		same(t, c.base+" to "+c.head, got, c.want)
-	}
-	_, err := r.ChangedFiles(context.Background(), Index, "HEAD")
-	refusal(t, err)
-}
-
-func TestBranch(t *testing.T) {
-	w := folder(t)
-	w.git("init", "-q", "-b", "job/quay-lane")
-	r := open(t, w.dir)
-	check := func(when, want string) {
-		t.Helper()
-		if got, err := r.Branch(context.Background()); err != nil || got != want {
-			t.Errorf("%s: got %q, %v; want %q", when, got, err, want)
-		}
-	}
-	check("before the first commit", "job/quay-lane")
-	w.commit()
-	check("with a commit", "job/quay-lane")
-	w.git("checkout", "-q", "--detach")
-	check("detached", "")
-}
-
 func TestShallowCloneAsksForHistory(t *testing.T) {
 	w := repository(t, "a.toml", "a")
 	w.commit("a.toml", "b")

@@ -24,15 +24,15 @@ type tree struct {
 // read from several goroutines.
 // Errors: a *Refusal where there is no such revision.
 func (r *Repo) At(ctx context.Context, rev string) (source.Tree, error) {
-	list := r.listCommit
-	if rev == Index {
-		list = r.listIndex
-	}
-	rows, err := list(ctx, rev)
+	rows, err := r.rows(ctx, rev)
 	if err != nil {
 		return nil, err
 	}
-	return &tree{name: rev, entries: r.entries(rows), blobs: r.blobs}, nil
+	return r.tree(rev, rows), nil
+}
+
+func (r *Repo) tree(name string, rows []row) *tree {
+	return &tree{name: name, entries: r.entries(rows), blobs: r.blobs}
 }
 
 func (t *tree) Name() string { return t.name }
