@@ -76,6 +76,7 @@ func TestHostileTexts(t *testing.T) {
 		"stock":   {{}, {"lane"}},
 		"basis":   {{}, {"own"}, {"bad"}, {"loss/leg"}, {"loss/cable"}, {"loss"}},
 		"parts":   {{}, {"CX-10"}, {"AMP-W-65"}, {"NC-10-NM"}, {"TAPE-SA"}, {"JMP-10-NN-1"}},
+		"hook":    {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 	}, "--root", hostile)
 	for _, shown := range []string{`\x1b[2J`, `:\x3aerror`, `#\x23[error]`, `\u202eturned`, `\u001b[2J`} {
 		if !strings.Contains(out, shown) {
@@ -116,6 +117,7 @@ func TestHostileFileNames(t *testing.T) {
 		"stock":   {{}},
 		"basis":   {{"own"}},
 		"parts":   {{"F"}},
+		"hook":    {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 	}, "--root", dir)
 }
 
@@ -198,6 +200,7 @@ func TestHostileValues(t *testing.T) {
 			"stock":   {{}},
 			"basis":   {{}},
 			"parts":   {{}, {"CX-10"}},
+			"hook":    {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 		}, "--root", dir)
 	}
 }

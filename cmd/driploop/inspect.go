@@ -45,8 +45,8 @@ The status is 1 where a hold stands.`,
 				}
 				return c.emit(b)
 			}
-			if staged && c.shared.quiet && len(res.Plans)+len(res.Workspace) == 0 {
-				return nil // most commits of a repository that holds more than plans
+			if staged && c.shared.quiet && !c.held {
+				return nil // a commit that may be made is made without a word
 			}
 			return c.emit(show.InspectText(res, page, c.shared.quiet))
 		},

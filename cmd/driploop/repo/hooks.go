@@ -2,6 +2,7 @@ package repo
 
 import (
 	"context"
+	"fmt"
 	"path/filepath"
 	"strings"
 )
@@ -36,6 +37,9 @@ func (r *Repo) Hooks(ctx context.Context) (Hooks, error) {
 		}
 		if !filepath.IsAbs(dir) {
 			dir = filepath.Join(r.top, dir)
+			if err := r.ledOut(doing, dir); err != nil {
+				return Hooks{}, err
+			}
 		}
 		return Hooks{Dir: dir, Shared: scope == "global" || scope == "system"}, nil
 	}
@@ -49,6 +53,24 @@ func (r *Repo) Hooks(ctx context.Context) (Hooks, error) {
 	}
 	dir, err = filepath.Abs(filepath.Join(dir, "hooks"))
 	return Hooks{Dir: dir}, err
+}
+
+// ledOut refuses a folder in the work tree that is, or lies behind, a link out of it:
+// links come with the files of strangers.
+func (r *Repo) ledOut(doing, dir string) error {
+	real, rest, err := existing(dir)
+	if err != nil {
+		return fmt.Errorf("%s: %w", doing, err)
+	}
+	if within(r.top, dir) && !within(r.top, filepath.Join(real, rest)) {
+		return &Refusal{Doing: doing, Says: fmt.Sprintf("%q, where core.hooksPath points, is a link out of the work tree", dir)}
+	}
+	return nil
+}
+
+func within(top, dir string) bool {
+	rel, err := filepath.Rel(top, dir)
+	return err == nil && filepath.IsLocal(rel)
 }
 
 // Below is the path from the top of the work tree to the workspace, with slashes;

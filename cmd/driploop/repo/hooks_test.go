@@ -30,6 +30,15 @@ func TestHooks(t *testing.T) {
 	w.git("config", "--add", "core.hooksPath", "/somewhere else\nhere")
 	check("the last of two", w.dir, Hooks{Dir: "/somewhere else\nhere"})
 	w.git("config", "--unset-all", "core.hooksPath")
+	w.git("config", "core.hooksPath", "../beside")
+	check("beside the work tree", w.dir, Hooks{Dir: filepath.Join(filepath.Dir(w.dir), "beside")})
+	if err := os.Symlink(t.TempDir(), w.path("led")); err != nil {
+		t.Fatal(err)
+	}
+	w.git("config", "core.hooksPath", "led/hooks")
+	_, out := open(t, w.dir).Hooks(context.Background())
+	contains(t, "through a link", refusal(t, out).Error(), "link out of the work tree")
+	w.git("config", "--unset-all", "core.hooksPath")
 
 	config := os.Getenv("GIT_CONFIG_GLOBAL")
 	was, err := os.ReadFile(config)

@@ -2,6 +2,7 @@ package show
 
 import (
 	"fmt"
+	"slices"
 	"sort"
 	"strings"
 	"unicode/utf8"
@@ -99,7 +100,8 @@ func words(n int, one, many string) string {
 }
 
 func (t *inspectText) workspace(r *rules.Result) {
-	if len(r.Workspace) == 0 {
+	held := slices.ContainsFunc(r.Workspace, func(f *rules.Finding) bool { return letterOf(f) == "H" })
+	if len(r.Workspace) == 0 || t.quiet && !held {
 		return
 	}
 	t.line(0, strong, "THE WORKSPACE'S OWN FILES")
