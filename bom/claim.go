@@ -159,8 +159,10 @@ func (g given) uncut(n *Need) []Piece {
 	whole := g.whole[n.Part.ID]
 	var out []Piece
 	for _, p := range n.Pieces {
-		switch {
-		case p.Line != ExtraLine && g.cut[p.Line] > 0:
+		switch cut := g.cut[p.Line]; {
+		case p.Line == ExtraLine && cut >= p.Length:
+			g.cut[p.Line] -= p.Length // extras share one name
+		case p.Line != ExtraLine && cut > 0:
 		case p.Bare <= whole:
 			whole -= min(whole, p.Length)
 		default:

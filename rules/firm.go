@@ -138,6 +138,9 @@ func unknownName(v source.Val[string], what string, known []string) (source.Prob
 	return source.Problem{Kind: source.Value, At: v.At, Says: "there is no " + what + " " + source.Quote(v.V), Do: do}, true
 }
 
+// ReadsStock reports whether a file of that path would be read as a stock sheet.
+func (f *Firm) ReadsStock(path string) bool { return anyMatch(patterns(f.Workspace.Stock, "stock"), path) }
+
 // Override is the weight that the workspace gives a rule, or nil.
 func (f *Firm) Override(rule string) *Override { return f.weights[rule] }
 

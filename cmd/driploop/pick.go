@@ -13,12 +13,15 @@ import (
 )
 
 func (c *Command) pick() *cobra.Command {
+	var how issuing
 	cmd := &cobra.Command{
 		Use:   "pick PLAN",
 		Short: "what a crew takes from the shelves for a job",
 		Long: `Lists, in the order of walking, the tools, bins and reels for one job, what is cut
 from each reel, what is not all there, and two labels for each line. What other
-jobs hold first is not touched.`,
+jobs hold first is not touched.
+--issue books what lies ready as taken by writing stock/issue/JOB-1.toml, and
+touches nothing else; a second issue needs --more.`,
 		Args: cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "html")
@@ -27,6 +30,9 @@ jobs hold first is not touched.`,
 			}
 			page, err := c.page()
 			if err != nil {
+				return err
+			}
+			if err := how.refuse(&c.shared); err != nil {
 				return err
 			}
 			firm, done, err := c.workspace(cmd.Context())
@@ -38,13 +44,21 @@ jobs hold first is not touched.`,
 			if err != nil {
 				return err
 			}
-			b, err := pickAs(&show.Pick{Pick: p, Today: firm.Today.String(), At: firm.Tree.Name(), Feet: firm.Workspace.Lengths.V == "ft"}, form, page)
+			list := &show.Pick{Pick: p, Today: firm.Today.String(), At: firm.Tree.Name(), Feet: firm.Workspace.Lengths.V == "ft"}
+			if how.do {
+				return c.issue(cmd.Context(), firm, list, how, page)
+			}
+			b, err := pickAs(list, form, page)
 			if err != nil {
 				return failure{err}
 			}
 			return c.emit(b)
 		},
 	}
+	f := cmd.Flags()
+	f.BoolVar(&how.do, "issue", false, "book what lies ready as taken")
+	f.BoolVar(&how.more, "more", false, "with --issue: issue to a job that was issued to before")
+	f.StringVar(&how.by, "by", "", "with --issue: initials of who takes the goods")
 	return cmd
 }
 

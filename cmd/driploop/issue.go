@@ -1,0 +1,149 @@
+package main
+
+import (
+	"context"
+	"crypto/rand"
+	"errors"
+	"fmt"
+	"io/fs"
+	"os"
+	"path"
+
+	"driploop/cmd/driploop/repo"
+	"driploop/cmd/driploop/show"
+	"driploop/rules"
+)
+
+// issuing are the flags of pick --issue.
+type issuing struct {
+	do, more bool
+	by       string
+}
+
+// refuse says which flags do not go together.
+func (i *issuing) refuse(s *shared) error {
+	switch {
+	case !i.do && (i.more || i.by != ""):
+		return errors.New("--more and --by belong to --issue")
+	case !i.do:
+		return nil
+	case s.at != "":
+		return fmt.Errorf("--issue writes into the folder and cannot be used with --at %s", s.at)
+	case s.as != "" || s.out != "":
+		return errors.New("--issue writes a sheet of its own; --as and --out do not go with it")
+	case i.by == "":
+		return errors.New("who takes the goods? --by has the initials")
+	}
+	return nil
+}
+
+// issue books what the pick list says as taken, in a sheet of the job's own.
+func (c *Command) issue(ctx context.Context, firm *rules.Firm, p *show.Pick, how issuing, page show.Page) error {
+	is := &show.Issue{Pick: p.Pick, On: c.moment(), By: how.by}
+	root, err := os.OpenRoot(c.shared.root)
+	if err != nil {
+		return err
+	}
+	defer root.Close()
+	file, err := nextIssue(root, p.Job, how.more)
+	if err != nil {
+		return err
+	}
+	if !how.more && given(p) {
+		return fmt.Errorf("goods were issued to %s already, see the sheets that name it; --more issues what is still claimed", p.Job)
+	}
+	if is.Empty() {
+		return fmt.Errorf("nothing lies ready for %s that is still to be issued", p.Job)
+	}
+	if !firm.ReadsStock(file) {
+		return fmt.Errorf("the workspace's stock files do not include %s; name it in [workspace] stock", file)
+	}
+	if err := writeNew(root, file, is.TOML()); err != nil {
+		return failure{fmt.Errorf("writing %s: %w", file, cause(err))}
+	}
+	return c.emit(is.Text(page, file, c.seen(ctx, file)))
+}
+
+func given(p *show.Pick) bool {
+	for _, is := range p.Given {
+		if is.Net.Each > 0 || is.Net.Length > 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// moment is now as TOML writes a local time, or the day that --today names.
+func (c *Command) moment() string {
+	if c.shared.today != "" {
+		return c.shared.today
+	}
+	return c.Now().Format("2006-01-02T15:04:05")
+}
+
+// nextIssue is the file of the job's next issue: the first, or with more the next
+// that is not there.
+func nextIssue(root *os.Root, job string, more bool) (string, error) {
+	for n := 1; ; n++ {
+		file := fmt.Sprintf("stock/issue/%s-%d.toml", job, n)
+		_, err := root.Lstat(file)
+		switch {
+		case errors.Is(err, fs.ErrNotExist):
+			return file, nil
+		case err != nil:
+			return "", fmt.Errorf("looking for %s: %w", file, cause(err))
+		case !more:
+			return "", fmt.Errorf("%s was issued already: %s is there; --more issues what is still claimed", job, file)
+		}
+	}
+}
+
+// seen says which branch the issue was made on, and what it cannot know.
+func (c *Command) seen(ctx context.Context, file string) string {
+	const blind = " An issue made elsewhere is not seen; it would be in a file of the same name, and git stops where the two meet."
+	r, err := repo.Open(ctx, c.shared.root)
+	if err != nil {
+		return "Seen: this folder alone; git knows of no repository here." + blind
+	}
+	defer r.Close()
+	branch, err := r.Branch(ctx)
+	switch {
+	case err != nil:
+		return "Seen: this folder alone; git does not say on which branch it is." + blind
+	case branch == "":
+		return "Seen: a commit that is checked out on no branch." + blind
+	}
+	return "Seen: branch " + branch + "." + blind
+}
+
+// writeNew writes a file that is not there yet, whole or not at all: a reader, or a
+// machine that loses power, finds all of it under its name or nothing. One that
+// appeared meanwhile is left as it is, and that is an error.
+func writeNew(root *os.Root, file string, b []byte) error {
+	if err := root.MkdirAll(path.Dir(file), 0o777); err != nil {
+		return err
+	}
+	beside := path.Join(path.Dir(file), "."+path.Base(file)+"."+rand.Text()[:8])
+	f, err := root.OpenFile(beside, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o666)
+	if err != nil {
+		return err
+	}
+	defer root.Remove(beside)
+	_, err = f.Write(b)
+	if err = errors.Join(err, f.Sync(), f.Close()); err != nil {
+		return err
+	}
+	if err := root.Link(beside, file); err != nil {
+		return err
+	}
+	return syncFolder(root, path.Dir(file))
+}
+
+// syncFolder makes a new name in a folder last.
+func syncFolder(root *os.Root, dir string) error {
+	d, err := root.Open(dir)
+	if err != nil {
+		return err
+	}
+	return errors.Join(d.Sync(), d.Close())
+}
