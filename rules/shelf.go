@@ -93,7 +93,7 @@ func (p *shelfPlan) places() []*source.Place {
 // not asked for is dropped.
 func (f *Firm) inspectShelf(r *Result, plans []shelfPlan) {
 	if f.noShelf {
-		r.Notices = append(r.Notices, "rules that need the shelf were left out: "+strings.Join(shelfRules(), " "))
+		r.Notices = append(r.Notices, "rules that need the shelf are not run: "+strings.Join(shelfRules(), " "))
 		return
 	}
 	s := &Shelf{Firm: f}

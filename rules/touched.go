@@ -123,6 +123,9 @@ func (t *touch) mentions(path string) {
 		if order != nil {
 			for i := range order.Lines {
 				t.parts[order.Lines[i].Part.V] = true
+				for _, b := range order.Lines[i].Brings {
+					t.parts[b.Name] = true
+				}
 			}
 		}
 	}
@@ -147,6 +150,24 @@ func (t *touch) sheet(s *catalog.Sheet) {
 	}
 	for i := range s.Cuts {
 		tag(s.Cuts[i].Tag.V)
+	}
+	if s.Head.Complete.V {
+		t.missed(s)
+	}
+}
+
+// missed notes the parts of which a complete count says, without naming them, that
+// none is there.
+func (t *touch) missed(s *catalog.Sheet) {
+	for i := range t.firm.Stock.Bins {
+		if b := &t.firm.Stock.Bins[i]; b.Where == s.Head.Where.V {
+			t.parts[b.Part] = true
+		}
+	}
+	for i := range t.firm.Stock.Tags {
+		if on := &t.firm.Stock.Tags[i]; on.At.Path() == s.File.Path {
+			t.parts[on.Part] = true
+		}
 	}
 }
 

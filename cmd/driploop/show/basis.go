@@ -33,7 +33,14 @@ func (b *Basis) Find(word string) *Topic {
 	}
 	for _, f := range formats {
 		if f.name == word {
-			return formatTopic(f)
+			t := formatTopic(f)
+			if slices.Contains(areas(), word) {
+				for _, of := range b.index(word).Page.Blocks {
+					of.Head = "Rules of the area " + of.Head
+					t.Page.Blocks = append(t.Page.Blocks, of)
+				}
+			}
+			return t
 		}
 	}
 	for _, k := range catalog.Kinds {
