@@ -139,7 +139,9 @@ func unknownName(v source.Val[string], what string, known []string) (source.Prob
 }
 
 // ReadsStock reports whether a file of that path would be read as a stock sheet.
-func (f *Firm) ReadsStock(path string) bool { return anyMatch(patterns(f.Workspace.Stock, "stock"), path) }
+func (f *Firm) ReadsStock(path string) bool {
+	return anyMatch(patterns(f.Workspace.Stock, "stock"), path)
+}
 
 // Override is the weight that the workspace gives a rule, or nil.
 func (f *Firm) Override(rule string) *Override { return f.weights[rule] }

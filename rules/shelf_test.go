@@ -145,7 +145,7 @@ func TestTouchedByStock(t *testing.T) {
 				t.Fatal(err)
 			}
 			var got []string
-			for _, e := range firm.Touched([]string{"stock/x.toml"}) {
+			for _, e := range firm.Touched([]string{"stock/x.toml"}, nil) {
 				got = append(got, e.Path)
 			}
 			if s := strings.Join(got, " "); s != c.want {
