@@ -53,7 +53,7 @@ func (s *search) decide(closed uint64, picks []*pick, floors []floor, fee, least
 	case len(below) == 0:
 		s.offer(picks)
 	default:
-		s.lift(closed, picks, floors, below, fee+total)
+		s.lift(closed, picks, floors, fee+total)
 	}
 	// What is left of the case: ways that the lists lack, and lots whose cheapest way is not proved.
 	undecided := nothing
@@ -61,7 +61,7 @@ func (s *search) decide(closed uint64, picks []*pick, floors []floor, fee, least
 		undecided = fee + least
 	}
 	for i, l := range s.b.lots {
-		if len(below) > 0 && s.reaches(l, below) {
+		if len(below) > 0 && s.reaches(l, floors) {
 			_, sum := s.all(closed)
 			undecided = min(undecided, fee+max(least, sum+s.whole[i]-s.cheapest(l, closed).least))
 		}
@@ -83,10 +83,10 @@ func (s *search) leastWith(closed uint64, f floor) unit.Money {
 	return least
 }
 
-// reaches reports a lot that can add to the goods of one of the vendors.
-func (s *search) reaches(l *lot, below []floor) bool {
+// reaches reports a lot that can add to goods of which a case asks for some amount.
+func (s *search) reaches(l *lot, floors []floor) bool {
 	return slices.ContainsFunc(l.goods, func(g *good) bool {
-		return slices.ContainsFunc(below, func(f floor) bool { return f.vendor == g.vendor })
+		return slices.ContainsFunc(floors, func(f floor) bool { return f.goods > 0 && f.vendor == g.vendor })
 	})
 }
 
@@ -103,12 +103,12 @@ type lifting struct {
 	spent  unit.Money // with all freight of the case
 }
 
-func (s *search) lift(closed uint64, picks []*pick, floors, below []floor, spent unit.Money) {
+func (s *search) lift(closed uint64, picks []*pick, floors []floor, spent unit.Money) {
 	f := &lifting{s: s, floors: floors, now: slices.Clone(picks), spent: spent}
 	f.goods, _ = s.goods(picks)
 	for i, l := range s.b.lots {
-		if !s.reaches(l, below) {
-			continue
+		if !s.reaches(l, floors) {
+			continue // dearer for nothing
 		}
 		f.lots = append(f.lots, i)
 		f.ways = append(f.ways, s.allowed(s.lists[i], closed, picks[i], picks[i].cost+s.cost-spent))
