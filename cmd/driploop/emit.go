@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"io/fs"
@@ -8,6 +9,11 @@ import (
 	"path/filepath"
 
 	"github.com/google/renameio/v2"
+
+	"driploop/bom"
+	"driploop/catalog/source"
+	"driploop/cmd/driploop/book"
+	"driploop/rules"
 )
 
 // emit writes a finished result to standard output or to --out. A file is written
@@ -24,6 +30,19 @@ func (c *Command) emit(b []byte) error {
 		return failure{fmt.Errorf("writing %s: %w", c.shared.out, cause(err))}
 	}
 	return nil
+}
+
+// emitBook writes sheets as a workbook, with one on what they were made from.
+func (c *Command) emitBook(ctx context.Context, firm *rules.Firm, plans []source.Entry, title string, sheets []bom.Sheet) error {
+	from, err := c.madeFrom(ctx, firm, plans)
+	if err != nil {
+		return err
+	}
+	b, err := book.Write(append(sheets, from), book.Meta{Title: title, Today: firm.Today})
+	if err != nil {
+		return failure{fmt.Errorf("making the workbook: %w", err)}
+	}
+	return c.emit(b)
 }
 
 // cause is what went wrong with a file, without the name of the file beside its

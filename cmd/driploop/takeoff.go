@@ -18,7 +18,7 @@ with their allowance for cutting, a connector for each field-cut end, adapters,
 fuses, conductors, consumables and extras. What exists, or somebody else brings,
 is left out; so are cancelled jobs.`,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "csv")
+			form, err := c.form("text", "json", "csv", "xlsx")
 			if err != nil {
 				return err
 			}
@@ -39,6 +39,9 @@ is left out; so are cancelled jobs.`,
 				plans = firm.PlanFiles
 			}
 			t := c.takeOff(firm, plans)
+			if form == "xlsx" {
+				return c.emitBook(cmd.Context(), firm, plans, "Takeoff", t.Sheets())
+			}
 			b, err := takeoffAs(t, form, page)
 			if err != nil {
 				return failure{err}

@@ -25,6 +25,10 @@ func (r *Repo) MergeBase(ctx context.Context, a, b string) (string, error) {
 	return base, r.git.adviseHistory(ctx, err)
 }
 
+// Commit is the id of the commit that a revision names. Errors: a *Refusal where there
+// is none.
+func (r *Repo) Commit(ctx context.Context, rev string) (string, error) { return r.commit(ctx, rev) }
+
 // commits finds the ids of several revisions.
 func (r *Repo) commits(ctx context.Context, revs ...string) ([]string, error) {
 	ids := make([]string, len(revs))

@@ -61,6 +61,9 @@ func acts(r rune) bool {
 		unicode.Variation_Selector, unicode.Other_Default_Ignorable_Code_Point)
 }
 
+// Acts is acts, for those who write text elsewhere.
+func Acts(r rune) bool { return acts(r) }
+
 func actsOrBad(r rune) bool { return r == utf8.RuneError || acts(r) }
 
 // Terms cleans what a line is put together from.
