@@ -65,9 +65,12 @@ var stockFuture = &Rule{
 	Weight: Punch,
 	CheckShelf: func(s *Shelf, r *Report) {
 		for _, n := range s.notes("the order line", catalog.NoteFuture) {
-			what := "the row"
-			if n.Order != "" {
+			what := "the row of " + n.Part
+			switch {
+			case n.Order != "":
 				what = "the order " + n.Order
+			case n.Part == "":
+				what = "the sheet"
 			}
 			ahead := s.Today.DaysUntil(n.On.Day)
 			s.stand(n.row, func(at source.Place, on string) *Finding {
