@@ -12,14 +12,16 @@ import (
 // The same input gives the same bytes, wherever and however often the program runs.
 func TestSameBytes(t *testing.T) {
 	calls := allCalls(t, map[string][][]string{
-		"inspect": {{"--color", "always"}},
-		"budget":  {{"heron-clinic", "--terms"}},
-		"takeoff": {{}},
-		"pick":    {{"quay-lane"}},
-		"stock":   {{}},
-		"basis":   {{}, {"us-fixed-wideband"}},
-		"parts":   {{"AMP-W-65"}},
-		"hook":    {{"--at", "HEAD"}}, // else it would be put into the repository around this test
+		"inspect":  {{"--color", "always"}},
+		"budget":   {{"heron-clinic", "--terms"}},
+		"takeoff":  {{}},
+		"purchase": {{}},
+		"cuts":     {{}},
+		"pick":     {{"quay-lane"}},
+		"stock":    {{}},
+		"basis":    {{}, {"us-fixed-wideband"}},
+		"parts":    {{"AMP-W-65"}},
+		"hook":     {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 	}, "--root", "../../testdata/saltmarsh", "--today", "2026-12-01")
 	for _, c := range calls {
 		t.Run(c.String(), func(t *testing.T) {

@@ -69,14 +69,16 @@ func inMessages(messages string) string {
 // A workspace in which every text is an attack on some reader harms none of them.
 func TestHostileTexts(t *testing.T) {
 	out := harmless(t, map[string][][]string{
-		"inspect": {{}, {"lane"}, {"--quiet"}},
-		"budget":  {{"lane"}, {"lane", "--terms"}, {"faults"}},
-		"takeoff": {{}},
-		"pick":    {{"lane"}},
-		"stock":   {{}, {"lane"}},
-		"basis":   {{}, {"own"}, {"bad"}, {"loss/leg"}, {"loss/cable"}, {"loss"}},
-		"parts":   {{}, {"CX-10"}, {"AMP-W-65"}, {"NC-10-NM"}, {"TAPE-SA"}, {"JMP-10-NN-1"}},
-		"hook":    {{"--at", "HEAD"}}, // else it would be put into the repository around this test
+		"inspect":  {{}, {"lane"}, {"--quiet"}},
+		"budget":   {{"lane"}, {"lane", "--terms"}, {"faults"}},
+		"takeoff":  {{}},
+		"purchase": {{}},
+		"cuts":     {{}},
+		"pick":     {{"lane"}},
+		"stock":    {{}, {"lane"}},
+		"basis":    {{}, {"own"}, {"bad"}, {"loss/leg"}, {"loss/cable"}, {"loss"}},
+		"parts":    {{}, {"CX-10"}, {"AMP-W-65"}, {"NC-10-NM"}, {"TAPE-SA"}, {"JMP-10-NN-1"}},
+		"hook":     {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 	}, "--root", hostile)
 	for _, shown := range []string{`\x1b[2J`, `:\x3aerror`, `#\x23[error]`, `\u202eturned`, `\u001b[2J`} {
 		if !strings.Contains(out, shown) {
@@ -110,14 +112,16 @@ func TestHostileFileNames(t *testing.T) {
 	}
 	copyFile(t, filepath.Join(hostile, "driploop.toml"), filepath.Join(dir, "driploop.toml"))
 	harmless(t, map[string][][]string{
-		"inspect": {{}},
-		"budget":  {{"::error::x"}, {filepath.Join(dir, "plans/a\nb.toml")}},
-		"takeoff": {{}},
-		"pick":    {{"=1+1"}, {"::error::x"}},
-		"stock":   {{}},
-		"basis":   {{"own"}},
-		"parts":   {{"F"}},
-		"hook":    {{"--at", "HEAD"}}, // else it would be put into the repository around this test
+		"inspect":  {{}},
+		"budget":   {{"::error::x"}, {filepath.Join(dir, "plans/a\nb.toml")}},
+		"takeoff":  {{}},
+		"purchase": {{}},
+		"cuts":     {{}},
+		"pick":     {{"=1+1"}, {"::error::x"}},
+		"stock":    {{}},
+		"basis":    {{"own"}},
+		"parts":    {{"F"}},
+		"hook":     {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 	}, "--root", dir)
 }
 
@@ -193,14 +197,16 @@ func TestHostileValues(t *testing.T) {
 			t.Fatal(err)
 		}
 		harmless(t, map[string][][]string{
-			"inspect": {{}},
-			"budget":  {{"quay-lane", "--terms"}, {"heron-clinic"}},
-			"takeoff": {{}},
-			"pick":    {{"quay-lane"}},
-			"stock":   {{}},
-			"basis":   {{}},
-			"parts":   {{}, {"CX-10"}},
-			"hook":    {{"--at", "HEAD"}}, // else it would be put into the repository around this test
+			"inspect":  {{}},
+			"budget":   {{"quay-lane", "--terms"}, {"heron-clinic"}},
+			"takeoff":  {{}},
+			"purchase": {{}},
+			"cuts":     {{}},
+			"pick":     {{"quay-lane"}},
+			"stock":    {{}},
+			"basis":    {{}},
+			"parts":    {{}, {"CX-10"}},
+			"hook":     {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 		}, "--root", dir)
 	}
 }

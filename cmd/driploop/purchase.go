@@ -1,0 +1,143 @@
+package main
+
+import (
+	"context"
+	"fmt"
+
+	"github.com/spf13/cobra"
+
+	"driploop/bom"
+	"driploop/catalog/source"
+	"driploop/catalog/unit"
+	"driploop/cmd/driploop/show"
+	"driploop/rules"
+)
+
+func (c *Command) purchase() *cobra.Command {
+	var until string
+	cmd := &cobra.Command{
+		Use:   "purchase [PLAN…]",
+		Short: "what to buy from whom",
+		Long: `Says what to buy for what shelves and orders leave short over all open jobs, and
+for the reorder levels: first so that as few jobs are late as the offers allow, then
+at the least cost with freight. Jobs that are needed later than buy_ahead_days from
+now are listed and not bought for. With plans, only what these lack is bought.`,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			form, err := c.form("text", "json", "csv")
+			if err != nil {
+				return err
+			}
+			return c.buying(cmd, args, until, func(b *show.Buying, page show.Page) ([]byte, error) {
+				switch form {
+				case "json":
+					return b.JSON()
+				case "csv":
+					return b.CSV()
+				}
+				return b.Text(page)
+			})
+		},
+	}
+	cmd.Flags().StringVar(&until, "until", "", "buy for jobs that are needed until this day (default: buy_ahead_days from now)")
+	return cmd
+}
+
+func (c *Command) cuts() *cobra.Command {
+	var until string
+	cmd := &cobra.Command{
+		Use:   "cuts [PLAN…]",
+		Short: "which piece from which reel",
+		Long: `Plans, part by part and over all open jobs, from which reel, remnant or new reel
+each piece of cable, wire or conductor is cut, and what is left of it. Lengths have
+their cut allowance. With plans, the same plan is made and only their pieces and
+reels are shown.`,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			form, err := c.form("text", "json", "csv")
+			if err != nil {
+				return err
+			}
+			return c.buying(cmd, args, until, func(b *show.Buying, page show.Page) ([]byte, error) {
+				cuts := &show.Cuts{Buying: b}
+				switch form {
+				case "json":
+					return cuts.JSON()
+				case "csv":
+					return cuts.CSV()
+				}
+				return cuts.Text(page)
+			})
+		},
+	}
+	cmd.Flags().StringVar(&until, "until", "", "plan for jobs that are needed until this day (default: buy_ahead_days from now)")
+	return cmd
+}
+
+// buying makes the purchase that a command shows. With plans, purchase buys for them
+// alone; cuts are always planned for all.
+func (c *Command) buying(cmd *cobra.Command, args []string, until string, form func(*show.Buying, show.Page) ([]byte, error)) error {
+	page, err := c.page()
+	if err != nil {
+		return err
+	}
+	terms := bom.Terms{}
+	if until != "" {
+		if terms.Until, err = unit.ParseDate(until); err != nil {
+			return fmt.Errorf("--until: %w", err)
+		}
+	}
+	firm, done, err := c.workspace(cmd.Context())
+	if err != nil {
+		return err
+	}
+	defer done()
+	plans, _, err := c.plans(firm, args, cmd.ArgsLenAtDash())
+	if err != nil {
+		return err
+	}
+	jobs := jobsOf(plans)
+	if cmd.Name() == "purchase" {
+		terms.Jobs = jobs
+	}
+	b, err := c.buy(cmd.Context(), firm, terms)
+	if err != nil {
+		return err
+	}
+	b.Jobs = jobs
+	out, err := form(b, page)
+	if err != nil {
+		return failure{err}
+	}
+	return c.emit(out)
+}
+
+// jobsOf are the jobs of plans; without plans it is nil: all.
+func jobsOf(plans []source.Entry) map[string]bool {
+	if plans == nil {
+		return nil
+	}
+	jobs := map[string]bool{}
+	for _, e := range plans {
+		jobs[bom.JobOf(e.Path)] = true
+	}
+	return jobs
+}
+
+// buy shares the stock out and says what to buy. Plans that cannot be read whole
+// take nothing and are named; the status tells of them.
+func (c *Command) buy(ctx context.Context, firm *rules.Firm, terms bom.Terms) (*show.Buying, error) {
+	d, err := firm.Demands(ctx)
+	if err != nil {
+		return nil, failure{err}
+	}
+	w := &firm.Workspace
+	b := &show.Buying{At: firm.Tree.Name(), Currency: w.Currency.V, Feet: w.Lengths.V == "ft"}
+	for _, e := range d.Broken {
+		b.Broken = append(b.Broken, e.Path)
+		c.held = true
+	}
+	for _, g := range d.Gaps {
+		b.Gaps = append(b.Gaps, show.JobGap{Job: g.Job, Gap: g.Gap})
+	}
+	b.Purchase = bom.Buy(firm.Allocate(d), firm.Offers, firm.Catalog.Look, terms)
+	return b, nil
+}
