@@ -27,6 +27,7 @@ type Firm struct {
 	Skipped   []source.Entry // files that a pattern names and that are not read
 
 	noShelf bool
+	origin  Origin
 	weights map[string]*Override
 	fits    sync.Map // *catalog.Part to its fitted curve
 }
@@ -38,57 +39,52 @@ type FileProblem struct {
 	On, Part string
 }
 
-// Options says how a workspace is read.
+// Options says how a workspace is read. A revision of the workspace whose limits
+// or stock are used instead of its own keeps a change from moving its own ruler.
 type Options struct {
-	Today   unit.Date
-	NoShelf bool // inspections leave the rules of scope firm out
+	Today      unit.Date
+	NoShelf    bool        // inspections leave the rules of scope firm out
+	LimitsFrom source.Tree // or nil: whose profiles, codes, house figures, weights and defaults hold
+	StockFrom  source.Tree // or nil: whose stock sheets and orders are the shelf
 }
 
 // ErrNoWorkspace is returned where a tree has no driploop.toml.
 var ErrNoWorkspace = errors.New("there is no " + WorkspaceFile + " here; a workspace begins with one")
 
 // Load reads a workspace. What is wrong with its files is in Problems; an error
-// means that the tree cannot be read or is no workspace.
+// means that a tree cannot be read or is no workspace.
 func Load(t source.Tree, o Options) (*Firm, error) {
-	entries, err := t.Files()
+	f := &Firm{Tree: t, Today: o.Today, noShelf: o.NoShelf, Offers: &catalog.Offers{},
+		origin: Origin{At: t.Name(), LimitsFrom: t.Name(), StockFrom: t.Name()}}
+	own, err := f.open(t, "")
 	if err != nil {
 		return nil, err
 	}
-	f := &Firm{Tree: t, Today: o.Today, noShelf: o.NoShelf, Offers: &catalog.Offers{}, weights: map[string]*Override{}}
-	if err := f.readWorkspace(entries); err != nil {
-		return nil, err
+	f.Workspace = own.workspace
+	own.parts()
+	own.offers()
+	own.plans()
+	f.Limits = own.limits()
+	f.note(f.Workspace.Premises.Check(f.Catalog.Look))
+	stock := own.stock()
+	f.note(f.unknownNames())
+	if o.LimitsFrom != nil {
+		if err := f.measureBy(own, o.LimitsFrom); err != nil {
+			return nil, fmt.Errorf("the limits of %s: %w", o.LimitsFrom.Name(), err)
+		}
 	}
-	l := loader{firm: f, entries: entries}
-	l.parts()
-	l.limits()
-	l.offers()
-	l.stock()
-	l.plans()
-	f.checkNames()
+	if o.StockFrom != nil {
+		if stock, err = f.stockOf(own, o.StockFrom); err != nil {
+			return nil, fmt.Errorf("the stock of %s: %w", o.StockFrom.Name(), err)
+		}
+	}
+	f.weights = map[string]*Override{}
+	for i := range f.Workspace.Weights {
+		w := &f.Workspace.Weights[i]
+		f.weights[w.Rule] = w
+	}
+	f.Stock = catalog.Book(&f.Workspace.Premises, stock.sheets, stock.orders, f.Catalog.Look, f.Today)
 	return f, nil
-}
-
-func (f *Firm) readWorkspace(entries []source.Entry) error {
-	for _, e := range entries {
-		if e.Path != WorkspaceFile {
-			continue
-		}
-		if e.Skip != "" {
-			return fmt.Errorf("%s %s", WorkspaceFile, e.Skip)
-		}
-		src, err := f.Tree.Read(e)
-		if err != nil {
-			return err
-		}
-		doc, problems := parse(e.Path, src)
-		f.note(append(problems, source.Read(doc, f.Workspace.keys)...))
-		for i := range f.Workspace.Weights {
-			w := &f.Workspace.Weights[i]
-			f.weights[w.Rule] = w
-		}
-		return nil
-	}
-	return ErrNoWorkspace
 }
 
 // parse makes a document of the bytes of a file.
@@ -105,17 +101,18 @@ func (f *Firm) note(problems []source.Problem) {
 	}
 }
 
-// checkNames holds that the profile and code that the workspace names exist.
-func (f *Firm) checkNames() {
+// unknownNames are the problems of a profile and a code that the workspace names and
+// that there are not.
+func (f *Firm) unknownNames() []source.Problem {
+	var out []source.Problem
 	w := &f.Workspace
-	f.checkName(w.Profile, "profile", f.Limits.ProfileIDs())
-	f.checkName(w.Code, "code", f.Limits.CodeIDs())
-}
-
-func (f *Firm) checkName(v source.Val[string], what string, known []string) {
-	if p, bad := unknownName(v, what, known); bad {
-		f.note([]source.Problem{p})
+	if p, bad := unknownName(w.Profile, "profile", f.Limits.ProfileIDs()); bad {
+		out = append(out, p)
 	}
+	if p, bad := unknownName(w.Code, "code", f.Limits.CodeIDs()); bad {
+		out = append(out, p)
+	}
+	return out
 }
 
 // unknownName is the problem of a name that none of the known ones is.

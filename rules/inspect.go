@@ -16,10 +16,11 @@ import (
 
 // Result is what an inspection of a workspace found.
 type Result struct {
-	At        string // the tree: "worktree", ":index", or a revision
+	Origin
 	Today     string
 	Overrides []string
-	Notices   []string // what was left out, and why
+	Weights   []Override // what the workspace makes plain failures weigh
+	Notices   []string   // what was left out, and why
 	Workspace []*Finding
 	Plans     []*PlanResult
 	Counts
@@ -34,6 +35,7 @@ type PlanResult struct {
 	Runs          []Runs   // gain that runs, per band
 	Parts         []string // parts that the plan stands on, by ID
 	Cautions      []string
+	FilesOnly     string // why only the rules on its file looked at it, or ""
 	Counts
 }
 
@@ -92,7 +94,7 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 	if whole {
 		plans = f.PlanFiles
 	}
-	r := &Result{At: f.Tree.Name(), Today: f.Today.String(), Overrides: f.Overrides()}
+	r := &Result{Origin: f.Origin(), Today: f.Today.String(), Overrides: f.Overrides(), Weights: f.Workspace.Weights}
 	r.Plans = make([]*PlanResult, len(plans))
 	kept := make([]shelfPlan, len(plans))
 	g, ctx := errgroup.WithContext(ctx)
@@ -179,7 +181,13 @@ func (f *Firm) inspectPlan(e source.Entry, withParts bool) (*PlanResult, shelfPl
 		res.Title, res.Stage = c.Plan.Job.Title.V, c.Stage()
 		res.Profile, res.Code = c.ProfileName(), c.CodeName()
 	}
-	res.Findings = c.run(broken || c.Stage() == "cancelled")
+	switch {
+	case broken:
+		res.FilesOnly = "the plan file cannot be read whole"
+	case c.Stage() == "cancelled":
+		res.FilesOnly = "the job is cancelled"
+	}
+	res.Findings = c.run(res.FilesOnly != "")
 	kept := shelfPlan{}
 	if !broken {
 		kept = c.forShelf()
@@ -284,7 +292,7 @@ func (f *Firm) weigh(r *Report, stage string) []*Finding {
 	own := f.Override(r.rule.Name)
 	for _, x := range r.merged() {
 		if own != nil && own.Weight.Set {
-			w := weightNamed(own.Weight.V)
+			w := WeightNamed(own.Weight.V)
 			x.override = &w
 		}
 		if x.Weight = r.rule.weigh(x, stage); x.override != nil && *x.override == Off {
@@ -295,7 +303,8 @@ func (f *Firm) weigh(r *Report, stage string) []*Finding {
 	return out
 }
 
-func weightNamed(word string) Weight {
+// WeightNamed is the weight of that word, and the heaviest for an unknown one.
+func WeightNamed(word string) Weight {
 	for w, s := range weightWords {
 		if s == word {
 			return Weight(w)

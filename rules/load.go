@@ -2,6 +2,8 @@ package rules
 
 import (
 	"errors"
+	"fmt"
+	"slices"
 	"sort"
 
 	"golang.org/x/sync/errgroup"
@@ -11,10 +13,59 @@ import (
 	"driploop/rules/limits"
 )
 
-// loader reads the files of a workspace sort by sort.
+// loader reads the files of one tree sort by sort, for a firm that may also read
+// others.
 type loader struct {
-	firm    *Firm
-	entries []source.Entry
+	firm      *Firm
+	tree      source.Tree
+	as        string // what problems of its files are marked with; "" for the firm's own tree
+	entries   []source.Entry
+	workspace Workspace
+	head      *source.Doc // driploop.toml
+}
+
+// open lists a tree and reads its driploop.toml.
+func (f *Firm) open(t source.Tree, as string) (*loader, error) {
+	entries, err := t.Files()
+	if err != nil {
+		return nil, err
+	}
+	l := &loader{firm: f, tree: t, as: as, entries: entries}
+	for _, e := range entries {
+		if e.Path != WorkspaceFile {
+			continue
+		}
+		if e.Skip != "" {
+			return nil, fmt.Errorf("%s %s", WorkspaceFile, e.Skip)
+		}
+		src, err := t.Read(e)
+		if err != nil {
+			return nil, err
+		}
+		doc, problems := parse(e.Path, src)
+		l.head = doc
+		l.note(append(problems, source.Read(doc, l.workspace.keys)...))
+		return l, nil
+	}
+	return nil, ErrNoWorkspace
+}
+
+// note keeps problems of the tree's files. Those of another tree than the firm's own
+// say so, and are left out where the firm's own files have them too.
+func (l *loader) note(problems []source.Problem) {
+	if l.as == "" {
+		l.firm.note(problems)
+		return
+	}
+	for _, p := range problems {
+		same := func(q FileProblem) bool {
+			return q.At.Path() == p.At.Path() && q.At.Line() == p.At.Line() && q.Says == p.Says
+		}
+		if !slices.ContainsFunc(l.firm.Problems, same) {
+			p.Says += " (at " + l.as + ")"
+			l.firm.note([]source.Problem{p})
+		}
+	}
 }
 
 // matching lists the entries of one sort of file; those that cannot be read are
@@ -25,11 +76,11 @@ func (l *loader) matching(patterns []string) []source.Entry {
 		if e.Path == WorkspaceFile || !anyMatch(patterns, e.Path) {
 			continue
 		}
-		if e.Skip != "" {
+		if e.Skip == "" {
+			out = append(out, e)
+		} else if !slices.ContainsFunc(l.firm.Skipped, func(s source.Entry) bool { return s.Path == e.Path }) {
 			l.firm.Skipped = append(l.firm.Skipped, e)
-			continue
 		}
-		out = append(out, e)
 	}
 	return out
 }
@@ -52,7 +103,7 @@ func (l *loader) read(entries []source.Entry) []*source.Doc {
 	g.SetLimit(sideBySide())
 	for i, e := range entries {
 		g.Go(func() error {
-			doc, found := readDoc(l.firm.Tree, e)
+			doc, found := readDoc(l.tree, e)
 			problems[i] = found
 			if doc != nil {
 				docs[i] = doc
@@ -63,7 +114,7 @@ func (l *loader) read(entries []source.Entry) []*source.Doc {
 	g.Wait()
 	var out []*source.Doc
 	for i := range docs {
-		l.firm.note(problems[i])
+		l.note(problems[i])
 		if docs[i] != nil {
 			out = append(out, docs[i])
 		}
@@ -88,7 +139,7 @@ func readDoc(t source.Tree, e source.Entry) (*source.Doc, []source.Problem) {
 
 func (l *loader) parts() {
 	var own []*catalog.Part
-	for _, d := range l.read(l.matching(patterns(l.firm.Workspace.Catalog, "catalog"))) {
+	for _, d := range l.read(l.matching(patterns(l.workspace.Catalog, "catalog"))) {
 		parts, problems := catalog.ReadParts(d)
 		l.notePart(problems, parts)
 		own = append(own, parts...)
@@ -112,40 +163,51 @@ func (l *loader) notePart(problems []source.Problem, parts []*catalog.Part) {
 	}
 }
 
-func (l *loader) limits() {
-	set, problems := limits.Load(l.read(l.matching(patterns(l.firm.Workspace.Profiles, "profiles")))...)
-	l.firm.Limits = set
-	l.firm.note(problems)
+func (l *loader) limits() *limits.Set {
+	set, problems := limits.Load(l.read(l.profileFiles())...)
+	l.note(problems)
+	return set
+}
+
+func (l *loader) profileFiles() []source.Entry {
+	return l.matching(patterns(l.workspace.Profiles, "profiles"))
 }
 
 func (l *loader) offers() {
-	for _, d := range l.read(l.matching(patterns(l.firm.Workspace.Offers, "offers"))) {
+	for _, d := range l.read(l.matching(patterns(l.workspace.Offers, "offers"))) {
 		o, problems := catalog.ReadOffers(d)
-		l.firm.note(problems)
+		l.note(problems)
 		l.firm.Offers.Add(o)
 	}
-	l.firm.note(l.firm.Offers.Check(l.firm.Catalog.Look))
+	l.note(l.firm.Offers.Check(l.firm.Catalog.Look))
 }
 
-func (l *loader) stock() {
-	var sheets []*catalog.Sheet
-	var orders []*catalog.Order
-	for _, d := range l.read(l.matching(patterns(l.firm.Workspace.Stock, "stock"))) {
+// stockFiles are stock sheets and orders as they were read.
+type stockFiles struct {
+	sheets []*catalog.Sheet
+	orders []*catalog.Order
+}
+
+func (l *loader) stock() stockFiles {
+	var out stockFiles
+	for _, d := range l.read(l.shelfFiles()) {
 		s, o, problems := catalog.ReadStock(d)
-		l.firm.note(problems)
+		l.note(problems)
 		if s != nil {
-			sheets = append(sheets, s)
+			out.sheets = append(out.sheets, s)
 		}
 		if o != nil {
-			orders = append(orders, o)
+			out.orders = append(out.orders, o)
 		}
 	}
-	f := l.firm
-	f.note(f.Workspace.Premises.Check(f.Catalog.Look))
-	f.note(catalog.CheckStock(sheets, orders, f.Catalog.Look))
-	f.Stock = catalog.Book(&f.Workspace.Premises, sheets, orders, f.Catalog.Look, f.Today)
+	l.note(catalog.CheckStock(out.sheets, out.orders, l.firm.Catalog.Look))
+	return out
+}
+
+func (l *loader) shelfFiles() []source.Entry {
+	return l.matching(patterns(l.workspace.Stock, "stock"))
 }
 
 func (l *loader) plans() {
-	l.firm.PlanFiles = l.matching(patterns(l.firm.Workspace.Plans, "plans"))
+	l.firm.PlanFiles = l.matching(patterns(l.workspace.Plans, "plans"))
 }

@@ -62,6 +62,28 @@ func (n *Node) Get(name string) *KeyNode {
 	return nil
 }
 
+// Same reports two values that mean the same: the order of keys, and how a number or
+// a string is written, do not matter. A value that is not there is nil.
+func Same(a, b *Node) bool {
+	if a == nil || b == nil {
+		return a == b
+	}
+	if a.Kind != b.Kind || a.Kind == Refused || len(a.Keys) != len(b.Keys) || len(a.Items) != len(b.Items) {
+		return false
+	}
+	for _, k := range a.Keys {
+		if other := b.Get(k.Name); other == nil || !Same(k.Value, other.Value) {
+			return false
+		}
+	}
+	for i := range a.Items {
+		if !Same(a.Items[i], b.Items[i]) {
+			return false
+		}
+	}
+	return a.Str == b.Str && a.Int == b.Int && a.Float == b.Float && a.Bool == b.Bool && a.Time.Equal(b.Time)
+}
+
 // fewKeys is up to how many keys a search one by one beats a map.
 const fewKeys = 12
 

@@ -55,7 +55,7 @@ a workspace it also knows the workspace's own profiles and what it overrides.`,
 // workspaceIfAny reads the workspace. Where the call names none and the folder is
 // none there is no firm, which is no error.
 func (c *Command) workspaceIfAny(ctx context.Context, named bool) (*rules.Firm, func(), error) {
-	if !named && c.shared.at == "" {
+	if !named && c.shared.at+c.shared.limitsFrom+c.shared.stockFrom == "" {
 		_, err := os.Lstat(filepath.Join(c.shared.root, rules.WorkspaceFile))
 		if errors.Is(err, fs.ErrNotExist) {
 			return nil, func() {}, nil

@@ -32,6 +32,8 @@ type Command struct {
 // shared are the flags that all commands have.
 type shared struct {
 	root, as, out, at string
+	limitsFrom        string
+	stockFrom         string
 	today, color      string
 	quiet             bool
 }
@@ -116,6 +118,8 @@ func (c *Command) tree() *cobra.Command {
 	f.StringVar(&c.shared.as, "as", "", "form of the output")
 	f.StringVar(&c.shared.out, "out", "", "write to a file, whole or not at all")
 	f.StringVar(&c.shared.at, "at", "", "read the workspace from a git revision, or :index for what is staged")
+	f.StringVar(&c.shared.limitsFrom, "limits-from", "", "take profiles, codes, house figures and weights from a git revision")
+	f.StringVar(&c.shared.stockFrom, "stock-from", "", "take stock sheets and orders from a git revision")
 	f.StringVar(&c.shared.today, "today", "", "the day to go by, like 2026-12-01 (default: today, UTC)")
 	f.StringVar(&c.shared.color, "color", "auto", "auto, always or never")
 	f.BoolVar(&c.shared.quiet, "quiet", false, "no messages, and of findings only holds")

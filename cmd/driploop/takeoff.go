@@ -18,7 +18,7 @@ with their allowance for cutting, a connector for each field-cut end, adapters,
 fuses, conductors, consumables and extras. What exists, or somebody else brings,
 is left out; so are cancelled jobs.`,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "csv", "xlsx")
+			form, err := c.form("text", "json", "csv", "markdown", "xlsx")
 			if err != nil {
 				return err
 			}
@@ -57,6 +57,8 @@ func takeoffAs(t *show.Takeoff, form string, page show.Page) ([]byte, error) {
 		return t.JSON()
 	case "csv":
 		return t.CSV()
+	case "markdown":
+		return t.Markdown(), nil
 	}
 	return t.Text(page)
 }
@@ -64,7 +66,7 @@ func takeoffAs(t *show.Takeoff, form string, page show.Page) ([]byte, error) {
 // takeOff counts the plans. A plan that cannot be read leaves a gap and the others
 // are counted.
 func (c *Command) takeOff(firm *rules.Firm, plans []source.Entry) *show.Takeoff {
-	out := &show.Takeoff{Feet: firm.Workspace.Lengths.V == "ft"}
+	out := &show.Takeoff{Feet: firm.Workspace.Lengths.V == "ft", From: firm.Origin(), Today: firm.Today.String(), Overrides: firm.Overrides()}
 	var all []bom.PlanTakeoff
 	for _, e := range plans {
 		cs, broken := firm.Case(e)

@@ -22,16 +22,16 @@ func (c *Command) workspace(ctx context.Context) (firm *rules.Firm, close func()
 	if err != nil {
 		return nil, nil, err
 	}
-	tree, close, err := c.source(ctx)
+	t, err := c.trees(ctx)
 	if err != nil {
 		return nil, nil, err
 	}
-	firm, err = rules.Load(tree, rules.Options{Today: today, NoShelf: c.bare})
+	firm, err = rules.Load(t.own, rules.Options{Today: today, NoShelf: c.bare, LimitsFrom: t.limits, StockFrom: t.stock})
 	if err != nil {
-		close()
+		t.close()
 		return nil, nil, fmt.Errorf("reading the workspace in %s: %w", c.shared.root, err)
 	}
-	return firm, close, nil
+	return firm, t.close, nil
 }
 
 func (c *Command) today() (unit.Date, error) {
@@ -45,27 +45,43 @@ func (c *Command) today() (unit.Date, error) {
 	return d, nil
 }
 
-// source is the tree that the flags name: the folder, or a revision of it.
-func (c *Command) source(ctx context.Context) (source.Tree, func(), error) {
+// trees are the workspace as the flags name it, and what its limits and its stock
+// are taken from where that is another revision of it, or nil.
+type trees struct {
+	own, limits, stock source.Tree
+	close              func()
+}
+
+func (c *Command) trees(ctx context.Context) (t trees, err error) {
+	t.close = func() {}
 	if c.shared.at == "" {
 		if err := c.begins(); err != nil {
-			return nil, nil, err
+			return t, err
 		}
-		tree, err := source.Disk(c.shared.root)
-		if err != nil {
-			return nil, nil, fmt.Errorf("opening the workspace: %w", err)
+		if t.own, err = source.Disk(c.shared.root); err != nil {
+			return t, fmt.Errorf("opening the workspace: %w", err)
 		}
-		return tree, func() {}, nil
+	}
+	if c.shared.at == "" && c.shared.limitsFrom == "" && c.shared.stockFrom == "" {
+		return t, nil
 	}
 	r, err := repo.Open(ctx, c.shared.root)
 	if err != nil {
-		return nil, nil, err
+		return t, err
 	}
-	tree, err := r.At(ctx, c.shared.at)
-	if err != nil {
-		return nil, nil, errors.Join(err, r.Close())
+	for _, from := range []struct {
+		flag, rev string
+		to        *source.Tree
+	}{{"--at", c.shared.at, &t.own}, {"--limits-from", c.shared.limitsFrom, &t.limits}, {"--stock-from", c.shared.stockFrom, &t.stock}} {
+		if from.rev == "" {
+			continue
+		}
+		if *from.to, err = r.At(ctx, from.rev); err != nil {
+			return t, errors.Join(fmt.Errorf("%s: %w", from.flag, err), r.Close())
+		}
 	}
-	return tree, func() { r.Close() }, nil
+	t.close = func() { r.Close() }
+	return t, nil
 }
 
 // begins refuses a folder that is no workspace before all that lies below it is
@@ -168,4 +184,28 @@ func (c *Command) inside(name string) (string, error) {
 		return "", fmt.Errorf("%s is not in the workspace", name)
 	}
 	return filepath.ToSlash(filepath.Clean(name)), nil
+}
+
+// belowTop leads from the top of the repository that holds the workspace to the
+// workspace: "" or "demo/". Code hosts call files by their names from there. The top is
+// the nearest folder with a .git in it; git itself is not asked.
+func (c *Command) belowTop() string {
+	root, err := filepath.Abs(c.shared.root)
+	if err != nil {
+		return ""
+	}
+	if real, err := filepath.EvalSymlinks(root); err == nil {
+		root = real
+	}
+	for top := root; ; top = filepath.Dir(top) {
+		if _, err := os.Lstat(filepath.Join(top, ".git")); err == nil {
+			if rel, err := filepath.Rel(top, root); err == nil && rel != "." {
+				return filepath.ToSlash(rel) + "/"
+			}
+			return ""
+		}
+		if top == filepath.Dir(top) {
+			return ""
+		}
+	}
 }

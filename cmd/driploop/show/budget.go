@@ -44,10 +44,13 @@ func (b *Budget) document() *Document {
 // about says what the figures were made from.
 func (b *Budget) about() Block {
 	c := b.Case
-	out := Block{how: faint, Text: []string{fmt.Sprintf("%s, stage %s, limits %s; %s, on %s.", c.Plan.File.Path, c.Stage(),
-		or(c.ProfileName(), "none named"), treeName(c.Firm.Tree.Name()), c.Today())}}
+	out := Block{how: faint, Text: []string{fmt.Sprintf("%s, stage %s, limits %s; %s, on %s%s.", c.Plan.File.Path, c.Stage(),
+		or(c.ProfileName(), "none named"), treeName(c.Firm.Tree.Name()), c.Today(), borrowed(c.Firm.Origin()))}}
 	for _, o := range c.Firm.Overrides() {
 		out.Items = append(out.Items, Item{Text: "changed here: " + o})
+	}
+	for _, d := range c.Firm.Origin().Differs {
+		out.Items = append(out.Items, Item{Text: "rulers: " + d})
 	}
 	return out
 }

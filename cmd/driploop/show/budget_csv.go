@@ -1,6 +1,7 @@
 package show
 
 import (
+	"slices"
 	"strconv"
 
 	"driploop/catalog/unit"
@@ -13,14 +14,15 @@ import (
 func (b *Budget) CSV() ([]byte, error) {
 	s := &figureSheet{}
 	c := b.Case
-	for _, a := range [][2]string{{"plan", c.Plan.File.Path}, {"job", c.Plan.ID}, {"stage", c.Stage()}, {"revision", c.Firm.Tree.Name()},
+	from := c.Firm.Origin()
+	for _, a := range [][2]string{{"plan", c.Plan.File.Path}, {"job", c.Plan.ID}, {"stage", c.Stage()}, {"revision", from.At}, {"limits_from", from.LimitsFrom}, {"stock_from", from.StockFrom},
 		{"today", c.Today().String()}, {"profile", c.ProfileName()}} {
 		s.rows = append(s.rows, csvFigure{kind: "about", name: a[0], says: a[1]})
 	}
 	for _, o := range c.Firm.Overrides() {
 		s.rows = append(s.rows, csvFigure{kind: "about", name: "override", says: o})
 	}
-	for _, n := range b.Notices() {
+	for _, n := range slices.Concat(from.Differs, b.Notices()) {
 		s.rows = append(s.rows, csvFigure{kind: "about", name: "notice", says: n})
 	}
 	for _, x := range b.Bands {

@@ -1,6 +1,8 @@
 package show
 
 import (
+	"slices"
+
 	"driploop/catalog/unit"
 	"driploop/rules"
 )
@@ -10,8 +12,9 @@ import (
 // says why. Addends are always there.
 func (b *Budget) JSON() ([]byte, error) {
 	c := b.Case
-	out := budgetJSON{Plan: c.Plan.File.Path, Job: c.Plan.ID, Stage: c.Stage(), At: c.Firm.Tree.Name(), Today: c.Today().String(),
-		Profile: c.ProfileName(), Overrides: orEmpty(c.Firm.Overrides()), Notices: orEmpty(b.Notices()), Bands: []bandJSON{}, Areas: []areaJSON{}}
+	from := c.Firm.Origin()
+	out := budgetJSON{Plan: c.Plan.File.Path, Job: c.Plan.ID, Stage: c.Stage(), At: from.At, LimitsFrom: from.LimitsFrom, StockFrom: from.StockFrom, Today: c.Today().String(),
+		Profile: c.ProfileName(), Overrides: orEmpty(c.Firm.Overrides()), Notices: orEmpty(slices.Concat(from.Differs, b.Notices())), Bands: []bandJSON{}, Areas: []areaJSON{}}
 	chains := map[*rules.BudgetBand]*rules.BandChain{}
 	for _, g := range b.groups() {
 		chains[g.up], chains[g.down] = g.chain, g.chain
@@ -26,16 +29,18 @@ func (b *Budget) JSON() ([]byte, error) {
 }
 
 type budgetJSON struct {
-	Plan      string     `json:"plan"`
-	Job       string     `json:"job"`
-	Stage     string     `json:"stage"`
-	At        string     `json:"at"`
-	Today     string     `json:"today"`
-	Profile   string     `json:"profile"`
-	Overrides []string   `json:"overrides"`
-	Notices   []string   `json:"notices"`
-	Bands     []bandJSON `json:"bands"`
-	Areas     []areaJSON `json:"areas"`
+	Plan       string     `json:"plan"`
+	Job        string     `json:"job"`
+	Stage      string     `json:"stage"`
+	At         string     `json:"at"`
+	LimitsFrom string     `json:"limits_from"`
+	StockFrom  string     `json:"stock_from"`
+	Today      string     `json:"today"`
+	Profile    string     `json:"profile"`
+	Overrides  []string   `json:"overrides"`
+	Notices    []string   `json:"notices"`
+	Bands      []bandJSON `json:"bands"`
+	Areas      []areaJSON `json:"areas"`
 }
 
 type bandJSON struct {

@@ -241,7 +241,7 @@ func (t *inspectText) finding(m matter, tag, planPath string) {
 		t.hang("  do ", mend, 5, plain, Clean(f.Do+ending(f.Do)))
 	}
 	if w := f.Waived; w != nil {
-		t.hang("     ", plain, 5, plain, Clean("accepted"+by(w)+": "+w.Because.V))
+		t.hang("     ", plain, 5, plain, Clean(acceptance(w)))
 	}
 	for _, rel := range f.Related {
 		if f.Lacks != "" {
@@ -273,18 +273,20 @@ func by(w *rules.Settled) string {
 
 // heading says what a finding stands on and where that is written.
 func heading(f *rules.Finding, planPath string) string {
-	kind, name, _ := strings.Cut(f.On, ".")
-	on := kind
-	if name != "" {
-		on += " " + name
-	}
-	if f.Band != "" {
-		on += ", " + f.Band
-	}
+	on := thing(f)
 	if f.Outcome == rules.Unknown {
 		on += ", not assessed"
 	}
 	return on + " — " + where(f.At.Path(), f.At.Line(), planPath)
+}
+
+// onWords is what a finding stands on: "cable C1".
+func onWords(on string) string {
+	kind, name, _ := strings.Cut(on, ".")
+	if name == "" {
+		return kind
+	}
+	return kind + " " + name
 }
 
 // where is a line of the plan at hand, or a file and its line.
@@ -317,10 +319,13 @@ func (t *inspectText) foot(r *rules.Result) {
 	for _, o := range r.Overrides {
 		t.hang("changed here: ", plain, 4, plain, Clean(o))
 	}
+	for _, d := range r.Differs {
+		t.hang("rulers: ", plain, 4, plain, Clean(d))
+	}
 	for _, n := range r.Notices {
 		t.hang("left out: ", plain, 4, plain, Clean(n))
 	}
-	t.para("", faint, Terms("Looked at %s on %s. The tool holds the plan against the limits it was given; it does not say that an install may go up.", treeName(r.At), r.Today))
+	t.para("", faint, Terms("%s The tool holds the plan against the limits it was given; it does not say that an install may go up.", lookedAt(r.Origin, r.Today)))
 }
 
 func treeName(at string) string {

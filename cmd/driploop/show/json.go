@@ -45,8 +45,8 @@ func quiet(src []byte) []byte {
 
 // InspectJSON writes the result of an inspection as the interface describes it.
 func InspectJSON(r *rules.Result, version string) ([]byte, error) {
-	out := inspectJSON{Tool: "driploop", Version: version, At: r.At, Today: r.Today,
-		Overrides: orEmpty(r.Overrides), Notices: orEmpty(r.Notices), Holds: r.Holds, Punch: r.Punch, Notes: r.Notes,
+	out := inspectJSON{Tool: "driploop", Version: version, At: r.At, LimitsFrom: r.LimitsFrom, StockFrom: r.StockFrom, Today: r.Today,
+		Overrides: orEmpty(r.Overrides), Notices: notices(r), Holds: r.Holds, Punch: r.Punch, Notes: r.Notes,
 		Waived: r.Waived, Unknown: r.Unknown}
 	out.Workspace.Findings = findingsJSON(r.Workspace)
 	out.Plans = []planJSON{}
@@ -59,13 +59,15 @@ func InspectJSON(r *rules.Result, version string) ([]byte, error) {
 }
 
 type inspectJSON struct {
-	Tool      string   `json:"tool"`
-	Version   string   `json:"version"`
-	At        string   `json:"at"`
-	Today     string   `json:"today"`
-	Overrides []string `json:"overrides"`
-	Notices   []string `json:"notices"`
-	Workspace struct {
+	Tool       string   `json:"tool"`
+	Version    string   `json:"version"`
+	At         string   `json:"at"`
+	LimitsFrom string   `json:"limits_from"`
+	StockFrom  string   `json:"stock_from"`
+	Today      string   `json:"today"`
+	Overrides  []string `json:"overrides"`
+	Notices    []string `json:"notices"`
+	Workspace  struct {
 		Findings []findingJSON `json:"findings"`
 	} `json:"workspace"`
 	Plans   []planJSON `json:"plans"`

@@ -9,6 +9,7 @@ import (
 
 	"driploop/bom"
 	"driploop/catalog/unit"
+	"driploop/rules"
 )
 
 // Takeoff is what plans take, ready to be shown.
@@ -16,6 +17,10 @@ type Takeoff struct {
 	Rows []*bom.Total
 	Gaps []JobGap
 	Feet bool // lengths are printed in feet
+
+	From      rules.Origin // the allowance for cutting is one of the limits
+	Today     string
+	Overrides []string
 }
 
 // JobGap is something of a job that could not be counted.
@@ -39,6 +44,13 @@ func (t *Takeoff) Text(page Page) ([]byte, error) {
 		s.para("", stop, Terms("Not counted: %s.", words(len(t.Gaps), "thing", "things")))
 		for _, g := range t.Gaps {
 			s.hang("  · ", plain, 4, plain, Terms("%s, %s: %s (line %d).", g.Job, strings.Replace(g.On, ".", " ", 1), g.Says, g.At.Line()))
+		}
+	}
+	if t.From.LimitsFrom != t.From.At {
+		s.gap()
+		s.para("", faint, Clean(t.madeFrom()))
+		for _, d := range t.From.Differs {
+			s.hang("rulers: ", plain, 4, plain, Clean(d))
 		}
 	}
 	return []byte(s.b.String()), nil
@@ -146,9 +158,15 @@ func (t *Takeoff) JSON() ([]byte, error) {
 		Line int    `json:"line"`
 	}
 	out := struct {
-		Rows []row `json:"rows"`
-		Gaps []gap `json:"not_counted"`
-	}{Rows: []row{}, Gaps: []gap{}}
+		At         string   `json:"at"`
+		LimitsFrom string   `json:"limits_from"`
+		StockFrom  string   `json:"stock_from"`
+		Today      string   `json:"today"`
+		Overrides  []string `json:"overrides"`
+		Notices    []string `json:"notices"`
+		Rows       []row    `json:"rows"`
+		Gaps       []gap    `json:"not_counted"`
+	}{t.From.At, t.From.LimitsFrom, t.From.StockFrom, t.Today, orEmpty(t.Overrides), orEmpty(t.From.Differs), []row{}, []gap{}}
 	for _, r := range t.Rows {
 		j := row{Part: r.Part.ID, Kind: r.Part.Kind.V, Unit: "each", Qty: number(r.Each, r.Length), Plans: map[string]any{}}
 		for _, s := range r.Jobs {
@@ -181,7 +199,8 @@ func number(each int, length unit.MM) json.Number {
 }
 
 // CSV writes one row for each part and job; lengths are in metres. What could not
-// be counted stands at the end with an empty quantity, so that it is not missed.
+// be counted stands at the end with an empty quantity, so that it is not missed; so
+// does where the limits came from, if not from the workspace itself.
 func (t *Takeoff) CSV() ([]byte, error) {
 	rows := [][]Cell{{"part", "kind", "name", "qty", "unit", "installed_m", "job"}}
 	for _, r := range t.Rows {
@@ -199,6 +218,11 @@ func (t *Takeoff) CSV() ([]byte, error) {
 	}
 	for _, g := range t.Gaps {
 		rows = append(rows, []Cell{"", "", CellOf(g.On + ": " + g.Says), "", "not counted", "", CellOf(g.Job)})
+	}
+	if t.From.LimitsFrom != t.From.At {
+		for _, says := range append([]string{t.madeFrom()}, t.From.Differs...) {
+			rows = append(rows, []Cell{"", "", CellOf(says), "", "made from", "", ""})
+		}
 	}
 	return csvOf(rows)
 }
