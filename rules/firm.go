@@ -70,12 +70,12 @@ func Load(t source.Tree, o Options) (*Firm, error) {
 	f.note(f.unknownNames())
 	if o.LimitsFrom != nil {
 		if err := f.measureBy(own, o.LimitsFrom); err != nil {
-			return nil, fmt.Errorf("the limits of %s: %w", o.LimitsFrom.Name(), err)
+			return nil, unusable("limits", o.LimitsFrom, err)
 		}
 	}
 	if o.StockFrom != nil {
 		if stock, err = f.stockOf(own, o.StockFrom); err != nil {
-			return nil, fmt.Errorf("the stock of %s: %w", o.StockFrom.Name(), err)
+			return nil, unusable("stock", o.StockFrom, err)
 		}
 	}
 	f.weights = map[string]*Override{}
@@ -85,6 +85,12 @@ func Load(t source.Tree, o Options) (*Firm, error) {
 	}
 	f.Stock = catalog.Book(&f.Workspace.Premises, stock.sheets, stock.orders, f.Catalog.Look, f.Today)
 	return f, nil
+}
+
+// unusable says that another tree's limits or stock cannot be used. That it is no
+// workspace says nothing of the firm's own tree, so the cause is not wrapped.
+func unusable(what string, from source.Tree, cause error) error {
+	return fmt.Errorf("the %s of %s cannot be used: %v", what, from.Name(), cause)
 }
 
 // parse makes a document of the bytes of a file.

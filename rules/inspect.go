@@ -21,6 +21,7 @@ type Result struct {
 	Overrides []string
 	Weights   []Override // what the workspace makes plain failures weigh
 	Notices   []string   // what was left out, and why
+	NoShelf   bool       // the rules of scope firm were left out
 	Workspace []*Finding
 	Plans     []*PlanResult
 	Counts
@@ -94,7 +95,7 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 	if whole {
 		plans = f.PlanFiles
 	}
-	r := &Result{Origin: f.Origin(), Today: f.Today.String(), Overrides: f.Overrides(), Weights: f.Workspace.Weights}
+	r := &Result{Origin: f.Origin(), Today: f.Today.String(), Overrides: f.Overrides(), Weights: f.Workspace.Weights, NoShelf: f.noShelf}
 	r.Plans = make([]*PlanResult, len(plans))
 	kept := make([]shelfPlan, len(plans))
 	g, ctx := errgroup.WithContext(ctx)

@@ -74,11 +74,14 @@ func run(args []string) (out, messages string, status int) {
 
 // readers say what in a result does more than show itself, by the form's own reader.
 var readers = map[string]func(string) string{
-	"text":     inLog,
-	"json":     inJSON,
-	"csv":      inCSV,
-	"markdown": inMarkdown,
-	"toml":     inTOML,
+	"text":        inLog,
+	"json":        inJSON,
+	"csv":         inCSV,
+	"markdown":    inMarkdown,
+	"toml":        inTOML,
+	"sarif":       inSARIF,
+	"annotations": inAnnotations,
+	"junit":       inJUnit,
 }
 
 // inLog reads a page as a terminal and a build runner do.
@@ -126,13 +129,21 @@ func inCSV(page string) string {
 
 var plainFigure = regexp.MustCompile(`^-?\d+(\.\d+)?$`)
 
+// ownHTML is the HTML of our own: what is folded, behind words that hold nothing from
+// a file.
+var ownHTML = regexp.MustCompile(`^(<details>\n<summary>[A-Za-z0-9 ,]+</summary>|</details>)\n?$`)
+
 func inMarkdown(page string) string {
 	src := []byte(page)
 	found := ""
 	doc := goldmark.New(goldmark.WithExtensions(extension.GFM, extension.Footnote)).Parser().Parse(text.NewReader(src))
 	ast.Walk(doc, func(n ast.Node, entering bool) (ast.WalkStatus, error) {
 		switch n := n.(type) {
-		case *ast.Link, *ast.Image, *ast.AutoLink, *ast.RawHTML, *ast.HTMLBlock:
+		case *ast.HTMLBlock:
+			if block := string(n.Lines().Value(src)); !ownHTML.MatchString(block) || n.HasClosure() {
+				found = "HTML: " + block
+			}
+		case *ast.Link, *ast.Image, *ast.AutoLink, *ast.RawHTML:
 			found = "a " + n.Kind().String()
 		case *ast.Text:
 			shown := strings.ReplaceAll(string(n.Segment.Value(src)), "&#124;", "|")
@@ -144,6 +155,9 @@ func inMarkdown(page string) string {
 	})
 	if found != "" {
 		return found
+	}
+	if strings.Count(page, "<details>") != strings.Count(page, "</details>") {
+		return "what is unfolded is not folded again"
 	}
 	return inLog(page)
 }

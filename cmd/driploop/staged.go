@@ -49,7 +49,11 @@ func (c *Command) lookAtStaged(ctx context.Context, args []string, dash int) (*l
 	if err != nil {
 		return nil, err
 	}
-	l, err := c.stagedIn(ctx, r, rules.Options{Today: today, NoShelf: c.bare}, args, dash)
+	o := rules.Options{Today: today, NoShelf: c.bare}
+	var l *look
+	if o.LimitsFrom, o.StockFrom, err = c.rulers(ctx, r); err == nil {
+		l, err = c.stagedIn(ctx, r, o, args, dash)
+	}
 	if err != nil || l == nil {
 		return nil, errors.Join(err, r.Close())
 	}

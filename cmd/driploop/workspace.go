@@ -69,19 +69,33 @@ func (c *Command) trees(ctx context.Context) (t trees, err error) {
 	if err != nil {
 		return t, err
 	}
-	for _, from := range []struct {
-		flag, rev string
-		to        *source.Tree
-	}{{"--at", c.shared.at, &t.own}, {"--limits-from", c.shared.limitsFrom, &t.limits}, {"--stock-from", c.shared.stockFrom, &t.stock}} {
-		if from.rev == "" {
-			continue
-		}
-		if *from.to, err = r.At(ctx, from.rev); err != nil {
-			return t, errors.Join(fmt.Errorf("%s: %w", from.flag, err), r.Close())
-		}
+	if c.shared.at != "" {
+		t.own, err = r.At(ctx, c.shared.at)
+	}
+	if err == nil {
+		t.limits, t.stock, err = c.rulers(ctx, r)
+	}
+	if err != nil {
+		return t, errors.Join(err, r.Close())
 	}
 	t.close = func() { r.Close() }
 	return t, nil
+}
+
+// rulers are the revisions that limits and stock are taken from, nil where they are
+// the workspace's own.
+func (c *Command) rulers(ctx context.Context, r *repo.Repo) (limits, stock source.Tree, err error) {
+	if rev := c.shared.limitsFrom; rev != "" {
+		if limits, err = r.At(ctx, rev); err != nil {
+			return nil, nil, fmt.Errorf("--limits-from: %w", err)
+		}
+	}
+	if rev := c.shared.stockFrom; rev != "" {
+		if stock, err = r.At(ctx, rev); err != nil {
+			return nil, nil, fmt.Errorf("--stock-from: %w", err)
+		}
+	}
+	return limits, stock, nil
 }
 
 // begins refuses a folder that is no workspace before all that lies below it is

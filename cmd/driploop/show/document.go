@@ -171,14 +171,7 @@ func gridMD(g *Grid) string {
 	if g == nil {
 		return ""
 	}
-	row := func(cells []string) string {
-		out := "|"
-		for _, c := range cells {
-			out += " " + string(Prose(c)) + " |"
-		}
-		return out + "\n"
-	}
-	out := "\n" + row(g.Columns)
+	out := "\n" + rowMD(g.Columns)
 	for i := range g.Columns {
 		if g.isWords(i) {
 			out += "|---"
@@ -188,7 +181,15 @@ func gridMD(g *Grid) string {
 	}
 	out += "|\n"
 	for _, r := range g.Rows {
-		out += row(r)
+		out += rowMD(r)
 	}
 	return out
+}
+
+func rowMD(cells []string) string {
+	out := "|"
+	for _, c := range cells {
+		out += " " + string(Prose(c)) + " |"
+	}
+	return out + "\n"
 }

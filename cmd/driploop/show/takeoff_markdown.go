@@ -16,7 +16,7 @@ func (t *Takeoff) Markdown() []byte {
 	}
 	if len(t.Rows) == 0 {
 		d.Blocks = append(d.Blocks, Block{Text: []string{"These plans take nothing."}})
-		t.notCounted(d)
+		t.gapsBlock(d)
 		return d.Markdown()
 	}
 	g := &Grid{Words: 3, Columns: []string{"part", "kind", "for", "to bring", "installed"}}
@@ -24,12 +24,12 @@ func (t *Takeoff) Markdown() []byte {
 		g.Rows = append(g.Rows, []string{r.Part.ID, r.Part.Kind.V, t.jobs(r), t.qty(r.Each, r.Length), t.installed(r)})
 	}
 	d.Blocks = append(d.Blocks, Block{Table: g})
-	t.notCounted(d)
+	t.gapsBlock(d)
 	return d.Markdown()
 }
 
-// notCounted adds what could not be counted.
-func (t *Takeoff) notCounted(d *Document) {
+// gapsBlock adds what could not be counted.
+func (t *Takeoff) gapsBlock(d *Document) {
 	if len(t.Gaps) == 0 {
 		return
 	}
