@@ -134,6 +134,8 @@ func (j *Job) keys(k *source.Keys) {
 	source.Opt(k, &j.Use, "use", source.OneOf("personal", "business", "public"), "who uses it")
 	source.Opt(k, &j.Crew, "crew", source.Name, "crew of the workspace")
 	source.Opt(k, &j.Bands, "bands", source.ListOf(catalog.BandName), "bands the install is for")
+	cancelled := source.Holds("stage", "cancelled")
+	k.Demand(source.Condition{When: &cancelled, Any: []source.State{source.Given("because")}})
 	if j.Stage.V == "cancelled" && !k.Has("because") {
 		k.Missing("because", "a cancelled job says why")
 	}

@@ -111,7 +111,7 @@ type BondRow struct {
 	SuppliedBy source.Val[string]
 }
 
-var end = source.Checked("cable end", `"N male"`, func(s string) (EndRow, error) {
+var end = eitherEnd(source.Checked("cable end", `"N male"`, func(s string) (EndRow, error) {
 	f, err := catalog.ParseFace(s)
 	switch {
 	case err == nil:
@@ -120,9 +120,15 @@ var end = source.Checked("cable end", `"N male"`, func(s string) (EndRow, error)
 		return EndRow{Part: s}, nil
 	}
 	return EndRow{}, err
-})
+}))
 
-var bothEnds = source.Map(source.ListOf(end), func(v []source.Val[EndRow]) ([]source.Val[EndRow], error) {
+// eitherEnd adds what a machine may know of a cable's end.
+func eitherEnd(t source.Type[EndRow]) source.Type[EndRow] {
+	t.Shape.Choice = func() []source.TypeDoc { return []source.TypeDoc{catalog.FaceType.Shape, source.Name.Shape} }
+	return t
+}
+
+var bothEnds = source.Map(source.Exactly(2, source.ListOf(end)), func(v []source.Val[EndRow]) ([]source.Val[EndRow], error) {
 	if len(v) != 2 {
 		return nil, fmt.Errorf("%d ends were read, two are expected: from end, to end", len(v))
 	}
@@ -132,7 +138,7 @@ var bothEnds = source.Map(source.ListOf(end), func(v []source.Val[EndRow]) ([]so
 // mostPlaces bounds a way, which every line through it passes.
 const mostPlaces = 100
 
-var way = source.Map(source.ListOf(stretch), func(v []source.Val[Stretch]) ([]source.Val[Stretch], error) {
+var way = source.Map(source.Shaped(source.ListOf(stretch), source.Form{Most: mostPlaces}), func(v []source.Val[Stretch]) ([]source.Val[Stretch], error) {
 	if len(v) > mostPlaces {
 		return nil, fmt.Errorf("%d places were read, %d are the most", len(v), mostPlaces)
 	}
@@ -157,19 +163,16 @@ func (d *DeviceRow) keys(k *source.Keys) {
 	source.Opt(k, &d.People, "people", source.Length, "nearest that a person stays")
 	source.Opt(k, &d.Coupling, "coupling", source.OneOf("antenna", "cradle", "wired"), "how phones are coupled to an amplifier; absent: antenna")
 	source.Opt(k, &d.Serial, "serial", source.Text, "serial number once built")
-	source.Each(k, &d.Set, "set", catalog.IsBand, source.Inline((*Setting).keys), "how an amplifier is set, by band")
+	source.Each(k, &d.Set, "set", catalog.ByBand, source.Inline((*Setting).keys), "how an amplifier is set, by band")
 	at := source.Map(point, func(p Point) (Copy, error) {
 		return Copy{Point: source.Val[Point]{V: p, Set: true}}, nil
 	})
-	source.Each(k, &d.Copies, "copies", validName, source.Either(source.IsArray, at, source.Inline((*Copy).keys), "position or table"), "more devices of the same part")
+	source.Each(k, &d.Copies, "copies", source.Names, source.Either(source.IsArray, at, source.Inline((*Copy).keys), "position or table"), "more devices of the same part")
+	k.Demand(source.Condition{Any: []source.State{source.Given("part"), source.Holds("existing", true)}},
+		source.Needs("part", "kind"))
 	if !k.Recording() && !k.Has("part") && !(maybe(k, d.Existing, "existing") && k.Has("kind")) {
 		k.Missing("part", "only what exists already may give its kind instead")
 	}
-}
-
-func validName(s string) error {
-	_, err := source.NameOf(s)
-	return err
 }
 
 func (s *Setting) keys(k *source.Keys) {
@@ -194,6 +197,7 @@ func (c *CableRow) keys(k *source.Keys) {
 	source.Opt(k, &c.LeastBend, "least_bend", source.Length, "tightest bend on its way")
 	source.Opt(k, &c.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &c.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
+	k.Demand(source.Needs("part", "like"))
 	if !k.Recording() && !k.Has("part") && !k.Has("like") {
 		k.Missing("part", "or like: which cable it is")
 	}
@@ -242,6 +246,7 @@ func (b *BondRow) keys(k *source.Keys) {
 	source.Opt(k, &b.Raceway, "raceway", source.OneOf("none", "plastic", "metal", "metal-bonded-one-end", "metal-bonded-both-ends"), "what it runs in")
 	source.Opt(k, &b.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &b.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
+	k.Demand(source.Condition{Any: []source.State{source.Given("part"), source.Holds("direct", true), source.Holds("existing", true)}})
 	if !k.Recording() && !k.Has("part") && !maybe(k, b.Direct, "direct") && !maybe(k, b.Existing, "existing") {
 		k.Missing("part", "or direct = true: what makes the bond")
 	}

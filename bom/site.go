@@ -84,7 +84,7 @@ func (p *Place) Indoors() bool {
 }
 
 var (
-	point = source.Map(source.ListOf(source.Between(-10000, 10000, "m")), func(v []source.Val[float64]) (Point, error) {
+	point = source.Map(source.Exactly(3, source.ListOf(source.Between(-10000, 10000, "m"))), func(v []source.Val[float64]) (Point, error) {
 		if len(v) != 3 {
 			return Point{}, fmt.Errorf("%d numbers were read, three are expected: east, north, height", len(v))
 		}
@@ -155,13 +155,13 @@ func (r Ref) String() string {
 	return r.Name + "." + r.Port
 }
 
-var ref = source.Checked("reference", `"donor.rf"`, func(s string) (Ref, error) {
+var ref = source.Shaped(source.Checked("reference", `"donor.rf"`, func(s string) (Ref, error) {
 	name, port, dot := strings.Cut(s, ".")
 	if !source.ValidID(name) || dot && !source.ValidID(port) {
 		return Ref{}, fmt.Errorf("%s is no reference; write device, device.port or cable.1", source.Quote(s))
 	}
 	return Ref{name, port}, nil
-})
+}), source.Form{Pattern: `^[A-Za-z0-9][A-Za-z0-9_-]{0,63}(\.[A-Za-z0-9][A-Za-z0-9_-]{0,63})?$`})
 
 // Stretch is one place on a cable's way, with the length that lies in it where
 // the plan says so.
@@ -170,7 +170,7 @@ type Stretch struct {
 	Length source.Val[unit.MM]
 }
 
-var stretch = source.Checked("place, or place and length", `"entry 0.5 m"`, func(s string) (Stretch, error) {
+var stretch = source.Shaped(source.Checked("place, or place and length", `"entry 0.5 m"`, func(s string) (Stretch, error) {
 	name, length, more := strings.Cut(s, " ")
 	if !source.ValidID(name) {
 		return Stretch{}, fmt.Errorf("%s names no place", source.Quote(s))
@@ -184,4 +184,4 @@ var stretch = source.Checked("place, or place and length", `"entry 0.5 m"`, func
 		w.Length = source.Val[unit.MM]{V: l, Set: true}
 	}
 	return w, nil
-})
+}), source.Form{Pattern: `^[A-Za-z0-9][A-Za-z0-9_-]{0,63}( ` + unit.LengthPattern[1:len(unit.LengthPattern)-1] + `)?$`})

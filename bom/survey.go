@@ -2,6 +2,8 @@ package bom
 
 import (
 	"errors"
+	"maps"
+	"slices"
 
 	"driploop/catalog"
 	"driploop/catalog/source"
@@ -184,6 +186,12 @@ func (r *Reading) keys(k *source.Keys) {
 	source.Opt(k, &r.Stage, "stage", source.OneOf("survey", "as-built"), "when in the job")
 	source.Opt(k, &r.On, "on", source.Day, "when")
 	source.Opt(k, &r.By, "by", source.Text, "who")
+	if k.Recording() {
+		for _, what := range slices.Sorted(maps.Keys(valueOf)) {
+			state := source.Holds("what", what)
+			k.Demand(source.Condition{When: &state, Any: []source.State{source.Given(valueOf[what])}})
+		}
+	}
 	if value := valueOf[r.What.V]; value != "" && !k.Has(value) {
 		k.Missing(value, "a reading of "+r.What.V+" is that figure")
 	}
@@ -203,6 +211,7 @@ func (r *Reserve) keys(k *source.Keys) {
 	source.Opt(k, &r.Where, "at", source.Name, "from which shelf")
 	source.Opt(k, &r.Cable, "cable", source.Name, "for which cable")
 	source.Need(k, &r.Until, "until", source.Day, "until when it is kept")
+	k.Demand(source.OneOfTwo("tag", "part")...)
 	switch tag, part := k.Has("tag"), k.Has("part"); {
 	case tag && part:
 		k.Fault(k.At(), "a reserve names a tag or a part, one of the two", "write tag, or part and qty")
@@ -215,7 +224,7 @@ func (e *Extra) keys(k *source.Keys) {
 	e.At = k.At()
 	source.Need(k, &e.Part, "part", source.Name, "part of the catalog")
 	each := source.Map(source.Count(1, 1000000), func(n int) (Amount, error) { return Amount{Each: n}, nil })
-	length := source.Map(source.Length, func(l unit.MM) (Amount, error) {
+	length := source.Map(source.Shaped(source.Length, source.Form{Pattern: unit.SomeLengthPattern}), func(l unit.MM) (Amount, error) {
 		if l == 0 {
 			return Amount{}, errors.New("a length above 0 is expected")
 		}

@@ -3,6 +3,7 @@ package catalog
 import (
 	_ "embed"
 	"fmt"
+	"slices"
 	"strings"
 	"sync"
 
@@ -97,6 +98,9 @@ func isBand(name string) error {
 	}
 	return nil
 }
+
+// BandNames lists the names that bands may be called by, in the order of the table.
+func BandNames() []string { return slices.Clone(bands().names) }
 
 func readBandName(s string) (string, error) { return s, isBand(s) }
 

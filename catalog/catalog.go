@@ -75,6 +75,14 @@ func ReadParts(d *source.Doc) ([]*Part, []source.Problem) {
 	return out, problems
 }
 
+// DescribeCatalog documents the format of catalog files; which keys a part has beside
+// the common ones depends on its kind.
+func DescribeCatalog() *source.Record {
+	return source.Describe(func(k *source.Keys) {
+		source.Named(k, new([]Part), "part", (*Part).keys, "parts")
+	})
+}
+
 // New makes a catalog of the workspace's parts in front of the generic ones.
 func New(own []*Part) *Catalog {
 	c := &Catalog{own: make(map[string]*Part, len(own)), generic: map[string]*Part{}}

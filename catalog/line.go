@@ -36,6 +36,7 @@ func (c *Cable) keys(k *source.Keys) {
 	source.Opt(k, &c.DCOhmKm, "dc_ohm_per_km", source.AtLeast(0, "ohm/km"), "loop resistance, both conductors")
 	source.Opt(k, &c.Velocity, "velocity", source.Between(0.3, 1, ""), "velocity factor")
 	source.Opt(k, &c.Fire, "fire", fire, "marking on the jacket")
+	k.Demand(source.OneOfTwo("loss_db_per_100m", "loss_db_per_100ft")...)
 	switch {
 	case c.Loss.Set && feet.Set:
 		k.Fault(feet.At, "the loss is given per 100 m and per 100 ft", "keep the one that the data sheet prints", c.Loss.At)
@@ -86,6 +87,7 @@ func readJumper(p *Part, k *source.Keys) {
 	source.Need(k, &j.Length, "length", source.Length, "over all")
 	source.Need(k, &j.Ends, "ends", source.Pair(face, `["N male", "N male"]`), "its two connectors")
 	source.Opt(k, &j.Loss, "loss_db", points("dB"), "both connectors included; wins over cable and length")
+	k.Demand(source.Needs("cable", "loss_db"))
 	if !k.Recording() && !k.Has("cable") && !k.Has("loss_db") {
 		k.Missing("cable", "or loss_db: without one of them no loss can be computed")
 	}

@@ -3,6 +3,8 @@ package catalog
 import (
 	_ "embed"
 	"fmt"
+	"maps"
+	"slices"
 	"strconv"
 	"strings"
 	"sync"
@@ -102,6 +104,19 @@ func ParseFace(s string) (Face, error) {
 	return Face{series.Name, h.Shell.V, h.Contact.V, name + " " + which}, nil
 }
 
+// FaceNames lists the faces as files write them: each series with male, female, plug
+// and jack, as far as it has them.
+func FaceNames() []string {
+	var out []string
+	for _, name := range seriesTable().names {
+		halves := seriesTable().series[name].halves
+		for _, which := range slices.Sorted(maps.Keys(halves)) {
+			out = append(out, name+" "+which)
+		}
+	}
+	return out
+}
+
 // Fit says how two faces meet.
 type Fit int
 
@@ -182,7 +197,7 @@ func (s *Series) LimitMHz(ohm float64) (unit.MHz, bool) {
 	return 0, false
 }
 
-func anyName(string) error { return nil }
+var anyName = source.Naming{Check: func(string) error { return nil }}
 
 func (t *matingTable) rows(k *source.Keys) {
 	var rows []source.Pick[*Series]

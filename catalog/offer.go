@@ -127,7 +127,7 @@ func (v *Vendor) keys(k *source.Keys) {
 
 var (
 	pack       = source.Either(source.IsString, packLength, packCount, "a count, or a length for cut stock")
-	packLength = source.Map(source.Length, toPackLength)
+	packLength = source.Map(source.Shaped(source.Length, source.Form{Pattern: unit.SomeLengthPattern}), toPackLength)
 	packCount  = source.Map(source.Count(1, 100000), func(n int) (Pack, error) { return Pack{Count: n}, nil })
 )
 
@@ -140,10 +140,13 @@ func toPackLength(l unit.MM) (Pack, error) {
 
 // priceBreak reads [5, "301.00"], whose two values are of two types: each is
 // read into a Break that holds one of them.
-var priceBreak = source.Map(source.Pair(source.Either(source.IsString,
+var priceBreak = source.Shaped(source.Map(source.Pair(source.Either(source.IsString,
 	source.Map(source.Price, func(p unit.Money) (Break, error) { return Break{Price: p}, nil }),
-	source.Map(source.Count(2, 1000000), func(n int) (Break, error) { return Break{Packs: n}, nil }),
-	"packs, then price"), `[5, "301.00"]`), toBreak)
+	source.Map(breakPacks, func(n int) (Break, error) { return Break{Packs: n}, nil }),
+	"packs, then price"), `[5, "301.00"]`), toBreak),
+	source.Form{Least: 2, Most: 2, Items: func() []source.TypeDoc { return []source.TypeDoc{breakPacks.Shape, source.Price.Shape} }})
+
+var breakPacks = source.Count(2, 1000000)
 
 func toBreak(p [2]Break) (Break, error) {
 	if p[0].Packs == 0 || p[1].Packs != 0 {
@@ -155,7 +158,7 @@ func toBreak(p [2]Break) (Break, error) {
 func (o *Offer) keys(k *source.Keys) {
 	o.At = k.At()
 	source.Opt(k, &o.Part, "part", source.Name, "the part that is sold; or brings")
-	source.Each(k, &o.Brings, "brings", partName, source.Count(1, 1000), "one box with several parts, and how many of each")
+	source.Each(k, &o.Brings, "brings", source.Names, source.Count(1, 1000), "one box with several parts, and how many of each")
 	source.Need(k, &o.Vendor, "vendor", source.Name, "who sells it")
 	source.Opt(k, &o.Code, "code", source.Text, "the vendor's number")
 	source.Opt(k, &o.Pack, "pack", pack, "what one pack holds; absent: one piece")
@@ -169,14 +172,11 @@ func (o *Offer) keys(k *source.Keys) {
 	o.agree(k)
 }
 
-func partName(s string) error {
-	_, err := source.NameOf(s)
-	return err
-}
-
 // agree holds the keys of an offer against each other.
 func (o *Offer) agree(k *source.Keys) {
 	oneOfPartBrings(k, o.At, "the offer")
+	k.Demand(source.Condition{Not: []source.State{source.Given("pack"), source.Given("cut_from")}},
+		source.Condition{Not: []source.State{source.Given("pack"), source.Given("cut_to")}})
 	if o.ToLength() && o.Pack.Set {
 		k.Fault(o.Pack.At, "the offer has a pack and is cut to length", "keep pack, or keep cut_from and cut_to", o.CutFrom.At)
 	}
@@ -192,6 +192,7 @@ func (o *Offer) agree(k *source.Keys) {
 
 // oneOfPartBrings says that a line sells a part or a box of parts, not both.
 func oneOfPartBrings(k *source.Keys, at source.Place, what string) {
+	k.Demand(source.OneOfTwo("part", "brings")...)
 	switch part, brings := k.Has("part"), k.Has("brings"); {
 	case part && brings:
 		k.Fault(at, what+" names a part and brings others", "keep part, or list every part of the box in brings")

@@ -197,6 +197,7 @@ func (p *Part) body(k *source.Keys) {
 			return
 		}
 	}
+	k.Vary("kind", KindNames(), DescribePart)
 	k.Mute()
 }
 
@@ -224,6 +225,9 @@ func (q *Port) keys(k *source.Keys) {
 	}
 	source.Opt(k, &q.Side, "side", source.OneOf("donor", "server"), "of an amplifier: toward the network or toward the phones")
 	source.Opt(k, &q.Polar, "polarization", source.OneOf("vertical", "horizontal", "+45", "-45"), "of an antenna port")
+	mated := source.State{Key: "use", Non: []any{"data", "power"}, Lacking: true}
+	k.Demand(source.Condition{When: &mated, Any: []source.State{source.Given("connector")}},
+		source.Condition{When: &mated, Any: []source.State{source.Given("impedance_ohm")}})
 	if q.RF() {
 		if !q.Connector.Set && !k.Has("connector") {
 			k.Missing("connector", "a port for radio signals is mated")

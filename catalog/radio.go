@@ -160,7 +160,7 @@ func readRouter(p *Part, k *source.Keys) {
 	source.Opt(k, &r.TxDBm, "tx_dbm", level, "greatest transmit power, total over its ports")
 	source.Opt(k, &r.NF, "nf_db", source.Between(0, 30, "dB"), "noise figure")
 	source.Opt(k, &r.Streams, "streams", source.Count(1, 16), "spatial streams")
-	source.Each(k, &r.MaxAntennaGain, "max_antenna_gain_dbi", isBand, source.Between(-30, 40, "dBi"), "greatest antenna gain of its grant, by band, net of the least loss")
+	source.Each(k, &r.MaxAntennaGain, "max_antenna_gain_dbi", ByBand, source.Between(-30, 40, "dBi"), "greatest antenna gain of its grant, by band, net of the least loss")
 	r.Load = readLoad(k)
 	if k.Recording() || k.Has("range") {
 		p.Antenna = &Antenna{}

@@ -197,6 +197,8 @@ func (s *Sheet) keys(k *source.Keys) {
 	source.Rows(k, &s.Reels, "reel", func(r *Reel, k *source.Keys) { r.keys(k, h) }, "a reading of a tagged piece of cut stock")
 	source.Rows(k, &s.Moves, "move", func(m *Move, k *source.Keys) { m.keys(k, h) }, "goods that go from one end to another")
 	source.Rows(k, &s.Cuts, "cut", func(c *Cut, k *source.Keys) { c.keys(k, h) }, "a length that left a reel")
+	k.Demand(source.Condition{Head: "sheet", Rows: []string{"count", "reel", "move", "cut"}, Any: []source.State{source.Given("on")}},
+		source.Condition{Head: "sheet", Rows: []string{"count", "reel"}, Any: []source.State{source.Given("where")}})
 }
 
 func (h *Head) keys(k *source.Keys) {
@@ -209,6 +211,9 @@ func (h *Head) keys(k *source.Keys) {
 	source.Opt(k, &h.Complete, "complete", source.Flag, "everything at where is listed; what is not is none")
 	source.Opt(k, &h.Void, "void", source.Text, "why the sheet counts no longer")
 	source.Opt(k, &h.Because, "because", source.Text, "what should be known about it")
+	complete := source.Holds("complete", true)
+	k.Demand(source.Condition{When: &complete, Any: []source.State{source.Given("where")}},
+		source.Condition{When: &complete, Any: []source.State{source.Given("on")}})
 	if h.Complete.V {
 		needs(k, k.Has("where"), "where", "a complete count is complete for one shelf")
 		needs(k, k.Has("on"), "on", "a complete count holds for one time")
@@ -288,6 +293,11 @@ func (m *Move) keys(k *source.Keys, h *Head) {
 	if m.Order.Set && !k.Has("from") {
 		inherit(k, &m.To, "to", h.Where)
 	}
+	part := source.Given("part")
+	k.Demand(source.OneOfTwo("part", "tag")...)
+	k.Demand(source.Condition{When: &part, Any: []source.State{source.Given("qty")}},
+		source.Condition{Not: []source.State{source.Given("tag"), source.Given("qty")}},
+		source.Condition{Not: []source.State{source.Holds("from", ToScrap)}})
 	m.what(k)
 	m.ends(k)
 	serialsFit(k, m.Serials, m.Qty)
@@ -372,7 +382,7 @@ func (o *Order) head(k *source.Keys) {
 func (l *OrderLine) keys(k *source.Keys) {
 	l.At = k.At()
 	source.Opt(k, &l.Part, "part", source.Name, "what is ordered; or brings")
-	source.Each(k, &l.Brings, "brings", partName, source.Count(1, 1000), "one box with several parts, and how many of each")
+	source.Each(k, &l.Brings, "brings", source.Names, source.Count(1, 1000), "one box with several parts, and how many of each")
 	source.Opt(k, &l.Code, "code", source.Text, "the vendor's number")
 	source.Opt(k, &l.Pack, "pack", pack, "what one pack holds; absent: one piece")
 	source.Need(k, &l.Packs, "packs", source.Count(1, 1000000), "how many packs")
@@ -382,6 +392,8 @@ func (l *OrderLine) keys(k *source.Keys) {
 	source.Opt(k, &l.Dropped, "dropped", source.Count(0, 1000000), "packs that will not come")
 	source.Opt(k, &l.Because, "because", source.Text, "why they will not")
 	oneOfPartBrings(k, l.At, "the line")
+	dropped := source.State{Key: "dropped", Non: []any{0}}
+	k.Demand(source.Condition{When: &dropped, Any: []source.State{source.Given("because")}})
 	if l.Dropped.V > 0 {
 		needs(k, k.Has("because"), "because", "why the packs will not come")
 		if l.Packs.Set && l.Dropped.V > l.Packs.V {

@@ -204,7 +204,7 @@ type Calendar struct {
 var weekdays = []string{"sun", "mon", "tue", "wed", "thu", "fri", "sat"}
 
 func (c *Calendar) keys(k *source.Keys) {
-	source.Opt(k, &c.Week, "week", source.ListOf(source.OneOf(weekdays...)), "working days; absent: mon to fri")
+	source.Opt(k, &c.Week, "week", source.Filled(source.ListOf(source.OneOf(weekdays...))), "working days; absent: mon to fri")
 	source.Opt(k, &c.Closed, "closed", source.ListOf(source.Day), "days on which nobody works")
 	if c.Week.Set && len(c.Week.V) == 0 {
 		k.Fault(c.Week.At, "the week has no working day", "name one at least")

@@ -21,8 +21,8 @@ type Points []Point
 var (
 	ohm      = source.Between(1, 1000, "ohm")
 	level    = source.Between(-200, 100, "dBm")
-	face     = source.Checked("connector", `"N male"`, ParseFace)
-	bandName = source.Checked("band", `"B12"`, readBandName)
+	face     = source.Shaped(source.Checked("connector", `"N male"`, ParseFace), source.Form{Among: FaceNames})
+	bandName = source.Shaped(source.Checked("band", `"B12"`, readBandName), source.Form{Among: BandNames})
 	poe      = source.OneOf("af", "at", "bt3", "bt4", "passive 12 V", "passive 24 V", "passive 48 V")
 	span     = source.Map(source.Pair(source.Between(0, 300000, "MHz"), "[699, 716]"), toSpan)
 	volts    = source.Between(0, 1000, "V")
@@ -34,7 +34,7 @@ func toSpan(p [2]float64) (unit.Span, error) {
 
 // points reads one number, or a list of [MHz, value] pairs.
 func points(name string) source.Type[Points] {
-	list := source.Map(source.ListOf(source.Pair(source.Between(0, 300000, "MHz, then "+name), "[850, 24.7]")), toPoints)
+	list := source.Map(source.Filled(source.ListOf(source.Pair(source.Between(0, 300000, "MHz, then "+name), "[850, 24.7]"))), toPoints)
 	one := source.Map(source.Between(0, 1000, name), func(v float64) (Points, error) { return Points{{0, v}}, nil })
 	t := source.Either(source.IsArray, list, one, name+", one number or [MHz, "+name+"] pairs")
 	return t
@@ -60,7 +60,8 @@ func oneOrMore(t source.Type[string]) source.Type[Words] {
 // Value types for other packages' formats.
 var (
 	BandName  = bandName
-	KindName  = source.Checked("kind", `"electrode"`, readKindName)
+	KindName  = source.Shaped(source.Checked("kind", `"electrode"`, readKindName), source.Form{Among: KindNames})
+	FaceType  = face
 	LossTable = points("dB")
 )
 
@@ -75,3 +76,6 @@ func readKindName(s string) (string, error) {
 
 // IsBand refuses a name that is no 3GPP band.
 func IsBand(name string) error { return isBand(name) }
+
+// ByBand is the naming of tables whose keys are bands.
+var ByBand = source.Naming{Check: IsBand, Form: &source.Form{Among: BandNames}}

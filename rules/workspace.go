@@ -76,7 +76,7 @@ func (w *Workspace) keys(k *source.Keys) {
 	source.One(k, w, "workspace", (*Workspace).head, "what belongs to the workspace")
 	source.One(k, &w.House, "house", (*House).keys, "what the firm asks of itself")
 	rows := []source.Pick[Override]{}
-	source.Each(k, &rows, "rule", ruleName, source.Inline((*Override).keys), "what plain failures of a rule weigh")
+	source.Each(k, &rows, "rule", byRule(), source.Inline((*Override).keys), "what plain failures of a rule weigh")
 	for _, r := range rows {
 		r.Val.V.Rule, r.Val.V.At = r.Name, r.At
 		w.Weights = append(w.Weights, r.Val.V)
@@ -137,6 +137,11 @@ func (o *Override) keys(k *source.Keys) {
 	source.Need(k, &o.Because, "because", source.Text, "why the firm weighs it so")
 }
 
+// byRule is the naming of a table whose keys are rules.
+func byRule() source.Naming {
+	return source.Naming{Check: ruleName, Form: &source.Form{Among: Names}}
+}
+
 func ruleName(name string) error {
 	if Find(name) == nil {
 		return unknownRule(name)
@@ -146,6 +151,12 @@ func ruleName(name string) error {
 
 // DescribeWorkspace documents driploop.toml.
 func DescribeWorkspace() *source.Record { return source.Describe((&Workspace{}).keys) }
+
+// PlanPatterns lists the patterns of the names of plan files.
+func (w *Workspace) PlanPatterns() []string { return patterns(w.Plans, "plans") }
+
+// ReadsPlan reports whether a file of that path is a plan of the workspace.
+func (w *Workspace) ReadsPlan(path string) bool { return anyMatch(w.PlanPatterns(), path) }
 
 // patterns lists the patterns of one sort of file, or the default for it.
 func patterns(v source.Val[catalog.Words], sort string) []string {

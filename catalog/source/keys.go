@@ -235,16 +235,24 @@ type Pick[T any] struct {
 	Val  Val[T]
 }
 
-// Each reads a table whose keys the file chooses, in document order; name says
-// whether a key may stand there.
-func Each[T any](k *Keys, to *[]Pick[T], key string, name func(string) error, t Type[T], doc string) {
+// Naming says which keys may stand in a table whose keys the file chooses.
+type Naming struct {
+	Check func(string) error
+	Form  *Form
+}
+
+// Names is the naming of tables by ID.
+var Names = Naming{func(s string) error { _, err := NameOf(s); return err }, &Form{Pattern: NamePattern}}
+
+// Each reads a table whose keys the file chooses, in document order.
+func Each[T any](k *Keys, to *[]Pick[T], key string, names Naming, t Type[T], doc string) {
 	shape := t.Shape
-	n := k.take(KeyDoc{Name: key, Type: TypeDoc{Name: "table", Each: &shape}, Doc: doc})
+	n := k.take(KeyDoc{Name: key, Type: TypeDoc{Name: "table", Each: &shape, Form: names.Form}, Doc: doc})
 	if n == nil || !k.isTable(key, n.Value) {
 		return
 	}
 	for _, e := range n.Value.Keys {
-		if err := name(e.Name); err != nil {
+		if err := names.Check(e.Name); err != nil {
 			k.Fault(e.At, key+": "+err.Error(), "check the name")
 			continue
 		}

@@ -31,7 +31,7 @@ func (m *mast) keys(k *Keys) {
 	Rows(k, &m.Rooms, "room", (*room).keys, "rooms")
 	Named(k, &m.Named, "named", (*room).keys, "rooms with names")
 	m.HasTop = One(k, &m.Top, "top", (*room).keys, "the uppermost room")
-	Each(k, &m.Share, "share", isShort, AtLeast(0, "dB"), "by word")
+	Each(k, &m.Share, "share", Naming{Check: isShort}, AtLeast(0, "dB"), "by word")
 }
 
 func (r *room) keys(k *Keys) {

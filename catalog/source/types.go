@@ -48,7 +48,7 @@ func parseText(n *Node) (string, []bad) {
 }
 
 // Flag is true or false.
-var Flag = Type[bool]{TypeDoc{Name: "true or false", Example: "true"}, func(n *Node) (bool, []bad) {
+var Flag = Type[bool]{TypeDoc{Name: "true or false", Example: "true", Form: &Form{Base: Truth}}, func(n *Node) (bool, []bad) {
 	if n.Kind != Bool {
 		return false, expected(n, "true or false", "true or false without quotes")
 	}
@@ -56,7 +56,10 @@ var Flag = Type[bool]{TypeDoc{Name: "true or false", Example: "true"}, func(n *N
 }}
 
 // Name is an ID as parts, devices and places carry it.
-var Name = Checked("name", `"amp-1"`, NameOf)
+var Name = Shaped(Checked("name", `"amp-1"`, NameOf), Form{Pattern: NamePattern})
+
+// NamePattern is the form of an ID.
+const NamePattern = `^[A-Za-z0-9][A-Za-z0-9_-]{0,63}$`
 
 // NameOf returns s, or the reason why it is no name.
 func NameOf(s string) (string, error) {
@@ -68,11 +71,11 @@ func NameOf(s string) (string, error) {
 
 // Quantities that carry their unit in the string.
 var (
-	Length      = Checked("length", `"18.5 m"`, unit.ParseLength)
-	Temperature = Checked("temperature", `"45 C"`, unit.ParseTemperature)
-	Speed       = Checked("speed", `"44 m/s"`, unit.ParseSpeed)
-	Size        = Checked("conductor size", `"10 AWG"`, unit.ParseGauge)
-	Price       = Checked("money amount", `"318.00"`, unit.ParseMoney)
+	Length      = Shaped(Checked("length", `"18.5 m"`, unit.ParseLength), Form{Pattern: unit.LengthPattern})
+	Temperature = Shaped(Checked("temperature", `"45 C"`, unit.ParseTemperature), Form{Pattern: unit.TemperaturePattern})
+	Speed       = Shaped(Checked("speed", `"44 m/s"`, unit.ParseSpeed), Form{Pattern: unit.SpeedPattern})
+	Size        = Shaped(Checked("conductor size", `"10 AWG"`, unit.ParseGauge), Form{Pattern: unit.GaugePattern})
+	Price       = Shaped(Checked("money amount", `"318.00"`, unit.ParseMoney), Form{Pattern: unit.MoneyPattern})
 )
 
 // Checked is a string that a function reads or refuses.
@@ -90,6 +93,23 @@ func Checked[T any](name, example string, read func(string) (T, error)) Type[T] 
 	}}
 }
 
+// Shaped adds to a type what a machine may know of its values.
+func Shaped[T any](t Type[T], f Form) Type[T] {
+	t.Shape.Form = &f
+	return t
+}
+
+// Filled is a list with one item at least; the function that takes the list says so.
+func Filled[T any](t Type[[]Val[T]]) Type[[]Val[T]] {
+	t.Shape.Form = filledForm
+	return t
+}
+
+// Exactly is a list of n items; the function that takes the list holds it to that.
+func Exactly[T any](n int, t Type[[]Val[T]]) Type[[]Val[T]] {
+	return Shaped(t, Form{Least: n, Most: n})
+}
+
 func article(noun string) string {
 	if strings.ContainsRune("aeiou", rune(noun[0])) {
 		return "an"
@@ -98,7 +118,7 @@ func article(noun string) string {
 }
 
 // Day is a local date.
-var Day = Type[unit.Date]{TypeDoc{Name: "date", Example: "2026-12-01"}, func(n *Node) (unit.Date, []bad) {
+var Day = Type[unit.Date]{TypeDoc{Name: "date", Example: "2026-12-01", Form: &Form{Base: OfDay}}, func(n *Node) (unit.Date, []bad) {
 	if n.Kind != LocalDate {
 		return unit.Date{}, expected(n, "a date", "it like 2026-12-01, without quotes")
 	}
@@ -106,7 +126,7 @@ var Day = Type[unit.Date]{TypeDoc{Name: "date", Example: "2026-12-01"}, func(n *
 }}
 
 // When is a local date-time.
-var When = Type[time.Time]{TypeDoc{Name: "local time", Example: "2026-12-01T16:00:00"}, func(n *Node) (time.Time, []bad) {
+var When = Type[time.Time]{TypeDoc{Name: "local time", Example: "2026-12-01T16:00:00", Form: &Form{Base: OfTime}}, func(n *Node) (time.Time, []bad) {
 	if n.Kind != LocalDateTime {
 		return time.Time{}, expected(n, "a date or a local time", "it like 2026-12-01T16:00:00, without quotes and without zone")
 	}
@@ -122,8 +142,15 @@ func Between(lo, hi float64, unit string) Type[float64] { return number(unit, &l
 // AtLeast is a number from lo on, in the unit that is named.
 func AtLeast(lo float64, unit string) Type[float64] { return number(unit, &lo, nil) }
 
+var (
+	numberForm = &Form{Base: AnyNumber}
+	wholeForm  = &Form{Base: Whole}
+	pairForm   = &Form{Least: 2, Most: 2}
+	filledForm = &Form{Least: 1}
+)
+
 func number(name string, lo, hi *float64) Type[float64] {
-	return Type[float64]{TypeDoc{Name: name, Min: lo, Max: hi}, func(n *Node) (float64, []bad) {
+	return Type[float64]{TypeDoc{Name: name, Min: lo, Max: hi, Form: numberForm}, func(n *Node) (float64, []bad) {
 		v, ok := n.number()
 		if !ok {
 			return 0, expected(n, "a number ("+name+")", "it without quotes and without unit")
@@ -153,7 +180,7 @@ func plain(v float64) string { return strconv.FormatFloat(v, 'f', -1, 64) }
 // Count is a whole number from lo to hi.
 func Count(lo, hi int) Type[int] {
 	l, h := float64(lo), float64(hi)
-	return Type[int]{TypeDoc{Name: "whole number", Min: &l, Max: &h}, func(n *Node) (int, []bad) {
+	return Type[int]{TypeDoc{Name: "whole number", Min: &l, Max: &h, Form: wholeForm}, func(n *Node) (int, []bad) {
 		if n.Kind != Integer {
 			return 0, expected(n, "a whole number", "it without quotes and without decimals")
 		}
@@ -203,7 +230,7 @@ func ListOf[T any](t Type[T]) Type[[]Val[T]] {
 // Pair is a list of exactly two values.
 func Pair[T any](t Type[T], example string) Type[[2]T] {
 	item := t.Shape
-	return Type[[2]T]{TypeDoc{Name: "pair", Example: example, List: &item}, func(n *Node) ([2]T, []bad) {
+	return Type[[2]T]{TypeDoc{Name: "pair", Example: example, List: &item, Form: pairForm}, func(n *Node) ([2]T, []bad) {
 		var out [2]T
 		if n.Kind != Array || len(n.Items) != 2 {
 			return out, expected(n, "a pair", "it like "+example)
@@ -219,7 +246,8 @@ func Pair[T any](t Type[T], example string) Type[[2]T] {
 
 // Either reads a value by the first type if its kind fits, else by the second.
 func Either[T any](fits func(*Node) bool, a, b Type[T], name string) Type[T] {
-	return Type[T]{TypeDoc{Name: name, Example: a.Shape.Example}, func(n *Node) (T, []bad) {
+	both := func() []TypeDoc { return []TypeDoc{a.Shape, b.Shape} }
+	return Type[T]{TypeDoc{Name: name, Example: a.Shape.Example, Choice: both}, func(n *Node) (T, []bad) {
 		if fits(n) {
 			return a.parse(n)
 		}
@@ -257,7 +285,8 @@ func IsString(n *Node) bool { return n.Kind == String }
 
 // Inline is a table read by a bind function, as a value inside lists and pairs.
 func Inline[R any](bind func(*R, *Keys)) Type[R] {
-	return Type[R]{TypeDoc{Name: "table"}, func(n *Node) (R, []bad) {
+	sub := func() *Record { return Describe(func(k *Keys) { bind(new(R), k) }) }
+	return Type[R]{TypeDoc{Name: "table", Sub: sub}, func(n *Node) (R, []bad) {
 		var row R
 		if n.Kind != Table {
 			return row, expected(n, "a table", "it in braces")

@@ -193,17 +193,21 @@ func (r *CodeRow) keys(k *source.Keys) {
 	source.Opt(k, &r.Length, "length", source.Length, "the figure, where it is a length")
 	source.Opt(k, &r.Value, "value", source.Number, "the figure otherwise")
 	source.Opt(k, &r.Unit, "unit", source.Text, "what the value, or the input of steps, is counted in")
-	source.Each(k, &r.Sizes, "size", nameOnly, source.Size, "least conductor size by material")
+	source.Each(k, &r.Sizes, "size", byName, source.Size, "least conductor size by material")
 	source.Rows(k, &r.Steps, "step", (*Step).keys, "figures by the input, from low to high")
 	source.Opt(k, &r.Allowed, "allowed", source.ListOf(source.Text), "what is allowed, by name")
-	source.Each(k, &r.Figures, "figures", nameOnly, source.Number, "constants of the formula, by name")
+	source.Each(k, &r.Figures, "figures", byName, source.Number, "constants of the formula, by name")
 	source.Opt(k, &r.Caution, "caution", source.Text, "printed with a finding")
 	source.Need(k, &r.Proof, "proof", proof, "how sure the figure is")
 	source.Opt(k, &r.Note, "note", source.Text, "what a reader should know about it")
+	k.Demand(source.Condition{When: &comparing, Any: []source.State{source.Given("length"), source.Given("value"), source.Given("size"), source.Given("step")}})
 	if !k.Recording() {
 		r.wantFigure(k)
 	}
 }
+
+// comparing is the comparisons that need a figure.
+var comparing = source.Holds("compare", "at-least", "at-most", "more-than", "less-than")
 
 // wantFigure refuses a comparison without a figure: it could never fail.
 func (r *CodeRow) wantFigure(k *source.Keys) {
@@ -220,6 +224,9 @@ func (s *Step) keys(k *source.Keys) {
 	source.Opt(k, &s.Length, "length", source.Length, "the figure, where it is a length")
 	source.Opt(k, &s.Value, "value", source.Number, "the figure otherwise")
 }
+
+// byName is the naming of tables that hold figures by a name.
+var byName = source.Naming{Check: nameOnly, Form: source.Names.Form}
 
 func nameOnly(s string) error {
 	if !source.ValidID(s) {

@@ -131,6 +131,7 @@ func (r *Row) radioKeys(k *source.Keys) {
 	r.Direction = source.Val[string]{V: "uplink", Set: true}
 	r.Class = source.Val[string]{V: Radio, Set: true}
 	r.rest(k)
+	k.Demand(source.Needs("f_from"), source.Needs("f_below"))
 	if !k.Recording() && !(r.FFrom.Set && r.FBelow.Set) {
 		k.Missing("f_from and f_below", "a power limit of a radio service holds for a stretch of spectrum")
 	}
@@ -163,6 +164,7 @@ func (r *Row) coefficients(k *source.Keys) {
 	source.Opt(k, &r.KM, "km", number, "times MSCL in dB")
 	source.Opt(k, &r.KB, "kb", number, "times BSCL in dB")
 	source.Opt(k, &r.FAt, "f_at", source.OneOf("uplink-mid", "downlink-mid"), "which frequency; absent: uplink-mid, for both directions")
+	k.Demand(source.Needs("c0", "kf", "kr", "km", "kb"))
 	for _, name := range []string{"c0", "kf", "kr", "km", "kb"} {
 		if k.Recording() || k.Has(name) {
 			return
