@@ -197,8 +197,16 @@ func (s *Sheet) keys(k *source.Keys) {
 	source.Rows(k, &s.Reels, "reel", func(r *Reel, k *source.Keys) { r.keys(k, h) }, "a reading of a tagged piece of cut stock")
 	source.Rows(k, &s.Moves, "move", func(m *Move, k *source.Keys) { m.keys(k, h) }, "goods that go from one end to another")
 	source.Rows(k, &s.Cuts, "cut", func(c *Cut, k *source.Keys) { c.keys(k, h) }, "a length that left a reel")
-	k.Demand(source.Condition{Head: "sheet", Rows: []string{"count", "reel", "move", "cut"}, Any: []source.State{source.Given("on")}},
-		source.Condition{Head: "sheet", Rows: []string{"count", "reel"}, Any: []source.State{source.Given("where")}})
+	on, where, order := source.Given("on"), source.Given("where"), source.Given("order")
+	k.Demand(fromHead([]string{"count", "reel", "move", "cut"}, on, on),
+		fromHead([]string{"count", "reel"}, where, where),
+		fromHead([]string{"move"}, order, source.Given("from"), order),
+		fromHead([]string{"move"}, where, source.Given("to")))
+}
+
+// fromHead is a need of rows that a key of the head meets for all of them.
+func fromHead(rows []string, head source.State, any ...source.State) source.Condition {
+	return source.Condition{Rows: rows, Any: any, Head: "sheet", HeadAny: []source.State{head}}
 }
 
 func (h *Head) keys(k *source.Keys) {

@@ -169,3 +169,9 @@ func patterns(v source.Val[catalog.Words], sort string) []string {
 	}
 	return out
 }
+
+// ReadWorkspace reads driploop.toml by itself: what it names elsewhere is not looked up.
+func ReadWorkspace(d *source.Doc) (*Workspace, []source.Problem) {
+	w := &Workspace{}
+	return w, source.Read(d, w.keys)
+}

@@ -72,11 +72,14 @@ type Variants struct {
 // Condition is a need of a table that follows from other keys of it. Bind functions
 // report it themselves where it is not met; this is how they document it.
 type Condition struct {
-	When *State   // absent: always
-	Any  []State  // at least one of them is true
-	Not  []State  // not all of them are true
-	Rows []string // of the tables below under these names: each row meets the rest, unless Head does
-	Head string
+	When *State  // absent: always
+	Any  []State // at least one of them is true
+	Not  []State // not all of them are true
+	// Rows are the names of tables below whose rows must meet Any, each by itself, where
+	// the table Head does not meet HeadAny for all of them.
+	Rows    []string
+	Head    string
+	HeadAny []State
 }
 
 // State is a key that is there, and holds one of the values, or none of them, where

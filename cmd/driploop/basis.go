@@ -17,15 +17,28 @@ import (
 )
 
 func (c *Command) basis() *cobra.Command {
-	return &cobra.Command{
+	schema := false
+	cmd := &cobra.Command{
 		Use:   "basis [RULE]",
 		Short: "what a rule, profile, code, kind of part or file means, and where it comes from",
 		Long: `Explains a rule, a limit profile, a grounding code, a kind of part (antenna, cable, …)
 or a file (plan, workspace, offer, stock, order, profile); the name of an area lists
 its rules. Without an argument it lists everything. It works in any folder; inside
-a workspace it also knows the workspace's own profiles and what it overrides.`,
-		Args: cobra.MaximumNArgs(1),
+a workspace it also knows the workspace's own profiles and what it overrides.
+
+--schema prints a JSON Schema (draft-07) of the files, for an editor: of plan,
+workspace, catalog, offer, stock, order or profile; without a word of all of
+them, each under its name in "definitions". Write it beside the plans, and point
+the editor's TOML extension at it, or begin a file with a line like
+#:schema ../schema/plan.json. What only other files or sums can tell is not in
+it: inspect stays the judge.
+`,
+		Example: "  driploop basis ground/arrestor\n  driploop basis --schema plan --out plan.json",
+		Args:    cobra.MaximumNArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
+			if schema {
+				return c.schema(args)
+			}
 			form, err := c.form("text", "json", "markdown")
 			if err != nil {
 				return err
@@ -50,6 +63,28 @@ a workspace it also knows the workspace's own profiles and what it overrides.`,
 			return c.emit(b)
 		},
 	}
+	cmd.Flags().BoolVar(&schema, "schema", false, "a JSON Schema of the files, for an editor")
+	return cmd
+}
+
+// schema prints the schema of one sort of file, or of all.
+func (c *Command) schema(args []string) error {
+	if _, err := c.form("json"); err != nil {
+		return err
+	}
+	name := ""
+	if len(args) == 1 {
+		name = args[0]
+	}
+	s := show.SchemaOf(name)
+	if s == nil || len(args) == 1 && name == "" {
+		return fmt.Errorf("there is no schema of %s; there is one of %s", source.Quote(name), joinWords(show.SchemaNames()))
+	}
+	b, err := s.JSON()
+	if err != nil {
+		return failure{err}
+	}
+	return c.emit(b)
 }
 
 // workspaceIfAny reads the workspace. Where the call names none and the folder is
