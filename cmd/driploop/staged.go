@@ -4,6 +4,8 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"os"
+	"path/filepath"
 	"slices"
 
 	"driploop/catalog/source"
@@ -67,16 +69,10 @@ func (c *Command) stagedIn(ctx context.Context, r *repo.Repo, o rules.Options, a
 		return nil, err
 	}
 	firm, err := rules.Load(change.Head, o)
-	switch {
-	case errors.Is(err, rules.ErrNoWorkspace) && !slices.Contains(change.Files, rules.WorkspaceFile):
-		// Hooks are shared by all branches, and one may hold no workspace.
-		if !c.shared.quiet {
-			c.say("no %s is staged in %s, so there is nothing to look at", rules.WorkspaceFile, c.shared.root)
-		}
-		return nil, nil
-	case errors.Is(err, rules.ErrNoWorkspace):
-		return nil, fmt.Errorf("what is staged takes %s away from %s, and with it all that plans are held against; git commit --no-verify commits it unseen", rules.WorkspaceFile, c.shared.root)
-	case err != nil:
+	if errors.Is(err, rules.ErrNoWorkspace) {
+		return nil, c.noneStaged(change)
+	}
+	if err != nil {
 		return nil, fmt.Errorf("reading what is staged of the workspace in %s: %w", c.shared.root, err)
 	}
 	l := &look{firm: firm}
@@ -84,6 +80,22 @@ func (c *Command) stagedIn(ctx context.Context, r *repo.Repo, o rules.Options, a
 		return nil, err
 	}
 	return l, c.unread(firm, change)
+}
+
+// noneStaged says what it means that no workspace is staged. Hooks are shared by all
+// branches, and one may hold none; but nothing may pass unseen because its workspace
+// is taken away, or was never added.
+func (c *Command) noneStaged(change *repo.Change) error {
+	if slices.Contains(change.Files, rules.WorkspaceFile) {
+		return fmt.Errorf("what is staged takes %s away from %s, and with it all that plans are held against; git commit --no-verify commits it unseen", rules.WorkspaceFile, c.shared.root)
+	}
+	if _, err := os.Lstat(filepath.Join(c.shared.root, rules.WorkspaceFile)); err == nil {
+		return fmt.Errorf("%s stands in %s and is not added to git, so plans cannot be held against it; git add it", rules.WorkspaceFile, c.shared.root)
+	}
+	if !c.shared.quiet {
+		c.say("no %s is staged in %s, so there is nothing to look at", rules.WorkspaceFile, c.shared.root)
+	}
+	return nil
 }
 
 // stagedPlans are the plans that staged files touch, and those that the arguments

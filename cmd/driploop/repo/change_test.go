@@ -2,7 +2,12 @@ package repo
 
 import (
 	"context"
+	"fmt"
+	"math/rand/v2"
 	"os"
+	"path/filepath"
+	"slices"
+	"strings"
 	"testing"
 )
 
@@ -35,6 +40,59 @@ func TestChangedFiles(t *testing.T) {
 	}
 	_, err := r.ChangedFiles(context.Background(), "HEAD", "nosuch")
 	refusal(t, err)
+}
+
+// Git's own comparison is the second opinion, on changes of every kind at random.
+func TestChangeAgreesWithGit(t *testing.T) {
+	w := folder(t)
+	w.git("init", "-q")
+	r := open(t, w.dir)
+	random := rand.New(rand.NewPCG(1, 2))
+	names := []string{"a.toml", "b b.toml", "d/c.toml", "d/e/ü.toml", "-x.toml", "z\n.toml", "f.toml", "d/f.toml"}
+	for round := range 25 {
+		for range 1 + random.IntN(4) {
+			name := names[random.IntN(len(names))]
+			os.RemoveAll(w.path(name))
+			switch random.IntN(5) {
+			case 0: // gone
+			case 1:
+				if err := os.MkdirAll(filepath.Dir(w.path(name)), 0o755); err != nil {
+					t.Fatal(err)
+				}
+				if err := os.Symlink("target", w.path(name)); err != nil {
+					t.Fatal(err)
+				}
+			case 2:
+				w.write(name, "same")
+				if err := os.Chmod(w.path(name), 0o755); err != nil {
+					t.Fatal(err)
+				}
+			default:
+				w.write(name, []string{"same", "other", ""}[random.IntN(3)])
+			}
+		}
+		w.git("add", "-A")
+		if round > 0 {
+			same(t, "staged", staged(t, r).Files, namesOf(w.git("diff", "--cached", "--no-renames", "--name-only", "-z")))
+		}
+		w.git("commit", "-q", "--allow-empty", "-m", "round")
+		if back := fmt.Sprintf("HEAD~%d", 1+random.IntN(3)); round > 3 {
+			got, err := r.ChangedFiles(context.Background(), back, "HEAD")
+			if err != nil {
+				t.Fatal(err)
+			}
+			same(t, back, got, namesOf(w.git("diff", "--no-renames", "--name-only", "-z", back, "HEAD")))
+		}
+	}
+}
+
+func namesOf(list string) []string {
+	if list == "" {
+		return nil
+	}
+	names := strings.Split(strings.TrimSuffix(list, "\x00"), "\x00")
+	slices.Sort(names)
+	return names
 }
 
 func staged(t *testing.T, r *Repo) *Change {
