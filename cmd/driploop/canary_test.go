@@ -124,7 +124,7 @@ func (s *strange) sings(args ...string) {
 // get through to a result; others, and other arguments, must do no harm at least.
 func (s *strange) reads(root string, revisions ...string) (all string) {
 	s.t.Helper()
-	known := map[string]bool{"inspect": true, "budget": true, "takeoff": true, "stock": true, "pick": true, "basis": true, "parts": true}
+	known := map[string]bool{"inspect": true, "budget": true, "takeoff": true, "stock": true, "pick": true, "cuts": true, "purchase": true, "basis": true, "parts": true}
 	for _, cmd := range (&Command{}).tree().Commands() {
 		if cmd.Name() == "help" || cmd.Name() == "completion" || cmd.Name() == "hook" {
 			continue
