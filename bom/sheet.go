@@ -1,6 +1,9 @@
 package bom
 
-import "driploop/catalog/unit"
+import (
+	"driploop/catalog"
+	"driploop/catalog/unit"
+)
 
 // Sheet is a table to be printed, to be filled in by hand and to be read back. It
 // says what stands where and how a value comes about, and nothing of the program in
@@ -22,7 +25,8 @@ type Sheet struct {
 type Fact struct {
 	Key, Label string
 	Cell       Cell
-	Ask        *Ask // where it is filled in by hand
+	Kind       CellKind // of what is filled in, where the cell is blank
+	Ask        *Ask     // where it is filled in by hand
 }
 
 // Column is one column of a sheet. Titles of a sheet differ.
@@ -31,6 +35,24 @@ type Column struct {
 	Kind  CellKind
 	Ask   *Ask // where it is filled in by hand
 }
+
+// TextColumn is a column of words.
+func TextColumn(title string) Column { return Column{Title: title, Kind: KindWords} }
+
+// CountColumn is a column of numbers of things.
+func CountColumn(title string) Column { return Column{Title: title, Kind: KindCount} }
+
+// LengthColumn is a column of lengths.
+func LengthColumn(title string) Column { return Column{Title: title, Kind: KindLength} }
+
+// MoneyColumn is a column of amounts of money.
+func MoneyColumn(title string) Column { return Column{Title: title, Kind: KindMoney} }
+
+// DayColumn is a column of days.
+func DayColumn(title string) Column { return Column{Title: title, Kind: KindDay} }
+
+// Asked is the column as one that is filled in by hand.
+func (c Column) Asked(a Ask) Column { c.Ask = &a; return c }
 
 // Ask says what somebody who fills a sheet in may write. A blank is always allowed.
 type Ask struct {
@@ -61,6 +83,7 @@ type Cell struct {
 	Money unit.Money
 	Day   unit.Date
 	Live  *Live // how the value follows from other cells; nil where it stands by itself
+	Shut  bool  // nothing is to be filled in here, though the column asks for it
 }
 
 // WordsCell holds text.
@@ -86,6 +109,17 @@ func DayCell(d unit.Date) Cell {
 		return Cell{}
 	}
 	return Cell{Kind: KindDay, Day: d}
+}
+
+// ShutCell is a blank that stays one.
+func ShutCell() Cell { return Cell{Shut: true} }
+
+// QuantityCell holds pieces or a length.
+func QuantityCell(q catalog.Quantity) Cell {
+	if q.Length != 0 {
+		return LengthCell(q.Length)
+	}
+	return CountCell(q.Each)
 }
 
 // By is the cell with the way in which its value follows from others.
@@ -127,6 +161,7 @@ type RowRole int
 // The roles of rows.
 const (
 	PlainRow RowRole = iota
+	FixedRow         // like a plain one, but nothing in it is filled in by hand
 	HeadingRow
 	SumRow
 )
@@ -134,6 +169,11 @@ const (
 // Row adds a row.
 func (s *Sheet) Row(key string, cells ...Cell) {
 	s.Rows = append(s.Rows, SheetRow{Key: key, Cells: cells})
+}
+
+// Fixed adds a row in which nothing is filled in by hand.
+func (s *Sheet) Fixed(key string, cells ...Cell) {
+	s.Rows = append(s.Rows, SheetRow{Key: key, Role: FixedRow, Cells: cells})
 }
 
 // Heading begins a group of rows.
@@ -145,7 +185,7 @@ func (s *Sheet) Heading(text string) {
 // heading or sum.
 func (s *Sheet) Sum(key, label string, titles ...string) {
 	from := len(s.Rows)
-	for from > 0 && s.Rows[from-1].Role == PlainRow {
+	for from > 0 && s.Rows[from-1].counts() {
 		from--
 	}
 	s.sum(key, label, from, titles)
@@ -167,11 +207,14 @@ func (s *Sheet) sum(key, label string, from int, titles []string) {
 	s.Rows = append(s.Rows, row)
 }
 
+// counts reports a row whose values sums are made of.
+func (r *SheetRow) counts() bool { return r.Role == PlainRow || r.Role == FixedRow }
+
 // sumOf adds up a column from a row on, sums left out.
 func (s *Sheet) sumOf(column, from int) Cell {
 	sum := Cell{Kind: s.Columns[column].Kind}
 	for _, r := range s.Rows[from:] {
-		if r.Role != PlainRow || column >= len(r.Cells) {
+		if !r.counts() || column >= len(r.Cells) {
 			continue
 		}
 		c := r.Cells[column]

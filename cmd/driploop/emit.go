@@ -32,17 +32,17 @@ func (c *Command) emit(b []byte) error {
 	return nil
 }
 
-// emitBook writes sheets as a workbook, with one on what they were made from.
-func (c *Command) emitBook(ctx context.Context, firm *rules.Firm, plans []source.Entry, title string, sheets []bom.Sheet) error {
+// bookOf makes a workbook of sheets, with one on what they were made from.
+func (c *Command) bookOf(ctx context.Context, firm *rules.Firm, plans []source.Entry, title string, sheets []bom.Sheet) ([]byte, error) {
 	from, err := c.madeFrom(ctx, firm, plans)
 	if err != nil {
-		return err
+		return nil, err
 	}
 	b, err := book.Write(append(sheets, from), book.Meta{Title: title, Today: firm.Today})
 	if err != nil {
-		return failure{fmt.Errorf("making the workbook: %w", err)}
+		return nil, fmt.Errorf("making the workbook: %w", err)
 	}
-	return c.emit(b)
+	return b, nil
 }
 
 // cause is what went wrong with a file, without the name of the file beside its

@@ -25,7 +25,7 @@ func (c *Command) madeFrom(ctx context.Context, firm *rules.Firm, plans []source
 	add := func(key, what, is string) { s.Row(key, bom.WordsCell(what), bom.WordsCell(is)) }
 	digests, err := firm.Digests()
 	if err != nil {
-		return s, failure{err}
+		return s, err
 	}
 	add("workspace", "workspace", firm.Workspace.Name.Or("without a name"))
 	add("version", "version of driploop", version)

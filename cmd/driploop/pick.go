@@ -24,7 +24,7 @@ jobs hold first is not touched.
 touches nothing else; a second issue needs --more.`,
 		Args: cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "html")
+			form, err := c.form("text", "json", "xlsx", "html")
 			if err != nil {
 				return err
 			}
@@ -48,7 +48,12 @@ touches nothing else; a second issue needs --more.`,
 			if how.do {
 				return c.issue(cmd.Context(), firm, list, how, page)
 			}
-			b, err := pickAs(list, form, page)
+			var b []byte
+			if form == "xlsx" {
+				b, err = c.bookOf(cmd.Context(), firm, firm.PlanFiles, "Pick list for "+list.Job, list.Sheets())
+			} else {
+				b, err = pickAs(list, form, page)
+			}
 			if err != nil {
 				return failure{err}
 			}

@@ -23,16 +23,18 @@ for the reorder levels: first so that as few jobs are late as the offers allow, 
 at the least cost with freight. Jobs that are needed later than buy_ahead_days from
 now are listed and not bought for. With plans, only what these lack is bought.`,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "csv")
+			form, err := c.form("text", "json", "csv", "xlsx")
 			if err != nil {
 				return err
 			}
-			return c.buying(cmd, args, until, func(b *show.Buying, page show.Page) ([]byte, error) {
+			return c.buying(cmd, args, until, func(b *show.OrderBook, firm *rules.Firm, page show.Page) ([]byte, error) {
 				switch form {
 				case "json":
 					return b.JSON()
 				case "csv":
 					return b.CSV()
+				case "xlsx":
+					return c.bookOf(cmd.Context(), firm, firm.PlanFiles, "Purchase", b.Sheets())
 				}
 				return b.Text(page)
 			})
@@ -56,8 +58,8 @@ reels are shown.`,
 			if err != nil {
 				return err
 			}
-			return c.buying(cmd, args, until, func(b *show.Buying, page show.Page) ([]byte, error) {
-				cuts := &show.Cuts{Buying: b}
+			return c.buying(cmd, args, until, func(b *show.OrderBook, _ *rules.Firm, page show.Page) ([]byte, error) {
+				cuts := &show.Cuts{Buying: b.Buying}
 				switch form {
 				case "json":
 					return cuts.JSON()
@@ -74,7 +76,7 @@ reels are shown.`,
 
 // buying makes the purchase that a command shows. With plans, purchase buys for them
 // alone; cuts are always planned for all.
-func (c *Command) buying(cmd *cobra.Command, args []string, until string, form func(*show.Buying, show.Page) ([]byte, error)) error {
+func (c *Command) buying(cmd *cobra.Command, args []string, until string, form func(*show.OrderBook, *rules.Firm, show.Page) ([]byte, error)) error {
 	page, err := c.page()
 	if err != nil {
 		return err
@@ -103,7 +105,7 @@ func (c *Command) buying(cmd *cobra.Command, args []string, until string, form f
 		return err
 	}
 	b.Jobs = jobs
-	out, err := form(b, page)
+	out, err := form(b, firm, page)
 	if err != nil {
 		return failure{err}
 	}
@@ -124,7 +126,7 @@ func jobsOf(plans []source.Entry) map[string]bool {
 
 // buy shares the stock out and says what to buy. Plans that cannot be read whole
 // take nothing and are named; the status tells of them.
-func (c *Command) buy(ctx context.Context, firm *rules.Firm, terms bom.Terms) (*show.Buying, error) {
+func (c *Command) buy(ctx context.Context, firm *rules.Firm, terms bom.Terms) (*show.OrderBook, error) {
 	d, err := firm.Demands(ctx)
 	if err != nil {
 		return nil, failure{err}
@@ -138,6 +140,7 @@ func (c *Command) buy(ctx context.Context, firm *rules.Firm, terms bom.Terms) (*
 	for _, g := range d.Gaps {
 		b.Gaps = append(b.Gaps, show.JobGap{Job: g.Job, Gap: g.Gap})
 	}
-	b.Purchase = bom.Buy(firm.Allocate(d), firm.Offers, firm.Catalog.Look, terms)
-	return b, nil
+	a := firm.Allocate(d)
+	b.Purchase = bom.Buy(a, firm.Offers, firm.Catalog.Look, terms)
+	return &show.OrderBook{Buying: b, Allocation: a, Premises: &w.Premises, Offers: firm.Offers}, nil
 }

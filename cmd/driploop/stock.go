@@ -11,15 +11,17 @@ import (
 )
 
 func (c *Command) stock() *cobra.Command {
-	return &cobra.Command{
+	var blind bool
+	cmd := &cobra.Command{
 		Use:   "stock [PLAN…]",
 		Short: "what is on hand, on its way, claimed and free",
 		Long: `Adds up the stock sheets and orders as of today and shares them out over all open
 jobs: for each part and shelf what lies there, what is on its way, what is kept for
 jobs and what is free, and what each job is short of and who holds it. With plans,
-only the parts that they claim are shown.`,
+only the parts that they claim are shown. The workbook has a sheet to count on for
+each shelf that something lies on.`,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "csv")
+			form, err := c.form("text", "json", "csv", "xlsx")
 			if err != nil {
 				return err
 			}
@@ -47,13 +49,32 @@ only the parts that they claim are shown.`,
 			for _, e := range plans {
 				s.Jobs = append(s.Jobs, bom.JobOf(e.Path))
 			}
-			b, err := stockAs(s, form, page)
+			var b []byte
+			if form == "xlsx" {
+				b, err = c.bookOf(cmd.Context(), firm, firm.PlanFiles, "Stock", stockSheets(s, firm, blind))
+			} else {
+				b, err = stockAs(s, form, page)
+			}
 			if err != nil {
 				return failure{err}
 			}
 			return c.emit(b)
 		},
 	}
+	cmd.Flags().BoolVar(&blind, "blind", false, "leave what the book says out of the sheets to count on")
+	return cmd
+}
+
+// stockSheets are the stock and, where no plans are named, the sheets to count on.
+func stockSheets(s *show.Stock, firm *rules.Firm, blind bool) []bom.Sheet {
+	out := s.Sheets()
+	if s.Jobs != nil {
+		return out
+	}
+	for _, shelf := range firm.Workspace.Premises.ShelfNames() {
+		out = append(out, s.CountSheets(shelf, blind)...)
+	}
+	return out
 }
 
 func stockAs(s *show.Stock, form string, page show.Page) ([]byte, error) {

@@ -39,10 +39,12 @@ is left out; so are cancelled jobs.`,
 				plans = firm.PlanFiles
 			}
 			t := c.takeOff(firm, plans)
+			var b []byte
 			if form == "xlsx" {
-				return c.emitBook(cmd.Context(), firm, plans, "Takeoff", t.Sheets())
+				b, err = c.bookOf(cmd.Context(), firm, plans, "Takeoff", t.Sheets())
+			} else {
+				b, err = takeoffAs(t, form, page)
 			}
-			b, err := takeoffAs(t, form, page)
 			if err != nil {
 				return failure{err}
 			}

@@ -26,7 +26,7 @@ func (b *builder) validate(l *layout) error {
 			continue
 		}
 		at := ref(l.value, l.facts+i)
-		if err := b.ask(l, at, f.Cell.Kind, f.Ask); err != nil {
+		if err := b.ask(l, at, kindOf(f), f.Ask); err != nil {
 			return err
 		}
 	}
@@ -88,4 +88,12 @@ func orElse(v, other int64) int64 {
 		return other
 	}
 	return v
+}
+
+// kindOf is what kind of value a fact has, or is given.
+func kindOf(f bom.Fact) bom.CellKind {
+	if f.Cell.Kind == bom.KindBlank {
+		return f.Kind
+	}
+	return f.Cell.Kind
 }

@@ -15,7 +15,7 @@ const maxRows = 1 << 20
 
 // Widths of columns, in characters.
 const (
-	narrowest = 5
+	narrowest = 8
 	widest    = 44
 )
 
@@ -66,10 +66,10 @@ func (l *layout) rowOf(i int) int { return l.head + 1 + i }
 func (l *layout) measure(c *changes) {
 	l.widths, l.digits = make([]int, max(len(l.Columns), 2)), make([]int, max(len(l.Columns), 2))
 	for i, col := range l.Columns {
-		l.widths[i] = max(narrowest, min(widest, longestWord(string(c.of(col.Title)))+2))
+		l.widths[i] = max(narrowest, min(widest, longestWord(string(c.of(col.Title)))+3))
 		l.digits[i] = leastDecimals(col.Kind, l.Feet)
 		if col.Ask != nil {
-			l.widths[i] = max(l.widths[i], map[bom.CellKind]int{bom.KindWords: 20, bom.KindDay: 12}[col.Kind], 9)
+			l.widths[i] = max(l.widths[i], map[bom.CellKind]int{bom.KindWords: 20, bom.KindDay: 13}[col.Kind], 9)
 		}
 	}
 	for _, r := range l.Rows {
@@ -78,7 +78,7 @@ func (l *layout) measure(c *changes) {
 				break
 			}
 			l.digits[i] = max(l.digits[i], decimals(cell, l.Feet))
-			if r.Role != bom.HeadingRow && (r.Role == bom.PlainRow || cell.Kind != bom.KindWords) {
+			if r.Role != bom.HeadingRow && (r.Role != bom.SumRow || cell.Kind != bom.KindWords) {
 				l.widths[i] = max(l.widths[i], l.widthOf(cell, l.digits[i], c))
 			} else {
 				c.of(cell.Words)
@@ -124,7 +124,7 @@ func (l *layout) widthOf(cell bom.Cell, digits int, c *changes) int {
 	case bom.KindWords:
 		return min(widest, utf8.RuneCountInString(string(c.of(cell.Words)))+2)
 	case bom.KindDay:
-		return 12
+		return 13
 	}
 	whole := strconv.FormatFloat(l.number(cell), 'f', 0, 64)
 	n := len(whole) + (len(whole)-1)/3 + 4

@@ -49,7 +49,7 @@ func (b *builder) print(l *layout) error {
 // lastPlain is the last row that is no sum: sums stay in sight whatever is chosen.
 func (l *layout) lastPlain() int {
 	last := len(l.Rows) - 1
-	for last >= 0 && l.Rows[last].Role != bom.PlainRow {
+	for last >= 0 && l.Rows[last].Role == bom.SumRow {
 		last--
 	}
 	return last

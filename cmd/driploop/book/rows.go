@@ -83,15 +83,26 @@ func (s *sheetWriter) fact(row int, f *bom.Fact) error {
 		return err
 	}
 	cells := make([]any, s.key)
-	cells[0], cells[s.value-1] = label, value
+	cells[0] = label
+	last := s.value
+	for f.Ask != nil && last < len(s.widths) && s.left(last+1)-s.left(s.value) < 24 {
+		last++
+	}
+	for at := s.value; at <= last; at++ {
+		cells[at-1] = excelize.Cell{StyleID: value.StyleID}
+	}
+	cells[s.value-1] = value
 	if f.Key != "" {
 		cells[s.key-1] = keyText(f.Key)
 	}
-	return s.to.SetRow(ref(1, row), cells, excelize.RowOpts{Height: height(1)})
+	if err := s.to.SetRow(ref(1, row), cells, excelize.RowOpts{Height: height(1)}); err != nil || last == s.value {
+		return err
+	}
+	return s.to.MergeCell(ref(s.value, row), ref(last, row))
 }
 
 func (s *sheetWriter) factLook(f *bom.Fact) look {
-	kind := f.Cell.Kind
+	kind := kindOf(*f)
 	return look{role: ofFact, kind: kind, digits: max(decimals(f.Cell, s.Feet), leastDecimals(kind, s.Feet)), feet: s.Feet, clerk: f.Ask != nil}
 }
 
@@ -124,12 +135,17 @@ func (s *sheetWriter) table() error {
 		if err := s.to.SetRow(ref(1, s.rowOf(i)), cells, excelize.RowOpts{Height: high}); err != nil {
 			return err
 		}
+		if s.Rows[i].Role == bom.HeadingRow && len(s.Columns) > 1 {
+			if err := s.to.MergeCell(ref(1, s.rowOf(i)), ref(len(s.Columns), s.rowOf(i))); err != nil {
+				return err
+			}
+		}
 	}
 	return nil
 }
 
 // roles of the rows of a sheet.
-var roles = map[bom.RowRole]role{bom.PlainRow: ofTable, bom.HeadingRow: ofHeading, bom.SumRow: ofSum}
+var roles = map[bom.RowRole]role{bom.PlainRow: ofTable, bom.FixedRow: ofTable, bom.HeadingRow: ofHeading, bom.SumRow: ofSum}
 
 // line fills in the cells of the i-th row and says how high it is.
 func (s *sheetWriter) line(i int, cells []any) (high float64, err error) {
@@ -140,14 +156,18 @@ func (s *sheetWriter) line(i int, cells []any) (high float64, err error) {
 		if at < len(r.Cells) {
 			cell = r.Cells[at]
 		}
-		k := look{role: roles[r.Role], kind: cell.Kind, feet: s.Feet, clerk: c.Ask != nil && r.Role == bom.PlainRow}
+		k := look{role: roles[r.Role], kind: cell.Kind, feet: s.Feet, clerk: c.Ask != nil && r.Role == bom.PlainRow && !cell.Shut}
 		if cell.Kind == bom.KindBlank {
 			k.kind = c.Kind
 		}
 		if k.kind == bom.KindMoney || k.kind == bom.KindLength {
 			k.digits = max(s.digits[at], leastDecimals(k.kind, s.Feet))
 		}
-		if cell.Kind == bom.KindWords && r.Role == bom.PlainRow && len(cell.Words) >= s.widths[at] {
+		switch {
+		case cell.Kind != bom.KindWords || r.Role == bom.SumRow:
+		case r.Role == bom.HeadingRow:
+			most = max(most, lines(cell.Words, s.left(len(s.widths)+1)))
+		case len(cell.Words) >= s.widths[at]:
 			most = max(most, lines(cell.Words, s.widths[at]))
 		}
 		out, err := s.cell(cell, k)
@@ -163,7 +183,7 @@ func (s *sheetWriter) line(i int, cells []any) (high float64, err error) {
 		}
 		cells[at] = out
 	}
-	if r.Key != "" && r.Role == bom.PlainRow {
+	if r.Key != "" && (r.Role == bom.PlainRow || r.Role == bom.FixedRow) {
 		cells[s.key-1] = keyText(r.Key)
 	}
 	return height(most), nil

@@ -79,7 +79,7 @@ func (k look) style() *excelize.Style {
 		st.Fill = fill(fillHead)
 		st.Border = []excelize.Border{{Type: "bottom", Style: 2, Color: lineStrong}}
 	case ofHeading:
-		st.Font.Bold, st.Alignment.WrapText = true, false
+		st.Font.Bold = true
 		st.Fill = fill(fillGroup)
 	case ofSum:
 		st.Font.Bold, st.Alignment.WrapText = true, false

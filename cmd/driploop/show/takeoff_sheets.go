@@ -25,8 +25,8 @@ const piecesKey = "pieces"
 
 func (t *Takeoff) byPart() bom.Sheet {
 	s := bom.Sheet{Key: "takeoff", Name: "Takeoff", Title: "Takeoff", Wide: true, Filter: true, Feet: t.Feet,
-		Columns: []bom.Column{{Title: "part", Kind: bom.KindWords}, {Title: "kind", Kind: bom.KindWords}, {Title: "name", Kind: bom.KindWords}, {Title: "pieces", Kind: bom.KindCount},
-			{Title: "length to bring", Kind: bom.KindLength}, {Title: "length installed", Kind: bom.KindLength}, {Title: "for", Kind: bom.KindWords}},
+		Columns: []bom.Column{bom.TextColumn("part"), bom.TextColumn("kind"), bom.TextColumn("name"), bom.CountColumn("pieces"),
+			bom.LengthColumn("length to bring"), bom.LengthColumn("length installed"), bom.TextColumn("for")},
 		Notes: []string{"Lengths to bring have the allowance of every cut; packages of consumables are rounded up once, over all jobs."}}
 	if len(t.Gaps) > 0 {
 		s.Notes = append(s.Notes, "Not counted, on a sheet of its own: "+words(len(t.Gaps), "thing", "things")+".")
@@ -52,8 +52,8 @@ func quantities(each int, length, bare unit.MM) (pieces, cut, installed bom.Cell
 
 func (t *Takeoff) byJob() bom.Sheet {
 	s := bom.Sheet{Key: "jobs", Name: "By job", Title: "Takeoff by job", Filter: true, Feet: t.Feet,
-		Columns: []bom.Column{{Title: "job", Kind: bom.KindWords}, {Title: "part", Kind: bom.KindWords}, {Title: "kind", Kind: bom.KindWords}, {Title: "name", Kind: bom.KindWords}, {Title: "pieces", Kind: bom.KindCount},
-			{Title: "length to bring", Kind: bom.KindLength}, {Title: "length installed", Kind: bom.KindLength}}}
+		Columns: []bom.Column{bom.TextColumn("job"), bom.TextColumn("part"), bom.TextColumn("kind"), bom.TextColumn("name"), bom.CountColumn("pieces"),
+			bom.LengthColumn("length to bring"), bom.LengthColumn("length installed")}}
 	for _, r := range t.Rows {
 		for _, j := range r.Jobs {
 			var installed unit.MM
@@ -69,7 +69,7 @@ func (t *Takeoff) byJob() bom.Sheet {
 
 func (t *Takeoff) pieces() bom.Sheet {
 	s := bom.Sheet{Key: piecesKey, Name: "Pieces", Title: "Pieces to cut", Feet: t.Feet,
-		Columns: []bom.Column{{Title: "job", Kind: bom.KindWords}, {Title: "line", Kind: bom.KindWords}, {Title: "installed", Kind: bom.KindLength}, {Title: "to cut", Kind: bom.KindLength}}}
+		Columns: []bom.Column{bom.TextColumn("job"), bom.TextColumn("line"), bom.LengthColumn("installed"), bom.LengthColumn("to cut")}}
 	for _, r := range t.Rows {
 		if r.Length == 0 {
 			continue
@@ -87,7 +87,7 @@ func (t *Takeoff) pieces() bom.Sheet {
 
 func (t *Takeoff) notCounted() bom.Sheet {
 	s := bom.Sheet{Key: "gaps", Name: "Not counted", Title: "Not counted", Filter: true,
-		Columns: []bom.Column{{Title: "job", Kind: bom.KindWords}, {Title: "thing", Kind: bom.KindWords}, {Title: "why", Kind: bom.KindWords}, {Title: "line", Kind: bom.KindCount}}}
+		Columns: []bom.Column{bom.TextColumn("job"), bom.TextColumn("thing"), bom.TextColumn("why"), bom.CountColumn("line")}}
 	for _, g := range t.Gaps {
 		s.Row("", bom.WordsCell(g.Job), bom.WordsCell(strings.Replace(g.On, ".", " ", 1)), bom.WordsCell(g.Says), bom.CountCell(int64(g.At.Line())))
 	}
