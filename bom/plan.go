@@ -99,6 +99,15 @@ func JobOf(path string) string {
 // DescribePlan documents the plan format.
 func DescribePlan() *source.Record { return source.Describe((&Plan{}).keys) }
 
+// What the words of a plan may be, put together once for all the rows that use them.
+var (
+	stages      = source.OneOf("draft", "review", "construction", "as-built", "cancelled")
+	settings    = source.OneOf("building", "vehicle")
+	users       = source.OneOf("personal", "business", "public")
+	bandNames   = source.ListOf(catalog.BandName)
+	paperStates = source.OneOf("missing", "applied", "granted", "refused", "not-required")
+)
+
 func (p *Plan) keys(k *source.Keys) {
 	source.One(k, &p.Job, "job", (*Job).keys, "what the job is and how far it has come")
 	source.Named(k, &p.Operators, "operator", (*Operator).keys, "operators whose licence is used")
@@ -124,16 +133,16 @@ func (p *Plan) keys(k *source.Keys) {
 func (j *Job) keys(k *source.Keys) {
 	j.At = k.At()
 	source.Opt(k, &j.Title, "title", source.Text, "what the job is called")
-	source.Opt(k, &j.Stage, "stage", source.OneOf("draft", "review", "construction", "as-built", "cancelled"), "how far it has come; absent: draft")
+	source.Opt(k, &j.Stage, "stage", stages, "how far it has come; absent: draft")
 	source.Opt(k, &j.Because, "because", source.Text, "why it was cancelled")
 	source.Opt(k, &j.Ended, "ended", source.Day, "when it was cancelled")
 	source.Opt(k, &j.InstallOn, "install_on", source.Day, "day of the install")
 	source.Opt(k, &j.Profile, "profile", source.Name, "limit profile; absent: the workspace's")
 	source.Opt(k, &j.Code, "code", source.Name, "grounding and safety code; absent: the workspace's")
-	source.Opt(k, &j.Setting, "setting", source.OneOf("building", "vehicle"), "absent: building")
-	source.Opt(k, &j.Use, "use", source.OneOf("personal", "business", "public"), "who uses it")
+	source.Opt(k, &j.Setting, "setting", settings, "absent: building")
+	source.Opt(k, &j.Use, "use", users, "who uses it")
 	source.Opt(k, &j.Crew, "crew", source.Name, "crew of the workspace")
-	source.Opt(k, &j.Bands, "bands", source.ListOf(catalog.BandName), "bands the install is for")
+	source.Opt(k, &j.Bands, "bands", bandNames, "bands the install is for")
 	cancelled := source.Holds("stage", "cancelled")
 	k.Demand(source.Condition{When: &cancelled, Any: []source.State{source.Given("because")}})
 	if j.Stage.V == "cancelled" && !k.Has("because") {
@@ -161,7 +170,7 @@ func evidence(k *source.Keys, name, doc string) *Evidence {
 
 func (e *Evidence) keys(k *source.Keys) {
 	e.At = k.At()
-	source.Need(k, &e.State, "state", source.OneOf("missing", "applied", "granted", "refused", "not-required"), "how far the paper has come")
+	source.Need(k, &e.State, "state", paperStates, "how far the paper has come")
 	source.Opt(k, &e.Ref, "ref", source.Text, "where it is filed")
 	source.Opt(k, &e.On, "on", source.Day, "its day")
 	source.Opt(k, &e.Why, "why", source.Text, "why it is not required")

@@ -145,6 +145,18 @@ var way = source.Map(source.Shaped(source.ListOf(stretch), source.Form{Most: mos
 	return v, nil
 })
 
+var copyAt = source.Map(point, func(p Point) (Copy, error) {
+	return Copy{Point: source.Val[Point]{V: p, Set: true}}, nil
+})
+
+// What the values of these rows may be, put together once for all of them.
+var (
+	bandSetting = source.Inline((*Setting).keys)
+	copies      = source.Either(source.IsArray, copyAt, source.Inline((*Copy).keys), "position or table")
+	couplings   = source.OneOf("antenna", "cradle", "wired")
+	raceways    = source.OneOf("none", "plastic", "metal", "metal-bonded-one-end", "metal-bonded-both-ends")
+)
+
 func (d *DeviceRow) keys(k *source.Keys) {
 	d.ID, d.At = k.ID(), k.At()
 	source.Opt(k, &d.Part, "part", source.Name, "part of the catalog")
@@ -161,13 +173,10 @@ func (d *DeviceRow) keys(k *source.Keys) {
 	source.Opt(k, &d.Point, "at", point, "east, north, height in metres; in place of the place's")
 	source.Opt(k, &d.AimDeg, "aim_deg", degrees, "direction of an antenna, from true north")
 	source.Opt(k, &d.People, "people", source.Length, "nearest that a person stays")
-	source.Opt(k, &d.Coupling, "coupling", source.OneOf("antenna", "cradle", "wired"), "how phones are coupled to an amplifier; absent: antenna")
+	source.Opt(k, &d.Coupling, "coupling", couplings, "how phones are coupled to an amplifier; absent: antenna")
 	source.Opt(k, &d.Serial, "serial", source.Text, "serial number once built")
-	source.Each(k, &d.Set, "set", catalog.ByBand, source.Inline((*Setting).keys), "how an amplifier is set, by band")
-	at := source.Map(point, func(p Point) (Copy, error) {
-		return Copy{Point: source.Val[Point]{V: p, Set: true}}, nil
-	})
-	source.Each(k, &d.Copies, "copies", source.Names, source.Either(source.IsArray, at, source.Inline((*Copy).keys), "position or table"), "more devices of the same part")
+	source.Each(k, &d.Set, "set", catalog.ByBand, bandSetting, "how an amplifier is set, by band")
+	source.Each(k, &d.Copies, "copies", source.Names, copies, "more devices of the same part")
 	k.Demand(source.Condition{Any: []source.State{source.Given("part"), source.Holds("existing", true)}},
 		source.Needs("part", "kind"))
 	if !k.Recording() && !k.Has("part") && !(maybe(k, d.Existing, "existing") && k.Has("kind")) {
@@ -192,7 +201,7 @@ func (c *CableRow) keys(k *source.Keys) {
 	source.Opt(k, &c.From, "from", ref, "where end 1 goes")
 	source.Opt(k, &c.To, "to", ref, "where end 2 goes")
 	source.Opt(k, &c.Ends, "ends", bothEnds, "from end, to end: a face or the connector part")
-	source.Opt(k, &c.Through, "through", source.ListOf(source.Name), "adapters at the to end, from cable to port")
+	source.Opt(k, &c.Through, "through", nameList, "adapters at the to end, from cable to port")
 	source.Opt(k, &c.Way, "way", way, "places it passes; absent: straight from place to place")
 	source.Opt(k, &c.LeastBend, "least_bend", source.Length, "tightest bend on its way")
 	source.Opt(k, &c.Existing, "existing", source.Flag, "already there")
@@ -243,7 +252,7 @@ func (b *BondRow) keys(k *source.Keys) {
 	source.Opt(k, &b.Direct, "direct", source.Flag, "metal on metal, without a conductor")
 	source.Opt(k, &b.Length, "length", source.Length, "length of the conductor")
 	source.Opt(k, &b.Bends, "bends", source.Count(0, 100), "number of bends")
-	source.Opt(k, &b.Raceway, "raceway", source.OneOf("none", "plastic", "metal", "metal-bonded-one-end", "metal-bonded-both-ends"), "what it runs in")
+	source.Opt(k, &b.Raceway, "raceway", raceways, "what it runs in")
 	source.Opt(k, &b.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &b.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
 	k.Demand(source.Condition{Any: []source.State{source.Given("part"), source.Holds("direct", true), source.Holds("existing", true)}})

@@ -94,27 +94,42 @@ var (
 	degrees  = source.Between(-360, 360, "degrees")
 )
 
+// What the words of these rows may be, put together once for all of them.
+var (
+	shellLoss         = source.Between(0, 100, "dB")
+	windBases         = source.OneOf("asce7-strength", "asce7-service", "en-60728-11")
+	terrains          = source.OneOf("B", "C", "D")
+	electrodes        = source.OneOf("building", "separate-tied", "separate-untied", "none")
+	protectionClasses = source.OneOf("none", "I", "II", "III", "IV")
+	mainsKinds        = source.OneOf("plain", "protected", "none")
+	skins             = source.OneOf("steel", "aluminium", "plastic")
+	downConductors    = source.Count(1, 1000)
+	media             = source.OneOf("air", "concrete", "brick", "wood")
+	placeKinds        = source.OneOf("outdoor", "entry", "indoor", "attic", "riser", "plenum", "vehicle-skin", "vehicle-cabin")
+	accesses          = source.OneOf("public", "crew", "none")
+)
+
 func (s *Site) keys(k *source.Keys) {
 	s.At = k.At()
-	source.Opt(k, &s.ShellDB, "shell_db", source.Between(0, 100, "dB"), "loss between outside and inside where no [[between]] says better")
+	source.Opt(k, &s.ShellDB, "shell_db", shellLoss, "loss between outside and inside where no [[between]] says better")
 	source.Opt(k, &s.Coldest, "coldest", source.Temperature, "coldest outdoor temperature")
 	source.Opt(k, &s.Hottest, "hottest", source.Temperature, "hottest outdoor temperature")
 	source.Opt(k, &s.Wind, "wind", source.Speed, "wind speed to design for")
-	source.Opt(k, &s.WindBasis, "wind_basis", source.OneOf("asce7-strength", "asce7-service", "en-60728-11"), "what the speed means")
-	source.Opt(k, &s.Terrain, "terrain", source.OneOf("B", "C", "D"), "exposure category of ASCE 7")
-	source.Opt(k, &s.Electrode, "electrode", source.OneOf("building", "separate-tied", "separate-untied", "none"), "ground electrode")
-	source.Opt(k, &s.Lightning, "lightning_system", source.OneOf("none", "I", "II", "III", "IV"), "lightning protection system of the building, by class")
+	source.Opt(k, &s.WindBasis, "wind_basis", windBases, "what the speed means")
+	source.Opt(k, &s.Terrain, "terrain", terrains, "exposure category of ASCE 7")
+	source.Opt(k, &s.Electrode, "electrode", electrodes, "ground electrode")
+	source.Opt(k, &s.Lightning, "lightning_system", protectionClasses, "lightning protection system of the building, by class")
 	s.Strike.keys(k)
-	source.Opt(k, &s.Mains, "mains", source.OneOf("plain", "protected", "none"), "mains supply of the gear")
-	source.Opt(k, &s.Volts, "volts", source.Between(0, 1000, "V"), "nominal voltage of the vehicle")
-	source.Opt(k, &s.Skin, "skin", source.OneOf("steel", "aluminium", "plastic"), "skin of the vehicle")
+	source.Opt(k, &s.Mains, "mains", mainsKinds, "mains supply of the gear")
+	source.Opt(k, &s.Volts, "volts", voltage, "nominal voltage of the vehicle")
+	source.Opt(k, &s.Skin, "skin", skins, "skin of the vehicle")
 }
 
 func (s *Strike) keys(k *source.Keys) {
-	source.Opt(k, &s.Conductors, "lightning_down_conductors", source.Count(1, 1000), "down conductors of the lightning protection system")
+	source.Opt(k, &s.Conductors, "lightning_down_conductors", downConductors, "down conductors of the lightning protection system")
 	source.Opt(k, &s.Length, "lightning_length", source.Length, "along its conductors, from the point nearest to the antenna or mast to the next equipotential bond")
 	source.Opt(k, &s.Gap, "lightning_gap", source.Length, "distance of the antenna or mast from it, where they come closest")
-	source.Opt(k, &s.Medium, "lightning_medium", source.OneOf("air", "concrete", "brick", "wood"), "what lies in that distance; air only where nothing else does")
+	source.Opt(k, &s.Medium, "lightning_medium", media, "what lies in that distance; air only where nothing else does")
 	source.Opt(k, &s.EarthsDiffer, "lightning_earths_differ", source.Flag, "its earth electrodes differ in resistance by more than a factor of 2")
 }
 
@@ -126,11 +141,11 @@ func (l *PowerLine) keys(k *source.Keys) {
 
 func (p *Place) keys(k *source.Keys) {
 	p.ID, p.At = k.ID(), k.At()
-	source.Need(k, &p.Kind, "kind", source.OneOf("outdoor", "entry", "indoor", "attic", "riser", "plenum", "vehicle-skin", "vehicle-cabin"), "what sort of space it is")
+	source.Need(k, &p.Kind, "kind", placeKinds, "what sort of space it is")
 	source.Opt(k, &p.Point, "at", point, "east, north, height above ground at the building, metres")
 	source.Opt(k, &p.Hottest, "hottest", source.Temperature, "of this place; absent: as its kind")
 	source.Opt(k, &p.Coldest, "coldest", source.Temperature, "of this place; absent: as its kind")
-	source.Opt(k, &p.Access, "access", source.OneOf("public", "crew", "none"), "who comes there")
+	source.Opt(k, &p.Access, "access", accesses, "who comes there")
 	source.Opt(k, &p.Airbag, "airbag", source.Flag, "an air bag unfolds there")
 }
 

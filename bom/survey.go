@@ -118,14 +118,36 @@ type Waiver struct {
 
 var level = source.Between(-200, 60, "dBm")
 
+var namedWall = source.Map(source.Text, func(s string) (Wall, error) {
+	return Wall{Name: source.Val[string]{V: s, Set: true}}, nil
+})
+
+// What the values of these rows may be, put together once for all of them.
+var (
+	frequency     = source.Between(1, 300000, "MHz")
+	channelWidth  = source.Between(0.1, 2000, "MHz")
+	subcarriers   = source.Between(15, 480, "kHz")
+	nameList      = source.ListOf(source.Name)
+	walls         = source.ListOf(source.Either(source.IsString, namedWall, source.Inline((*Wall).keys), "wall"))
+	floors        = source.Count(0, 50)
+	environments  = source.OneOf("residential", "office", "commercial")
+	befores       = source.ListOf(source.Inline((*Before).keys))
+	quantities    = source.OneOf("isolation", "rsrp", "return-loss", "vswr", "ground-ohm", "voltage", "length", "serial")
+	standingWave  = source.AtLeast(1, "")
+	resistance    = source.AtLeast(0, "ohm")
+	voltage       = source.Between(0, 1000, "V")
+	readingStages = source.OneOf("survey", "as-built")
+	extraQty      = source.Count(1, 1000000)
+)
+
 func (s *Signal) keys(k *source.Keys) {
 	s.At = k.At()
 	source.Need(k, &s.Operator, "operator", source.Name, "whose it is")
 	source.Need(k, &s.Band, "band", catalog.BandName, "3GPP band")
-	source.Opt(k, &s.MHz, "mhz", source.Between(1, 300000, "MHz"), "channel centre; absent: middle of the band")
-	source.Opt(k, &s.WidthMHz, "width_mhz", source.Between(0.1, 2000, "MHz"), "channel width")
+	source.Opt(k, &s.MHz, "mhz", frequency, "channel centre; absent: middle of the band")
+	source.Opt(k, &s.WidthMHz, "width_mhz", channelWidth, "channel width")
 	source.Need(k, &s.RSRP, "rsrp_dbm", level, "reference signal power at a 0 dBi antenna, unless through")
-	source.Opt(k, &s.SCSkHz, "scs_khz", source.Between(15, 480, "kHz"), "subcarrier spacing of an NR signal")
+	source.Opt(k, &s.SCSkHz, "scs_khz", subcarriers, "subcarrier spacing of an NR signal")
 	source.Opt(k, &s.SINR, "sinr_db", decibels, "signal to interference and noise")
 	source.Opt(k, &s.Bearing, "bearing_deg", degrees, "direction of the site, from true north")
 	source.Opt(k, &s.Where, "at", source.Text, "where it was taken")
@@ -143,17 +165,14 @@ func (t *Through) keys(k *source.Keys) {
 func (a *Area) keys(k *source.Keys) {
 	a.At = k.At()
 	source.Need(k, &a.Name, "name", source.Text, "what it is called")
-	source.Opt(k, &a.ServedBy, "served_by", source.ListOf(source.Name), "server antennas, or the router's own")
+	source.Opt(k, &a.ServedBy, "served_by", nameList, "server antennas, or the router's own")
 	source.Opt(k, &a.Distance, "distance", source.Length, "to the nearest of them")
-	wall := source.Map(source.Text, func(s string) (Wall, error) {
-		return Wall{Name: source.Val[string]{V: s, Set: true}}, nil
-	})
-	source.Opt(k, &a.Walls, "walls", source.ListOf(source.Either(source.IsString, wall, source.Inline((*Wall).keys), "wall")), "walls on the way; absent: an indoor model stands for them")
-	source.Opt(k, &a.Floors, "floors", source.Count(0, 50), "floors on the way")
-	source.Opt(k, &a.Environment, "environment", source.OneOf("residential", "office", "commercial"), "for the indoor model; absent: office")
-	source.Opt(k, &a.Operators, "operators", source.ListOf(source.Name), "wanted there; absent: all of the plan's")
+	source.Opt(k, &a.Walls, "walls", walls, "walls on the way; absent: an indoor model stands for them")
+	source.Opt(k, &a.Floors, "floors", floors, "floors on the way")
+	source.Opt(k, &a.Environment, "environment", environments, "for the indoor model; absent: office")
+	source.Opt(k, &a.Operators, "operators", nameList, "wanted there; absent: all of the plan's")
 	source.Opt(k, &a.Target, "target_rsrp_dbm", level, "what is promised")
-	source.Opt(k, &a.Before, "before", source.ListOf(source.Inline((*Before).keys)), "what was received without the install")
+	source.Opt(k, &a.Before, "before", befores, "what was received without the install")
 }
 
 func (w *Wall) keys(k *source.Keys) {
@@ -169,21 +188,21 @@ func (b *Before) keys(k *source.Keys) {
 
 func (r *Reading) keys(k *source.Keys) {
 	r.At = k.At()
-	source.Need(k, &r.What, "what", source.OneOf("isolation", "rsrp", "return-loss", "vswr", "ground-ohm", "voltage", "length", "serial"), "what was measured")
+	source.Need(k, &r.What, "what", quantities, "what was measured")
 	source.Opt(k, &r.From, "from", ref, "where, or from where")
 	source.Opt(k, &r.To, "to", ref, "to where")
 	source.Opt(k, &r.Band, "band", catalog.BandName, "in which band; absent: for all")
 	source.Opt(k, &r.Operator, "operator", source.Name, "whose signal")
 	source.Opt(k, &r.Where, "at", source.Text, "area or place; of a length also what it leads to, such as power line or edge")
-	source.Opt(k, &r.MHz, "mhz", source.Between(1, 300000, "MHz"), "at which frequency")
+	source.Opt(k, &r.MHz, "mhz", frequency, "at which frequency")
 	source.Opt(k, &r.DB, "value_db", decibels, "isolation or return loss")
 	source.Opt(k, &r.DBm, "value_dbm", level, "rsrp")
-	source.Opt(k, &r.Ratio, "value", source.AtLeast(1, ""), "vswr")
-	source.Opt(k, &r.Ohm, "value_ohm", source.AtLeast(0, "ohm"), "ground resistance")
-	source.Opt(k, &r.V, "value_v", source.Between(0, 1000, "V"), "voltage")
+	source.Opt(k, &r.Ratio, "value", standingWave, "vswr")
+	source.Opt(k, &r.Ohm, "value_ohm", resistance, "ground resistance")
+	source.Opt(k, &r.V, "value_v", voltage, "voltage")
 	source.Opt(k, &r.Length, "length", source.Length, "length as built")
 	source.Opt(k, &r.Serial, "serial", source.Text, "serial number")
-	source.Opt(k, &r.Stage, "stage", source.OneOf("survey", "as-built"), "when in the job")
+	source.Opt(k, &r.Stage, "stage", readingStages, "when in the job")
 	source.Opt(k, &r.On, "on", source.Day, "when")
 	source.Opt(k, &r.By, "by", source.Text, "who")
 	if k.Recording() {
@@ -207,7 +226,7 @@ func (r *Reserve) keys(k *source.Keys) {
 	r.At = k.At()
 	source.Opt(k, &r.Tag, "tag", source.Name, "a reel or remnant")
 	source.Opt(k, &r.Part, "part", source.Name, "or a part")
-	source.Opt(k, &r.Qty, "qty", source.Count(1, 1000000), "how many")
+	source.Opt(k, &r.Qty, "qty", extraQty, "how many")
 	source.Opt(k, &r.Where, "at", source.Name, "from which shelf")
 	source.Opt(k, &r.Cable, "cable", source.Name, "for which cable")
 	source.Need(k, &r.Until, "until", source.Day, "until when it is kept")

@@ -194,12 +194,12 @@ func Count(lo, hi int) Type[int] {
 // OneOf is one word of a fixed list.
 func OneOf(words ...string) Type[string] {
 	return Type[string]{TypeDoc{Name: "one of", OneOf: words}, func(n *Node) (string, []bad) {
+		if n.Kind == String && contains(words, n.Str) {
+			return n.Str, nil
+		}
 		all := strings.Join(words, ", ")
 		if n.Kind != String {
 			return "", expected(n, "one of "+all, "one of them in quotes")
-		}
-		if contains(words, n.Str) {
-			return n.Str, nil
 		}
 		do := "write one of them"
 		if near := Nearest(n.Str, words); near != "" {
@@ -216,7 +216,10 @@ func ListOf[T any](t Type[T]) Type[[]Val[T]] {
 		if n.Kind != Array {
 			return nil, expected(n, "a list", "it in brackets")
 		}
-		var out []Val[T]
+		if len(n.Items) == 0 {
+			return nil, nil
+		}
+		out := make([]Val[T], 0, len(n.Items))
 		var all []bad
 		for _, i := range n.Items {
 			v, b := t.parse(i)
@@ -292,7 +295,7 @@ func Inline[R any](bind func(*R, *Keys)) Type[R] {
 			return row, expected(n, "a table", "it in braces")
 		}
 		r := &reading{}
-		k := &Keys{at: n.At, table: n, read: r}
+		k := &Keys{at: n.At, table: n, read: r, known: make([]string, 0, 8)}
 		bind(&row, k)
 		k.finish()
 		var all []bad
