@@ -195,7 +195,7 @@ func (c *Case) gainLimit(x *BandChain, q limits.Query, bySite bool) limits.Asses
 		return limits.Least(q, x.inputs(), site...)
 	}
 	a := limits.Least(q, x.inputs(), byBand...)
-	a.Left = c.Profile.Assess(q, x.inputs()).Left
+	a.Left = c.Profile.Uncovered(q)
 	return a
 }
 

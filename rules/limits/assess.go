@@ -62,25 +62,25 @@ func Least(q Query, in Inputs, rows ...*Row) Assessment {
 // leave out.
 func (p *Profile) Assess(q Query, in Inputs) Assessment {
 	a := Least(q, in, p.Match(q)...)
-	a.Left = p.uncovered(q)
+	a.Left = p.Uncovered(q)
 	return a
 }
 
-// uncovered is the part of the band for which no row answers, whatever its figure
+// Uncovered is the part of the band for which no row answers, whatever its figure
 // is counted in. A profile that is silent on the question altogether leaves out
 // nothing.
-func (p *Profile) uncovered(q Query) []unit.Span {
+func (p *Profile) Uncovered(q Query) []unit.Span {
 	span, known := bandSpan(q.Band, q.Direction)
 	if !known {
 		return nil
 	}
-	var covers []unit.Span
+	covers := make([]unit.Span, 0, 8)
 	for _, r := range p.rows(q.Class) {
 		if holds, _ := r.selects(q); holds {
 			covers = append(covers, r.Span())
 		}
 	}
-	if covers == nil {
+	if len(covers) == 0 {
 		return nil
 	}
 	return span.Minus(covers...)

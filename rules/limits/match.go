@@ -84,27 +84,21 @@ func (r *Row) selects(q Query) (bool, []string) {
 	if q.Class == Radio && q.Direction == "" {
 		q.Direction = "uplink" // the only way a radio transmits
 	}
-	selectors := []struct {
-		name string
-		row  source.Val[string]
-		got  string
-	}{
-		{"direction", r.Direction, q.Direction},
-		{"class", r.amplifierClass(), q.Class},
-		{"mobility", r.Mobility, q.Mobility},
-		{"coupling", r.Coupling, q.Coupling},
-		{"source", r.Source, q.Source},
-		{"isolation_control", asWord(r.IsolationControl), asWord(q.IsolationControl).V},
-	}
 	var open []string
-	for _, s := range selectors {
-		switch {
-		case !s.row.Set || s.row.V == s.got:
-		case s.got == "":
-			open = append(open, s.name)
-		default:
-			return false, nil
+	may := func(selector, row, got string) bool {
+		if row != "" && got == "" {
+			open = append(open, selector)
 		}
+		return row == "" || got == "" || row == got
+	}
+	holds := may("direction", r.Direction.V, q.Direction) &&
+		may("class", r.amplifierClass(), q.Class) &&
+		may("mobility", r.Mobility.V, q.Mobility) &&
+		may("coupling", r.Coupling.V, q.Coupling) &&
+		may("source", r.Source.V, q.Source) &&
+		may("isolation_control", asWord(r.IsolationControl), asWord(q.IsolationControl))
+	if !holds {
+		return false, nil
 	}
 	return true, open
 }
@@ -117,11 +111,11 @@ func (r *Row) limits(kind string) bool {
 
 // amplifierClass is the class selector, without the one of radio rows: which list
 // of rows is asked has been decided before.
-func (r *Row) amplifierClass() source.Val[string] {
+func (r *Row) amplifierClass() string {
 	if r.Class.V == Radio {
-		return source.Val[string]{}
+		return ""
 	}
-	return r.Class
+	return r.Class.V
 }
 
 func orOn(state string) string {
@@ -131,15 +125,15 @@ func orOn(state string) string {
 	return state
 }
 
-func asWord(b source.Val[bool]) source.Val[string] {
-	w := source.Val[string]{V: "no", Set: b.Set}
-	if b.V {
-		w.V = "yes"
+// asWord is yes or no, or "" where the plan or the row does not say.
+func asWord(b source.Val[bool]) string {
+	switch {
+	case !b.Set:
+		return ""
+	case b.V:
+		return "yes"
 	}
-	if !b.Set {
-		w.V = ""
-	}
-	return w
+	return "no"
 }
 
 // bandSpan is the band's stretch in one direction, the uplink where none is said.

@@ -133,7 +133,7 @@ func (p *Profile) Bands() []catalog.Band {
 			continue
 		}
 		if len(p.Spectrum) == 0 {
-			if len(p.Radio) > 0 && len(p.uncovered(Query{Kind: "eirp", Class: Radio, Band: b.Name})) == 0 {
+			if len(p.Radio) > 0 && len(p.Uncovered(Query{Kind: "eirp", Class: Radio, Band: b.Name})) == 0 {
 				out = append(out, b)
 			}
 			continue
