@@ -13,7 +13,7 @@ var everything = unit.Span{Lo: 0, Hi: 300000}
 
 // activeEnds are the ends of a line at an amplifier or router.
 func activeEnds(l *bom.Line) []*bom.Node {
-	var out []*bom.Node
+	out := make([]*bom.Node, 0, 2)
 	for _, n := range []*bom.Node{l.From, l.To} {
 		if n.Device != nil && n.Device.Part != nil && n.Device.Active() {
 			out = append(out, n)

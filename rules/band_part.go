@@ -28,10 +28,8 @@ var bandPart = &Rule{
 		}
 		w := &bandWalk{c: c, ways: c.bandWays(), by: map[met]*bounded{}}
 		for _, l := range c.Lines().All {
-			for _, b := range c.Bands() {
-				if w.ways.runOver(l, b) {
-					w.walk(l, b)
-				}
+			if bands := w.ways.over(l); len(bands) > 0 {
+				w.walk(l, bands)
 			}
 		}
 		for _, x := range w.list {
@@ -53,6 +51,17 @@ func (w *bandWays) runOver(l *bom.Line, b catalog.Band) bool {
 		}
 	}
 	return true
+}
+
+// over lists the planned bands that run over a line.
+func (w *bandWays) over(l *bom.Line) []catalog.Band {
+	out := make([]catalog.Band, 0, len(w.c.bands))
+	for _, b := range w.c.Bands() {
+		if w.runOver(l, b) {
+			out = append(out, b)
+		}
+	}
+	return out
 }
 
 // checkRouter holds a router against the planned bands.
@@ -150,8 +159,8 @@ type met struct {
 	ohm    float64
 }
 
-// meet notes that a band passes a thing, which is made the first time.
-func (w *bandWalk) meet(key met, b catalog.Band, thing func() bounded) {
+// meet notes that bands pass a thing, which is made the first time.
+func (w *bandWalk) meet(key met, bands []catalog.Band, thing func() bounded) {
 	x := w.by[key]
 	if x == nil {
 		made := thing()
@@ -159,30 +168,32 @@ func (w *bandWalk) meet(key met, b catalog.Band, thing func() bounded) {
 		w.by[key] = x
 		w.list = append(w.list, x)
 	}
-	left := leavesOut(b, x.covers, x.covers)
-	if !left.Nothing() && !slices.ContainsFunc(x.lefts, func(l leftOut) bool { return l.Band.Name == b.Name }) {
-		x.lefts = append(x.lefts, left)
+	for _, b := range bands {
+		left := leavesOut(b, x.covers, x.covers)
+		if !left.Nothing() && !slices.ContainsFunc(x.lefts, func(l leftOut) bool { return l.Band.Name == b.Name }) {
+			x.lefts = append(x.lefts, left)
+		}
 	}
 }
 
-func (w *bandWalk) walk(l *bom.Line, b catalog.Band) {
+func (w *bandWalk) walk(l *bom.Line, bands []catalog.Band) {
 	var mate *bom.Mate
 	for _, s := range l.Steps {
 		switch {
 		case s.Contact != nil:
 			mate = s.Mate
-			w.contact(s.Contact, mate, b)
+			w.contact(s.Contact, mate, bands)
 		case s.Cable != nil:
-			w.cable(s.Cable, b)
+			w.cable(s.Cable, bands)
 		case s.Lead != nil:
-			w.lead(s.Lead, b)
+			w.lead(s.Lead, bands)
 		case s.Pass != nil:
-			w.pass(s.Pass, mate, b)
+			w.pass(s.Pass, mate, bands)
 		}
 	}
 }
 
-func (w *bandWalk) cable(x *bom.Cable, b catalog.Band) {
+func (w *bandWalk) cable(x *bom.Cable, bands []catalog.Band) {
 	part := x.Part
 	if part == nil {
 		return
@@ -194,19 +205,19 @@ func (w *bandWalk) cable(x *bom.Cable, b catalog.Band) {
 	if of == nil || of.Cable == nil {
 		return // a jumper that states its own loss, or whose cable is not known
 	}
-	w.meet(met{thing: x}, b, func() bounded {
+	w.meet(met{thing: x}, bands, func() bounded {
 		out := bounded{name: fmt.Sprintf("%s (%s)", x.ID, part.ID), on: x.On(), at: placeOr(x.Row.Part.At, x.At), would: w.c.likeCable(part)}
 		w.c.boundCable(&out, of)
 		return out
 	})
 }
 
-func (w *bandWalk) lead(n *bom.Node, b catalog.Band) {
+func (w *bandWalk) lead(n *bom.Node, bands []catalog.Band) {
 	of := w.c.Firm.Catalog.Look(n.Port.Lead.Cable.V)
 	if of == nil || of.Cable == nil {
 		return
 	}
-	w.meet(met{thing: n}, b, func() bounded {
+	w.meet(met{thing: n}, bands, func() bounded {
 		out := bounded{name: fmt.Sprintf("the lead of %s (%s)", n.Name(), of.ID), on: n.On(), at: deviceAt(n.Device)}
 		w.c.boundCable(&out, of)
 		return out
@@ -229,7 +240,7 @@ func (c *Case) boundCable(x *bounded, p *catalog.Part) {
 }
 
 // pass meets a passive device, or an adapter of the mate it belongs to.
-func (w *bandWalk) pass(p *bom.Pass, mate *bom.Mate, b catalog.Band) {
+func (w *bandWalk) pass(p *bom.Pass, mate *bom.Mate, bands []catalog.Band) {
 	key := met{thing: p.Device, part: p.Part}
 	switch {
 	case p.Device != nil:
@@ -241,7 +252,7 @@ func (w *bandWalk) pass(p *bom.Pass, mate *bom.Mate, b catalog.Band) {
 	if key.way = p.In.Name + p.Out.Name; len(p.Rows) > 0 { // outputs that share a row are one
 		key.way, key.row = "", p.Rows[0].At
 	}
-	w.meet(key, b, func() bounded {
+	w.meet(key, bands, func() bounded {
 		x := bounded{name: "adapter " + p.Part.ID}
 		if p.Device != nil {
 			x = bounded{name: fmt.Sprintf("%s (%s)", p.Device.ID, p.Part.ID), on: p.Device.On(), at: deviceAt(p.Device)}
@@ -283,7 +294,7 @@ func adapterNamedAt(m *bom.Mate, p *catalog.Part) source.Place {
 }
 
 // contact meets the connector series of both halves, each once for a cable or joint.
-func (w *bandWalk) contact(k *bom.Contact, m *bom.Mate, b catalog.Band) {
+func (w *bandWalk) contact(k *bom.Contact, m *bom.Mate, bands []catalog.Band) {
 	for _, h := range [2]*bom.Half{&k.A, &k.B} {
 		if !h.Face.Set || !h.Ohm.Set {
 			continue
@@ -297,7 +308,7 @@ func (w *bandWalk) contact(k *bom.Contact, m *bom.Mate, b catalog.Band) {
 		if known {
 			key.thing = ownerOf(m)
 		}
-		w.meet(key, b, func() bounded {
+		w.meet(key, bands, func() bounded {
 			name := fmt.Sprintf("%s of %s ohm", series.Name, plainFigure(h.Ohm.V))
 			x := bounded{name: fmt.Sprintf("the joint of %s and %s (%s)", k.A.Name, k.B.Name, name), on: m.On(), at: m.At, known: known,
 				lacks: "a highest frequency of " + name, origin: series.Source + ", " + limits.ProofText(series.Proof)}
