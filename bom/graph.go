@@ -38,6 +38,8 @@ type Device struct {
 	Stands *Device       // what it stands on
 	Point  source.Val[Point]
 	Nodes  []*Node // its ports
+
+	on string
 }
 
 // Kind is the kind of the device's part, or the kind that the plan gives, or "".
@@ -49,7 +51,7 @@ func (d *Device) Kind() string {
 }
 
 // On is how findings refer to the device.
-func (d *Device) On() string { return "device." + d.ID }
+func (d *Device) On() string { return d.on }
 
 // Node finds a port of the device, or nil.
 func (d *Device) Node(port string) *Node {
@@ -72,10 +74,12 @@ type Cable struct {
 	Ends    [2]*Node
 	Through []*catalog.Part // adapters at end 2 in the order of the row, nil where one did not resolve
 	Like    *Cable
+
+	on string
 }
 
 // On is how findings refer to the cable.
-func (c *Cable) On() string { return "cable." + c.ID }
+func (c *Cable) On() string { return c.on }
 
 // Section is a stretch of a cable's way that lies in one place.
 type Section struct {

@@ -1,6 +1,8 @@
 package bom
 
 import (
+	"slices"
+
 	"driploop/catalog"
 	"driploop/catalog/source"
 )
@@ -354,6 +356,11 @@ func (l *Line) Cables() []*Cable {
 		}
 	}
 	return out
+}
+
+// Holds reports whether a cable is one of the line's.
+func (l *Line) Holds(c *Cable) bool {
+	return slices.ContainsFunc(l.Steps, func(s Step) bool { return s.Cable == c })
 }
 
 // Passes reports whether the line goes through a device.

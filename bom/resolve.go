@@ -78,11 +78,11 @@ var deviceKinds = []string{"antenna", "adapter", "splitter", "tap", "coupler", "
 func (g *Graph) addDevices() {
 	for i := range g.Plan.Devices {
 		row := &g.Plan.Devices[i]
-		part := g.part(row.Part, "device."+row.ID, deviceKinds...)
-		place := g.place(row.Place, "device."+row.ID)
-		g.addDevice(&Device{ID: row.ID, At: row.At, Row: row, Part: part, Place: place, Point: row.Point})
+		on := "device." + row.ID
+		part, place := g.part(row.Part, on, deviceKinds...), g.place(row.Place, on)
+		g.addDevice(&Device{ID: row.ID, At: row.At, Row: row, Part: part, Place: place, Point: row.Point, on: on})
 		for _, c := range row.Copies {
-			d := &Device{ID: c.Name, At: c.At, Row: row, Part: part, Place: place, Point: c.Val.V.Point}
+			d := &Device{ID: c.Name, At: c.At, Row: row, Part: part, Place: place, Point: c.Val.V.Point, on: "device." + c.Name}
 			if c.Val.V.Place.Set {
 				d.Place = g.place(c.Val.V.Place, d.On())
 			}
@@ -215,7 +215,7 @@ func (d *Device) settle(settled map[*Device]bool) {
 func (g *Graph) addCables() {
 	for i := range g.Plan.Cables {
 		row := &g.Plan.Cables[i]
-		c := &Cable{ID: row.ID, At: row.At, Row: row}
+		c := &Cable{ID: row.ID, At: row.At, Row: row, on: "cable." + row.ID}
 		g.Cables = append(g.Cables, c)
 		g.cables[row.ID] = c
 	}

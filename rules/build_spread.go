@@ -26,7 +26,7 @@ type spreadLine struct {
 // spread lists the lines of the plan with their places. A line whose part did not
 // resolve has a finding and is left out.
 func (c *Case) spread() []spreadLine {
-	var out []spreadLine
+	out := make([]spreadLine, 0, len(c.Graph.Cables)+len(c.Graph.Data)+len(c.Graph.Wires))
 	for _, x := range c.Graph.Cables {
 		if x.Part == nil {
 			continue
@@ -84,7 +84,7 @@ func nodePlace(n *bom.Node) *bom.Place {
 
 // places lists the places that the line passes, each once.
 func (s *spreadLine) places() []*bom.Place {
-	var out []*bom.Place
+	out := make([]*bom.Place, 0, len(s.stops))
 	for _, x := range s.stops {
 		if !slices.Contains(out, x.Place) {
 			out = append(out, x.Place)

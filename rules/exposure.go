@@ -39,8 +39,12 @@ func checkDensity(c *Case, r *Report, e *emitter) {
 		return
 	}
 	s := e.shares(level)
-	basis := limits.Origin(level.Clause.V, level.Edition.Or(c.Profile.Edition.V), level.Proof.V)
-	says := fmt.Sprintf("%s at %s from people comes to %s %% of the reference level: %s", d.ID, d.Row.People.V, unit.Fixed(s.total, 2), strings.Join(s.each, " + "))
+	basis := func() string {
+		return limits.Origin(level.Clause.V, level.Edition.Or(c.Profile.Edition.V), level.Proof.V)
+	}
+	says := func() string {
+		return fmt.Sprintf("%s at %s from people comes to %s %% of the reference level: %s", d.ID, d.Row.People.V, unit.Fixed(s.total, 2), s.words())
+	}
 	lacks = slices.Concat(e.lacks, s.lacks)
 	reflected := s.total * rf.GroundReflection
 	if rf.Exceeds(reflected, 100) && d.Place == nil {
@@ -48,13 +52,13 @@ func checkDensity(c *Case, r *Report, e *emitter) {
 	}
 	switch {
 	case rf.Exceeds(s.total, 100):
-		r.Fails(d.Row.People.At, on, "%s", says).Then("keep people further away, or take less gain or power").
-			Over("share_percent", s.total, "limit_percent", 100).By(basis).Beside(at, "the antenna")
+		r.Fails(d.Row.People.At, on, "%s", says()).Then("keep people further away, or take less gain or power").
+			Over("share_percent", s.total, "limit_percent", 100).By(basis()).Beside(at, "the antenna")
 	case len(lacks) > 0:
 		r.Lacking(at, on, dedupe(lacks), "the power density at %s", d.ID)
 	case d.Place.Outdoors() && rf.Exceeds(reflected, 100):
-		r.Fails(d.Row.People.At, on, "%s, and to %s %% with the reflection from a roof (× 2.56)", says, unit.Fixed(reflected, 2)).Lighter(Punch).
-			Then("keep people further away, or mark the place").Over("share_percent", reflected, "limit_percent", 100).By(basis).Beside(at, "the antenna")
+		r.Fails(d.Row.People.At, on, "%s, and to %s %% with the reflection from a roof (× 2.56)", says(), unit.Fixed(reflected, 2)).Lighter(Punch).
+			Then("keep people further away, or mark the place").Over("share_percent", reflected, "limit_percent", 100).By(basis()).Beside(at, "the antenna")
 	}
 }
 
@@ -80,8 +84,22 @@ func (c *Case) referenceLevel() (*limits.Level, []Lack) {
 // density is what the known bands of an antenna come to, in per cent of the level.
 type density struct {
 	total float64
-	each  []string
+	each  []bandShare
 	lacks []Lack
+}
+
+type bandShare struct {
+	band string
+	share
+}
+
+// words lists the shares as addends.
+func (s *density) words() string {
+	var out []string
+	for _, b := range s.each {
+		out = append(out, fmt.Sprintf("%s %s %% (%s of %s W/m²)", b.band, unit.Fixed(b.percent, 2), unit.Fixed(b.density, 2), unit.Fixed(b.limit, 2)))
+	}
+	return strings.Join(out, " + ")
 }
 
 // shares adds up what each band takes of the reference level in free space, at the
@@ -104,7 +122,7 @@ func (e *emitter) shares(level *limits.Level) density {
 			continue
 		}
 		s.total += worst.percent
-		s.each = append(s.each, fmt.Sprintf("%s %s %% (%s of %s W/m²)", p.band, unit.Fixed(worst.percent, 2), unit.Fixed(worst.density, 2), unit.Fixed(worst.limit, 2)))
+		s.each = append(s.each, bandShare{p.band, worst})
 	}
 	if begins > 0 {
 		people := e.device.Row.People

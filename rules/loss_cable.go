@@ -36,7 +36,7 @@ var lossCable = &Rule{
 func (c *Case) bandsOver(x *bom.Cable) []catalog.Band {
 	var lines []*bom.Line
 	for _, l := range c.Lines().All {
-		if (l.Kind == bom.Feed || l.Kind == bom.Leg) && slices.Contains(l.Cables(), x) {
+		if (l.Kind == bom.Feed || l.Kind == bom.Leg) && l.Holds(x) {
 			lines = append(lines, l)
 		}
 	}
