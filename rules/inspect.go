@@ -6,6 +6,7 @@ import (
 	"maps"
 	"runtime"
 	"slices"
+	"sync/atomic"
 
 	"golang.org/x/sync/errgroup"
 
@@ -87,6 +88,22 @@ func (n *Counts) add(m Counts) {
 // sideBySide is how many files are worked on at a time.
 func sideBySide() int { return max(1, runtime.GOMAXPROCS(0)) }
 
+// eachSideBySide does something for each of n, in no order. A few goroutines take
+// one after the other: with one for each, every stack would have to grow anew.
+func eachSideBySide(ctx context.Context, n int, do func(i int)) error {
+	g, ctx := errgroup.WithContext(ctx)
+	var taken atomic.Int64
+	for range sideBySide() {
+		g.Go(func() error {
+			for i := int(taken.Add(1)) - 1; i < n && ctx.Err() == nil; i = int(taken.Add(1)) - 1 {
+				do(i)
+			}
+			return ctx.Err()
+		})
+	}
+	return g.Wait()
+}
+
 // Inspect runs the rules over the named plans, or over all where none is named. Of
 // the findings on the workspace's own files, those in changed files are always kept.
 // The same workspace and day give the same result, in the same order.
@@ -98,15 +115,8 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 	r := &Result{Origin: f.Origin(), Today: f.Today.String(), Overrides: f.Overrides(), Weights: f.Workspace.Weights, NoShelf: f.noShelf}
 	r.Plans = make([]*PlanResult, len(plans))
 	kept := make([]shelfPlan, len(plans))
-	g, ctx := errgroup.WithContext(ctx)
-	g.SetLimit(sideBySide())
-	for i, e := range plans {
-		g.Go(func() error {
-			r.Plans[i], kept[i] = f.inspectPlan(e, !whole)
-			return ctx.Err()
-		})
-	}
-	if err := g.Wait(); err != nil {
+	err := eachSideBySide(ctx, len(plans), func(i int) { r.Plans[i], kept[i] = f.inspectPlan(plans[i], !whole) })
+	if err != nil {
 		return nil, err
 	}
 	r.Workspace = f.inspectFiles()

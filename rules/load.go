@@ -1,12 +1,11 @@
 package rules
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"slices"
 	"sort"
-
-	"golang.org/x/sync/errgroup"
 
 	"driploop/catalog"
 	"driploop/catalog/source"
@@ -99,19 +98,9 @@ func anyMatch(patterns []string, path string) bool {
 func (l *loader) read(entries []source.Entry) []*source.Doc {
 	docs := make([]*source.Doc, len(entries))
 	problems := make([][]source.Problem, len(entries))
-	var g errgroup.Group
-	g.SetLimit(sideBySide())
-	for i, e := range entries {
-		g.Go(func() error {
-			doc, found := readDoc(l.tree, e)
-			problems[i] = found
-			if doc != nil {
-				docs[i] = doc
-			}
-			return nil
-		})
-	}
-	g.Wait()
+	eachSideBySide(context.Background(), len(entries), func(i int) {
+		docs[i], problems[i] = readDoc(l.tree, entries[i])
+	})
 	var out []*source.Doc
 	for i := range docs {
 		l.note(problems[i])

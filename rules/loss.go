@@ -107,6 +107,11 @@ func worksIn(a *catalog.Antenna, port string, b catalog.Band) bool {
 // among reports whether one of the named bands shares spectrum with a band.
 func among(names catalog.Words, b catalog.Band) bool {
 	for _, n := range names {
+		if n.V == b.Name {
+			return true
+		}
+	}
+	for _, n := range names {
 		own, ok := catalog.LookBand(n.V)
 		if ok && (!own.Uplink.Overlap(b.Uplink).Empty() || !own.Downlink.Overlap(b.Downlink).Empty()) {
 			return true

@@ -3,7 +3,7 @@ package source
 import "time"
 
 // NodeKind is the TOML type of a node.
-type NodeKind int
+type NodeKind uint8
 
 const (
 	Refused NodeKind = iota // a value that Parse has refused and reported: nan, inf, out of range
@@ -22,6 +22,9 @@ const (
 // Node is one value of a document with its place.
 type Node struct {
 	Kind NodeKind
+	made made // how a Table or Array came to be, while the file is read
+	Bool bool // of a Bool
+
 	// At is the value's place: all of a scalar, array or inline table with its
 	// brackets, and the header of a [table] or [[row]].
 	At Place
@@ -32,10 +35,8 @@ type Node struct {
 	Str   string    // of a String
 	Int   int64     // of an Integer
 	Float float64   // of a Float; never nan or inf
-	Bool  bool      // of a Bool
 	Time  time.Time // of the four kinds of date and time; local ones in UTC
 
-	made   made                // how a Table or Array came to be, while the file is read
 	byName map[string]*KeyNode // of a Table with many keys
 }
 

@@ -9,7 +9,7 @@ import (
 // made says how a table or array came to be. It decides what may be added later:
 // TOML lets a table grow from several places of a file, but each part of it may
 // be written once only, and not from everywhere.
-type made int
+type made uint8
 
 const (
 	asValue  made = iota // written after a key: closed, nothing can be added
