@@ -3,8 +3,6 @@ package rules
 import (
 	"context"
 
-	"golang.org/x/sync/errgroup"
-
 	"driploop/bom"
 	"driploop/catalog/source"
 )
@@ -26,22 +24,19 @@ type DemandGap struct {
 func (f *Firm) Demands(ctx context.Context) (*Demands, error) {
 	demands := make([]*bom.Demand, len(f.PlanFiles))
 	gaps := make([][]bom.Gap, len(f.PlanFiles))
-	g, ctx := errgroup.WithContext(ctx)
-	g.SetLimit(sideBySide())
-	for i, e := range f.PlanFiles {
-		g.Go(func() error {
-			if c, broken := f.Case(e); !broken {
-				t := c.Graph.Takeoff(&f.Workspace.House.House)
-				demands[i] = bom.DemandOf(c.Plan, t)
-				if demands[i].Claims() {
-					gaps[i] = t.Gaps
-				}
-				moveOff(c.Plan.File, gapPlaces(gaps[i], demands[i].Places()))
-			}
-			return ctx.Err()
-		})
-	}
-	if err := g.Wait(); err != nil {
+	err := eachSideBySide(ctx, len(f.PlanFiles), func(i int) {
+		c, broken := f.Case(f.PlanFiles[i])
+		if broken {
+			return
+		}
+		t := c.Graph.Takeoff(&f.Workspace.House.House)
+		demands[i] = bom.DemandOf(c.Plan, t)
+		if demands[i].Claims() {
+			gaps[i] = t.Gaps
+		}
+		moveOff(c.Plan.File, gapPlaces(gaps[i], demands[i].Places()))
+	})
+	if err != nil {
 		return nil, err
 	}
 	out := &Demands{}
