@@ -174,10 +174,7 @@ func (b *buyer) writeCounted(l *lot, p *pick) []*BuyRow {
 
 // writeCut puts down the cuts of a part and what is bought for them.
 func (b *buyer) writeCut(c *cutting, p *pick) []*BuyRow {
-	plan := &CutPlan{Part: c.part, Cost: p.cost, Bound: min(p.cost, c.floor(p.plan.plan.Bound))}
-	if c.whole != nil {
-		plan.Bound = min(p.cost, c.floor(c.whole.plan.Bound))
-	}
+	plan := &CutPlan{Part: c.part, Cost: p.cost, Bound: min(p.cost, p.lot.known[0].least)}
 	plan.Proved = plan.Cost == plan.Bound
 	rows, of := b.cutRows(c, p)
 	fresh := 0

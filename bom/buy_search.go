@@ -272,51 +272,10 @@ func (s *search) listPicks() {
 		if room == 0 {
 			whole = c.least + 1
 		} else if l.cut != nil {
-			list = s.cutPicks(i, c.least+room)
+			list, whole = s.cutPicks(i, c, c.least+room)
 		} else {
 			list, whole = s.b.picks(l, c.least, c.least+room)
 		}
 		s.lists, s.whole = append(s.lists, list), append(s.whole, whole)
 	}
-}
-
-// cutPicks lists ways to buy cut stock: the cheapest for each set of vendors, and
-// these with spare packs. There may be others, so the list is never complete.
-func (s *search) cutPicks(at int, limit unit.Money) []*pick {
-	l := s.b.lots[at]
-	var gates []uint64
-	for i, v := range s.gates {
-		if slices.ContainsFunc(l.goods, func(g *good) bool { return g.vendor == v }) && len(gates) < 4 {
-			gates = append(gates, 1<<i)
-		}
-	}
-	seen := map[string]bool{}
-	var out []*pick
-	add := func(p *pick) bool {
-		fresh := p.cost <= limit && !seen[p.key()] && len(out) < mostPicks
-		if fresh {
-			seen[p.key()] = true
-			out = append(out, p)
-		}
-		return fresh
-	}
-	for set := range 1 << len(gates) {
-		var closed uint64
-		for i, g := range gates {
-			if set>>i&1 == 1 {
-				closed |= g
-			}
-		}
-		if c := s.cheapest(l, closed); c.pick != nil {
-			add(c.pick)
-		}
-	}
-	for i := 0; i < len(out); i++ {
-		for j, g := range l.goods {
-			if !g.ToLength() {
-				add(s.with(l, out[i], j, max(g.least, out[i].packs[j]+1)))
-			}
-		}
-	}
-	return out
 }
