@@ -19,7 +19,7 @@ import (
 )
 
 // demo is the demo workspace on a day that suits its files.
-func demo(t *testing.T) *rules.Firm {
+func demo(t testing.TB) *rules.Firm {
 	t.Helper()
 	tree, err := source.Disk("../../../testdata/saltmarsh")
 	if err != nil {
@@ -28,7 +28,7 @@ func demo(t *testing.T) *rules.Firm {
 	return load(t, tree)
 }
 
-func load(t *testing.T, tree source.Tree) *rules.Firm {
+func load(t testing.TB, tree source.Tree) *rules.Firm {
 	t.Helper()
 	today, err := unit.ParseDate("2026-12-01")
 	if err != nil {

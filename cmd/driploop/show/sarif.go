@@ -16,17 +16,23 @@ const MostResults = 5000
 // repository; prefix leads from there to the workspace and is "" or ends in a slash.
 // Columns count characters.
 func InspectSARIF(r *rules.Result, version, prefix string) ([]byte, error) {
+	run := sarifRunOf(r, prefix)
+	run.Tool.Driver = sarifDriver{Name: "driploop", Version: version, Rules: sarifRules()}
+	return encode(sarifLog{Schema: "https://docs.oasis-open.org/sarif/sarif/v2.1.0/errata01/os/schemas/sarif-schema-2.1.0.json",
+		Version: "2.1.0", Runs: []sarifRun{run}})
+}
+
+// sarifRunOf is a run without the tool that made it.
+func sarifRunOf(r *rules.Result, prefix string) sarifRun {
 	all := allWorstFirst(r)
 	keys := planKeys(all)
 	run := sarifRun{ColumnKind: "unicodeCodePoints", Results: []sarifResult{}, Properties: sarifProperties(r)}
-	run.Tool.Driver = sarifDriver{Name: "driploop", Version: version, Rules: sarifRules()}
 	run.Bases = map[string]sarifBase{sarifRoot: {Description: sarifMessage{Text: "the top of the repository that holds the workspace"}}}
 	for i, l := range all[:min(len(all), MostResults)] {
 		run.Results = append(run.Results, sarifResultOf(l, keys[i], prefix))
 	}
 	run.Invocations = []sarifInvocation{sarifInvocationOf(r, len(all)-len(run.Results))}
-	return encode(sarifLog{Schema: "https://docs.oasis-open.org/sarif/sarif/v2.1.0/errata01/os/schemas/sarif-schema-2.1.0.json",
-		Version: "2.1.0", Runs: []sarifRun{run}})
+	return run
 }
 
 type sarifLog struct {
