@@ -220,7 +220,7 @@ func TestStrangeConfigurationStartsNothing(t *testing.T) {
 			c.lay(s)
 			s.write("plans/ferry-hut.toml", s.read("plans/ferry-hut.toml")+"# dirty\n")
 			s.sings(c.proof...)
-			s.reads(s.dir, "HEAD", "HEAD~1", ":index", "main", "")
+			s.reads(s.dir, "HEAD~1", ":index", "")
 			if by := s.started(); by != "" {
 				t.Errorf("it was started: %s", by)
 			}
