@@ -34,7 +34,7 @@ func (b *book) births(l *tagLog) {
 	var birth *Reel
 	for _, r := range l.reads {
 		e := tagEvent{kind: tagRead, when: stampOf(r.On.V, true), on: r.On.V, at: r.At, reel: r, to: Spot{Shelf: r.Where.V}}
-		again := birth != nil && birth.Order.V == r.Order.V && birth.Of.V == r.Of.V
+		again := birth != nil && birth.Order.V == r.Order.V && birth.Of.V == r.Of.V && !(birth.Job.Set && r.Job.Set && birth.Job.V != r.Job.V)
 		if r.Birth() && (!again || birth.On.V == r.On.V) {
 			e.kind, e.when = tagBirth, stampOf(r.On.V, false)
 			l.born = max(l.born, e.when)

@@ -356,6 +356,24 @@ sheet = { on = 2026-11-21, job = "quay-lane" }
 cut = [{ tag = "R-107", length = "30 m", cable = "C1" }]
 `
 	runStock(t, []stockCase{
+		{name: "two jobs give back under one tag", files: `
+-- counts/a.toml --
+sheet = { on = 2026-11-01, where = "shop" }
+reel = [{ tag = "R-107", part = "CX-10", left = "52 m" }]
+-- back/x.toml --
+sheet = { on = 2026-11-10, where = "shop", job = "x" }
+reel = [{ tag = "R-108", part = "CX-10", left = "4 m", of = "R-107" }]
+-- back/y.toml --
+sheet = { on = 2026-11-11, where = "shop", job = "y" }
+reel = [{ tag = "R-108", part = "CX-10", left = "5 m", of = "R-107" }]
+`, want: `
+bin CX-10 shop 57 m
+tag R-107 CX-10 shop 52 m
+tag R-108 CX-10 shop 5 m
+issued x CX-10 -4 m
+issued y CX-10 -5 m
+note clash y:2+x:2 CX-10 R-108 shop shop birth 4 m/5 m
+`},
 		{name: "what comes back of a piece goes off its job", files: cut + `
 -- back/b.toml --
 sheet = { on = 2026-11-22 }

@@ -13,18 +13,26 @@ import (
 type Shelf struct {
 	*Firm
 	Demands []*bom.Demand // in the order of the plan files
+
+	claiming map[string][]*bom.Demand // by part
 }
 
 // Claiming lists the demands that claim a part: plans in review or construction
 // that take it.
-func (s *Shelf) Claiming(part string) []*bom.Demand {
-	var out []*bom.Demand
+func (s *Shelf) Claiming(part string) []*bom.Demand { return s.claiming[part] }
+
+// index lists who claims what, once the demands are known.
+func (s *Shelf) index() {
+	s.claiming = map[string][]*bom.Demand{}
 	for _, d := range s.Demands {
-		if d.Claims() && d.Need(part) != nil {
-			out = append(out, d)
+		if !d.Claims() {
+			continue
+		}
+		for i := range d.Needs {
+			id := d.Needs[i].Part.ID
+			s.claiming[id] = append(s.claiming[id], d)
 		}
 	}
-	return out
 }
 
 // shelfPlan is what outlives the work on one plan for the sake of the shelf.
@@ -102,6 +110,7 @@ func (f *Firm) inspectShelf(r *Result, plans []shelfPlan) {
 			s.Demands = append(s.Demands, p.demand)
 		}
 	}
+	s.index()
 	planPaths := map[string]bool{}
 	for _, e := range f.PlanFiles {
 		planPaths[e.Path] = true
