@@ -6,3 +6,6 @@ import "time"
 
 // bound is how long following one plan may take.
 const bound = time.Second
+
+// wildPlans is how many random plans are dressed.
+const wildPlans = 10_000

@@ -111,7 +111,9 @@ type BondRow struct {
 	SuppliedBy source.Val[string]
 }
 
-var end = eitherEnd(source.Checked("cable end", `"N male"`, func(s string) (EndRow, error) {
+var end = source.Spelled(eitherEnd(source.Checked("cable end", `"N male"`, readEnd)), catalog.SpellFace, sameEnd)
+
+func readEnd(s string) (EndRow, error) {
 	f, err := catalog.ParseFace(s)
 	switch {
 	case err == nil:
@@ -120,7 +122,11 @@ var end = eitherEnd(source.Checked("cable end", `"N male"`, func(s string) (EndR
 		return EndRow{Part: s}, nil
 	}
 	return EndRow{}, err
-}))
+}
+
+func sameEnd(a, b EndRow) bool {
+	return a.Part == b.Part && a.Face.Set == b.Face.Set && catalog.SameFace(a.Face.V, b.Face.V)
+}
 
 // eitherEnd adds what a machine may know of a cable's end.
 func eitherEnd(t source.Type[EndRow]) source.Type[EndRow] {

@@ -185,7 +185,13 @@ type Stretch struct {
 	Length source.Val[unit.MM]
 }
 
-var stretch = source.Shaped(source.Checked("place, or place and length", `"entry 0.5 m"`, func(s string) (Stretch, error) {
+var stretch = source.Spelled(source.Shaped(source.Checked("place, or place and length", `"entry 0.5 m"`, readStretch),
+	source.Form{Pattern: `^[A-Za-z0-9][A-Za-z0-9_-]{0,63}( ` + unit.LengthPattern[1:len(unit.LengthPattern)-1] + `)?$`}), spellStretch,
+	func(a, b Stretch) bool {
+		return a.Place == b.Place && a.Length.Set == b.Length.Set && a.Length.V == b.Length.V
+	})
+
+func readStretch(s string) (Stretch, error) {
 	name, length, more := strings.Cut(s, " ")
 	if !source.ValidID(name) {
 		return Stretch{}, fmt.Errorf("%s names no place", source.Quote(s))
@@ -199,4 +205,13 @@ var stretch = source.Shaped(source.Checked("place, or place and length", `"entry
 		w.Length = source.Val[unit.MM]{V: l, Set: true}
 	}
 	return w, nil
-}), source.Form{Pattern: `^[A-Za-z0-9][A-Za-z0-9_-]{0,63}( ` + unit.LengthPattern[1:len(unit.LengthPattern)-1] + `)?$`})
+}
+
+// spellStretch is the usual spelling of a stretch.
+func spellStretch(s string) string {
+	name, length, more := strings.Cut(s, " ")
+	if !more {
+		return s
+	}
+	return name + " " + unit.Spell(length)
+}

@@ -117,6 +117,27 @@ func FaceNames() []string {
 	return out
 }
 
+// SpellFace is the usual spelling of a face that ParseFace reads: male for plug and
+// female for jack, but for a series whose plug is not its male half.
+func SpellFace(s string) string {
+	f, err := ParseFace(s)
+	if err != nil {
+		return s
+	}
+	halves := seriesTable().series[f.Series].halves
+	for word, usual := range map[string]string{"plug": "male", "jack": "female"} {
+		if f.Written == f.Series+" "+word && halves[word] == halves[usual] {
+			return f.Series + " " + usual
+		}
+	}
+	return f.Written
+}
+
+// SameFace reports that two faces are one, however they are written.
+func SameFace(a, b Face) bool {
+	return a.Series == b.Series && a.Shell == b.Shell && a.Contact == b.Contact
+}
+
 // Fit says how two faces meet.
 type Fit int
 
@@ -180,9 +201,8 @@ func (t *matingTable) meeting(fit Fit, a, b Face, aOhm, bOhm float64) Meeting {
 }
 
 func (e *encounter) is(a, b Face, aOhm, bOhm float64) bool {
-	same := func(x, y Face) bool { return x.Series == y.Series && x.Shell == y.Shell && x.Contact == y.Contact }
 	ohms := func(want source.Val[float64], got float64) bool { return !want.Set || want.V == got }
-	return same(e.A.V, a) && same(e.B.V, b) && ohms(e.AOhm, aOhm) && ohms(e.BOhm, bOhm)
+	return SameFace(e.A.V, a) && SameFace(e.B.V, b) && ohms(e.AOhm, aOhm) && ohms(e.BOhm, bOhm)
 }
 
 // LimitMHz is the highest frequency of the series at an impedance, or false where

@@ -21,7 +21,7 @@ type Points []Point
 var (
 	ohm      = source.Between(1, 1000, "ohm")
 	level    = source.Between(-200, 100, "dBm")
-	face     = source.Shaped(source.Checked("connector", `"N male"`, ParseFace), source.Form{Among: FaceNames})
+	face     = source.Spelled(source.Shaped(source.Checked("connector", `"N male"`, ParseFace), source.Form{Among: FaceNames}), SpellFace, SameFace)
 	bandName = source.Shaped(source.Checked("band", `"B12"`, readBandName), source.Form{Among: BandNames})
 	poe      = source.OneOf("af", "at", "bt3", "bt4", "passive 12 V", "passive 24 V", "passive 48 V")
 	span     = source.Map(source.Pair(source.Between(0, 300000, "MHz"), "[699, 716]"), toSpan)

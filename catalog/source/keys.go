@@ -42,12 +42,13 @@ type reading struct {
 	rooms    [][]string // lists of known keys that tables are done with
 	missing  []int      // those of the problems that are missing keys
 	partial  bool       // keys that seem missing may well be there
+	layout   *layout    // filled while Dress reads, else nil
 }
 
 // Read runs a bind function over the root of a document and returns the
 // problems it met in the order of the document.
 func Read(d *Doc, bind func(*Keys)) []Problem {
-	r := &reading{partial: d.Partial}
+	r := &reading{partial: d.Partial, layout: d.layout}
 	k := &Keys{at: d.File.Start(), table: d.Root, read: r}
 	bind(k)
 	k.finish()
@@ -157,6 +158,9 @@ func Opt[T any](k *Keys, to *Val[T], name string, t Type[T], doc string) {
 }
 
 func accept[T any](k *Keys, to *Val[T], n *KeyNode, t Type[T]) {
+	if k.read.layout != nil && t.spell != nil {
+		t.spell(n.Value, k.read.layout)
+	}
 	v, bad := t.parse(n.Value)
 	for _, b := range bad {
 		if b.kind == 0 || b.missing && k.read.partial {
@@ -300,6 +304,9 @@ func (k *Keys) wrongShape(n *KeyNode, want string) {
 
 // finish reports the keys that nobody asked for.
 func (k *Keys) finish() {
+	if k.read.layout != nil {
+		k.read.layout.ranks[k.table] = slices.Clone(k.known)
+	}
 	if k.mute {
 		return
 	}

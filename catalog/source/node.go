@@ -116,4 +116,6 @@ type Doc struct {
 	// Ended: the tree ends where a syntax problem stands; what follows it was not
 	// read at all.
 	Ended bool
+
+	layout *layout // what reading it notes for Dress, nil for anybody else
 }

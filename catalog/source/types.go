@@ -15,6 +15,7 @@ import (
 type Type[T any] struct {
 	Shape TypeDoc
 	parse func(*Node) (T, []bad)
+	spell func(*Node, *layout) // notes what could be spelled otherwise; nil: nothing
 }
 
 // bad is one thing wrong inside a value, at the element at fault.
@@ -38,7 +39,7 @@ func expected(n *Node, want, example string) []bad {
 }
 
 // Text is any string.
-var Text = Type[string]{TypeDoc{Name: "text", Example: `"…"`}, parseText}
+var Text = Type[string]{TypeDoc{Name: "text", Example: `"…"`}, parseText, nil}
 
 func parseText(n *Node) (string, []bad) {
 	if n.Kind != String {
@@ -53,7 +54,7 @@ var Flag = Type[bool]{TypeDoc{Name: "true or false", Example: "true", Form: &For
 		return false, expected(n, "true or false", "true or false without quotes")
 	}
 	return n.Bool, nil
-}}
+}, nil}
 
 // Name is an ID as parts, devices and places carry it.
 var Name = Shaped(Checked("name", `"amp-1"`, NameOf), Form{Pattern: NamePattern})
@@ -71,10 +72,10 @@ func NameOf(s string) (string, error) {
 
 // Quantities that carry their unit in the string.
 var (
-	Length      = Shaped(Checked("length", `"18.5 m"`, unit.ParseLength), Form{Pattern: unit.LengthPattern})
-	Temperature = Shaped(Checked("temperature", `"45 C"`, unit.ParseTemperature), Form{Pattern: unit.TemperaturePattern})
-	Speed       = Shaped(Checked("speed", `"44 m/s"`, unit.ParseSpeed), Form{Pattern: unit.SpeedPattern})
-	Size        = Shaped(Checked("conductor size", `"10 AWG"`, unit.ParseGauge), Form{Pattern: unit.GaugePattern})
+	Length      = Spelled(Shaped(Checked("length", `"18.5 m"`, unit.ParseLength), Form{Pattern: unit.LengthPattern}), unit.Spell, equal)
+	Temperature = Spelled(Shaped(Checked("temperature", `"45 C"`, unit.ParseTemperature), Form{Pattern: unit.TemperaturePattern}), unit.Spell, equal)
+	Speed       = Spelled(Shaped(Checked("speed", `"44 m/s"`, unit.ParseSpeed), Form{Pattern: unit.SpeedPattern}), unit.Spell, equal)
+	Size        = Spelled(Shaped(Checked("conductor size", `"10 AWG"`, unit.ParseGauge), Form{Pattern: unit.GaugePattern}), unit.Spell, sameSize)
 	Price       = Shaped(Checked("money amount", `"318.00"`, unit.ParseMoney), Form{Pattern: unit.MoneyPattern})
 )
 
@@ -90,7 +91,7 @@ func Checked[T any](name, example string, read func(string) (T, error)) Type[T] 
 			return none, refuse(n.At, err.Error(), "write it like "+example)
 		}
 		return v, nil
-	}}
+	}, nil}
 }
 
 // Shaped adds to a type what a machine may know of its values.
@@ -123,7 +124,7 @@ var Day = Type[unit.Date]{TypeDoc{Name: "date", Example: "2026-12-01", Form: &Fo
 		return unit.Date{}, expected(n, "a date", "it like 2026-12-01, without quotes")
 	}
 	return unit.DateOf(n.Time), nil
-}}
+}, nil}
 
 // When is a local date-time.
 var When = Type[time.Time]{TypeDoc{Name: "local time", Example: "2026-12-01T16:00:00", Form: &Form{Base: OfTime}}, func(n *Node) (time.Time, []bad) {
@@ -131,7 +132,7 @@ var When = Type[time.Time]{TypeDoc{Name: "local time", Example: "2026-12-01T16:0
 		return time.Time{}, expected(n, "a date or a local time", "it like 2026-12-01T16:00:00, without quotes and without zone")
 	}
 	return n.Time, nil
-}}
+}, nil}
 
 // Number is any finite number.
 var Number = number("number", nil, nil)
@@ -159,7 +160,7 @@ func number(name string, lo, hi *float64) Type[float64] {
 			return 0, refuse(n.At, fmt.Sprintf("%s is outside %s", plain(v), bounds(lo, hi, name)), "check the figure and its unit")
 		}
 		return v, nil
-	}}
+	}, nil}
 }
 
 func bounds(lo, hi *float64, unit string) string {
@@ -188,7 +189,7 @@ func Count(lo, hi int) Type[int] {
 			return 0, refuse(n.At, fmt.Sprintf("%d is outside %d to %d", n.Int, lo, hi), "check the figure")
 		}
 		return int(n.Int), nil
-	}}
+	}, nil}
 }
 
 // OneOf is one word of a fixed list.
@@ -206,7 +207,7 @@ func OneOf(words ...string) Type[string] {
 			do = "did you mean " + near + "?"
 		}
 		return "", refuse(n.At, fmt.Sprintf("%s is not one of %s", Quote(n.Str), all), do)
-	}}
+	}, nil}
 }
 
 // ListOf is a list whose items are all of one type; every item keeps its place.
@@ -227,7 +228,7 @@ func ListOf[T any](t Type[T]) Type[[]Val[T]] {
 			out = append(out, Val[T]{v, i.At, len(b) == 0})
 		}
 		return out, all
-	}}
+	}, spellItems(t)}
 }
 
 // Pair is a list of exactly two values.
@@ -244,7 +245,7 @@ func Pair[T any](t Type[T], example string) Type[[2]T] {
 			out[i], all = v, append(all, b...)
 		}
 		return out, all
-	}}
+	}, spellItems(t)}
 }
 
 // Either reads a value by the first type if its kind fits, else by the second.
@@ -255,7 +256,7 @@ func Either[T any](fits func(*Node) bool, a, b Type[T], name string) Type[T] {
 			return a.parse(n)
 		}
 		return b.parse(n)
-	}}
+	}, spellEither(fits, a, b)}
 }
 
 // Map changes what a type yields, or refuses it after all.
@@ -271,7 +272,7 @@ func Map[A, B any](t Type[A], convert func(A) (B, error)) Type[B] {
 			return none, refuse(n.At, err.Error(), "check the figure")
 		}
 		return v, nil
-	}}
+	}, t.spell}
 }
 
 // IsArray, IsTable and IsString tell the shapes that Either chooses by.
@@ -295,15 +296,19 @@ func Inline[R any](bind func(*R, *Keys)) Type[R] {
 			return row, expected(n, "a table", "it in braces")
 		}
 		r := &reading{}
-		k := &Keys{at: n.At, table: n, read: r, known: make([]string, 0, 8)}
-		bind(&row, k)
-		k.finish()
+		readInline(&row, n, bind, r)
 		var all []bad
 		for i, p := range r.problems {
 			all = append(all, bad{p.Kind, p.At, p.Says, p.Do, p.Also, slices.Contains(r.missing, i)})
 		}
 		return row, all
-	}}
+	}, spellInline(bind)}
+}
+
+func readInline[R any](row *R, n *Node, bind func(*R, *Keys), r *reading) {
+	k := &Keys{at: n.At, table: n, read: r, known: make([]string, 0, 8)}
+	bind(row, k)
+	k.finish()
 }
 
 func (n *Node) number() (float64, bool) {
