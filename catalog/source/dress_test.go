@@ -33,7 +33,7 @@ func chest(length Type[unit.MM]) func(*Doc) []Problem {
 		Opt(k, new(Val[unit.MM]), "up", length, "")
 		Opt(k, new(Val[[]Val[unit.MM]]), "steps", ListOf(length), "")
 		Opt(k, new(Val[unit.MM]), "reach", Either(IsString, length, Map(Number, func(float64) (unit.MM, error) { return 1, nil }), ""), "")
-		Each(k, new([]Pick[none]), "set", func(string) error { return nil }, Inline(func(_ *none, k *Keys) {
+		Each(k, new([]Pick[none]), "set", Names, Inline(func(_ *none, k *Keys) {
 			Opt(k, new(Val[unit.MM]), "off", length, "")
 		}), "")
 		Named(k, &some, "port", text("use", "face"), "")

@@ -123,7 +123,7 @@ func (c *Command) tree() *cobra.Command {
 	f.StringVar(&c.shared.today, "today", "", "the day to go by, like 2026-12-01 (default: today, UTC)")
 	f.StringVar(&c.shared.color, "color", "auto", "auto, always or never")
 	f.BoolVar(&c.shared.quiet, "quiet", false, "no messages, and of findings only holds")
-	root.AddCommand(c.start(), c.inspect(), c.budget(), c.takeoff(), c.cuts(), c.purchase(), c.pick(), c.stock(), c.basis(), c.parts(), c.hook())
+	root.AddCommand(c.start(), c.inspect(), c.budget(), c.takeoff(), c.cuts(), c.purchase(), c.pick(), c.stock(), c.basis(), c.parts(), c.dress(), c.hook())
 	root.SetHelpCommand(help())
 	return root
 }

@@ -21,6 +21,7 @@ func TestSameBytes(t *testing.T) {
 		"stock":    {{}},
 		"basis":    {{}, {"us-fixed-wideband"}},
 		"parts":    {{"AMP-W-65"}},
+		"dress":    {{"--list"}},
 		"hook":     {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 	}, "--root", "../../testdata/saltmarsh", "--today", "2026-12-01")
 	for _, c := range calls {

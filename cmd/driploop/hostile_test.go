@@ -78,6 +78,7 @@ func TestHostileTexts(t *testing.T) {
 		"stock":    {{}, {"lane"}},
 		"basis":    {{}, {"own"}, {"bad"}, {"loss/leg"}, {"loss/cable"}, {"loss"}},
 		"parts":    {{}, {"CX-10"}, {"AMP-W-65"}, {"NC-10-NM"}, {"TAPE-SA"}, {"JMP-10-NN-1"}},
+		"dress":    {{"--list"}},
 		"hook":     {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 	}, "--root", hostile)
 	for _, shown := range []string{`\x1b[2J`, `:\x3aerror`, `#\x23[error]`, `\u202eturned`, `\u001b[2J`} {
@@ -121,6 +122,7 @@ func TestHostileFileNames(t *testing.T) {
 		"stock":    {{}},
 		"basis":    {{"own"}},
 		"parts":    {{"F"}},
+		"dress":    {{"--list"}},
 		"hook":     {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 	}, "--root", dir)
 }
@@ -206,6 +208,7 @@ func TestHostileValues(t *testing.T) {
 			"stock":    {{}},
 			"basis":    {{}},
 			"parts":    {{}, {"CX-10"}},
+			"dress":    {{"--list"}},
 			"hook":     {{"--at", "HEAD"}}, // else it would be put into the repository around this test
 		}, "--root", dir)
 	}
