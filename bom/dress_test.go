@@ -106,6 +106,9 @@ func (p *wildPlan) dress(t *testing.T) (changed bool) {
 	if bad := p.compare(out); bad != "" {
 		t.Fatalf("%s\nbefore\n%s\nafter\n%s", bad, p.text, out)
 	}
+	if p.IntN(10) > 0 {
+		return !bytes.Equal(out, p.text) // Dress has looked at it twice itself
+	}
 	again, _, err := source.Dress("plans/wild.toml", out, planReader)
 	if err != nil || !bytes.Equal(again, out) {
 		t.Fatalf("a second time it becomes\n%s\nthe first time it was\n%s", again, out)
