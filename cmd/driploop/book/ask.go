@@ -6,18 +6,7 @@ import (
 	"github.com/xuri/excelize/v2"
 
 	"driploop/bom"
-	"driploop/catalog/unit"
 )
-
-// What somebody may write where a sheet does not say more.
-const (
-	mostCount  = 1_000_000
-	mostMoney  = 100_000_000
-	mostMetres = 100_000
-	mostWords  = 500
-)
-
-var firstDay, lastDay = unit.Date{Year: 2000, Month: 1, Day: 1}, unit.Date{Year: 2099, Month: 12, Day: 31}
 
 // validate sets what may be written where a sheet is filled in by hand.
 func (b *builder) validate(l *layout) error {
@@ -54,24 +43,24 @@ func (b *builder) ask(l *layout, area string, kind bom.CellKind, a *bom.Ask) err
 	case len(a.Choice) > 0:
 		takes, err = "one of the list", v.SetDropList(a.Choice)
 	case kind == bom.KindCount:
-		most := orElse(a.Most, mostCount)
+		most := orElse(a.Most, bom.MostFilledCount)
 		takes = fmt.Sprintf("a whole number from %d to %d", a.Least, most)
 		between(int(a.Least), int(most), excelize.DataValidationTypeWhole)
 	case kind == bom.KindMoney:
 		takes = "an amount of money, without its currency"
-		between(0, int(orElse(a.Most, mostMoney)), excelize.DataValidationTypeDecimal)
+		between(0, int(orElse(a.Most, bom.MostFilledMoney)), excelize.DataValidationTypeDecimal)
 	case kind == bom.KindLength:
 		takes = "a length in metres, without the unit"
 		if l.Feet {
 			takes = "a length in feet, without the unit"
 		}
-		between(0, int(orElse(a.Most, mostMetres)), excelize.DataValidationTypeDecimal)
+		between(0, int(orElse(a.Most, bom.MostFilledLength)), excelize.DataValidationTypeDecimal)
 	case kind == bom.KindDay:
 		takes = "a day"
-		between(serial(firstDay), serial(lastDay), excelize.DataValidationTypeDate)
+		between(bom.DayNumber(bom.FirstFilledDay), bom.DayNumber(bom.LastFilledDay), excelize.DataValidationTypeDate)
 	default:
-		takes = fmt.Sprintf("a text of at most %d characters", mostWords)
-		between(0, mostWords, excelize.DataValidationTypeTextLength)
+		takes = fmt.Sprintf("a text of at most %d characters", bom.MostFilledText)
+		between(0, bom.MostFilledText, excelize.DataValidationTypeTextLength)
 	}
 	if err != nil {
 		return err

@@ -7,7 +7,6 @@ import (
 	"unicode/utf8"
 
 	"driploop/bom"
-	"driploop/catalog/unit"
 )
 
 // maxRows is how many rows a sheet of a workbook takes.
@@ -151,7 +150,7 @@ func (l *layout) number(c bom.Cell) float64 {
 	case bom.KindMoney:
 		return float64(c.Money) / 10000
 	case bom.KindDay:
-		return float64(serial(c.Day))
+		return float64(bom.DayNumber(c.Day))
 	}
 	return 0
 }
@@ -178,12 +177,6 @@ func leastDecimals(k bom.CellKind, feet bool) int {
 	}
 	return 0
 }
-
-// epoch is day 0 of a spreadsheet as all programs agree on it from 1900-03-01 on.
-var epoch = unit.Date{Year: 1899, Month: 12, Day: 30}
-
-// serial is the number of a day.
-func serial(d unit.Date) int { return epoch.DaysUntil(d) }
 
 func longestWord(s string) int {
 	n := 0
