@@ -24,6 +24,7 @@ type Case struct {
 	stood map[*bom.Device][]*bom.Device // what stands on what, once it was asked for
 	bands []catalog.Band
 	chain *Chain
+	taken *bom.Takeoff
 	touch []touching
 	emit  []*emitter
 	refs  []reference
@@ -93,6 +94,14 @@ func (c *Case) House() *House { return &c.Firm.Workspace.House }
 
 // Lines are the lines of the plan.
 func (c *Case) Lines() *bom.Lines { return c.Graph.Lines() }
+
+// Takeoff is what the plan takes, counted on first use.
+func (c *Case) Takeoff() *bom.Takeoff {
+	if c.taken == nil {
+		c.taken = c.Graph.Takeoff(&c.House().House)
+	}
+	return c.taken
+}
 
 // Bands lists the bands that the plan is for, by 3GPP.
 func (c *Case) Bands() []catalog.Band { return c.bands }

@@ -256,7 +256,7 @@ var partStatus = &Rule{
 	Weight:  Punch,
 	Lighter: "A part on its last buy is a note.",
 	Check: func(c *Case, r *Report) {
-		for _, q := range c.Graph.Takeoff(&c.House().House).Rows {
+		for _, q := range c.Takeoff().Rows {
 			at := q.At
 			if at.Path() != c.Plan.File.Path {
 				at = c.JobAt() // what joints use up is named nowhere in the plan

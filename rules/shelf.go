@@ -46,7 +46,7 @@ func (c *Case) forShelf() shelfPlan {
 	if c.Firm.noShelf {
 		return shelfPlan{}
 	}
-	d := bom.DemandOf(c.Plan, c.Graph.Takeoff(&c.House().House))
+	d := bom.DemandOf(c.Plan, c.Takeoff())
 	d.At = c.JobAt()
 	first := map[string]source.Place{}
 	for _, u := range c.partUses() {
