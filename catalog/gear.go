@@ -1,6 +1,8 @@
 package catalog
 
 import (
+	"errors"
+
 	"driploop/catalog/source"
 	"driploop/catalog/unit"
 )
@@ -126,7 +128,12 @@ func readConsumable(p *Part, k *source.Keys) {
 	c := &Consumable{}
 	p.Consumable = c
 	uses := source.Map(source.AtLeast(1, "uses"), func(v float64) (Holds, error) { return Holds{Uses: v}, nil })
-	length := source.Map(source.Length, func(l unit.MM) (Holds, error) { return Holds{Length: l}, nil })
+	length := source.Map(source.Length, func(l unit.MM) (Holds, error) {
+		if l <= 0 {
+			return Holds{}, errors.New("a package of no length serves nothing")
+		}
+		return Holds{Length: l}, nil
+	})
 	source.Need(k, &c.Per, "per", source.OneOf("joint", "metre", "entry"), "what uses it up")
 	source.Opt(k, &c.Holds, "holds", source.Either(source.IsString, length, uses, "a number or a length"), "what one package serves; absent: one")
 }

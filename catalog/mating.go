@@ -85,11 +85,12 @@ func LookSeries(name string) (*Series, bool) {
 // ParseFace reads "N male", "RP-SMA female", "F plug". The last word is the half,
 // what stands before it the series.
 func ParseFace(s string) (Face, error) {
-	i := strings.LastIndexByte(strings.TrimSpace(s), ' ')
+	s = strings.TrimSpace(s)
+	i := strings.LastIndexByte(s, ' ')
 	if i < 0 {
 		return Face{}, fmt.Errorf("%s needs a series and male or female", source.Quote(s))
 	}
-	name, which := strings.TrimSpace(s[:i]), strings.TrimSpace(s[i+1:])
+	name, which := strings.TrimSpace(s[:i]), s[i+1:]
 	series, ok := LookSeries(name)
 	if !ok {
 		if near := source.Nearest(name, seriesTable().names); near != "" {

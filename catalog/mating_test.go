@@ -143,3 +143,15 @@ func TestSeriesLimit(t *testing.T) {
 		t.Error("a series is found under another name")
 	}
 }
+
+func TestFaceWithSpaceAround(t *testing.T) {
+	want, err := catalog.ParseFace("N male")
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, s := range []string{" N male", "N male ", "  N   male  "} {
+		if got, err := catalog.ParseFace(s); err != nil || got != want {
+			t.Errorf("%q is %+v, %v; expected %+v", s, got, err, want)
+		}
+	}
+}

@@ -1,6 +1,8 @@
 package catalog
 
 import (
+	"fmt"
+
 	"driploop/catalog/source"
 	"driploop/catalog/unit"
 )
@@ -201,12 +203,27 @@ func (p *Part) body(k *source.Keys) {
 	k.Mute()
 }
 
+// mostPorts and mostPaths bound what every line through a part looks over; no part
+// of the trade comes near.
+const (
+	mostPorts = 64
+	mostPaths = 256
+)
+
 func (p *Part) ports(k *source.Keys) {
 	source.Named(k, &p.Ports, "port", (*Port).keys, "its connections")
+	if n := len(p.Ports); n > mostPorts {
+		k.Fault(p.Ports[mostPorts].At, fmt.Sprintf("the part has %d ports, more than the %d that are read", n, mostPorts), "describe it as several parts")
+		p.Ports = p.Ports[:mostPorts]
+	}
 }
 
 func (p *Part) paths(k *source.Keys) {
 	source.Rows(k, &p.Paths, "path", (*Path).keys, "ways through it, each in both directions")
+	if n := len(p.Paths); n > mostPaths {
+		k.Fault(p.Paths[mostPaths].At, fmt.Sprintf("the part has %d paths, more than the %d that are read", n, mostPaths), "name several ports in to, or describe it as several parts")
+		p.Paths = p.Paths[:mostPaths]
+	}
 }
 
 func (q *Port) keys(k *source.Keys) {
@@ -228,7 +245,7 @@ func (q *Port) keys(k *source.Keys) {
 	mated := source.State{Key: "use", Non: []any{"data", "power"}, Lacking: true}
 	k.Demand(source.Condition{When: &mated, Any: []source.State{source.Given("connector")}},
 		source.Condition{When: &mated, Any: []source.State{source.Given("impedance_ohm")}})
-	if q.RF() {
+	if q.RF() && (q.Use.Set || !k.Has("use")) { // a use that cannot be read may be any
 		if !q.Connector.Set && !k.Has("connector") {
 			k.Missing("connector", "a port for radio signals is mated")
 		}

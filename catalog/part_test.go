@@ -1,6 +1,7 @@
 package catalog_test
 
 import (
+	"fmt"
 	"math"
 	"slices"
 	"strings"
@@ -246,4 +247,31 @@ func TestInWind(t *testing.T) {
 			t.Errorf("%q shows the wind %v m² and %v mm, want %v", text, area.V, side.V, want)
 		}
 	}
+}
+
+// A use that is not one leaves open whether the port is mated: one slip, one problem.
+func TestMisspelledUseAsksForNothing(t *testing.T) {
+	says(t, "misspelled", "[part.X]\nkind = \"amplifier\"\n[part.X.port.a]\nuse = \"pover\"\n", `4: use: "pover" is not one of`)
+}
+
+func TestPortsAndPathsOfAPartAreBounded(t *testing.T) {
+	var ports, paths strings.Builder
+	for i := range 65 {
+		fmt.Fprintf(&ports, "port.p%d = { use = \"power\" }\n", i)
+	}
+	says(t, "65 ports", "[part.X]\nkind = \"splitter\"\n"+ports.String(), "67: the part has 65 ports, more than the 64 that are read")
+	for range 257 {
+		paths.WriteString("[[part.X.path]]\nfrom = \"a\"\nto = \"b\"\nloss_db = 1\n")
+	}
+	says(t, "257 paths", "[part.X]\nkind = \"splitter\"\n"+paths.String(), "1027: the part has 257 paths, more than the 256 that are read")
+	list, _ := parts(t, "[part.X]\nkind = \"splitter\"\n"+ports.String())
+	if len(list) != 1 || len(list[0].Ports) != 64 {
+		t.Errorf("%d ports are kept", len(list[0].Ports))
+	}
+}
+
+func TestAPackageOfNoLengthServesNothing(t *testing.T) {
+	const tape = "[part.X]\nkind = \"consumable\"\nper = \"metre\"\n"
+	says(t, "no length", tape+"holds = \"0 m\"\n", "4: holds: a package of no length serves nothing")
+	says(t, "some length", tape+"holds = \"10 m\"\n")
 }
