@@ -163,6 +163,13 @@ var (
 	raceways    = source.OneOf("none", "plastic", "metal", "metal-bonded-one-end", "metal-bonded-both-ends")
 )
 
+// What the keys of these rows ask of each other, likewise.
+var (
+	ofDevice = []source.Condition{{Any: []source.State{source.Given("part"), source.Holds("existing", true)}}, source.Needs("part", "kind")}
+	ofCable  = source.Needs("part", "like")
+	ofBond   = source.Condition{Any: []source.State{source.Given("part"), source.Holds("direct", true), source.Holds("existing", true)}}
+)
+
 func (d *DeviceRow) keys(k *source.Keys) {
 	d.ID, d.At = k.ID(), k.At()
 	source.Opt(k, &d.Part, "part", source.Name, "part of the catalog")
@@ -183,8 +190,7 @@ func (d *DeviceRow) keys(k *source.Keys) {
 	source.Opt(k, &d.Serial, "serial", source.Text, "serial number once built")
 	source.Each(k, &d.Set, "set", catalog.ByBand, bandSetting, "how an amplifier is set, by band")
 	source.Each(k, &d.Copies, "copies", source.Names, copies, "more devices of the same part")
-	k.Demand(source.Condition{Any: []source.State{source.Given("part"), source.Holds("existing", true)}},
-		source.Needs("part", "kind"))
+	k.Demand(ofDevice...)
 	if !k.Recording() && !k.Has("part") && !(maybe(k, d.Existing, "existing") && k.Has("kind")) {
 		k.Missing("part", "only what exists already may give its kind instead")
 	}
@@ -212,7 +218,7 @@ func (c *CableRow) keys(k *source.Keys) {
 	source.Opt(k, &c.LeastBend, "least_bend", source.Length, "tightest bend on its way")
 	source.Opt(k, &c.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &c.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
-	k.Demand(source.Needs("part", "like"))
+	k.Demand(ofCable)
 	if !k.Recording() && !k.Has("part") && !k.Has("like") {
 		k.Missing("part", "or like: which cable it is")
 	}
@@ -261,7 +267,7 @@ func (b *BondRow) keys(k *source.Keys) {
 	source.Opt(k, &b.Raceway, "raceway", raceways, "what it runs in")
 	source.Opt(k, &b.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &b.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
-	k.Demand(source.Condition{Any: []source.State{source.Given("part"), source.Holds("direct", true), source.Holds("existing", true)}})
+	k.Demand(ofBond)
 	if !k.Recording() && !k.Has("part") && !maybe(k, b.Direct, "direct") && !maybe(k, b.Existing, "existing") {
 		k.Missing("part", "or direct = true: what makes the bond")
 	}
