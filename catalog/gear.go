@@ -128,7 +128,7 @@ func readConsumable(p *Part, k *source.Keys) {
 	c := &Consumable{}
 	p.Consumable = c
 	uses := source.Map(source.AtLeast(1, "uses"), func(v float64) (Holds, error) { return Holds{Uses: v}, nil })
-	length := source.Map(source.Length, func(l unit.MM) (Holds, error) {
+	length := source.Map(source.Shaped(source.Length, source.Form{Pattern: unit.SomeLengthPattern}), func(l unit.MM) (Holds, error) {
 		if l <= 0 {
 			return Holds{}, errors.New("a package of no length serves nothing")
 		}
