@@ -29,13 +29,11 @@ import (
 //
 // Each is a quotient of processor time, of all cores and with collecting garbage,
 // and takes the least of the run for either: what else the machine does disturbs
-// that little. x-decode-wall and x-1000-wall are the same by the clock. Garbage is
-// collected as seldom as in the program.
+// that little. x-decode-wall and x-1000-wall are the same by the clock.
 //
 //	go test ./rules -run '^$' -bench Inspect -benchtime 10x
 
 func BenchmarkInspect1000(b *testing.B) {
-	defer rules.CollectLess()()
 	tree := benchFirm(1000)
 	var inspect, decode least
 	b.ReportAllocs()
@@ -51,7 +49,6 @@ func BenchmarkInspect1000(b *testing.B) {
 }
 
 func BenchmarkInspect10000(b *testing.B) {
-	defer rules.CollectLess()()
 	few, many := benchFirm(1000), benchFirm(10000)
 	var long, short least
 	b.ReportAllocs()
@@ -67,7 +64,6 @@ func BenchmarkInspect10000(b *testing.B) {
 
 // BenchmarkLoad is what is read before the first plan: the catalog and the shelf.
 func BenchmarkLoad(b *testing.B) {
-	defer rules.CollectLess()()
 	tree := benchFirm(1)
 	b.ReportAllocs()
 	for b.Loop() {
@@ -77,7 +73,6 @@ func BenchmarkLoad(b *testing.B) {
 
 // BenchmarkPlan is one plan in a firm that has been read.
 func BenchmarkPlan(b *testing.B) {
-	defer rules.CollectLess()()
 	firm := loadFirm(b, benchFirm(2))
 	b.ReportAllocs()
 	for b.Loop() {

@@ -5,14 +5,11 @@ import (
 	"os/signal"
 	"syscall"
 	"time"
-
-	"driploop/rules"
 )
 
 func main() {
 	// A reader that goes away is a failed write like any other, not a silent end.
 	signal.Ignore(syscall.SIGPIPE)
-	rules.CollectLess()
 	c := &Command{Stdin: os.Stdin, Stdout: os.Stdout, Stderr: os.Stderr, Now: time.Now, Env: os.Getenv}
 	os.Exit(c.Main(os.Args[1:]))
 }
