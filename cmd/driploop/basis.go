@@ -20,7 +20,7 @@ func (c *Command) basis() *cobra.Command {
 	schema := false
 	cmd := &cobra.Command{
 		Use:   "basis [RULE]",
-		Short: "what a rule, profile, code, kind of part or file means, and where it comes from",
+		Short: "what a rule, profile, code or file format means, and its source",
 		Long: `Explains a rule, a limit profile, a grounding code, a kind of part (antenna, cable, …)
 or a file (plan, workspace, offer, stock, order, profile); the name of an area lists
 its rules. Without an argument it lists everything. It works in any folder; inside

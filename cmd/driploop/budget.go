@@ -17,7 +17,8 @@ func (c *Command) budget() *cobra.Command {
 lines with their loss, the stages with gain, noise figure and level, the gain that
 runs and what binds it, EIRP, and each limit with its margin; for each area what
 arrives there. --terms shows every addend.`,
-		Args: cobra.ExactArgs(1),
+		Example: "  driploop budget quay-lane --terms",
+		Args:    cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "csv", "markdown")
 			if err != nil {

@@ -99,8 +99,13 @@ func (c *Command) say(format string, args ...any) {
 // tree is all commands.
 func (c *Command) tree() *cobra.Command {
 	root := &cobra.Command{
-		Use:           "driploop COMMAND [PLAN…]",
-		Short:         "checks install plans for cellular antennas, boosters and routers",
+		Use:   "driploop COMMAND [PLAN…]",
+		Short: "checks install plans for cellular antennas, boosters and routers",
+		Long: `Checks install plans for cellular antennas, signal boosters and routers, kept as
+text files in git, and takes off what they need. PLAN is a job's ID or a file.
+Status 0: nothing holds work up. 1: a hold stands. 2: the call or an input cannot
+be used. 3: the tool failed.`,
+		Example:       "  driploop inspect quay-lane",
 		SilenceErrors: true,
 		SilenceUsage:  true,
 		Version:       version,
@@ -114,33 +119,27 @@ func (c *Command) tree() *cobra.Command {
 	}
 	root.SetVersionTemplate("driploop {{.Version}}\n")
 	f := root.PersistentFlags()
-	f.StringVar(&c.shared.root, "root", ".", "folder of the workspace")
-	f.StringVar(&c.shared.as, "as", "", "form of the output")
-	f.StringVar(&c.shared.out, "out", "", "write to a file, whole or not at all")
-	f.StringVar(&c.shared.at, "at", "", "read the workspace from a git revision, or :index for what is staged")
-	f.StringVar(&c.shared.limitsFrom, "limits-from", "", "take profiles, codes, house figures and weights from a git revision")
-	f.StringVar(&c.shared.stockFrom, "stock-from", "", "take stock sheets and orders from a git revision")
-	f.StringVar(&c.shared.today, "today", "", "the day to go by, like 2026-12-01 (default: today, UTC)")
-	f.StringVar(&c.shared.color, "color", "auto", "auto, always or never")
+	f.StringVar(&c.shared.root, "root", ".", "`DIR` of the workspace")
+	f.StringVar(&c.shared.as, "as", "", "`FORM` of the output")
+	f.StringVar(&c.shared.out, "out", "", "write to `FILE`, whole or not at all")
+	f.StringVar(&c.shared.at, "at", "", "read the workspace from the git revision `REV`, or :index for what is staged")
+	f.StringVar(&c.shared.limitsFrom, "limits-from", "", "take profiles, codes, house figures and weights from the git revision `REV`")
+	f.StringVar(&c.shared.stockFrom, "stock-from", "", "take stock sheets and orders from the git revision `REV`")
+	f.StringVar(&c.shared.today, "today", "", "`DAY` to go by, like 2026-12-01 (default: today, UTC)")
+	f.StringVar(&c.shared.color, "color", "auto", "`WHEN` to colour: auto, always or never")
 	f.BoolVar(&c.shared.quiet, "quiet", false, "no messages, and of findings only holds")
-	root.AddCommand(c.start(), c.inspect(), c.budget(), c.takeoff(), c.cuts(), c.purchase(), c.pick(), c.stock(), c.basis(), c.parts(), c.dress(), c.hook())
-	root.SetHelpCommand(help())
+	root.AddCommand(
+		c.start(), c.inspect(), c.budget(), c.takeoff(),
+		c.cuts(), c.purchase(), c.pick(), c.stock(),
+		c.basis(), c.parts(),
+		c.dress(), c.hook(),
+		c.completion(),
+	)
+	root.SetHelpCommand(c.help())
+	root.InitDefaultHelpCmd()
+	set(root)
+	c.completes(root)
 	return root
-}
-
-// help is the library's help, but that an unknown command is an error.
-func help() *cobra.Command {
-	return &cobra.Command{
-		Use:   "help [COMMAND]",
-		Short: "help for a command",
-		RunE: func(cmd *cobra.Command, args []string) error {
-			about, rest, err := cmd.Root().Find(args)
-			if err != nil || len(rest) > 0 {
-				return unknownCommand(cmd.Root(), args[0])
-			}
-			return about.Help()
-		},
-	}
 }
 
 func unknownCommand(root *cobra.Command, word string) error {

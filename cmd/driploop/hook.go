@@ -25,6 +25,7 @@ and those that a staged catalog, offer, stock or profile file touches, against t
 rules, and a hold keeps the commit back. It goes where git looks for hooks
 (core.hooksPath too). A hook that is there already is kept under another name
 beside it and runs first. Doing it again changes nothing.`,
+		Example: "  driploop hook",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			if _, err := c.form("text"); err != nil {
 				return err

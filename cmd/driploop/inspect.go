@@ -19,6 +19,7 @@ the next commit is looked at: what is staged is read, and the files that differ
 from HEAD, also those that are gone, count as if they stood behind --.
 The status is 1 where a hold stands. In sarif and annotations the names of files are
 relative to the top of the repository that holds the workspace.`,
+		Example: "  driploop inspect quay-lane\n  driploop inspect --at HEAD --as json",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "sarif", "markdown", "annotations", "junit")
 			if err != nil {

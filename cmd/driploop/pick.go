@@ -22,7 +22,8 @@ from each reel, what is not all there, and two labels for each line. What other
 jobs hold first is not touched.
 --issue books what lies ready as taken by writing stock/issue/JOB-1.toml, and
 touches nothing else; a second issue needs --more.`,
-		Args: cobra.ExactArgs(1),
+		Example: "  driploop pick quay-lane",
+		Args:    cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "xlsx", "html")
 			if err != nil {

@@ -22,6 +22,7 @@ func (c *Command) purchase() *cobra.Command {
 for the reorder levels: first so that as few jobs are late as the offers allow, then
 at the least cost with freight. Jobs that are needed later than buy_ahead_days from
 now are listed and not bought for. With plans, only what these lack is bought.`,
+		Example: "  driploop purchase --until 2026-12-31",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "csv", "xlsx")
 			if err != nil {
@@ -53,6 +54,7 @@ func (c *Command) cuts() *cobra.Command {
 each piece of cable, wire or conductor is cut, and what is left of it. Lengths have
 their cut allowance. With plans, the same plan is made and only their pieces and
 reels are shown.`,
+		Example: "  driploop cuts quay-lane",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "csv")
 			if err != nil {

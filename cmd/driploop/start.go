@@ -19,7 +19,7 @@ import (
 func (c *Command) start() *cobra.Command {
 	like := ""
 	cmd := &cobra.Command{
-		Use:   "start [DIR] | start JOB",
+		Use:   "start [DIR | JOB]",
 		Short: "a new workspace, or a new plan in one",
 		Long: `Where no workspace is, start makes one: in DIR, or here. It writes driploop.toml,
 the folders for plans, catalog, offers, stock and profiles with a commented
@@ -90,7 +90,7 @@ func (c *Command) startWorkspace(dir string) error {
 		return failure{err}
 	}
 	if err := os.MkdirAll(dir, 0o777); err != nil {
-		return fmt.Errorf("making the folder: %w", err)
+		return failure{fmt.Errorf("making the folder: %w", err)}
 	}
 	w, err := openNew(dir)
 	if err != nil {

@@ -20,6 +20,7 @@ jobs: for each part and shelf what lies there, what is on its way, what is kept 
 jobs and what is free, and what each job is short of and who holds it. With plans,
 only the parts that they claim are shown. The workbook has a sheet to count on for
 each shelf that something lies on.`,
+		Example: "  driploop stock --as json",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "csv", "xlsx")
 			if err != nil {

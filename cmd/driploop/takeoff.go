@@ -17,6 +17,7 @@ func (c *Command) takeoff() *cobra.Command {
 with their allowance for cutting, a connector for each field-cut end, adapters,
 fuses, conductors, consumables and extras. What exists, or somebody else brings,
 is left out; so are cancelled jobs.`,
+		Example: "  driploop takeoff quay-lane eel-van --as csv",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "csv", "markdown", "xlsx")
 			if err != nil {
