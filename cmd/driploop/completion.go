@@ -61,9 +61,9 @@ var forms = map[string][]string{
 	"hook":     {"text"},
 	"inspect":  {"text", "json", "sarif", "markdown", "annotations", "junit"},
 	"parts":    {"text", "json", "toml"},
-	"pick":     {"text", "json", "html"},
-	"purchase": {"text", "json", "csv"},
-	"stock":    {"text", "json", "csv"},
+	"pick":     {"text", "json", "xlsx", "html"},
+	"purchase": {"text", "json", "csv", "xlsx"},
+	"stock":    {"text", "json", "csv", "xlsx"},
 	"takeoff":  {"text", "json", "csv", "markdown", "xlsx"},
 }
 
