@@ -58,6 +58,7 @@ var forms = map[string][]string{
 	"basis":    {"text", "json", "markdown"},
 	"budget":   {"text", "json", "csv", "markdown"},
 	"cuts":     {"text", "json", "csv"},
+	"dress":    {"text"},
 	"hook":     {"text"},
 	"inspect":  {"text", "json", "sarif", "markdown", "annotations", "junit"},
 	"parts":    {"text", "json", "toml"},

@@ -32,6 +32,7 @@ and the status is 1. Each file is written whole or not at all, after it was prov
 that it means the same and holds every comment; where that fails the status is 3.
 Behind -- stand file names as a hook passes them; what is no file of the workspace
 is passed over there. The status says nothing of how many were changed.`,
+		Example: "  driploop dress --list",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			if _, err := c.form("text"); err != nil {
 				return err
