@@ -4,7 +4,7 @@ import "testing"
 
 func TestSpellFace(t *testing.T) {
 	for s, want := range map[string]string{
-		"N male": "N male", "N plug": "N male", "N  jack": "N female", " F plug": " F plug", "RP-SMA plug": "RP-SMA male",
+		"N male": "N male", "N plug": "N male", "N  jack": "N female", " F plug": "F male", "RP-SMA plug": "RP-SMA male",
 		"RP-SMA jack": "RP-SMA female", "SMB plug": "SMB plug", "SMB  male": "SMB male", "n plug": "n plug", "NC-10-NM": "NC-10-NM", "": "",
 	} {
 		if got := SpellFace(s); got != want {
