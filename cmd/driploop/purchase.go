@@ -21,7 +21,10 @@ func (c *Command) purchase() *cobra.Command {
 		Long: `Says what to buy for what shelves and orders leave short over all open jobs, and
 for the reorder levels: first so that as few jobs are late as the offers allow, then
 at the least cost with freight. Jobs that are needed later than buy_ahead_days from
-now are listed and not bought for. With plans, only what these lack is bought.`,
+now are listed and not bought for. With plans, only what these lack is bought.
+A substitute that a part lists in instead is taken where it makes a job less late or
+the purchase cheaper, its crew has the tools, and its plan has no new finding with
+it; the order then goes by a change of the plan that is to be made by hand.`,
 		Example: "  driploop purchase --until 2026-12-31",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "csv", "xlsx")
@@ -142,7 +145,7 @@ func (c *Command) buy(ctx context.Context, firm *rules.Firm, terms bom.Terms) (*
 	for _, g := range d.Gaps {
 		b.Gaps = append(b.Gaps, show.JobGap{Job: g.Job, Gap: g.Gap})
 	}
-	a := firm.Allocate(d)
-	b.Purchase = bom.Buy(a, firm.Offers, firm.Catalog.Look, terms)
+	p, a := firm.Purchase(d, terms)
+	b.Purchase = p
 	return &show.OrderBook{Buying: b, Allocation: a, Premises: &w.Premises, Offers: firm.Offers}, nil
 }

@@ -33,6 +33,7 @@ func (c *Cuts) shown(p *bom.CutPlan, from int) bool {
 func (c *Cuts) Text(page Page) ([]byte, error) {
 	d := &Document{Title: fmt.Sprintf("Cuts as of %s, %s", c.Today, c.At)}
 	d.Blocks = append(d.Blocks, c.broken()...)
+	d.Blocks = append(d.Blocks, c.swaps()...)
 	plans := c.plans()
 	if len(plans) == 0 {
 		d.Blocks = append(d.Blocks, Block{Text: []string{"Nothing is to be cut."}})

@@ -32,6 +32,7 @@ func (b *Buying) Text(page Page) ([]byte, error) {
 	if len(b.Rows) > 0 {
 		d.Blocks = append(d.Blocks, Block{Table: b.orders(), Text: []string{b.proof()}})
 	}
+	d.Blocks = append(d.Blocks, b.swaps()...)
 	for _, f := range b.Freight {
 		d.Blocks = append(d.Blocks, b.order(f))
 	}
@@ -54,6 +55,18 @@ func (b *Buying) proof() string {
 		return "Nothing that makes no more jobs late costs less."
 	}
 	return fmt.Sprintf("Whether anything costs less is not known; nothing that makes no more jobs late costs less than %s.", b.money(b.Bound))
+}
+
+// swaps are the changes of plans that the purchase goes by.
+func (b *Buying) swaps() []Block {
+	out := Block{Head: "GOES BY THESE CHANGES OF PLANS, TO BE MADE BY HAND"}
+	for _, s := range b.Swaps {
+		out.Items = append(out.Items, Item{s.Job, s.To + " in place of " + s.From + ", all of it; no new hold, punch or unknown in the plan."})
+	}
+	if out.Items == nil {
+		return nil
+	}
+	return []Block{out}
 }
 
 func (b *Buying) orders() *Grid {
