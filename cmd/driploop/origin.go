@@ -36,6 +36,12 @@ func (c *Command) madeFrom(ctx context.Context, firm *rules.Firm, plans []source
 	add("lengths", "lengths", map[bool]string{true: "ft", false: "m"}[firm.Workspace.Lengths.V == "ft"])
 	add("currency", "currency", firm.Workspace.Currency.Or("not named"))
 	add("profile", "limit profile of the workspace", firm.Workspace.Profile.Or("none"))
+	from := firm.Origin()
+	add("limits", "limits of", from.LimitsFrom)
+	add("stock", "stock of", from.StockFrom)
+	for _, d := range from.Differs {
+		add("", "rulers", d)
+	}
 	for _, o := range firm.Overrides() {
 		add("", "changed by the workspace", o)
 	}

@@ -45,7 +45,7 @@ touches nothing else; a second issue needs --more.`,
 			if err != nil {
 				return err
 			}
-			list := &show.Pick{Pick: p, Today: firm.Today.String(), At: firm.Tree.Name(), Feet: firm.Workspace.Lengths.V == "ft"}
+			list := &show.Pick{Pick: p, Today: firm.Today.String(), Origin: firm.Origin(), Feet: firm.Workspace.Lengths.V == "ft"}
 			if how.do {
 				return c.issue(cmd.Context(), firm, list, how, page)
 			}

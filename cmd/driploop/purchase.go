@@ -137,7 +137,7 @@ func (c *Command) buy(ctx context.Context, firm *rules.Firm, terms bom.Terms) (*
 		return nil, failure{err}
 	}
 	w := &firm.Workspace
-	b := &show.Buying{At: firm.Tree.Name(), Currency: w.Currency.V, Feet: w.Lengths.V == "ft"}
+	b := &show.Buying{Origin: firm.Origin(), Currency: w.Currency.V, Feet: w.Lengths.V == "ft"}
 	for _, e := range d.Broken {
 		b.Broken = append(b.Broken, e.Path)
 		c.held = true

@@ -43,7 +43,7 @@ each shelf that something lies on.`,
 			if err != nil {
 				return err
 			}
-			s := &show.Stock{Allocation: a, Look: firm.Catalog.Look, At: firm.Tree.Name(), Today: firm.Today.String(), Feet: firm.Workspace.Lengths.V == "ft", Broken: broken}
+			s := &show.Stock{Allocation: a, Look: firm.Catalog.Look, Origin: firm.Origin(), Today: firm.Today.String(), Feet: firm.Workspace.Lengths.V == "ft", Broken: broken}
 			if plans != nil {
 				s.Jobs = []string{}
 			}

@@ -31,7 +31,7 @@ func (c *Cuts) shown(p *bom.CutPlan, from int) bool {
 
 // Text writes, part by part, what is cut from each reel in the order of the jobs.
 func (c *Cuts) Text(page Page) ([]byte, error) {
-	d := &Document{Title: fmt.Sprintf("Cuts as of %s, %s", c.Today, c.At)}
+	d := &Document{Title: fmt.Sprintf("Cuts as of %s, %s", c.Today, c.At+borrowed(c.Origin))}
 	d.Blocks = append(d.Blocks, c.broken()...)
 	d.Blocks = append(d.Blocks, c.swaps()...)
 	plans := c.plans()
@@ -134,16 +134,18 @@ type cutLeftJSON struct {
 // JSON writes the cuts as the interface describes them.
 func (c *Cuts) JSON() ([]byte, error) {
 	out := struct {
-		At        string          `json:"at"`
-		Today     string          `json:"today"`
-		Until     string          `json:"until"`
-		Parts     []cutPartJSON   `json:"parts"`
-		Unsourced []unsourcedJSON `json:"unsourced"`
-		Later     []laterJSON     `json:"later"`
-		Waiting   []waitingJSON   `json:"waiting"`
-		Gaps      []gapJSON       `json:"not_counted"`
-		Broken    []string        `json:"broken"`
-	}{c.At, c.Today.String(), c.Until.String(), []cutPartJSON{}, unsourcedsJSON(c.Unsourced), latersJSON(c.Later), waitingsJSON(c.Waiting), gapsJSON(c.Gaps), append([]string{}, c.Broken...)}
+		At         string          `json:"at"`
+		LimitsFrom string          `json:"limits_from"`
+		StockFrom  string          `json:"stock_from"`
+		Today      string          `json:"today"`
+		Until      string          `json:"until"`
+		Parts      []cutPartJSON   `json:"parts"`
+		Unsourced  []unsourcedJSON `json:"unsourced"`
+		Later      []laterJSON     `json:"later"`
+		Waiting    []waitingJSON   `json:"waiting"`
+		Gaps       []gapJSON       `json:"not_counted"`
+		Broken     []string        `json:"broken"`
+	}{c.At, c.LimitsFrom, c.StockFrom, c.Today.String(), c.Until.String(), []cutPartJSON{}, unsourcedsJSON(c.Unsourced), latersJSON(c.Later), waitingsJSON(c.Waiting), gapsJSON(c.Gaps), append([]string{}, c.Broken...)}
 	for _, p := range c.plans() {
 		out.Parts = append(out.Parts, c.part(p))
 	}

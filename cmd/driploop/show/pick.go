@@ -8,14 +8,15 @@ import (
 	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/unit"
+	"driploop/rules"
 )
 
 // Pick is the pick list of one job, ready to be shown.
 type Pick struct {
 	*bom.Pick
 	Today string
-	At    string // the tree: "worktree" or a revision
-	Feet  bool
+	rules.Origin
+	Feet bool
 }
 
 // Text writes the list for a crew that walks the shelves with it.
@@ -65,7 +66,7 @@ func (p *Pick) when() []string {
 	if !p.On.IsZero() {
 		day = fmt.Sprintf("Install on %s, everything ready by %s.", p.On, p.Needed)
 	}
-	out := []string{day + " " + crew + " Stage " + p.Stage + ". As of " + p.Today + ", " + p.At + "."}
+	out := []string{day + " " + crew + " Stage " + p.Stage + ". As of " + p.Today + ", " + p.At + borrowed(p.Origin) + "."}
 	if p.Empty() {
 		out = append(out, "Nothing is to be taken from a shelf.")
 	}

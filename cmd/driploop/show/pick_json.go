@@ -8,22 +8,24 @@ import (
 )
 
 type pickJSON struct {
-	Job     string           `json:"job"`
-	Title   string           `json:"title"`
-	At      string           `json:"at"`
-	Today   string           `json:"today"`
-	Stage   string           `json:"stage"`
-	Crew    string           `json:"crew"`
-	Install string           `json:"install_on"`
-	Needed  string           `json:"needed"`
-	Tools   []pickToolJSON   `json:"tools"`
-	Bins    []pickBinJSON    `json:"bins"`
-	Reels   []pickReelJSON   `json:"reels"`
-	Loose   []pickGivenJSON  `json:"not_booked"`
-	Short   []shortJSON      `json:"short"`
-	Coming  []pickComingJSON `json:"coming"`
-	Given   []pickGivenJSON  `json:"given"`
-	Labels  []pickLabelJSON  `json:"labels"`
+	Job        string           `json:"job"`
+	Title      string           `json:"title"`
+	At         string           `json:"at"`
+	LimitsFrom string           `json:"limits_from"`
+	StockFrom  string           `json:"stock_from"`
+	Today      string           `json:"today"`
+	Stage      string           `json:"stage"`
+	Crew       string           `json:"crew"`
+	Install    string           `json:"install_on"`
+	Needed     string           `json:"needed"`
+	Tools      []pickToolJSON   `json:"tools"`
+	Bins       []pickBinJSON    `json:"bins"`
+	Reels      []pickReelJSON   `json:"reels"`
+	Loose      []pickGivenJSON  `json:"not_booked"`
+	Short      []shortJSON      `json:"short"`
+	Coming     []pickComingJSON `json:"coming"`
+	Given      []pickGivenJSON  `json:"given"`
+	Labels     []pickLabelJSON  `json:"labels"`
 }
 
 type pickToolJSON struct {
@@ -81,7 +83,7 @@ type pickLabelJSON struct {
 
 // JSON writes the pick list; quantities of cut stock are in metres.
 func (p *Pick) JSON() ([]byte, error) {
-	out := pickJSON{Job: p.Job, Title: p.Title, At: p.At, Today: p.Today, Stage: p.Stage, Crew: p.Crew, Install: p.On.String(), Needed: p.Needed.String(),
+	out := pickJSON{Job: p.Job, Title: p.Title, At: p.At, LimitsFrom: p.LimitsFrom, StockFrom: p.StockFrom, Today: p.Today, Stage: p.Stage, Crew: p.Crew, Install: p.On.String(), Needed: p.Needed.String(),
 		Tools: []pickToolJSON{}, Bins: []pickBinJSON{}, Reels: []pickReelJSON{}, Loose: []pickGivenJSON{}, Short: shortsJSON(p.Missing, nil),
 		Coming: []pickComingJSON{}, Given: []pickGivenJSON{}, Labels: []pickLabelJSON{}}
 	for _, t := range p.Tools {

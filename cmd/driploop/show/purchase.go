@@ -8,12 +8,13 @@ import (
 	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/unit"
+	"driploop/rules"
 )
 
 // Buying is a purchase and the cuts it goes by, ready to be shown.
 type Buying struct {
 	*bom.Purchase
-	At       string
+	rules.Origin
 	Currency string
 	Jobs     map[string]bool // that were asked for; nil: all
 	Broken   []string        // plans that are not counted, since their files cannot be read
@@ -24,9 +25,9 @@ type Buying struct {
 // Text writes the orders, vendor by vendor, then what is late, what waits and what
 // nobody sells.
 func (b *Buying) Text(page Page) ([]byte, error) {
-	d := &Document{Title: fmt.Sprintf("To buy as of %s, %s: %s with freight", b.Today, b.At, b.money(b.Total))}
+	d := &Document{Title: fmt.Sprintf("To buy as of %s, %s: %s with freight", b.Today, b.At+borrowed(b.Origin), b.money(b.Total))}
 	if len(b.Rows) == 0 {
-		d.Title = fmt.Sprintf("To buy as of %s, %s: nothing", b.Today, b.At)
+		d.Title = fmt.Sprintf("To buy as of %s, %s: nothing", b.Today, b.At+borrowed(b.Origin))
 	}
 	d.Blocks = append(d.Blocks, b.broken()...)
 	if len(b.Rows) > 0 {

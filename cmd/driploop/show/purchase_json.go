@@ -9,20 +9,22 @@ import (
 )
 
 type purchaseJSON struct {
-	At        string            `json:"at"`
-	Today     string            `json:"today"`
-	Until     string            `json:"until"`
-	Rows      []buyJSON         `json:"rows"`
-	Freight   map[string]string `json:"freight"`
-	Total     string            `json:"total"`
-	Bound     string            `json:"bound"`
-	Proved    bool              `json:"proved"`
-	Unsourced []unsourcedJSON   `json:"unsourced"`
-	Later     []laterJSON       `json:"later"`
-	Waiting   []waitingJSON     `json:"waiting"`
-	Swaps     []swapJSON        `json:"swaps"`
-	Gaps      []gapJSON         `json:"not_counted"`
-	Broken    []string          `json:"broken"`
+	At         string            `json:"at"`
+	LimitsFrom string            `json:"limits_from"`
+	StockFrom  string            `json:"stock_from"`
+	Today      string            `json:"today"`
+	Until      string            `json:"until"`
+	Rows       []buyJSON         `json:"rows"`
+	Freight    map[string]string `json:"freight"`
+	Total      string            `json:"total"`
+	Bound      string            `json:"bound"`
+	Proved     bool              `json:"proved"`
+	Unsourced  []unsourcedJSON   `json:"unsourced"`
+	Later      []laterJSON       `json:"later"`
+	Waiting    []waitingJSON     `json:"waiting"`
+	Swaps      []swapJSON        `json:"swaps"`
+	Gaps       []gapJSON         `json:"not_counted"`
+	Broken     []string          `json:"broken"`
 }
 
 // buyJSON is one order line. Quantities are pieces, or metres of cut stock. need,
@@ -108,7 +110,7 @@ func gapsJSON(gaps []JobGap) []gapJSON {
 
 // JSON writes the purchase as the interface describes it.
 func (b *Buying) JSON() ([]byte, error) {
-	out := purchaseJSON{At: b.At, Today: b.Today.String(), Until: b.Until.String(), Rows: []buyJSON{}, Freight: map[string]string{},
+	out := purchaseJSON{At: b.At, LimitsFrom: b.LimitsFrom, StockFrom: b.StockFrom, Today: b.Today.String(), Until: b.Until.String(), Rows: []buyJSON{}, Freight: map[string]string{},
 		Total: b.Total.String(), Bound: b.Bound.String(), Proved: b.Proved, Unsourced: unsourcedsJSON(b.Unsourced), Later: latersJSON(b.Later),
 		Waiting: waitingsJSON(b.Waiting), Swaps: []swapJSON{}, Gaps: gapsJSON(b.Gaps), Broken: append([]string{}, b.Broken...)}
 	for _, r := range b.Rows {

@@ -9,14 +9,15 @@ import (
 	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/unit"
+	"driploop/rules"
 )
 
 // Stock is the stock and what is kept of it for jobs, ready to be shown.
 type Stock struct {
 	*bom.Allocation
-	Look   func(string) *catalog.Part
-	Jobs   []string // of these jobs' parts only; nil: all
-	At     string
+	Look func(string) *catalog.Part
+	Jobs []string // of these jobs' parts only; nil: all
+	rules.Origin
 	Today  string
 	Feet   bool
 	Broken []string // plans whose claims are not known, since their files cannot be read
@@ -59,7 +60,7 @@ func (s *Stock) claims() []*bom.Claim {
 
 // Text writes what is short first, then the shelves, then the reels.
 func (s *Stock) Text(page Page) ([]byte, error) {
-	d := &Document{Title: fmt.Sprintf("Stock as of %s, %s", s.Today, s.At)}
+	d := &Document{Title: fmt.Sprintf("Stock as of %s, %s", s.Today, s.At+borrowed(s.Origin))}
 	if len(s.Broken) > 0 {
 		d.Blocks = append(d.Blocks, Block{how: stop, Text: []string{"Not counted, for their files cannot be read whole: " + strings.Join(s.Broken, ", ") + "."}})
 	}

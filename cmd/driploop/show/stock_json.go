@@ -7,12 +7,14 @@ import (
 )
 
 type stockJSON struct {
-	At     string                            `json:"at"`
-	Today  string                            `json:"today"`
-	Rows   []standingJSON                    `json:"rows"`
-	Reels  []reelJSON                        `json:"reels"`
-	Claims map[string]map[string]json.Number `json:"claims"`
-	Short  []shortJSON                       `json:"short"`
+	At         string                            `json:"at"`
+	LimitsFrom string                            `json:"limits_from"`
+	StockFrom  string                            `json:"stock_from"`
+	Today      string                            `json:"today"`
+	Rows       []standingJSON                    `json:"rows"`
+	Reels      []reelJSON                        `json:"reels"`
+	Claims     map[string]map[string]json.Number `json:"claims"`
+	Short      []shortJSON                       `json:"short"`
 }
 
 type standingJSON struct {
@@ -54,7 +56,7 @@ type lateJSON struct {
 
 // JSON writes the stock; quantities of cut stock are in metres.
 func (s *Stock) JSON() ([]byte, error) {
-	out := stockJSON{At: s.At, Today: s.Today, Rows: []standingJSON{}, Reels: []reelJSON{}, Claims: map[string]map[string]json.Number{}}
+	out := stockJSON{At: s.At, LimitsFrom: s.LimitsFrom, StockFrom: s.StockFrom, Today: s.Today, Rows: []standingJSON{}, Reels: []reelJSON{}, Claims: map[string]map[string]json.Number{}}
 	for _, r := range s.rows() {
 		j := standingJSON{Part: r.Part, Where: r.Where, Unit: "each", OnHand: quantityNumber(r.OnHand), Inbound: quantityNumber(r.Inbound),
 			Claimed: quantityNumber(r.Claimed), Free: quantityNumber(r.Free), Counted: r.Counted.Day.String()}
