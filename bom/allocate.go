@@ -2,6 +2,7 @@ package bom
 
 import (
 	"cmp"
+	"iter"
 	"slices"
 	"strings"
 
@@ -21,6 +22,7 @@ type Allocation struct {
 	stock    *catalog.Stock
 	house    *House
 
+	crews   map[string][]string // shelves of a crew, in its order
 	byPart  map[string][]*Supply
 	claimed map[string][]*Claim // by part, in turn
 	ofJob   map[string][]*Claim
@@ -41,8 +43,8 @@ type Broken struct {
 func Allocate(demands []*Demand, stock *catalog.Stock, premises *catalog.Premises, house *House) *Allocation {
 	a := &allocator{
 		Allocation: &Allocation{Today: stock.Today, premises: premises, stock: stock, house: house,
-			byPart: map[string][]*Supply{}, claimed: map[string][]*Claim{}, ofJob: map[string][]*Claim{}},
-		today: stock.Today, crews: map[string][]string{},
+			crews: map[string][]string{}, byPart: map[string][]*Supply{}, claimed: map[string][]*Claim{}, ofJob: map[string][]*Claim{}},
+		today: stock.Today,
 	}
 	a.Demands = slices.Clone(demands)
 	slices.SortStableFunc(a.Demands, a.turn)
@@ -75,7 +77,6 @@ func Allocate(demands []*Demand, stock *catalog.Stock, premises *catalog.Premise
 type allocator struct {
 	*Allocation
 	today unit.Date
-	crews map[string][]string // shelves of a crew, in its order
 }
 
 func (a *allocator) calendar() *catalog.Calendar { return &a.premises.Calendar }
@@ -109,18 +110,15 @@ func (a *Allocation) Stock() *catalog.Stock { return a.stock }
 
 // HeldBy lists, in their turn, the claims of other jobs that hold goods which would
 // suit a claim.
-func (a *Allocation) HeldBy(c *Claim) []*Claim {
-	r := allocator{Allocation: a, today: a.Today, crews: map[string][]string{}}
-	var out []*Claim
-	for _, other := range a.claimed[c.Part().ID] {
-		if other.Job() == c.Job() {
-			continue
-		}
-		if slices.ContainsFunc(other.Held, func(h Hold) bool { return r.reach(h.Supply, c.Demand, c.Needed) > 0 }) {
-			out = append(out, other)
+func (a *Allocation) HeldBy(c *Claim) iter.Seq[*Claim] {
+	return func(yield func(*Claim) bool) {
+		for _, other := range a.claimed[c.Part().ID] {
+			suits := func(h Hold) bool { return a.reach(h.Supply, c.Demand, c.Needed) > 0 }
+			if other.Job() != c.Job() && slices.ContainsFunc(other.Held, suits) && !yield(other) {
+				return
+			}
 		}
 	}
-	return out
 }
 
 // kept is a reserve that still holds, with the claim it is for.

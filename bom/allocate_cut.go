@@ -12,6 +12,11 @@ import (
 // says nothing.
 const DefaultUsableRemnant unit.MM = 3000
 
+// shelfTries is how hard the allocation tries to open few reels and to leave little
+// scrap. It runs with every inspection, over all open jobs; what is bought and cut in
+// the end is planned with more.
+const shelfTries = 300
+
 // run is one piece that is to be cut, on its way to a reel.
 type run struct {
 	claim *Claim
@@ -162,7 +167,7 @@ func (a *allocator) pegReels(runs []*run, supplies []*Supply) {
 // goes first.
 func (a *allocator) planRuns(runs []*run, supplies []*Supply) []int {
 	out := make([]int, len(runs))
-	task := cut.Task{Usable: int64(a.house.UsableRemnant.Or(DefaultUsableRemnant))}
+	task := cut.Task{Usable: int64(a.house.UsableRemnant.Or(DefaultUsableRemnant)), Tries: shelfTries}
 	for j, s := range supplies {
 		task.Stocks = append(task.Stocks, cut.Stock{ID: s.Name(), Length: int64(supplies[j].Qty.Length)})
 	}

@@ -70,7 +70,7 @@ func (b *buyer) cutting(p *catalog.Part) *cutting {
 func (b *buyer) gatherCuts() {
 	again := *b.a
 	again.Broken = nil
-	r := &allocator{Allocation: &again, today: b.a.Today, crews: map[string][]string{}}
+	r := &allocator{Allocation: &again, today: b.a.Today}
 	reserves := r.reserves()
 	ids := make([]string, 0, len(b.a.claimed))
 	for id, claims := range b.a.claimed {

@@ -1,6 +1,8 @@
 package bom
 
 import (
+	"strings"
+
 	"driploop/catalog"
 	"driploop/catalog/source"
 	"driploop/catalog/unit"
@@ -24,6 +26,7 @@ type Demand struct {
 	At        source.Place
 	Needs     []Need // by part ID
 	Reserves  []Reserve
+	Gaps      []Gap // what could not be counted
 }
 
 // Need is what a job takes of one part in all, whatever it was given already.
@@ -37,7 +40,7 @@ type Need struct {
 // DemandOf is the demand of a plan with its takeoff.
 func DemandOf(p *Plan, t *Takeoff) *Demand {
 	d := &Demand{Job: p.ID, Path: p.File.Path, Title: p.Job.Title.V, Stage: p.Job.Stage.Or("draft"), Crew: p.Job.Crew.V,
-		On: p.Job.InstallOn.V, At: p.Job.At, Reserves: p.Reserves}
+		On: p.Job.InstallOn.V, At: p.Job.At, Reserves: p.Reserves, Gaps: t.Gaps}
 	d.Needs = make([]Need, 0, len(t.Rows))
 	for _, q := range t.Rows {
 		d.Needs = append(d.Needs, Need{Part: q.Part, Each: q.Each, Pieces: q.Pieces, At: q.At})
@@ -58,6 +61,44 @@ func (d *Demand) Need(part string) *Need {
 	return nil
 }
 
+// Quantity is the whole need; of cut stock, its pieces with their allowance.
+func (n *Need) Quantity() catalog.Quantity {
+	q := catalog.Quantity{Each: int64(n.Each)}
+	for _, p := range n.Pieces {
+		q.Length += p.Length
+	}
+	return q
+}
+
+// LinePiece is the piece of cut stock that a line of the plan takes.
+type LinePiece struct {
+	Part  *catalog.Part
+	Piece *Piece
+}
+
+// Piece finds what a line of the plan takes, or nil.
+func (d *Demand) Piece(line string) *LinePiece {
+	for i := range d.Needs {
+		n := &d.Needs[i]
+		for j := range n.Pieces {
+			if n.Pieces[j].Line == line {
+				return &LinePiece{n.Part, &n.Pieces[j]}
+			}
+		}
+	}
+	return nil
+}
+
+// HasGap reports a line of the plan of which something could not be counted.
+func (d *Demand) HasGap(line string) bool {
+	for _, g := range d.Gaps {
+		if _, name, ok := strings.Cut(g.On, "."); ok && name == line {
+			return true
+		}
+	}
+	return false
+}
+
 // Places are all places of the demand, to be moved off the plan's text.
 func (d *Demand) Places() []*source.Place {
 	out := []*source.Place{&d.At}
@@ -67,6 +108,9 @@ func (d *Demand) Places() []*source.Place {
 		for j := range n.Pieces {
 			out = append(out, &n.Pieces[j].At)
 		}
+	}
+	for i := range d.Gaps {
+		out = append(out, &d.Gaps[i].At)
 	}
 	for i := range d.Reserves {
 		r := &d.Reserves[i]

@@ -134,8 +134,7 @@ func (p *Pick) cut(a *Allocation, c *Claim, h Hold) {
 
 // walk puts bins and reels into the order in which the crew meets them.
 func (p *Pick) walk(a *Allocation, crew string) {
-	r := allocator{Allocation: a, crews: map[string][]string{}}
-	shelves := r.shelves(crew)
+	shelves := a.shelves(crew)
 	stop := func(where string, first bool) int {
 		if at := slices.Index(shelves, where); at >= 0 && !first {
 			return at

@@ -121,7 +121,7 @@ func (a *allocator) due(o *catalog.Open) (day unit.Date, assumed bool) {
 
 // shelvesOf lists the shelves that a crew takes from, in its order: without a crew,
 // or where the crew names none, every shop.
-func (a *allocator) shelvesOf(crew string) []string {
+func (a *Allocation) shelvesOf(crew string) []string {
 	if c := a.premises.Crew(crew); c != nil && c.Shelves.Set {
 		out := make([]string, 0, len(c.Shelves.V))
 		for _, s := range c.Shelves.V {
@@ -141,7 +141,7 @@ func (a *allocator) shelvesOf(crew string) []string {
 // reach says how well a supply suits a claim: 0 not at all, else the lower the
 // sooner it is taken. Goods of another crew's van are out of reach; goods that
 // arrived and were not put away, and deliveries to anywhere but a van, are not.
-func (a *allocator) reach(s *Supply, d *Demand, needed unit.Date) int {
+func (a *Allocation) reach(s *Supply, d *Demand, needed unit.Date) int {
 	if !s.Here() && !needed.IsZero() && s.Day.After(needed) {
 		return 0
 	}
@@ -159,7 +159,7 @@ func (a *allocator) reach(s *Supply, d *Demand, needed unit.Date) int {
 }
 
 // shelves is shelvesOf, looked up once for each crew.
-func (a *allocator) shelves(crew string) []string {
+func (a *Allocation) shelves(crew string) []string {
 	list, known := a.crews[crew]
 	if !known {
 		list = a.shelvesOf(crew)

@@ -85,6 +85,18 @@ func (o *Offer) PriceOf(n int) unit.Money {
 // ValidOn reports whether the offer holds on a day; its last day counts.
 func (o *Offer) ValidOn(d unit.Date) bool { return !o.Until.Set || !d.After(o.Until.V) }
 
+// Parts lists the parts that the offer brings, by ID.
+func (o *Offer) Parts() []string {
+	if o.Part.Set {
+		return []string{o.Part.V}
+	}
+	var out []string
+	for _, b := range o.Brings {
+		out = append(out, b.Name)
+	}
+	return out
+}
+
 // Vendor finds a vendor by ID, or nil.
 func (o *Offers) Vendor(id string) *Vendor {
 	for i := range o.Vendors {

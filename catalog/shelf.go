@@ -245,3 +245,14 @@ func (c *Calendar) AddWorkdays(d unit.Date, n int) unit.Date {
 	}
 	return d
 }
+
+// Workdays is how many working days lie after one day, up to and with another.
+func (c *Calendar) Workdays(from, to unit.Date) int {
+	n := 0
+	for d := from; d.Before(to); {
+		if d = d.Add(1); c.Workday(d) {
+			n++
+		}
+	}
+	return n
+}

@@ -2,6 +2,7 @@ package rules
 
 import (
 	"context"
+	"slices"
 
 	"driploop/bom"
 	"driploop/catalog/source"
@@ -10,54 +11,51 @@ import (
 // Demands is what all plans of a workspace take.
 type Demands struct {
 	All    []*bom.Demand  // in the order of the files
-	Gaps   []DemandGap    // what could not be counted
 	Broken []source.Entry // plan files that cannot be read whole; nothing of them is counted
-}
-
-// DemandGap is something that a claiming job implies and that could not be counted.
-type DemandGap struct {
-	Job string
-	bom.Gap
 }
 
 // Demands reads every plan and keeps what it takes, and no more of it.
 func (f *Firm) Demands(ctx context.Context) (*Demands, error) {
-	demands := make([]*bom.Demand, len(f.PlanFiles))
-	gaps := make([][]bom.Gap, len(f.PlanFiles))
-	err := eachSideBySide(ctx, len(f.PlanFiles), func(i int) {
-		c, broken := f.Case(f.PlanFiles[i])
-		if broken {
-			return
-		}
-		t := c.Graph.Takeoff(&f.Workspace.House.House)
-		demands[i] = bom.DemandOf(c.Plan, t)
-		if demands[i].Claims() {
-			gaps[i] = t.Gaps
-		}
-		moveOff(c.Plan.File, gapPlaces(gaps[i], demands[i].Places()))
-	})
+	kept, err := f.demandsOf(ctx, f.PlanFiles)
 	if err != nil {
 		return nil, err
 	}
 	out := &Demands{}
-	for i, d := range demands {
-		if d == nil {
+	for i, k := range kept {
+		if k.demand == nil {
 			out.Broken = append(out.Broken, f.PlanFiles[i])
 			continue
 		}
-		out.All = append(out.All, d)
-		for _, x := range gaps[i] {
-			out.Gaps = append(out.Gaps, DemandGap{d.Job, x})
-		}
+		out.All = append(out.All, k.demand)
 	}
 	return out, nil
 }
 
-func gapPlaces(gaps []bom.Gap, places []*source.Place) []*source.Place {
-	for i := range gaps {
-		places = append(places, &gaps[i].At)
+// demandsOf reads plans for what they take; of one that cannot be read whole there
+// is no demand.
+func (f *Firm) demandsOf(ctx context.Context, plans []source.Entry) ([]shelfPlan, error) {
+	kept := make([]shelfPlan, len(plans))
+	err := eachSideBySide(ctx, len(plans), func(i int) {
+		if c, broken := f.Case(plans[i]); !broken {
+			kept[i] = c.forShelf()
+			moveOff(c.Plan.File, kept[i].places())
+		}
+	})
+	return kept, err
+}
+
+// otherDemands is what the plans that are not being inspected take: the shelf is
+// shared out over all.
+func (f *Firm) otherDemands(ctx context.Context, plans []source.Entry) ([]shelfPlan, error) {
+	if f.noShelf || len(plans) == len(f.PlanFiles) {
+		return nil, nil
 	}
-	return places
+	at := map[string]bool{}
+	for _, e := range plans {
+		at[e.Path] = true
+	}
+	rest := slices.DeleteFunc(slices.Clone(f.PlanFiles), func(e source.Entry) bool { return at[e.Path] })
+	return f.demandsOf(ctx, rest)
 }
 
 // Allocate shares the stock out over the demands.

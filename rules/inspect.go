@@ -120,7 +120,11 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 		return nil, err
 	}
 	r.Workspace = f.inspectFiles()
-	f.inspectShelf(r, kept)
+	others, err := f.otherDemands(ctx, plans)
+	if err != nil {
+		return nil, err
+	}
+	f.inspectShelf(r, kept, others)
 	if !whole {
 		r.keepTouched(changed)
 	}
@@ -201,7 +205,9 @@ func (f *Firm) inspectPlan(e source.Entry, withParts bool) (*PlanResult, shelfPl
 	res.Findings = c.run(res.FilesOnly != "")
 	kept := shelfPlan{}
 	if !broken {
-		kept = c.forShelf()
+		if !f.noShelf {
+			kept = c.forShelf()
+		}
 		if withParts {
 			res.Parts = c.parts()
 		}

@@ -1,9 +1,11 @@
 package rules
 
 import (
+	"slices"
 	"strings"
 
 	"driploop/bom"
+	"driploop/catalog"
 	"driploop/catalog/source"
 )
 
@@ -12,9 +14,12 @@ import (
 // of plans alike; every finding goes to the file in which it stands.
 type Shelf struct {
 	*Firm
-	Demands []*bom.Demand // in the order of the plan files
+	Demands    []*bom.Demand // in the order of the plan files
+	Allocation *bom.Allocation
 
-	claiming map[string][]*bom.Demand // by part
+	short    []*lack                   // once it was asked for
+	offers   map[string]*catalog.Offer // the soonest, by part
+	claiming map[string][]*bom.Demand  // by part
 }
 
 // Claiming lists the demands that claim a part: plans in review or construction
@@ -43,9 +48,6 @@ type shelfPlan struct {
 
 // forShelf keeps what the plan takes, and its waivers of rules of scope firm.
 func (c *Case) forShelf() shelfPlan {
-	if c.Firm.noShelf {
-		return shelfPlan{}
-	}
 	d := bom.DemandOf(c.Plan, c.Takeoff())
 	d.At = c.JobAt()
 	first := map[string]source.Place{}
@@ -99,17 +101,19 @@ func (p *shelfPlan) places() []*source.Place {
 // inspectShelf runs the rules of scope firm and puts their findings where they
 // stand, on plans or on the workspace's own files. What stands on a plan that was
 // not asked for is dropped.
-func (f *Firm) inspectShelf(r *Result, plans []shelfPlan) {
+func (f *Firm) inspectShelf(r *Result, plans, others []shelfPlan) {
 	if f.noShelf {
 		r.Notices = append(r.Notices, "rules that need the shelf are not run: "+strings.Join(shelfRules(), " "))
 		return
 	}
 	s := &Shelf{Firm: f}
-	for _, p := range plans {
+	for _, p := range slices.Concat(plans, others) {
 		if p.demand != nil {
 			s.Demands = append(s.Demands, p.demand)
 		}
 	}
+	slices.SortStableFunc(s.Demands, func(d, e *bom.Demand) int { return strings.Compare(d.Path, e.Path) })
+	s.Allocation = bom.Allocate(s.Demands, f.Stock, &f.Workspace.Premises, &f.Workspace.House.House)
 	s.index()
 	planPaths := map[string]bool{}
 	for _, e := range f.PlanFiles {

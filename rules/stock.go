@@ -13,7 +13,8 @@ import (
 // they find stands on the row of the stock file and on each plan that claims the
 // part, and on no other.
 
-var stockRules = []*Rule{stockBelow, stockTag, stockCountedTwice, stockUnknown, stockOver, stockOverdue, stockJump, stockSameDay, stockOld, stockFuture}
+var stockRules = []*Rule{stockBelow, stockTag, stockCountedTwice, stockUnknown, stockOver, stockOverdue, stockJump, stockSameDay, stockOld, stockFuture,
+	stockShort, stockLate, stockClaimed, stockIssued, stockCutWas, stockStranded}
 
 // ledger is the basis of rules about rows that contradict each other.
 var ledger = practice("a store's books: every piece that comes, goes or is counted has its row")

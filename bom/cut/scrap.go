@@ -8,12 +8,12 @@ import (
 
 // Limits of the work on what is left over, at the least price.
 const (
-	exactPieces = 14     // up to here every way is looked at
-	exactSteps  = 4e6    // unless it takes more than this
-	purchases   = 8      // looked at beyond, or all that there are
-	otherSteps  = 20_000 // to pack another purchase of the price
-	restarts    = 8      // packings of each that are improved
-	moves       = 3000   // tried on each
+	exactPieces  = 14     // up to here every way is looked at
+	exactSteps   = 4e6    // unless it takes more than this
+	purchases    = 8      // looked at beyond, or all that there are
+	otherSteps   = 20_000 // to pack another purchase of the price
+	restarts     = 8      // packings of each that are improved
+	defaultMoves = 3000   // tried on each
 )
 
 // score is what plans of one price are compared by.
@@ -101,6 +101,9 @@ func (p *problem) improved(bins []int, known []load) []load {
 		if best == nil || p.compare(p.score(loads), p.score(best)) < 0 {
 			best = loads
 		}
+		if p.perfect(p.score(best), bins) {
+			break
+		}
 	}
 	return best
 }
@@ -111,9 +114,9 @@ func (p *problem) improve(loads []load, rng *rand.Rand) {
 	if len(loads) < 2 {
 		return
 	}
-	for i := range moves {
+	for i := range p.moves {
 		// At first a little more scrap is let pass, to get out of a corner.
-		slip := int64(moves-i) * p.usable / (2 * moves)
+		slip := int64(p.moves-i) * p.usable / int64(2*p.moves)
 		if i%4 > 0 {
 			slip = 0
 		}
@@ -125,12 +128,10 @@ func (p *problem) improve(loads []load, rng *rand.Rand) {
 	}
 }
 
-// change moves a piece from a to b, or swaps it for one or two of b, and takes that back
-// where it is worse.
+// change moves a piece from a to b, or swaps it for one or two of b, unless that is
+// worse.
 func (p *problem) change(a, b *load, slip int64, rng *rand.Rand) {
-	oldA, oldB := *a, *b
-	before := p.pair(a, b)
-	newA, newB := slices.Clone(a.items), slices.Clone(b.items)
+	newA, newB := append(p.tryA[:0], a.items...), append(p.tryB[:0], b.items...)
 	k := rng.IntN(len(newA))
 	newB = append(newB, newA[k])
 	newA = slices.Delete(newA, k, k+1)
@@ -139,25 +140,59 @@ func (p *problem) change(a, b *load, slip int64, rng *rand.Rand) {
 		newA = append(newA, newB[k])
 		newB = slices.Delete(newB, k, k+1)
 	}
+	p.tryA, p.tryB = newA, newB // their room is used again
+	before := p.pair(*a, *b)
 	before.scrap += slip
-	if !p.refill(a, newA) || !p.refill(b, newB) || p.compare(p.pair(a, b), before) > 0 {
-		*a, *b = oldA, oldB
+	triedA, fitsA := p.refilled(*a, newA)
+	triedB, fitsB := p.refilled(*b, newB)
+	if fitsA && fitsB && p.compare(p.pair(triedA, triedB), before) <= 0 {
+		triedA.items, triedB.items = slices.Clone(newA), slices.Clone(newB)
+		*a, *b = triedA, triedB
 	}
 }
 
 // pair is the score of two loads.
-func (p *problem) pair(a, b *load) score {
-	return p.score([]load{*a, *b})
+func (p *problem) pair(a, b load) score {
+	var s score
+	for _, l := range [...]load{a, b} {
+		if len(l.items) > 0 {
+			s.opened++
+			s.scrap += p.scrap(l.room)
+		}
+	}
+	return s
 }
 
-// refill gives a load other pieces; false where they do not fit.
-func (p *problem) refill(l *load, items []int) bool {
+// refilled is a load with other pieces; false where they do not fit.
+func (p *problem) refilled(l load, items []int) (load, bool) {
 	l.items, l.room = items, p.stocks[l.stock].Length
 	for _, k := range items {
 		l.room -= p.kinds[k].need
 		if !p.kinds[k].fits[l.stock] {
-			return false
+			return l, false
 		}
 	}
-	return l.room >= 0
+	return l, l.room >= 0
+}
+
+// perfect reports a score that no packing of the bins can better.
+func (p *problem) perfect(s score, bins []int) bool {
+	if s.scrap > 0 {
+		return false
+	}
+	var need int64
+	for _, k := range p.kinds {
+		need += k.need * int64(len(k.pieces))
+	}
+	lengths := make([]int64, len(bins))
+	for i, b := range bins {
+		lengths[i] = p.stocks[b].Length
+	}
+	slices.Sort(lengths)
+	least := 0
+	for i := len(lengths) - 1; i >= 0 && need > 0; i-- {
+		need -= lengths[i]
+		least++
+	}
+	return s.opened <= least
 }

@@ -63,6 +63,8 @@ type Task struct {
 	Usable    int64 // millimetres from which a leftover is kept
 	Nodes     int   // limit of the exact search in steps; 0: the default
 
+	Tries int // changes tried for fewer opened stocks and less scrap, beyond the sizes for which they are exact; 0: the default
+
 	ScrapFirst bool // less scrap goes before fewer opened stocks
 }
 
@@ -112,6 +114,8 @@ type problem struct {
 	usable int64
 
 	scrapFirst bool
+	moves      int
+	tryA, tryB []int // of the changes that are tried
 
 	base  []load // of the pieces that nothing bought can hold
 	nodes int    // steps left of the exact search
@@ -121,7 +125,10 @@ type problem struct {
 const defaultNodes = 10_000_000
 
 func newProblem(t Task) (*problem, []int) {
-	p := &problem{usable: max(0, min(t.Usable, maxLength+1)), scrapFirst: t.ScrapFirst, nodes: t.Nodes}
+	p := &problem{usable: max(0, min(t.Usable, maxLength+1)), scrapFirst: t.ScrapFirst, nodes: t.Nodes, moves: t.Tries}
+	if p.moves <= 0 {
+		p.moves = defaultMoves
+	}
 	if p.nodes <= 0 {
 		p.nodes = defaultNodes
 	}

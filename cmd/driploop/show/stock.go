@@ -108,7 +108,7 @@ func (s *Stock) shortage(c *bom.Claim) string {
 		text += fmt.Sprintf("; %s comes on %s%s", h.Supply.Name(), h.Supply.Day, expected(h.Supply))
 	}
 	var held []string
-	for _, o := range s.HeldBy(c) {
+	for o := range s.HeldBy(c) {
 		until := "no date"
 		if !o.Demand.On.IsZero() {
 			until = "until " + o.Demand.On.String()

@@ -94,7 +94,7 @@ func shortsJSON(claims []*bom.Claim, a *bom.Allocation) []shortJSON {
 			j.Lines = append(j.Lines, l.Line)
 		}
 		if a != nil {
-			for _, h := range a.HeldBy(c) {
+			for h := range a.HeldBy(c) {
 				j.HeldBy = append(j.HeldBy, h.Job())
 			}
 		}
