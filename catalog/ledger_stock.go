@@ -131,6 +131,12 @@ func (s *Stock) binsOf(part string) []Bin {
 	return s.Bins[from:to]
 }
 
+// IsEmpty reports that no sheet and no order says anything: nobody keeps the store's
+// books here, and what is on hand is not known.
+func (s *Stock) IsEmpty() bool {
+	return len(s.Bins)+len(s.Tags)+len(s.Open)+len(s.Issues)+len(s.Pieces) == 0
+}
+
 // Tag finds a tag by ID, or nil.
 func (s *Stock) Tag(id string) *Tag {
 	i, found := slices.BinarySearchFunc(s.Tags, id, func(t Tag, id string) int { return strings.Compare(t.ID, id) })

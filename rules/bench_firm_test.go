@@ -462,7 +462,7 @@ func writeBenchMake(b *bytes.Buffer, n int) {
 }
 
 // benchSheet is a sheet of rows from the first on: bins sort by sort, make by make
-// and shelf by shelf, then reels of cable.
+// and shelf by shelf, then reels. A thousand plans find on it most of what they take.
 func benchSheet(first int) string {
 	var b strings.Builder
 	b.WriteString("[sheet]\non = 2026-11-20\nby = \"jo\"\n")
@@ -472,11 +472,11 @@ func benchSheet(first int) string {
 		shelf, bin := row/bins, row%bins
 		if shelf < 2 || bin < bins/2 {
 			fmt.Fprintf(&b, "[[count]]\npart = \"%s-%d\"\nwhere = \"%s\"\nqty = %d\n",
-				benchCounted[bin%len(benchCounted)], bin/len(benchCounted), shelves[shelf], row%40)
+				benchCounted[bin%len(benchCounted)], bin/len(benchCounted), shelves[shelf], 400+row%40)
 			continue
 		}
-		fmt.Fprintf(&b, "[[reel]]\ntag = \"R-%d\"\npart = \"CX-%d\"\nwhere = \"shop\"\nleft = \"%d m\"\nhow = \"tape\"\n",
-			row, row%benchMakes, 20+row%80)
+		fmt.Fprintf(&b, "[[reel]]\ntag = \"R-%d\"\npart = \"%s-%d\"\nwhere = \"shop\"\nleft = \"%d m\"\nhow = \"tape\"\n",
+			row, []string{"CX", "BC", "WIRE"}[row%3], row%benchMakes, 720+row%80)
 	}
 	return b.String()
 }

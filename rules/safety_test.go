@@ -55,7 +55,7 @@ func inspectedWith(t *testing.T, tree memory, path string, versions []removal) [
 	for i, v := range versions {
 		many.files[fmt.Sprintf("plans/%05d.toml", i)] = v.text
 	}
-	firm, err := rules.Load(many, rules.Options{Today: today(t, "")})
+	firm, err := rules.Load(many, rules.Options{Today: today(t, ""), NoShelf: true})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -21,6 +21,7 @@ var stockShort = &Rule{
 	CheckShelf: func(s *Shelf, r *Report) {
 		for _, d := range s.Demands {
 			s.notCounted(d, r)
+			s.noBooks(d, r)
 		}
 		for _, l := range s.lacks() {
 			if l.late() {
@@ -95,6 +96,9 @@ func (s *Shelf) lacks() []*lack {
 		return s.short
 	}
 	s.short = []*lack{}
+	if s.Stock.IsEmpty() {
+		return s.short
+	}
 	for _, c := range s.Allocation.Claims {
 		if c.IsShort() {
 			s.short = append(s.short, s.lacksOf(c)...)
@@ -259,6 +263,14 @@ func (s *Shelf) notCounted(d *bom.Demand, r *Report) {
 	f := r.Unknown(d.At, "job", "whether the shelf has all that the job takes is not assessed: %s cannot be counted", list(what)).Then("add what is missing")
 	for _, g := range d.Gaps {
 		f.Beside(g.At, "%s", g.Says)
+	}
+}
+
+// noBooks says where nobody keeps books of the stock.
+func (s *Shelf) noBooks(d *bom.Demand, r *Report) {
+	if d.Claims() && len(d.Needs) > 0 && s.Stock.IsEmpty() {
+		r.Unknown(d.At, "job", "whether the shelf has what the job takes is not assessed: the workspace has no stock sheet and no order").
+			Then("count the shelf into a sheet, or leave the shelf out with --shelf=false")
 	}
 }
 

@@ -142,8 +142,13 @@ func (c *Command) buy(ctx context.Context, firm *rules.Firm, terms bom.Terms) (*
 		b.Broken = append(b.Broken, e.Path)
 		c.held = true
 	}
-	for _, g := range d.Gaps {
-		b.Gaps = append(b.Gaps, show.JobGap{Job: g.Job, Gap: g.Gap})
+	for _, x := range d.All {
+		if !x.Claims() {
+			continue
+		}
+		for _, g := range x.Gaps {
+			b.Gaps = append(b.Gaps, show.JobGap{Job: x.Job, Gap: g})
+		}
 	}
 	p, a := firm.Purchase(d, terms)
 	b.Purchase = p
