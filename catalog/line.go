@@ -27,9 +27,9 @@ func readCable(p *Part, k *source.Keys) {
 
 func (c *Cable) keys(k *source.Keys) {
 	source.Need(k, &c.Impedance, "impedance_ohm", ohm, "characteristic impedance")
-	source.Opt(k, &c.Loss, "loss_db_per_100m", points("dB"), "loss at 20 °C, one [MHz, dB] pair a point")
+	source.Opt(k, &c.Loss, "loss_db_per_100m", LossTable, "loss at 20 °C, one [MHz, dB] pair a point")
 	var feet source.Val[Points]
-	source.Opt(k, &feet, "loss_db_per_100ft", points("dB"), "the same per 100 ft, as many data sheets print it")
+	source.Opt(k, &feet, "loss_db_per_100ft", LossTable, "the same per 100 ft, as many data sheets print it")
 	source.Opt(k, &c.MaxMHz, "max_mhz", source.AtLeast(0, "MHz"), "highest frequency it is made for; beyond it there is no value")
 	source.Opt(k, &c.ODmm, "od_mm", source.AtLeast(0, "mm"), "outer diameter")
 	source.Opt(k, &c.Bend, "bend_radius", source.Length, "least radius once installed")
@@ -86,7 +86,7 @@ func readJumper(p *Part, k *source.Keys) {
 	source.Opt(k, &j.Cable, "cable", source.Name, "part of its cable")
 	source.Need(k, &j.Length, "length", source.Length, "over all")
 	source.Need(k, &j.Ends, "ends", source.Pair(face, `["N male", "N male"]`), "its two connectors")
-	source.Opt(k, &j.Loss, "loss_db", points("dB"), "both connectors included; wins over cable and length")
+	source.Opt(k, &j.Loss, "loss_db", LossTable, "both connectors included; wins over cable and length")
 	k.Demand(source.Needs("cable", "loss_db"))
 	if !k.Recording() && !k.Has("cable") && !k.Has("loss_db") {
 		k.Missing("cable", "or loss_db: without one of them no loss can be computed")

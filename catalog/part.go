@@ -271,7 +271,7 @@ func (w *Path) keys(k *source.Keys) {
 	source.Need(k, &w.From, "from", source.Name, "a port")
 	source.Need(k, &w.To, "to", oneOrMore(source.Name), "the port or ports at the other end")
 	source.Opt(k, &w.MHz, "mhz", span, "where the figures hold; absent: everywhere")
-	source.Need(k, &w.Loss, "loss_db", points("dB"), "loss, one number or [MHz, dB] pairs")
+	source.Need(k, &w.Loss, "loss_db", LossTable, "loss, one number or [MHz, dB] pairs")
 }
 
 // Between lists the rows that pass from one port to another, either way round.

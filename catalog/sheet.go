@@ -205,8 +205,8 @@ func (s *Sheet) keys(k *source.Keys) {
 }
 
 // fromHead is a need of rows that a key of the head meets for all of them.
-func fromHead(rows []string, head source.State, any ...source.State) source.Condition {
-	return source.Condition{Rows: rows, Any: any, Head: "sheet", HeadAny: []source.State{head}}
+func fromHead(rows []string, head source.State, of ...source.State) source.Condition {
+	return source.Condition{Rows: rows, Any: of, Head: "sheet", HeadAny: []source.State{head}}
 }
 
 func (h *Head) keys(k *source.Keys) {

@@ -63,7 +63,7 @@ type object = map[string]any
 func (s *Schema) JSON() ([]byte, error) {
 	w := &schemaWriter{definitions: object{}}
 	top := object{"$schema": "http://json-schema.org/draft-07/schema#"}
-	any := []object{}
+	sorts := []object{}
 	for _, f := range schemaFiles() {
 		if s.name != "" && s.name != f.name {
 			continue
@@ -77,12 +77,12 @@ func (s *Schema) JSON() ([]byte, error) {
 			continue
 		}
 		w.definitions[f.name] = file
-		any = append(any, ref(f.name))
+		sorts = append(sorts, ref(f.name))
 	}
 	if s.name == "" {
 		top["title"] = "files of a workspace"
 		// An empty file is a file of every sort, so it is not one of them alone.
-		top["anyOf"] = any
+		top["anyOf"] = sorts
 	}
 	if len(w.definitions) > 0 {
 		top["definitions"] = w.definitions
@@ -169,11 +169,11 @@ func (w *schemaWriter) key(k *source.KeyDoc) object {
 func (w *schemaWriter) value(t *source.TypeDoc) object {
 	switch {
 	case t.Choice != nil:
-		any := []object{}
+		may := []object{}
 		for _, c := range t.Choice() {
-			any = append(any, w.value(&c))
+			may = append(may, w.value(&c))
 		}
-		return object{"anyOf": any}
+		return object{"anyOf": may}
 	case t.Sub != nil:
 		return w.table(t.Sub())
 	case t.Each != nil:
