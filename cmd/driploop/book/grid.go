@@ -43,10 +43,10 @@ func (r *gridRow) at(column int) bom.Entry {
 
 // cellReader is a cell while it is being read.
 type cellReader struct {
-	column        int
-	kind          string
-	formula, deep bool // a formula stands in it; inside a text
-	value, text   strings.Builder
+	column      int
+	kind        string
+	formula     bool
+	value, text strings.Builder
 }
 
 // grid reads the cells of one sheet. Nothing is kept of blank ones, wherever they

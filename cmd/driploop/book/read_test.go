@@ -206,7 +206,7 @@ func TestReadRefusesFiles(t *testing.T) {
 		{"right of column 256", cells(`<row r="1"><c r="XFD1"><v>1</v></c></row>`)},
 		{"more than 500000 cells", cells(strings.Repeat("<row>"+strings.Repeat("<c><v>1</v></c>", 250)+"</row>", 2001))},
 		// Far cells in which nothing stands take no room.
-		{"no sheet that driploop made", cells(strings.Repeat(`<row><c r="XFD1"/></row>`, 1)+`<row r="1048576"><c r="XFD1048576"/></row>`)},
+		{"no sheet that driploop made", cells(strings.Repeat(`<row><c r="XFD1"/></row>`, 1) + `<row r="1048576"><c r="XFD1048576"/></row>`)},
 	} {
 		_, err := Read(archive(t, c.change))
 		if err == nil || !strings.Contains(err.Error(), c.want) {
@@ -285,54 +285,44 @@ func TestReadSorted(t *testing.T) {
 	}
 }
 
+// sheetArchive is a workbook of one sheet with nothing to spare.
+func sheetArchive(t testing.TB, sheet string) []byte {
+	t.Helper()
+	var b bytes.Buffer
+	w := zip.NewWriter(&b)
+	for _, p := range [][2]string{
+		{workbookPart, `<workbook><sheets><sheet name="A" id="1"/></sheets></workbook>`},
+		{relationsPart, `<Relationships><Relationship Id="1" Target="worksheets/sheet1.xml"/></Relationships>`},
+		{"xl/worksheets/sheet1.xml", sheet},
+	} {
+		out, err := w.CreateHeader(&zip.FileHeader{Name: p[0], Method: zip.Store})
+		if err == nil {
+			_, err = io.WriteString(out, p[1])
+		}
+		if err != nil {
+			t.Fatal(err)
+		}
+	}
+	if err := w.Close(); err != nil {
+		t.Fatal(err)
+	}
+	return b.Bytes()
+}
+
 // FuzzRead holds that no bytes make the reader fail or take long, and that whatever
 // it takes can be asked for anything.
 func FuzzRead(f *testing.F) {
-	b, err := Write([]bom.Sheet{order()}, Meta{Today: today})
-	if err != nil {
-		f.Fatal(err)
+	for _, cells := range []string{
+		`<row r="2"><c r="A2" t="inlineStr"><is><t>a</t></is></c><c r="B2" t="str"><v>driploop:k</v></c></row><row r="3"><c r="A3"><v>1.5</v></c><c r="B3" t="str"><v>x</v></c></row>`,
+		`<row r="1"><c r="A1" t="str"><v>a</v></c><c t="str"><v>driploop:</v></c></row><row><c t="b"><f>1</f><v>1</v></c></row><row><c t="e"><v>#N/A</v></c></row>`,
+		`<row r="1"><c r="ZZZZ1" t="str"><f/><v>_x0000_</v></c></row>`,
+	} {
+		f.Add([]byte("<sheetData>"+cells+"</sheetData></worksheet>"), true)
+		f.Add(sheetArchive(f, "<worksheet>"+cells+"</worksheet>"), false)
 	}
-	r, err := zip.NewReader(bytes.NewReader(b), int64(len(b)))
-	if err != nil {
-		f.Fatal(err)
-	}
-	for _, p := range r.File {
-		if p.Name != "xl/worksheets/sheet1.xml" {
-			continue
-		}
-		in, err := p.Open()
-		if err != nil {
-			f.Fatal(err)
-		}
-		text, err := io.ReadAll(in)
-		if err != nil {
-			f.Fatal(err)
-		}
-		f.Add(text[bytes.Index(text, []byte("<sheetData>")):], true)
-	}
-	f.Add(b, false)
-	f.Add([]byte(`<row r="1"><c r="ZZZZ1" t="str"><f/><v>_x0000_</v></c></row>`), true)
 	f.Fuzz(func(t *testing.T, text []byte, packed bool) {
 		if packed { // as the sheet of a sound archive
-			var out bytes.Buffer
-			w := zip.NewWriter(&out)
-			for name, s := range map[string]string{
-				workbookPart:               `<workbook><sheets><sheet name="A" id="1"/></sheets></workbook>`,
-				relationsPart:              `<Relationships><Relationship Id="1" Target="worksheets/sheet1.xml"/></Relationships>`,
-				"xl/worksheets/sheet1.xml": "<worksheet>" + string(text),
-			} {
-				in, err := w.Create(name)
-				if err != nil {
-					t.Fatal(err)
-				}
-				if _, err := io.WriteString(in, s); err != nil {
-					t.Fatal(err)
-				}
-			}
-			if err := w.Close(); err != nil {
-				t.Fatal(err)
-			}
-			text = out.Bytes()
+			text = sheetArchive(t, "<worksheet>"+string(text))
 		}
 		all, err := Read(text)
 		if err != nil {

@@ -17,6 +17,10 @@ const (
 	mostLines  = 20
 )
 
+// mostFrozen is how many rows may be held in sight: with more, nothing would be left
+// of a small screen to move the table in.
+const mostFrozen = 20
+
 func height(lines int) float64 { return float64(min(lines, mostLines)*lineHeight + 2) }
 
 // sheetWriter writes the rows of a sheet from the top down.
@@ -36,7 +40,7 @@ func (s *sheetWriter) columns() error {
 			return err
 		}
 	}
-	if s.head == 0 {
+	if s.head == 0 || s.head > mostFrozen {
 		return nil
 	}
 	return s.to.SetPanes(&excelize.Panes{Freeze: true, YSplit: s.head, TopLeftCell: ref(1, s.head+1), ActivePane: "bottomLeft",
