@@ -2,6 +2,7 @@ package bom
 
 import (
 	"cmp"
+	"math/bits"
 	"slices"
 
 	"driploop/catalog/unit"
@@ -52,6 +53,9 @@ func (s *search) decide(closed uint64, picks []*pick, floors []floor, fee, least
 		return
 	case len(below) == 0:
 		s.offer(picks)
+	case s.limits != nil:
+		s.limit(closed, floors, fee)
+		return
 	default:
 		s.lift(closed, picks, floors, fee+total)
 	}
@@ -68,6 +72,17 @@ func (s *search) decide(closed uint64, picks []*pick, floors []floor, fee, least
 	}
 	if undecided < s.cost {
 		s.open = min(s.open, undecided)
+	}
+}
+
+// limit notes, for a case that dearer ways have to be tried for, up to which price
+// ways to buy its lots matter.
+func (s *search) limit(closed uint64, floors []floor, fee unit.Money) {
+	_, least := s.all(closed)
+	for i, l := range s.b.lots {
+		if s.reaches(l, floors) {
+			s.limits[i] = max(s.limits[i], s.cheapest(l, closed).least+s.cost-fee-least)
+		}
 	}
 }
 
@@ -95,12 +110,13 @@ func (s *search) reaches(l *lot, floors []floor) bool {
 type lifting struct {
 	s      *search
 	lots   []int
-	ways   [][]*pick      // by place in lots, cheapest first
-	gains  [][]unit.Money // by floor: the most that the lots from a place on add
+	ways   [][]*pick // by place in lots, cheapest first
+	rates  [][]rate  // by floor, the cheapest gain first
 	floors []floor
 	now    []*pick
 	goods  []unit.Money
 	spent  unit.Money // with all freight of the case
+	nodes  int        // left for the case
 }
 
 func (s *search) lift(closed uint64, picks []*pick, floors []floor, spent unit.Money) {
@@ -113,8 +129,12 @@ func (s *search) lift(closed uint64, picks []*pick, floors []floor, spent unit.M
 		f.lots = append(f.lots, i)
 		f.ways = append(f.ways, s.allowed(s.lists[i], closed, picks[i], picks[i].cost+s.cost-spent))
 	}
-	f.sumGains(picks)
-	if !f.from(0) {
+	f.sumRates(picks)
+	f.nodes = min(s.nodes, max(1, s.most/8))
+	s.nodes -= f.nodes
+	done := f.from(0)
+	s.nodes += max(0, f.nodes)
+	if !done {
 		s.open = min(s.open, spent)
 	}
 }
@@ -136,30 +156,78 @@ func (s *search) allowed(list []*pick, closed uint64, base *pick, limit unit.Mon
 	return out
 }
 
-func (f *lifting) sumGains(picks []*pick) {
+// rate is what a lot can add at most to the goods of a vendor, and at which price: so
+// much more cost for so much more goods, or worse.
+type rate struct {
+	at         int // place in lots
+	most       unit.Money
+	dearer, on unit.Money
+}
+
+func (f *lifting) sumRates(picks []*pick) {
 	for _, fl := range f.floors {
-		gains := make([]unit.Money, len(f.lots)+1)
-		for i := len(f.lots) - 1; i >= 0; i-- {
-			var most unit.Money
-			for _, p := range f.ways[i] {
-				most = max(most, p.goods[fl.vendor]-picks[f.lots[i]].goods[fl.vendor])
+		var rates []rate
+		for i, ways := range f.ways {
+			base := picks[f.lots[i]]
+			r := rate{at: i}
+			for _, p := range ways {
+				gain, dearer := p.goods[fl.vendor]-base.goods[fl.vendor], max(0, p.cost-base.cost)
+				if gain <= 0 {
+					continue
+				}
+				if r.most = max(r.most, gain); r.on == 0 || ratio(dearer, gain, r.dearer, r.on) < 0 {
+					r.dearer, r.on = dearer, gain
+				}
 			}
-			gains[i] = gains[i+1] + most
+			if r.most > 0 {
+				rates = append(rates, r)
+			}
 		}
-		f.gains = append(f.gains, gains)
+		slices.SortStableFunc(rates, func(x, y rate) int { return ratio(x.dearer, x.on, y.dearer, y.on) })
+		f.rates = append(f.rates, rates)
 	}
+}
+
+// ratio compares a/b with c/d.
+func ratio(a, b, c, d unit.Money) int {
+	xhi, xlo := bits.Mul64(uint64(a), uint64(d))
+	yhi, ylo := bits.Mul64(uint64(c), uint64(b))
+	return cmp.Or(cmp.Compare(xhi, yhi), cmp.Compare(xlo, ylo))
+}
+
+// dearer is what the lots from a place on cost more at least where they add an amount
+// to the goods of a floor; false where they cannot.
+func (f *lifting) dearer(floor, at int, missing unit.Money) (unit.Money, bool) {
+	var cost unit.Money
+	for _, r := range f.rates[floor] {
+		if missing <= 0 {
+			break
+		}
+		if r.at < at {
+			continue
+		}
+		hi, lo := bits.Mul64(uint64(min(missing, r.most)), uint64(r.dearer))
+		if hi < uint64(r.on) {
+			q, _ := bits.Div64(hi, lo, uint64(r.on))
+			cost += unit.Money(min(q, uint64(dearestLine)))
+		}
+		missing -= r.most
+	}
+	return cost, missing <= 0
 }
 
 // from tries the ways of the lots from a place on; false where the nodes ran out.
 func (f *lifting) from(at int) bool {
-	if f.s.nodes--; f.s.nodes <= 0 {
+	if f.nodes--; f.nodes <= 0 {
 		return false
 	}
 	reached := true
 	for i, fl := range f.floors {
 		missing := fl.goods - f.goods[fl.vendor]
-		if missing > f.gains[i][at] {
-			return true
+		if missing > 0 {
+			if more, ok := f.dearer(i, at, missing); !ok || f.spent+more >= f.s.cost {
+				return true
+			}
 		}
 		reached = reached && missing <= 0
 	}

@@ -34,6 +34,7 @@ func (s *search) cutPicks(at int, first chosen, limit unit.Money) ([]*pick, unit
 const (
 	mostCutPieces = 60   // for which all ways to buy are looked at
 	mostCutWays   = 1500 // numbers of reels
+	mostCutTries  = 60   // of which so many are planned, the cheapest first
 	cutWayNodes   = 100_000
 )
 
@@ -113,13 +114,18 @@ func (w *cutWays) listed(p *pick) bool {
 // try keeps the numbers of reels that hold the pieces.
 func (w *cutWays) try() {
 	slices.SortStableFunc(w.found, func(p, q *pick) int { return cmp.Or(cmp.Compare(p.cost, q.cost), slices.Compare(p.packs, q.packs)) })
+	tries := mostCutTries
 	for _, p := range w.found {
 		switch {
 		case w.listed(p):
 		case w.within(p):
 			w.out = append(w.out, p)
 		case slices.ContainsFunc(w.never, func(q *pick) bool { return atMost(p.packs, q.packs) }):
+		case tries == 0:
+			w.whole = min(w.whole, p.cost)
+			return
 		default:
+			tries--
 			w.tryOne(p)
 		}
 	}

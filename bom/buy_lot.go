@@ -230,8 +230,8 @@ func (w *walk) take(at, n int) {
 // Limits of the search, as counts: the same workspace gives the same purchase.
 const (
 	lotSteps    = 200_000 // for the ways to buy one lot
-	mostPicks   = 400     // of one lot
-	searchNodes = 400_000
+	mostPicks   = 1500    // of one lot
+	searchNodes = 4_000_000
 )
 
 // cheapestCounted finds the cheapest way to buy a counted lot; of those the one of

@@ -17,14 +17,16 @@ import (
 // and the best where they reach the amounts that the case asks for; else dearer ways
 // are tried as far as the best purchase so far leaves room.
 type search struct {
-	b     *buyer
-	gates []int // vendors with freight or a least order
-	best  []*pick
-	cost  unit.Money
-	open  unit.Money // the least that what was not decided may cost
-	nodes int
-	lists [][]*pick    // by lot: dearer ways to buy it
-	whole []unit.Money // by lot: below this price its list is complete
+	b      *buyer
+	gates  []int // vendors with freight or a least order
+	best   []*pick
+	cost   unit.Money
+	open   unit.Money   // the least that what was not decided may cost
+	most   int          // nodes in all; one case has a part of them
+	nodes  int          // left
+	limits []unit.Money // by lot, while they are looked for: up to which price its ways matter
+	lists  [][]*pick    // by lot: dearer ways to buy it
+	whole  []unit.Money // by lot: below this price its list is complete
 }
 
 // nothing is above every cost of a purchase.
@@ -36,6 +38,7 @@ func (b *buyer) search() (picks []*pick, refuses string) {
 	if s.nodes <= 0 {
 		s.nodes = searchNodes
 	}
+	s.most = s.nodes
 	for i, v := range b.vendors {
 		if (v.Freight.V > 0 || v.LeastOrder.V > 0) && len(s.gates) < 60 {
 			s.gates = append(s.gates, i)
@@ -261,20 +264,23 @@ func (s *search) with(l *lot, p *pick, good, n int) *pick {
 	return q
 }
 
-// listPicks lists, for each lot, the ways that are dearer than the cheapest by no
-// more than the best purchase so far is dearer than all the cheapest together.
+// listPicks lists, for each lot, the ways that matter: in some case they are dearer
+// than the cheapest by no more than that case leaves to the best purchase so far.
 func (s *search) listPicks() {
-	_, least := s.all(0)
-	room := s.cost - least
+	limits, nodes := make([]unit.Money, len(s.b.lots)), s.nodes
+	s.limits = limits
+	s.cases(0, 0, nil, 0)
+	s.limits, s.nodes, s.open = nil, nodes, nothing
 	for i, l := range s.b.lots {
 		c := s.cheapest(l, 0)
 		list, whole := []*pick(nil), c.least
-		if room == 0 {
-			whole = c.least + 1
-		} else if l.cut != nil {
-			list, whole = s.cutPicks(i, c, c.least+room)
-		} else {
-			list, whole = s.b.picks(l, c.least, c.least+room)
+		switch {
+		case limits[i] < c.least:
+			whole = nothing
+		case l.cut != nil:
+			list, whole = s.cutPicks(i, c, limits[i])
+		default:
+			list, whole = s.b.picks(l, c.least, limits[i])
 		}
 		s.lists, s.whole = append(s.lists, list), append(s.whole, whole)
 	}
