@@ -3,6 +3,7 @@ package bom
 import (
 	"cmp"
 	"slices"
+	"sort"
 
 	"driploop/bom/cut"
 	"driploop/catalog/unit"
@@ -23,6 +24,7 @@ type run struct {
 	piece Piece
 	on    []int // supplies it may be cut from
 	all   []int // supplies it could be cut from, whatever is reserved
+	near  []int // of on, those that are here, where the piece can do with them
 	rank  int   // 0: pinned by a reserve, 1: by an order line, 2: any
 }
 
@@ -33,7 +35,7 @@ func (a *allocator) cutStock(claims []*Claim, supplies []*Supply, reserves []*ke
 	a.reserveTags(runs, supplies, reserves)
 	a.pegReels(runs, supplies)
 	slices.SortStableFunc(runs, func(x, y *run) int { return cmp.Compare(x.rank, y.rank) })
-	plan := a.planRuns(runs, supplies)
+	plan := a.nearest(runs, supplies)
 	for i, at := range plan {
 		r := runs[i]
 		if at < 0 {
@@ -47,6 +49,57 @@ func (a *allocator) cutStock(claims []*Claim, supplies []*Supply, reserves []*ke
 		c.inPlanOrder()
 	}
 	a.lateReels(claims, supplies)
+}
+
+// nearest plans the runs so that as many as possible, the first in turn before the
+// others, are cut from what is here and do not wait for a delivery. None goes short
+// for it that would not be short otherwise.
+func (a *allocator) nearest(runs []*run, supplies []*Supply) []int {
+	best := a.planRuns(runs, supplies)
+	waits := func(at int) bool { return at >= 0 && !supplies[at].Here() }
+	if !slices.ContainsFunc(best, waits) {
+		return best
+	}
+	for _, r := range runs {
+		if r.rank == 2 {
+			r.near = slices.DeleteFunc(slices.Clone(r.on), waits)
+		}
+	}
+	var served []*run
+	for i, at := range a.planRuns(runs, supplies) {
+		if at >= 0 && runs[i].near != nil {
+			served = append(served, runs[i])
+		}
+	}
+	nears := make([][]int, len(served))
+	for i, r := range served {
+		nears[i] = r.near
+	}
+	// try lets the first n of those that can do with what is here do with it.
+	try := func(n int) []int {
+		for _, r := range runs {
+			r.near = nil
+		}
+		for i := range n {
+			served[i].near = nears[i]
+		}
+		return a.planRuns(runs, supplies)
+	}
+	n := sort.Search(len(served), func(n int) bool { return !sameShort(try(n+1), best) })
+	if plan := try(n); sameShort(plan, best) {
+		return plan
+	}
+	return try(0)
+}
+
+// sameShort reports two plans that leave the same runs short.
+func sameShort(a, b []int) bool {
+	for i := range a {
+		if (a[i] < 0) != (b[i] < 0) {
+			return false
+		}
+	}
+	return true
 }
 
 // inPlanOrder puts the lines of a claim back into the order of its plan.
@@ -174,6 +227,9 @@ func (a *allocator) planRuns(runs []*run, supplies []*Supply) []int {
 	for i, r := range runs {
 		out[i] = -1
 		on := r.on
+		if r.near != nil {
+			on = r.near
+		}
 		if on == nil {
 			on = []int{}
 		}

@@ -85,6 +85,7 @@ func (b *buyer) gatherCuts() {
 		r.reserveTags(runs, c.supplies, reserves[id])
 		r.pegReels(runs, c.supplies)
 		slices.SortStableFunc(runs, func(x, y *run) int { return cmp.Compare(x.rank, y.rank) })
+		r.nearest(runs, c.supplies)
 		for _, run := range runs {
 			b.piece(c, run)
 		}
@@ -159,7 +160,7 @@ func (c *cutting) putOff(b *buyer, w *cutWant) bool {
 	switch {
 	case h != nil && !(known && first.Before(h.Supply.Day)):
 		b.wait(w.claim, *h, length)
-		w.on, w.from = []int{slices.Index(c.supplies, h.Supply)}, nil
+		w.on, w.from, w.near = []int{slices.Index(c.supplies, h.Supply)}, nil, nil
 		return true
 	case len(holding) == 0 || len(w.from) > 0:
 		b.lacks(c.part.ID, c.tooLong(b, w), length, w.claim)
@@ -293,11 +294,32 @@ func (b *buyer) cheapestCut(c *cutting, l *lot, closed func(*good) bool) chosen 
 	return chosen{p, min(p.cost, c.floor(how.plan.Bound))}
 }
 
+// planCut plans the pieces twice: wherever they may be cut from, which gives the
+// price, and with those that need not wait for a delivery on what is here. The second
+// plan is taken where it costs no more.
 func (b *buyer) planCut(c *cutting, closed func(*good) bool) *cutPick {
 	p := &cutPick{}
 	p.task, p.stocks = c.task(closed)
 	p.task.Usable = int64(b.a.house.UsableRemnant.Or(DefaultUsableRemnant))
 	p.plan = p.task.Plan()
+	near := p.task
+	near.Pieces = slices.Clone(near.Pieces)
+	some := false
+	for i, w := range c.pieces {
+		if w.run != nil && w.near != nil && w.on != nil {
+			wide := w.on
+			w.on = w.near
+			near.Pieces[i].On = w.stocks(p.stocks)
+			w.on, some = wide, true
+		}
+	}
+	if !some {
+		return p
+	}
+	if got := near.Plan(); slices.Equal(got.Short, p.plan.Short) && got.Price == p.plan.Price {
+		got.Bound, got.Proved = p.plan.Bound, p.plan.Proved
+		p.plan = got
+	}
 	return p
 }
 
