@@ -19,11 +19,11 @@ import (
 // tier, what each pack serves, reels and the pieces on them, vendors with their
 // freight and least order. It shares no code with the buying.
 type program struct {
-	cost, rows, bounds strings.Builder
-	whole, yes         []string
-	offers             *catalog.Offers
-	today              unit.Date
-	n                  int // of rows
+	cost, rows strings.Builder
+	whole, yes []string
+	offers     *catalog.Offers
+	today      unit.Date
+	n          int // of rows
 }
 
 func (p *program) row(format string, args ...any) {

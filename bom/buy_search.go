@@ -273,7 +273,8 @@ func (s *search) listPicks() {
 	s.limits, s.nodes, s.open = nil, nodes, nothing
 	for i, l := range s.b.lots {
 		c := s.cheapest(l, 0)
-		list, whole := []*pick(nil), c.least
+		var list []*pick
+		var whole unit.Money
 		switch {
 		case limits[i] < c.least:
 			whole = nothing
