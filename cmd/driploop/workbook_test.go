@@ -7,9 +7,16 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"io/fs"
+	"os"
+	"path/filepath"
 	"regexp"
 	"strings"
 	"testing"
+
+	"driploop/bom"
+	"driploop/cmd/driploop/book"
+	"driploop/cmd/driploop/show"
 )
 
 func init() { readers["xlsx"] = inWorkbook }
@@ -131,5 +138,55 @@ func TestWorkbookReaderComplains(t *testing.T) {
 	}
 	if got := inWorkbook("PK"); got == "" {
 		t.Error("the reader takes anything")
+	}
+}
+
+// The order sheet of a vendor whose every text is an attack: name, account, contact,
+// code. They stay texts, and the sheet can be read back by its keys.
+func TestHostileOrder(t *testing.T) {
+	dir := t.TempDir()
+	err := filepath.WalkDir(hostile, func(name string, e fs.DirEntry, err error) error {
+		if err == nil && !e.IsDir() {
+			copyFile(t, name, filepath.Join(dir, strings.TrimPrefix(name, hostile)))
+		}
+		return err
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	const code = `=HYPERLINK("http://h.example";"x")`
+	offers := fmt.Sprintf("[vendor.heron]\nname = %s\naccount = %s\ncontact = %s\n", tomlText("=1+1\u202e'!A1"), tomlText("@SUM(A1)"), tomlText("+1+1\n::error::x"))
+	for _, part := range []string{"NC-10-NM", "DOME-NF", "BAR-6"} {
+		offers += fmt.Sprintf("[[offer]]\npart = %q\nvendor = \"heron\"\ncode = %s\nprice = \"1.00\"\nlead_days = 1\n", part, tomlText(code))
+	}
+	if err := os.WriteFile(filepath.Join(dir, "offers", "heron.toml"), []byte(offers), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	out, messages, status := run([]string{"purchase", "--root", dir, "--today", "2026-12-01", "--as", "xlsx"})
+	if status > statusHeld {
+		t.Fatal(messages)
+	}
+	if bad := inWorkbook(out); bad != "" {
+		t.Error(bad)
+	}
+	all, err := book.Read([]byte(out))
+	if err != nil {
+		t.Fatal(err)
+	}
+	s, err := all.Sheet(show.OrderKey("heron"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	lines := 0
+	for i := range s.Rows {
+		if r := &s.Rows[i]; r.Key != "" {
+			lines++
+			if e := r.Entry("their code"); e.Kind != bom.EntryText || e.Text != code {
+				t.Errorf("the code is %+v", e)
+			}
+		}
+	}
+	if lines != 3 || s.Fact("account").Text != "@SUM(A1)" || s.Fact("contact").Text != `+1+1\x0a::error::x` {
+		t.Errorf("%d lines, %+v", lines, s.Facts)
 	}
 }
