@@ -128,6 +128,9 @@ func (k look) figures(st *excelize.Style) {
 	}
 	st.CustomNumFmt = &format
 	st.Alignment.Horizontal, st.Alignment.Indent = "right", 1
+	if k.kind == bom.KindDay {
+		st.Alignment.Horizontal, st.Alignment.Indent = "center", 0
+	}
 	if k.role == ofHead {
 		st.CustomNumFmt, st.NumFmt = nil, textFormat
 	}
