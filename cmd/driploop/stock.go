@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 
 	"github.com/spf13/cobra"
 
@@ -25,6 +26,9 @@ each shelf that something lies on.`,
 			form, err := c.form("text", "json", "csv", "xlsx")
 			if err != nil {
 				return err
+			}
+			if blind && form != "xlsx" {
+				return errors.New("--blind is about the sheets to count on; add --as xlsx")
 			}
 			page, err := c.page()
 			if err != nil {
