@@ -200,15 +200,13 @@ func (r *reader) entry(c *cellReader) (bom.Entry, error) {
 }
 
 // filled finds the table of a sheet by the marker beside its titles; it is nil where
-// the sheet is none of ours.
+// the sheet is none of ours. A text may look like a marker, but it stands left of the
+// keys or, as the key of a row, below the marker.
 func (g *grid) filled(name string) (*bom.FilledSheet, error) {
 	head, column := -1, 0
 	for i, r := range g.rows {
 		for _, c := range r.cells {
-			if c.Kind == bom.EntryText && strings.HasPrefix(c.Text, marker) {
-				if head >= 0 {
-					return nil, fmt.Errorf("the sheet %s has two tables of ours", source.Quote(name))
-				}
+			if c.column > column && c.Kind == bom.EntryText && strings.HasPrefix(c.Text, marker) {
 				head, column = i, c.column
 			}
 		}

@@ -263,3 +263,38 @@ func TestSameBytes(t *testing.T) {
 		}
 	}
 }
+
+// FuzzWrite holds that any text, wherever it stands, is written as a text, that it
+// comes back as it is shown, and that whatever was changed in it is said.
+func FuzzWrite(f *testing.F) {
+	for _, s := range []string{"=1+1", "\x1b[31m", "a\xffb", "_x0041_", "]]>&<", "\u202e", "", " ", "\n::error::x", "driploop:k", "🛠"} {
+		f.Add(s)
+	}
+	f.Fuzz(func(t *testing.T, text string) {
+		s := bom.Sheet{Key: "k" + text, Name: text, Title: text, Columns: []bom.Column{bom.TextColumn("a")},
+			Facts: []bom.Fact{{Key: "f", Label: text, Cell: bom.WordsCell(text)}}}
+		s.Row(text+"r", bom.WordsCell(text))
+		b, err := Write([]bom.Sheet{s}, Meta{Title: text, Today: today})
+		if err != nil {
+			t.Fatal(err)
+		}
+		sheet := parts(t, b)["xl/worksheets/sheet1.xml"]
+		if strings.Contains(sheet, "<f>") {
+			t.Error("a text became a formula")
+		}
+		shown := shorten(escape(text))
+		if (shown != text) != strings.Contains(sheet, "characters that") {
+			t.Errorf("%q is shown as %q, and the sheet says that of it: %v", text, shown, strings.Contains(sheet, "characters that"))
+		}
+		all, err := Read(b)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got := all[0].Rows[0].Entry("a"); got.Text != shown {
+			t.Errorf("%q comes back as %q", text, got.Text)
+		}
+		if all[0].Key != keyText("k"+text) || all[0].Rows[0].Key != keyText(text+"r") {
+			t.Errorf("the keys come back as %q and %q", all[0].Key, all[0].Rows[0].Key)
+		}
+	})
+}
