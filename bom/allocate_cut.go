@@ -58,6 +58,11 @@ func (a *allocator) nearest(runs []*run, supplies []*Supply) []int {
 	best := a.planRuns(runs, supplies)
 	waits := func(at int) bool { return at >= 0 && !supplies[at].Here() }
 	if !slices.ContainsFunc(best, waits) {
+		for i, r := range runs {
+			if r.rank == 2 && best[i] >= 0 {
+				r.near = slices.DeleteFunc(slices.Clone(r.on), waits)
+			}
+		}
 		return best
 	}
 	for _, r := range runs {

@@ -295,8 +295,8 @@ func (b *buyer) cheapestCut(c *cutting, l *lot, closed func(*good) bool) chosen 
 }
 
 // planCut plans the pieces twice: wherever they may be cut from, which gives the
-// price, and with those that need not wait for a delivery on what is here. The second
-// plan is taken where it costs no more.
+// price, and with those that need not wait for a delivery, of an order or of what is
+// bought, on what is here. The second plan is taken where it costs no more.
 func (b *buyer) planCut(c *cutting, closed func(*good) bool) *cutPick {
 	p := &cutPick{}
 	p.task, p.stocks = c.task(closed)
@@ -307,10 +307,8 @@ func (b *buyer) planCut(c *cutting, closed func(*good) bool) *cutPick {
 	some := false
 	for i, w := range c.pieces {
 		if w.run != nil && w.near != nil && w.on != nil {
-			wide := w.on
-			w.on = w.near
-			near.Pieces[i].On = w.stocks(p.stocks)
-			w.on, some = wide, true
+			here := cutWant{on: w.near}
+			near.Pieces[i].On, some = here.stocks(p.stocks), true
 		}
 	}
 	if !some {

@@ -229,6 +229,8 @@ func TestBuy(t *testing.T) {
 			want: "t AMP 2*1 1200.00: a 2 a 2 by 12-08\nt PS 1*1 18.00: a 1 by 12-08\ntotal 1218.00"},
 		{name: "reels for pieces", offers: ":t\n t CX*30m 30.00 4d\n t CX*50m 45.00 4d", jobs: []*bom.Demand{soon(0, 20, 20, 12)},
 			want: "t CX 1*50m 45.00: a 40m by 12-08\ntotal 45.00", stock: catalog.Stock{Tags: []catalog.Tag{tag("R-1", "shop", "shop", 13)}}},
+		{name: "a reel that is bought anyhow takes no piece off what is here", offers: ":t\n t CX*100m 300.00 4d", jobs: []*bom.Demand{soon(0, 20, 30)},
+			want: "t CX 1*100m 300.00: a 30m by 12-08\ntotal 300.00", stock: catalog.Stock{Tags: []catalog.Tag{tag("R-1", "shop", "shop", 45)}}},
 		{name: "cut to length", offers: ":t\n t CX*50m 145.00 4d\n t CX 2.95 4d 10-120m", jobs: []*bom.Demand{soon(0, 29.3, 4)},
 			want: "t CX 1*10m 29.50: a 4m by 12-08\nt CX 1*29.3m 86.44: a 29.3m by 12-08\ntotal 115.94"},
 		{name: "a break on reels", offers: ":t\n t CX*30m 30.00 4d 2@14.00", jobs: []*bom.Demand{soon(0, 20)}, want: "t CX 2*30m 28.00: a 20m by 12-08\ntotal 28.00"},
