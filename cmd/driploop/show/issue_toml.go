@@ -3,6 +3,7 @@ package show
 import (
 	"fmt"
 	"strconv"
+	"strings"
 
 	"driploop/bom"
 )
@@ -67,11 +68,14 @@ func (i *Issue) TOML() []byte {
 	return []byte(b.out.String())
 }
 
-// tomlString writes a string for TOML; what acts is escaped.
+// tomlString writes a string for TOML; what acts is escaped, also what only acts in a
+// log in which the file is shown.
 func tomlString(s string) string {
 	out := `"`
 	for _, r := range s {
 		switch {
+		case r == '#' && strings.HasSuffix(out, "#"):
+			out += `\u0023`
 		case r == '"' || r == '\\':
 			out += `\` + string(r)
 		case acts(r) && r > 0xFFFF:

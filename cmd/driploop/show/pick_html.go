@@ -93,6 +93,7 @@ p { margin: .2em 0 }
 table { border-collapse: collapse; width: 100% }
 th, td { text-align: left; padding: .25em .4em; border-bottom: 1px solid #bbb; vertical-align: top; overflow-wrap: anywhere }
 th { font-weight: 600; font-size: .85em }
+td:first-child { min-width: 7.5em; font-weight: 600 }
 .n { text-align: right; white-space: nowrap }
 .fill { width: 5em; border-bottom: 1.5px solid #111 }
 .missing { border: 2px solid #111; padding: .3em .6em; margin: .6em 0 }
