@@ -7,6 +7,7 @@ import (
 	"path/filepath"
 	"strconv"
 	"strings"
+	"sync"
 	"time"
 
 	"github.com/spf13/cobra"
@@ -101,11 +102,17 @@ func manualPage(cmd *cobra.Command, day time.Time) ([]byte, error) {
 	return page.Bytes(), nil
 }
 
-// set lays out the help of all commands for a page of 80 columns.
-func set(root *cobra.Command) {
+// inColumns lets help templates print flags for the page. The library keeps such
+// functions for all commands together, and calls may be side by side.
+var inColumns = sync.OnceFunc(func() {
 	cobra.AddTemplateFunc("inColumns", func(flags interface{ FlagUsagesWrapped(int) string }) string {
 		return strings.TrimRight(flags.FlagUsagesWrapped(pageWidth), " \n")
 	})
+})
+
+// set lays out the help of all commands for a page of 80 columns.
+func set(root *cobra.Command) {
+	inColumns()
 	usage := root.UsageTemplate()
 	for _, flags := range []string{".LocalFlags", ".InheritedFlags"} {
 		usage = strings.ReplaceAll(usage, flags+".FlagUsages | trimTrailingWhitespaces", flags+" | inColumns")
