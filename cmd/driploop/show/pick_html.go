@@ -93,19 +93,22 @@ p { margin: .2em 0 }
 table { border-collapse: collapse; width: 100% }
 th, td { text-align: left; padding: .25em .4em; border-bottom: 1px solid #bbb; vertical-align: top; overflow-wrap: anywhere }
 th { font-weight: 600; font-size: .85em }
-td:first-child { min-width: 7.5em; font-weight: 600 }
+td:first-child { min-width: 6.5em; font-weight: 600 }
 .n { text-align: right; white-space: nowrap }
 .fill { width: 5em; border-bottom: 1.5px solid #111 }
 .missing { border: 2px solid #111; padding: .3em .6em; margin: .6em 0 }
 ul { margin: .2em 0; padding-left: 1.2em }
 .labels { display: grid; grid-template-columns: repeat(auto-fill, minmax(15em, 1fr)); gap: .3em }
 .label { border: 1px dashed #555; padding: .2em .4em; font-size: .85em; break-inside: avoid; overflow-wrap: anywhere }
-tr, h2, h3 { break-inside: avoid }
+tr, h2, h3, .reel { break-inside: avoid }
 h2, h3 { break-after: avoid }
 @media print {
-  body { font-size: 9.5px; margin: 0; max-width: none; padding: 0 }
-  th, td { padding: .1em .3em }
-  .labels { grid-template-columns: repeat(4, 1fr) }
+  body { font-size: 9px; line-height: 1.25; margin: 0; max-width: none; padding: 0 }
+  h2 { margin-top: .6em }
+  h3 { margin-top: .4em }
+  th, td { padding: .05em .3em }
+  ul, .reels { columns: 2 }
+  .labels { grid-template-columns: repeat(5, 1fr); gap: .2em }
 }
 @page { margin: 10mm }
 </style>
@@ -123,13 +126,15 @@ h2, h3 { break-after: avoid }
 <tr><th>part</th><th>what it is</th><th class="n">take</th><th>taken</th></tr>
 {{range .}}<tr><td>{{$.Show .Part.ID}}</td><td>{{$.What .Part .CountFirst}}</td><td class="n">{{.Qty}}</td><td class="fill"></td></tr>
 {{end}}</table>
-{{end}}{{range $r := $.ReelsAt $where}}<h3>Reel {{$.Show .Tag.ID}}, {{$.Show .Part.ID}}, {{$.Known $r}}</h3>
+{{end}}{{with $.ReelsAt $where}}<div class="reels">
+{{range $r := .}}<div class="reel"><h3>Reel {{$.Show .Tag.ID}}, {{$.Show .Part.ID}}, {{$.Known $r}}</h3>
 {{if .CountFirst}}<p>Measure it first: it is not put away.</p>
 {{end}}<table>
 <tr><th>line</th><th class="n">cut off</th><th class="n">to lay</th><th>cut</th></tr>
 {{range .Cuts}}<tr><td>{{$.Show .Line}}</td><td class="n">{{$.Length .Length}}</td><td class="n">{{$.Length .Bare}}</td><td class="fill"></td></tr>
 {{end}}</table>
-<p>{{$.Left $r}}</p>
+<p>{{$.Left $r}}</p></div>
+{{end}}</div>
 {{end}}{{end}}{{with .LooseItems}}<h2>Also to bring, not booked</h2>
 <ul>{{range .}}<li><strong>{{.Name}}</strong> {{.Text}}</li>{{end}}</ul>
 {{end}}{{with .Expected}}<h2>On order for this job</h2>
