@@ -62,9 +62,9 @@ func stampOf(m Moment, evening bool) stamp {
 	return day*(wholeDay+1) + stamp(sec)
 }
 
-// sameDay reports two bare dates that are one: nothing but the rule tells which of
-// the two events came first.
-func (m Moment) sameDay(n Moment) bool { return !m.Clock && !n.Clock && m.Day == n.Day }
+// sameDay reports two moments of one day that do not both say at what time: nothing
+// but the rule tells which of the two events came first.
+func (m Moment) sameDay(n Moment) bool { return !(m.Clock && n.Clock) && m.Day == n.Day }
 
 // gather spreads the rows of all sheets over the bins, tags and serial numbers
 // they touch.
@@ -99,6 +99,9 @@ func (b *book) past(at source.Place, on source.Val[Moment], part, tag string) bo
 	if on.V.Day.After(b.today) {
 		b.note(Note{Kind: NoteFuture, At: at, Part: part, Tag: tag, On: on.V})
 		return false
+	}
+	if on.V.Clock && on.V.Day == b.today && on.V.Sec >= b.stock.Latest.Sec {
+		b.stock.Latest = on.V
 	}
 	return true
 }

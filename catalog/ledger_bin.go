@@ -104,7 +104,7 @@ func (r *binReplay) counted(counts, before []binEvent) {
 	r.sameDay(low, before)
 }
 
-// sameDay notes moves on the day of the count when neither says at what time.
+// sameDay notes moves on the day of the count where not both say at what time.
 func (r *binReplay) sameDay(count binEvent, before []binEvent) {
 	var same []source.Place
 	for i := len(before) - 1; i >= 0 && before[i].on.Day == count.on.Day; i-- {

@@ -13,6 +13,7 @@ import (
 // still to come. All lists are in a fixed order whatever order the sheets came in.
 type Stock struct {
 	Today   unit.Date
+	Latest  Moment   // of what happened today at a time of day; zero: nothing did
 	Bins    []Bin    // by part, then shelf
 	Tags    []Tag    // by ID
 	Serials []Serial // by part, then number

@@ -380,7 +380,7 @@ func (r *tagReplay) jump(e tagEvent, left unit.MM) Note {
 		Book: Quantity{Length: r.tag.Left}, Read: Quantity{Length: left}, On: e.on}
 }
 
-// sameDay notes cuts and moves on the day of the reading when neither says at what
+// sameDay notes cuts and moves on the day of the reading where not both say at what
 // time.
 func (r *tagReplay) sameDay(read tagEvent, before []tagEvent) {
 	var same []source.Place

@@ -212,6 +212,19 @@ move = [{ part = "NC-10-NM", from = "shop", to = "van-1", qty = 6 }]
 `, want: `
 bin NC-10-NM shop 26
 bin NC-10-NM van-1 6
+note same-day a:2+b:2 NC-10-NM shop
+`},
+		{name: "a count with a time and a move of that day without", files: `
+-- counts/a.toml --
+sheet = { on = 2026-11-20T16:00:00, where = "shop" }
+count = [{ part = "NC-10-NM", qty = 26 }]
+-- move/b.toml --
+sheet = { on = 2026-11-20 }
+move = [{ part = "NC-10-NM", from = "shop", to = "van-1", qty = 6 }]
+`, want: `
+bin NC-10-NM shop 26
+bin NC-10-NM van-1 6
+note same-day a:2+b:2 NC-10-NM shop
 `},
 		{name: "two counts of one time that differ: the lower", files: `
 -- counts/a.toml --

@@ -88,7 +88,7 @@ var stockSameDay = &Rule{
 				verb = "read"
 			}
 			s.stand(n.row, func(at source.Place, on string) *Finding {
-				return r.Fails(at, on, "%s was %s and moved on %s, neither with a time: what was %s is taken to be what was left in the evening", thing(n.Note), verb, n.On, verb).
+				return r.Fails(at, on, "%s was %s and moved on %s, not both with a time: what moved is taken to be gone, or there, when it was %s", thing(n.Note), verb, n.On.Day, verb).
 					Then("write the time of day on both rows")
 			})
 		}

@@ -8,7 +8,9 @@ import (
 	"io/fs"
 	"os"
 	"path"
+	"time"
 
+	"driploop/catalog"
 	"driploop/cmd/driploop/repo"
 	"driploop/cmd/driploop/show"
 	"driploop/rules"
@@ -39,7 +41,7 @@ func (i *issuing) refuse(s *shared) error {
 
 // issue books what the pick list says as taken, in a sheet of the job's own.
 func (c *Command) issue(ctx context.Context, firm *rules.Firm, p *show.Pick, how issuing, page show.Page) error {
-	is := &show.Issue{Pick: p.Pick, On: c.moment(), By: how.by}
+	is := &show.Issue{Pick: p.Pick, On: c.moment(firm.Stock), By: how.by, Stock: firm.Stock}
 	root, err := os.OpenRoot(c.shared.root)
 	if err != nil {
 		return err
@@ -73,13 +75,21 @@ func given(p *show.Pick) bool {
 	return false
 }
 
-// moment is now as TOML writes a local time, or the day that --today names.
-func (c *Command) moment() string {
-	if c.shared.today != "" {
+// moment is now as TOML writes a local time. With --today it is that day, and where
+// the books know of a time on it, the second after the last: what is taken was there
+// with all that happened before, and a bare date would come first.
+func (c *Command) moment(s *catalog.Stock) string {
+	if c.shared.today == "" {
+		return c.Now().Format(localTime)
+	}
+	if !s.Latest.Clock {
 		return c.shared.today
 	}
-	return c.Now().Format("2006-01-02T15:04:05")
+	day, sec := s.Latest.Day, min(s.Latest.Sec+1, 24*60*60-1)
+	return time.Date(day.Year, time.Month(day.Month), day.Day, 0, 0, sec, 0, time.UTC).Format(localTime)
 }
+
+const localTime = "2006-01-02T15:04:05"
 
 // nextIssue is the file of the job's next issue: the first, or with more the next
 // that is not there.

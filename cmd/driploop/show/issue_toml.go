@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"driploop/bom"
+	"driploop/catalog"
 )
 
 // Issue is what is booked when a crew takes what its pick list says.
@@ -13,6 +14,8 @@ type Issue struct {
 	*bom.Pick
 	On string // a date or a local time, as TOML has them
 	By string // initials of who takes it
+
+	Stock *catalog.Stock // that it is taken from
 }
 
 // bins and reels are what can be booked: what lies ready, and is not to be counted
@@ -100,11 +103,37 @@ func (i *Issue) Text(page Page, file, seen string) []byte {
 		cuts += len(r.Cuts)
 	}
 	s.para("", strong, Terms("Issued to %s: %s and %s, in %s.", i.Job, words(pieces, "piece", "pieces"), words(cuts, "cut", "cuts"), file))
-	for _, left := range i.leftOut() {
+	for _, left := range append(i.counted(), i.leftOut()...) {
 		s.hang("  · ", plain, 4, plain, Clean(left))
 	}
 	s.para("", plain, Clean(seen))
 	return []byte(s.b.String())
+}
+
+// counted lists what is booked on the day of its count, or of its reading, that says no
+// time: there the book takes the count to have seen the issue.
+func (i *Issue) counted() []string {
+	const mind = "%s was %s on %s at no time of day, so what is there stays %s; if this was taken after it, write the time into %s"
+	var out []string
+	for _, b := range i.bins() {
+		for _, s := range i.Stock.Bins {
+			if s.Part == b.Part.ID && s.Where == b.Where && i.sameDay(s.Counted) {
+				out = append(out, fmt.Sprintf(mind, s.Part+" at "+s.Where, "counted", s.Counted, s.Qty, s.At.File.Path))
+			}
+		}
+	}
+	for _, r := range i.reels() {
+		// What arrived today, or was left over today, was there before it was cut.
+		if t := r.Tag; t.Order == "" && t.Of == "" && i.sameDay(t.Read) {
+			out = append(out, fmt.Sprintf(mind, t.ID+" at "+t.Where, "read", t.Read, t.Left, t.At.File.Path))
+		}
+	}
+	return out
+}
+
+// sameDay reports a bare date that is the day of the issue.
+func (i *Issue) sameDay(m catalog.Moment) bool {
+	return !m.Clock && strings.HasPrefix(i.On, m.Day.String())
 }
 
 // leftOut lists what the job still waits for.
