@@ -42,6 +42,9 @@ func (a *allocator) cutStock(claims []*Claim, supplies []*Supply, reserves []*ke
 			r.claim.ShortLines = append(r.claim.ShortLines, r.piece)
 			continue
 		}
+		if r.claim.Held == nil {
+			r.claim.Held = make([]Hold, 0, len(r.claim.Pieces)) // most get all
+		}
 		r.claim.Held = append(r.claim.Held, Hold{Supply: supplies[at], Piece: r.piece})
 		supplies[at].Free.Length -= r.piece.Length
 	}

@@ -2,6 +2,7 @@ package bom
 
 import (
 	"cmp"
+	"slices"
 	"strings"
 
 	"driploop/catalog"
@@ -140,13 +141,19 @@ type given struct {
 	cut   map[string]unit.MM // by line: what was cut for it and is still with the job
 }
 
+// given is nothing, without a map, for a job that was issued nothing: of thousands
+// of jobs most are.
 func (a *allocator) given(job string) given {
+	issues, pieces := a.stock.IssuesOf(job), a.stock.PiecesFor(job)
+	if len(issues) == 0 && len(pieces) == 0 {
+		return given{}
+	}
 	g := given{map[string]int64{}, map[string]unit.MM{}, map[string]unit.MM{}}
-	for _, is := range a.stock.IssuesOf(job) {
+	for _, is := range issues {
 		g.each[is.Part] = is.Net.Each
 		g.whole[is.Part] = is.Net.Length
 	}
-	for _, p := range a.stock.PiecesFor(job) {
+	for _, p := range pieces {
 		g.cut[p.Cable] += p.Kept()
 		g.whole[p.Part] -= p.Kept()
 	}
@@ -156,6 +163,9 @@ func (a *allocator) given(job string) given {
 // uncut lists the pieces of a need that were not cut yet. What a job was given
 // uncut, a reel as a whole, serves its pieces in their order as far as it goes.
 func (g given) uncut(n *Need) []Piece {
+	if g.each == nil {
+		return slices.Clip(n.Pieces)
+	}
 	whole := g.whole[n.Part.ID]
 	var out []Piece
 	for _, p := range n.Pieces {

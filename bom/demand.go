@@ -1,6 +1,7 @@
 package bom
 
 import (
+	"slices"
 	"strings"
 
 	"driploop/catalog"
@@ -41,9 +42,16 @@ type Need struct {
 func DemandOf(p *Plan, t *Takeoff) *Demand {
 	d := &Demand{Job: p.ID, Path: p.File.Path, Title: p.Job.Title.V, Stage: p.Job.Stage.Or("draft"), Crew: p.Job.Crew.V,
 		On: p.Job.InstallOn.V, At: p.Job.At, Reserves: p.Reserves, Gaps: t.Gaps}
+	n := 0
+	for _, q := range t.Rows {
+		n += len(q.Pieces)
+	}
+	pieces := make([]Piece, 0, n) // of all needs, no longer than they are together
 	d.Needs = make([]Need, 0, len(t.Rows))
 	for _, q := range t.Rows {
-		d.Needs = append(d.Needs, Need{Part: q.Part, Each: q.Each, Pieces: q.Pieces, At: q.At})
+		from := len(pieces)
+		pieces = append(pieces, q.Pieces...)
+		d.Needs = append(d.Needs, Need{Part: q.Part, Each: q.Each, Pieces: slices.Clip(pieces[from:]), At: q.At})
 	}
 	return d
 }

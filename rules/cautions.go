@@ -84,6 +84,16 @@ func (c *Case) cautions(findings []*Finding) []string {
 	return out
 }
 
+// alike gives texts that many plans share one string: their figures are rounded, and
+// thousands of plans say the same few things.
+func (f *Firm) alike(texts []string) []string {
+	for i, t := range texts {
+		one, _ := f.texts.LoadOrStore(t, t)
+		texts[i] = one.(string)
+	}
+	return texts
+}
+
 func addAll(add func(string), list []source.Val[string]) {
 	for _, v := range list {
 		add(v.V)

@@ -30,6 +30,7 @@ type Firm struct {
 	origin  Origin
 	weights map[string]*Override
 	fits    sync.Map // *catalog.Part to its fitted curve
+	texts   sync.Map // of cautions to themselves
 }
 
 // FileProblem is a problem of one of the workspace's own files, with the part in

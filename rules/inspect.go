@@ -212,7 +212,7 @@ func (f *Firm) inspectPlan(e source.Entry, withParts bool) (*PlanResult, shelfPl
 			res.Parts = c.parts()
 		}
 		res.Runs = c.runs()
-		res.Cautions = c.cautions(res.Findings)
+		res.Cautions = c.Firm.alike(c.cautions(res.Findings))
 	}
 	letGo(c.Plan.File, res.Findings, kept.places())
 	return res, kept

@@ -23,6 +23,7 @@ type Command struct {
 	Stdout, Stderr io.Writer
 	Now            func() time.Time
 	Env            func(string) string
+	Limit          func(int64) int64 // sets the memory limit of the process and gives back the last, as debug.SetMemoryLimit; nil leaves it alone
 
 	shared shared
 	held   bool // a hold stands

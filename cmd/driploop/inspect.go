@@ -36,6 +36,7 @@ relative to the top of the repository that holds the workspace.`,
 			}
 			defer look.done()
 			firm, plans, changed := look.firm, look.plans, look.changed
+			defer c.keepSmall(len(firm.PlanFiles))()
 			res, err := firm.Inspect(cmd.Context(), plans, changed...)
 			if err != nil {
 				return failure{err}
