@@ -35,7 +35,7 @@ func (f *Firm) Demands(ctx context.Context) (*Demands, error) {
 // is no demand.
 func (f *Firm) demandsOf(ctx context.Context, plans []source.Entry) ([]shelfPlan, error) {
 	kept := make([]shelfPlan, len(plans))
-	err := eachSideBySide(ctx, len(plans), func(i int) {
+	err := f.eachPlan(ctx, len(plans), func(i int) {
 		if c, broken := f.Case(plans[i]); !broken {
 			kept[i] = c.forShelf()
 			moveOff(c.Plan.File, kept[i].places())
@@ -60,6 +60,7 @@ func (f *Firm) otherDemands(ctx context.Context, plans []source.Entry) ([]shelfP
 
 // Allocate shares the stock out over the demands.
 func (f *Firm) Allocate(d *Demands) *bom.Allocation {
+	f.doing(sharingOut)
 	return bom.Allocate(d.All, f.Stock, &f.Workspace.Premises, &f.Workspace.House.House)
 }
 

@@ -26,11 +26,12 @@ type Firm struct {
 	PlanFiles []source.Entry
 	Skipped   []source.Entry // files that a pattern names and that are not read
 
-	noShelf bool
-	origin  Origin
-	weights map[string]*Override
-	fits    sync.Map // *catalog.Part to its fitted curve
-	texts   sync.Map // of cautions to themselves
+	noShelf  bool
+	progress Progress // or nil
+	origin   Origin
+	weights  map[string]*Override
+	fits     sync.Map // *catalog.Part to its fitted curve
+	texts    sync.Map // of cautions to themselves
 }
 
 // FileProblem is a problem of one of the workspace's own files, with the part in
@@ -47,6 +48,7 @@ type Options struct {
 	NoShelf    bool        // inspections leave the rules of scope firm out
 	LimitsFrom source.Tree // or nil: whose profiles, codes, house figures, weights and defaults hold
 	StockFrom  source.Tree // or nil: whose stock sheets and orders are the shelf
+	Progress   Progress    // or nil
 }
 
 // ErrNoWorkspace is returned where a tree has no driploop.toml.
@@ -55,7 +57,7 @@ var ErrNoWorkspace = errors.New("there is no " + WorkspaceFile + " here; a works
 // Load reads a workspace. What is wrong with its files is in Problems; an error
 // means that a tree cannot be read or is no workspace.
 func Load(t source.Tree, o Options) (*Firm, error) {
-	f := &Firm{Tree: t, Today: o.Today, noShelf: o.NoShelf, Offers: &catalog.Offers{},
+	f := &Firm{Tree: t, Today: o.Today, noShelf: o.NoShelf, progress: o.Progress, Offers: &catalog.Offers{},
 		origin: Origin{At: t.Name(), LimitsFrom: t.Name(), StockFrom: t.Name()}}
 	own, err := f.open(t, "")
 	if err != nil {

@@ -115,7 +115,7 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 	r := &Result{Origin: f.Origin(), Today: f.Today.String(), Overrides: f.Overrides(), Weights: f.Workspace.Weights, NoShelf: f.noShelf}
 	r.Plans = make([]*PlanResult, len(plans))
 	kept := make([]shelfPlan, len(plans))
-	err := eachSideBySide(ctx, len(plans), func(i int) { r.Plans[i], kept[i] = f.inspectPlan(plans[i], !whole) })
+	err := f.eachPlan(ctx, len(plans), func(i int) { r.Plans[i], kept[i] = f.inspectPlan(plans[i], !whole) })
 	if err != nil {
 		return nil, err
 	}

@@ -113,6 +113,7 @@ func (f *Firm) inspectShelf(r *Result, plans, others []shelfPlan) {
 		}
 	}
 	slices.SortStableFunc(s.Demands, func(d, e *bom.Demand) int { return strings.Compare(d.Path, e.Path) })
+	f.doing(sharingOut)
 	s.Allocation = bom.Allocate(s.Demands, f.Stock, &f.Workspace.Premises, &f.Workspace.House.House)
 	s.index()
 	planPaths := map[string]bool{}

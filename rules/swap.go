@@ -18,7 +18,10 @@ func (f *Firm) Purchase(d *Demands, t bom.Terms) (*bom.Purchase, *bom.Allocation
 		Swaps:   bom.SwapsOf(share(d.All), f.Catalog.Look, f.hasTools),
 		Replan:  w.replan,
 		Share:   share,
-		Buy:     func(a *bom.Allocation) *bom.Purchase { return bom.Buy(a, f.Offers, f.Catalog.Look, t) },
+		Buy: func(a *bom.Allocation) *bom.Purchase {
+			f.doing(buyingParts)
+			return bom.Buy(a, f.Offers, f.Catalog.Look, t)
+		},
 	}.Best()
 }
 

@@ -26,8 +26,9 @@ type Command struct {
 	Limit          func(int64) int64 // sets the memory limit of the process and gives back the last, as debug.SetMemoryLimit; nil leaves it alone
 
 	shared shared
-	held   bool // a hold stands
-	bare   bool // rules that need the shelf are left out
+	meter  *meter // while a terminal is told how far long work has come
+	held   bool   // a hold stands
+	bare   bool   // rules that need the shelf are left out
 }
 
 // shared are the flags that all commands have.
@@ -61,6 +62,7 @@ func (c *Command) Main(args []string) int {
 	root.SetOut(out)
 	root.SetErr(c.Stderr)
 	err := root.ExecuteContext(context.Background())
+	c.settled()
 	if out.err != nil {
 		err = failure{fmt.Errorf("writing the result: %w", out.err)}
 	}
@@ -94,6 +96,7 @@ func (w *watched) Write(b []byte) (int, error) {
 
 // say writes a message of the tool to standard error.
 func (c *Command) say(format string, args ...any) {
+	c.settled()
 	fmt.Fprintf(c.Stderr, "driploop: %s\n", show.Clean(fmt.Sprintf(format, args...)))
 }
 

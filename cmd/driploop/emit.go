@@ -20,6 +20,7 @@ import (
 // beside its place and moved there when it is complete; what stood there before
 // stays until then.
 func (c *Command) emit(b []byte) error {
+	c.settled()
 	if c.shared.out == "" {
 		if _, err := c.Stdout.Write(b); err != nil {
 			return failure{fmt.Errorf("writing the result: %w", err)}

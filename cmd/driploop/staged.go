@@ -51,7 +51,7 @@ func (c *Command) lookAtStaged(ctx context.Context, args []string, dash int) (*l
 	if err != nil {
 		return nil, err
 	}
-	o := rules.Options{Today: today, NoShelf: c.bare}
+	o := rules.Options{Today: today, NoShelf: c.bare, Progress: c.progress()}
 	var l *look
 	if o.LimitsFrom, o.StockFrom, err = c.rulers(ctx, r); err == nil {
 		l, err = c.stagedIn(ctx, r, o, args, dash)

@@ -71,7 +71,8 @@ func takeoffAs(t *show.Takeoff, form string, page show.Page) ([]byte, error) {
 func (c *Command) takeOff(firm *rules.Firm, plans []source.Entry) *show.Takeoff {
 	out := &show.Takeoff{Feet: firm.Workspace.Lengths.V == "ft", From: firm.Origin(), Today: firm.Today.String(), Overrides: firm.Overrides()}
 	var all []bom.PlanTakeoff
-	for _, e := range plans {
+	for i, e := range plans {
+		c.told("reading plans", i, len(plans))
 		cs, broken := firm.Case(e)
 		job := bom.JobOf(e.Path)
 		switch {

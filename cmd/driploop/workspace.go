@@ -26,7 +26,7 @@ func (c *Command) workspace(ctx context.Context) (firm *rules.Firm, close func()
 	if err != nil {
 		return nil, nil, err
 	}
-	firm, err = rules.Load(t.own, rules.Options{Today: today, NoShelf: c.bare, LimitsFrom: t.limits, StockFrom: t.stock})
+	firm, err = rules.Load(t.own, rules.Options{Today: today, NoShelf: c.bare, LimitsFrom: t.limits, StockFrom: t.stock, Progress: c.progress()})
 	if err != nil {
 		t.close()
 		return nil, nil, fmt.Errorf("reading the workspace in %s: %w", c.shared.root, err)
