@@ -38,13 +38,15 @@ type keyJSON struct {
 }
 
 type typeJSON struct {
-	Name    string    `json:"name"`
-	Example string    `json:"example,omitempty"`
-	OneOf   []string  `json:"one_of,omitempty"`
-	Min     *float64  `json:"min,omitempty"`
-	Max     *float64  `json:"max,omitempty"`
-	List    *typeJSON `json:"list,omitempty"`
-	Each    *typeJSON `json:"each,omitempty"`
+	Name    string      `json:"name"`
+	Example string      `json:"example,omitempty"`
+	OneOf   []string    `json:"one_of,omitempty"`
+	Min     *float64    `json:"min,omitempty"`
+	Max     *float64    `json:"max,omitempty"`
+	List    *typeJSON   `json:"list,omitempty"`
+	Each    *typeJSON   `json:"each,omitempty"`
+	Choice  []*typeJSON `json:"choice,omitempty"` // it may be of any of these
+	Keys    []keyJSON   `json:"keys,omitempty"`   // of an inline table
 }
 
 var shapeWords = map[source.Shape]string{source.Scalar: "value", source.OneTable: "table", source.RowTables: "rows", source.NamedTables: "named"}
@@ -81,6 +83,7 @@ func tableBlocks(path, why string, r *source.Record) []Block {
 	for _, k := range r.Keys {
 		if k.Shape == source.Scalar {
 			own = append(own, Item{k.Name, keyText(k)})
+			below = append(below, inlineBlocks(path, k)...)
 			continue
 		}
 		name := strings.TrimPrefix(path+"."+k.Name, ".")
@@ -100,6 +103,40 @@ func tableBlocks(path, why string, r *source.Record) []Block {
 		block.Head = header(path)
 	}
 	return append([]Block{block}, below...)
+}
+
+// inlineBlocks is a block for each sort of inline table that the value of a key may
+// have: "device.ID.copies = { NAME = { … } }".
+func inlineBlocks(path string, k source.KeyDoc) []Block {
+	var out []Block
+	for _, in := range inlines(k.Type, "{ … }") {
+		name := strings.TrimPrefix(path+"."+k.Name, ".")
+		out = append(out, tableBlocks(name, name+" = "+in.written, in.keys)...)
+	}
+	return out
+}
+
+// inline is an inline table somewhere in a value, and how the value is written around it.
+type inline struct {
+	written string
+	keys    *source.Record
+}
+
+func inlines(t source.TypeDoc, written string) []inline {
+	var out []inline
+	switch {
+	case t.Choice != nil:
+		for _, c := range t.Choice() {
+			out = append(out, inlines(c, written)...)
+		}
+	case t.Sub != nil:
+		out = append(out, inline{written, t.Sub()})
+	case t.Each != nil:
+		out = inlines(*t.Each, "{ NAME = "+written+" }")
+	case t.List != nil:
+		out = inlines(*t.List, "["+written+"]")
+	}
+	return out
 }
 
 func header(name string) string { return "[" + name + "]" }
@@ -186,5 +223,14 @@ func typeData(t *source.TypeDoc) *typeJSON {
 	if t == nil {
 		return nil
 	}
-	return &typeJSON{t.Name, t.Example, t.OneOf, t.Min, t.Max, typeData(t.List), typeData(t.Each)}
+	out := &typeJSON{Name: t.Name, Example: t.Example, OneOf: t.OneOf, Min: t.Min, Max: t.Max, List: typeData(t.List), Each: typeData(t.Each)}
+	if t.Choice != nil {
+		for _, c := range t.Choice() {
+			out.Choice = append(out.Choice, typeData(&c))
+		}
+	}
+	if t.Sub != nil {
+		out.Keys = keysJSON(t.Sub())
+	}
+	return out
 }
