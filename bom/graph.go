@@ -19,13 +19,15 @@ type Graph struct {
 	Bonds   []*Bond
 	Holes   []Hole // what did not resolve, in the order it was met
 
-	devices map[string]*Device
-	cables  map[string]*Cable
-	places  map[string]*Place
-	bonds   map[*Device][]*Bond // those that lead somewhere, by either end
-	earth   map[*Device]*Bond   // the first bond on the way to the nearest electrode
-	lines   *Lines
-	guesses int
+	devices   map[string]*Device
+	cables    map[string]*Cable
+	places    map[string]*Place
+	bonds     map[*Device][]*Bond // those that lead somewhere, by either end
+	earth     map[*Device]*Bond   // the first bond on the way to the nearest electrode
+	lines     *Lines
+	guesses   int
+	stands    []string        // what findings can stand on, once it was asked for
+	operators map[string]bool // once it was asked for
 }
 
 // Device is one thing that is put up: a row of the plan, or one copy of it.

@@ -86,7 +86,7 @@ func (g *Graph) wishes() []joining {
 	for i := range g.Plan.Joints {
 		j := &g.Plan.Joints[i]
 		if j.A.Set && j.B.Set {
-			out = append(out, joining{a: j.A, b: j.B, joint: j, on: "joint." + strings.ReplaceAll(j.A.V.String(), ".", "-")})
+			out = append(out, joining{a: j.A, b: j.B, joint: j, on: j.On()})
 		}
 	}
 	return out

@@ -323,29 +323,3 @@ func (g *Graph) cableOhm(c *Cable) source.Val[float64] {
 	}
 	return source.Val[float64]{}
 }
-
-// uniqueNames holds that devices, copies, cables, data lines and wires, all of
-// which can be referred to, have names of their own.
-func (g *Graph) uniqueNames() {
-	seen := map[string]source.Place{}
-	claim := func(id string, at source.Place, on string) {
-		low := strings.ToLower(id)
-		if first, twice := seen[low]; twice {
-			g.hole(BadRef, at, on, "the name "+source.Quote(id)+" stands already in this plan", "give it a name of its own", first)
-			return
-		}
-		seen[low] = at
-	}
-	for _, d := range g.Devices {
-		claim(d.ID, d.At, d.On())
-	}
-	for _, c := range g.Cables {
-		claim(c.ID, c.At, c.On())
-	}
-	for i := range g.Plan.Data {
-		claim(g.Plan.Data[i].ID, g.Plan.Data[i].At, "data."+g.Plan.Data[i].ID)
-	}
-	for i := range g.Plan.Wires {
-		claim(g.Plan.Wires[i].ID, g.Plan.Wires[i].At, "wire."+g.Plan.Wires[i].ID)
-	}
-}

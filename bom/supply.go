@@ -2,7 +2,7 @@ package bom
 
 import (
 	"fmt"
-	"slices"
+	"maps"
 
 	"driploop/catalog"
 	"driploop/catalog/source"
@@ -143,12 +143,16 @@ func (g *Graph) checkRefs() {
 		for _, o := range a.Operators.V {
 			g.operator(o, on)
 		}
+		for _, b := range a.Before.V {
+			g.operator(b.V.Operator, on)
+		}
 	}
 	for i := range g.Plan.Readings {
 		r := &g.Plan.Readings[i]
 		on := fmt.Sprintf("reading.%d", i+1)
 		g.readingRef(r.From, on)
 		g.readingRef(r.To, on)
+		g.operator(r.Operator, on)
 	}
 	for i := range g.Plan.Extras {
 		g.part(g.Plan.Extras[i].Part, "job", catalog.KindNames()...)
@@ -159,22 +163,25 @@ func (g *Graph) checkRefs() {
 			g.hole(BadRef, r.Cable.At, "job", "the plan has no line "+source.Quote(r.Cable.V), "correct the name")
 		}
 	}
+	g.checkWaivers()
 }
 
 func (g *Graph) operator(o source.Val[string], on string) {
-	var known []string
-	for _, k := range g.Plan.Operators {
-		known = append(known, k.ID)
+	if !o.Set {
+		return
 	}
-	for i := range g.Plan.Signals {
-		known = append(known, g.Plan.Signals[i].Operator.V)
-	}
-	for _, k := range known {
-		if k == o.V {
-			return
+	if g.operators == nil {
+		g.operators = map[string]bool{}
+		for i := range g.Plan.Operators {
+			g.operators[g.Plan.Operators[i].ID] = true
+		}
+		for i := range g.Plan.Signals {
+			g.operators[g.Plan.Signals[i].Operator.V] = true
 		}
 	}
-	g.hole(BadRef, o.At, on, "the plan has no operator "+source.Quote(o.V), g.guess(o.V, slices.Values(known), "add it, or correct the name"))
+	if !g.operators[o.V] {
+		g.hole(BadRef, o.At, on, "the plan has no operator "+source.Quote(o.V), g.guess(o.V, maps.Keys(g.operators), "add it, or correct the name"))
+	}
 }
 
 func (g *Graph) readingRef(r source.Val[Ref], on string) {

@@ -2,7 +2,6 @@ package rules
 
 import (
 	"slices"
-	"strings"
 
 	"driploop/bom"
 	"driploop/catalog"
@@ -88,7 +87,7 @@ func (c *Case) findReferences() []reference {
 	}
 	for i := range c.Plan.Joints {
 		j := &c.Plan.Joints[i]
-		on := "joint." + strings.ReplaceAll(j.A.V.String(), ".", "-")
+		on := j.On()
 		add(j.A, on, "the joint of "+j.B.V.String())
 		add(j.B, on, "the joint of "+j.A.V.String())
 	}

@@ -74,9 +74,13 @@ func (c *Case) forShelf() shelfPlan {
 }
 
 // waivers parts the waivers of the plan: those of rules that look at the plan
-// alone, and those of rules of scope firm.
+// alone, and those of rules of scope firm. One that stands on nothing is said to lead
+// nowhere and no more.
 func (c *Case) waivers() (here, shelf []bom.Waiver) {
 	for _, w := range c.Plan.Waivers {
+		if w.On.Set && !c.Graph.Leads(w.On.V) {
+			continue
+		}
 		if r := Find(w.Rule.V); r != nil && r.Firm() {
 			shelf = append(shelf, w)
 		} else {

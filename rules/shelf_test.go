@@ -106,7 +106,7 @@ func TestWaiversOfShelfRules(t *testing.T) {
 			[]string{"plans/lane.toml:2 stock/counted-twice punch", "plans/lane.toml:4 paper/waiver punch"}},
 		{"covers nothing", "rule = \"stock/over\"\nbecause = \"kit counts again\"",
 			[]string{"plans/lane.toml:2 stock/counted-twice punch", "plans/lane.toml:4 paper/waiver punch"}},
-		{"another part", "rule = \"stock/counted-twice\"\non = \"part.X\"\nbecause = \"kit counts again\"",
+		{"another part", "rule = \"stock/counted-twice\"\non = \"part.GEN-BAR-6\"\nbecause = \"kit counts again\"",
 			[]string{"plans/lane.toml:2 stock/counted-twice punch", "plans/lane.toml:4 paper/waiver punch"}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
