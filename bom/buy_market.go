@@ -70,7 +70,7 @@ func (g *good) cost(n int) unit.Money {
 
 // lengthCost is the line for a piece that is cut to length.
 func (g *good) lengthCost(length unit.MM) unit.Money {
-	return unit.Money((int64(g.Price.V)*int64(length) + 500) / 1000).Cents()
+	return g.Price.V.Times(length).Cents()
 }
 
 // readMarket lists the offers that can be used by the part they bring. An offer that

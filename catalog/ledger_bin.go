@@ -117,10 +117,12 @@ func (r *binReplay) sameDay(count binEvent, before []binEvent) {
 	}
 }
 
-// bagOf is the size of bag by which a count is too low, as when somebody wrote down
-// bags for pieces; 0 where it is not.
-func (r *binReplay) bagOf(book, count int64) int {
-	for _, size := range r.bags {
+func (r *binReplay) bagOf(book, count int64) int { return BagsCounted(r.bags, book, count) }
+
+// BagsCounted is the size of bag by which a count is too low, as when somebody wrote
+// down bags for pieces; 0 where it is not.
+func BagsCounted(sizes []int, book, count int64) int {
+	for _, size := range sizes {
 		if size > 1 && count > 0 && book == count*int64(size) {
 			return size
 		}

@@ -25,6 +25,9 @@ func ParseMoney(s string) (Money, error) {
 	return Money(v), nil
 }
 
+// Times is what a length costs at a price for one metre, rounded half up.
+func (m Money) Times(l MM) Money { return Money((int64(m)*int64(l) + 500) / 1000) }
+
 // Cents rounds half up to whole cents, as each line of an order is rounded. It
 // is meant for amounts that are not negative, as all prices are.
 func (m Money) Cents() Money { return (m + 50) / 100 * 100 }

@@ -10,60 +10,95 @@ import (
 	"path"
 	"time"
 
+	"driploop/bom"
 	"driploop/catalog"
+	"driploop/cmd/driploop/filled"
 	"driploop/cmd/driploop/repo"
 	"driploop/cmd/driploop/show"
 	"driploop/rules"
 )
 
-// issuing are the flags of pick --issue.
+// issuing are the flags of pick --issue and pick --read.
 type issuing struct {
 	do, more bool
-	by       string
+	by, read string
 }
 
 // refuse says which flags do not go together.
 func (i *issuing) refuse(s *shared) error {
 	switch {
-	case !i.do && (i.more || i.by != ""):
-		return errors.New("--more and --by belong to --issue")
-	case !i.do:
+	case i.do && i.read != "":
+		return errors.New("--issue books what the list says, --read what a filled sheet says; one of the two")
+	case !i.do && i.read == "" && (i.more || i.by != ""):
+		return errors.New("--more and --by belong to --issue and --read")
+	case !i.do && i.read == "":
 		return nil
 	case s.at != "":
-		return fmt.Errorf("--issue writes into the folder and cannot be used with --at %s", s.at)
+		return fmt.Errorf("%s writes into the folder and cannot be used with --at %s", i.name(), s.at)
 	case s.as != "" || s.out != "":
-		return errors.New("--issue writes a sheet of its own; --as and --out do not go with it")
-	case i.by == "":
+		return fmt.Errorf("%s writes a sheet of its own; --as and --out do not go with it", i.name())
+	case i.do && i.by == "":
 		return errors.New("who takes the goods? --by has the initials")
 	}
 	return nil
 }
 
+func (i *issuing) name() string {
+	if i.do {
+		return "--issue"
+	}
+	return "--read"
+}
+
 // issue books what the pick list says as taken, in a sheet of the job's own.
 func (c *Command) issue(ctx context.Context, firm *rules.Firm, p *show.Pick, how issuing, page show.Page) error {
 	is := &show.Issue{Pick: p.Pick, On: c.moment(firm.Stock), By: how.by, Stock: firm.Stock}
-	root, err := os.OpenRoot(c.shared.root)
+	file, err := c.issueFile(p, how)
 	if err != nil {
 		return err
-	}
-	defer root.Close()
-	file, err := nextIssue(root, p.Job, how.more)
-	if err != nil {
-		return err
-	}
-	if !how.more && given(p) {
-		return fmt.Errorf("goods were issued to %s already, see the sheets that name it; --more issues what is still claimed", p.Job)
 	}
 	if is.Empty() {
 		return fmt.Errorf("nothing lies ready for %s that is still to be issued", p.Job)
 	}
-	if !firm.ReadsStock(file) {
-		return fmt.Errorf("the workspace's stock files do not include %s; name it in [workspace] stock", file)
-	}
-	if err := writeNew(root, file, is.TOML()); err != nil {
-		return failure{fmt.Errorf("writing %s: %w", file, cause(err))}
+	if err := c.writeSheets(firm, []newSheet{{file, is.TOML()}}); err != nil {
+		return err
 	}
 	return c.emit(is.Text(page, file, c.seen(ctx, file)))
+}
+
+// issueFile is the file of the next issue, where one may be made.
+func (c *Command) issueFile(p *show.Pick, how issuing) (string, error) {
+	root, err := os.OpenRoot(c.shared.root)
+	if err != nil {
+		return "", err
+	}
+	defer root.Close()
+	file, err := nextIssue(root, p.Job, how.more)
+	if err == nil && !how.more && given(p) {
+		err = fmt.Errorf("goods were issued to %s already, see the sheets that name it; --more issues what is still claimed", p.Job)
+	}
+	return file, err
+}
+
+// pickRead books what a filled pick sheet says was taken.
+func (c *Command) pickRead(ctx context.Context, firm *rules.Firm, p *show.Pick, d *bom.Demand, how issuing, form string, page show.Page) error {
+	file, err := c.issueFile(p, how)
+	if err != nil {
+		return err
+	}
+	b, err := readFilled(how.read, form)
+	if err != nil {
+		return err
+	}
+	t, err := filled.Pick(b, ground(firm, how.by), p.Pick, d)
+	if err != nil {
+		return c.faulty(how.read, err)
+	}
+	t.On = c.moment(firm.Stock)
+	if err := c.writeSheets(firm, []newSheet{{file, t.TOML()}}); err != nil {
+		return err
+	}
+	return c.emit(t.Text(page, file, c.seen(ctx, file)))
 }
 
 func given(p *show.Pick) bool {

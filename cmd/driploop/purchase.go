@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 	"fmt"
 
 	"github.com/spf13/cobra"
@@ -14,7 +15,8 @@ import (
 )
 
 func (c *Command) purchase() *cobra.Command {
-	var until string
+	var until, read string
+	var yes bool
 	cmd := &cobra.Command{
 		Use:   "purchase [PLAN…]",
 		Short: "what to buy from whom",
@@ -24,12 +26,22 @@ at the least cost with freight. Jobs that are needed later than buy_ahead_days f
 now are listed and not bought for. With plans, only what these lack is bought.
 A substitute that a part lists in instead is taken where it makes a job less late or
 the purchase cheaper, its crew has the tools, and its plan has no new finding with
-it; the order then goes by a change of the plan that is to be made by hand.`,
+it; the order then goes by a change of the plan that is to be made by hand.
+--read FILE.xlsx takes the workbook back in which the clerk has filled in what was
+ordered: each order sheet with an order number becomes stock/orders/NUMBER.toml.
+Where the workspace is no longer what the workbook was made from, it says what is
+other, and writes only with --yes.`,
 		Example: "  driploop purchase --until 2026-12-31",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "csv", "xlsx")
 			if err != nil {
 				return err
+			}
+			switch {
+			case read != "":
+				return c.orderRead(cmd, args, until, read, yes)
+			case yes:
+				return errors.New("--yes belongs to --read")
 			}
 			return c.buying(cmd, args, until, func(b *show.OrderBook, firm *rules.Firm, page show.Page) ([]byte, error) {
 				switch form {
@@ -44,6 +56,8 @@ it; the order then goes by a change of the plan that is to be made by hand.`,
 			})
 		},
 	}
+	cmd.Flags().StringVar(&read, "read", "", "take the filled workbook `FILE` back as orders")
+	cmd.Flags().BoolVar(&yes, "yes", false, "with --read: write though the workspace has changed since")
 	cmd.Flags().StringVar(&until, "until", "", "buy for jobs that are needed until this day (default: buy_ahead_days from now)")
 	return cmd
 }

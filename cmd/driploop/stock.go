@@ -12,7 +12,7 @@ import (
 )
 
 func (c *Command) stock() *cobra.Command {
-	var blind bool
+	var count counting
 	cmd := &cobra.Command{
 		Use:   "stock [PLAN…]",
 		Short: "what is on hand, on its way, claimed and free",
@@ -20,15 +20,23 @@ func (c *Command) stock() *cobra.Command {
 jobs: for each part and shelf what lies there, what is on its way, what is kept for
 jobs and what is free, and what each job is short of and who holds it. With plans,
 only the parts that they claim are shown. The workbook has a sheet to count on for
-each shelf that something lies on.`,
+each shelf that something lies on.
+--sheet FILE writes only these, as .xlsx or as one table in .csv: blank is for what
+was not counted, 0 for what is not there. --read FILE takes the filled sheet back as
+a new file stock/counts/DAY-SHELF-WHO.toml for each shelf, and says how it differs
+from the book. A count that is as many bags as there should be pieces needs --yes.`,
 		Example: "  driploop stock --as json",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			form, err := c.form("text", "json", "csv", "xlsx")
 			if err != nil {
 				return err
 			}
-			if blind && form != "xlsx" {
-				return errors.New("--blind is about the sheets to count on; add --as xlsx")
+			sheet, err := count.refuse(c, args)
+			if err != nil {
+				return err
+			}
+			if count.blind && form != "xlsx" && sheet == "" {
+				return errors.New("--blind is about the sheets to count on; add --sheet FILE, or --as xlsx")
 			}
 			page, err := c.page()
 			if err != nil {
@@ -43,11 +51,17 @@ each shelf that something lies on.`,
 			if err != nil {
 				return err
 			}
+			if count.read != "" {
+				return c.countRead(firm, &count, sheet, page)
+			}
 			a, broken, err := c.allocate(cmd.Context(), firm)
 			if err != nil {
 				return err
 			}
 			s := &show.Stock{Allocation: a, Look: firm.Catalog.Look, Origin: firm.Origin(), Today: firm.Today.String(), Feet: firm.Workspace.Lengths.V == "ft", Broken: broken}
+			if count.sheet != "" {
+				return c.countSheet(cmd.Context(), firm, s, &count, sheet)
+			}
 			if plans != nil {
 				s.Jobs = []string{}
 			}
@@ -56,7 +70,7 @@ each shelf that something lies on.`,
 			}
 			var b []byte
 			if form == "xlsx" {
-				b, err = c.bookOf(cmd.Context(), firm, firm.PlanFiles, "Stock", stockSheets(s, firm, blind))
+				b, err = c.bookOf(cmd.Context(), firm, firm.PlanFiles, "Stock", stockSheets(s, firm, count.blind))
 			} else {
 				b, err = stockAs(s, form, page)
 			}
@@ -66,7 +80,13 @@ each shelf that something lies on.`,
 			return c.emit(b)
 		},
 	}
-	cmd.Flags().BoolVar(&blind, "blind", false, "leave what the book says out of the sheets to count on")
+	f := cmd.Flags()
+	f.BoolVar(&count.blind, "blind", false, "leave what the book says out of the sheets to count on")
+	f.StringVar(&count.sheet, "sheet", "", "write a sheet to count on into the new `FILE`, .csv or .xlsx")
+	f.StringVar(&count.read, "read", "", "take the filled count sheet `FILE` back")
+	f.StringVar(&count.where, "where", "", "with --sheet or --read: this `SHELF` only")
+	f.StringVar(&count.by, "by", "", "with --read: `INITIALS` of who counted, where the sheet does not say it")
+	f.BoolVar(&count.yes, "yes", false, "with --read: counts that look like bags for pieces are right")
 	return cmd
 }
 

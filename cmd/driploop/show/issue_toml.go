@@ -43,32 +43,21 @@ func (i *Issue) reels() []bom.PickReel {
 // Empty reports that there is nothing to book.
 func (i *Issue) Empty() bool { return len(i.bins()) == 0 && len(i.reels()) == 0 }
 
-// TOML writes the stock sheet of the issue. All it takes from files are IDs, which
-// hold nothing that needs an escape.
-func (i *Issue) TOML() []byte {
-	b := &paste{}
-	b.line("[sheet]")
-	b.line("on  = " + i.On)
-	b.line("by  = " + tomlString(i.By))
-	b.line("job = " + tomlString(i.Job))
+// TOML writes the stock sheet of the issue.
+func (i *Issue) TOML() []byte { return i.taken().TOML() }
+
+// taken is the issue as if a filled sheet had said of everything that it was taken.
+func (i *Issue) taken() *Taken {
+	t := &Taken{Pick: i.Pick, On: i.On, By: i.By, Stock: i.Stock}
 	for _, x := range i.bins() {
-		b.line("")
-		b.line("[[move]]")
-		b.line("part = " + tomlString(x.Part.ID))
-		b.line("from = " + tomlString(x.Where))
-		b.line(`to   = "job"`)
-		b.line("qty  = " + strconv.Itoa(x.Qty))
+		t.Bins = append(t.Bins, TakenBin{Part: x.Part.ID, Where: x.Where, Qty: int64(x.Qty)})
 	}
 	for _, r := range i.reels() {
 		for _, c := range r.Cuts {
-			b.line("")
-			b.line("[[cut]]")
-			b.line("tag    = " + tomlString(r.Tag.ID))
-			b.line("length = " + tomlString(c.Length.String()))
-			b.line("cable  = " + tomlString(c.Line))
+			t.Cuts = append(t.Cuts, TakenCut{Tag: r.Tag.ID, Line: c.Line, Length: c.Length})
 		}
 	}
-	return []byte(b.out.String())
+	return t
 }
 
 // tomlString writes a string for TOML; what acts is escaped, also what only acts in a
@@ -103,37 +92,11 @@ func (i *Issue) Text(page Page, file, seen string) []byte {
 		cuts += len(r.Cuts)
 	}
 	s.para("", strong, Terms("Issued to %s: %s and %s, in %s.", i.Job, words(pieces, "piece", "pieces"), words(cuts, "cut", "cuts"), file))
-	for _, left := range append(i.counted(), i.leftOut()...) {
+	for _, left := range append(i.taken().counted(), i.leftOut()...) {
 		s.hang("  · ", plain, 4, plain, Clean(left))
 	}
 	s.para("", plain, Clean(seen))
 	return []byte(s.b.String())
-}
-
-// counted lists what is booked on the day of its count, or of its reading, that says no
-// time: there the book takes the count to have seen the issue.
-func (i *Issue) counted() []string {
-	const mind = "%s was %s on %s at no time of day, so what is there stays %s; if this was taken after it, write the time into %s"
-	var out []string
-	for _, b := range i.bins() {
-		for _, s := range i.Stock.Bins {
-			if s.Part == b.Part.ID && s.Where == b.Where && i.sameDay(s.Counted) {
-				out = append(out, fmt.Sprintf(mind, s.Part+" at "+s.Where, "counted", s.Counted, s.Qty, s.At.File.Path))
-			}
-		}
-	}
-	for _, r := range i.reels() {
-		// What arrived today, or was left over today, was there before it was cut.
-		if t := r.Tag; t.Order == "" && t.Of == "" && i.sameDay(t.Read) {
-			out = append(out, fmt.Sprintf(mind, t.ID+" at "+t.Where, "read", t.Read, t.Left, t.At.File.Path))
-		}
-	}
-	return out
-}
-
-// sameDay reports a bare date that is the day of the issue.
-func (i *Issue) sameDay(m catalog.Moment) bool {
-	return !m.Clock && strings.HasPrefix(i.On, m.Day.String())
 }
 
 // leftOut lists what the job still waits for.

@@ -6,8 +6,11 @@ import (
 	"driploop/bom"
 )
 
-// The titles of the columns of a pick sheet that are filled in.
+// The titles of the columns of a pick sheet that are filled in, and of what was asked
+// for beside them.
 const (
+	ColumnTake  = "take"
+	ColumnToLay = "to lay"
 	ColumnTaken = "taken"
 	ColumnLaid  = "laid"
 	ColumnLeft  = "left on reel"
@@ -32,7 +35,7 @@ func (p *Pick) sheet() bom.Sheet {
 		Facts: []bom.Fact{{Key: "job", Label: "job", Cell: bom.WordsCell(p.Job)},
 			{Key: "by", Label: "taken by (initials)", Kind: bom.KindWords, Ask: &bom.Ask{}},
 			{Key: "on", Label: "taken on", Kind: bom.KindDay, Ask: &bom.Ask{}}},
-		Columns: []bom.Column{bom.TextColumn("part"), bom.TextColumn("what it is"), bom.TextColumn("line"), bom.CountColumn("take"), bom.LengthColumn("to lay"),
+		Columns: []bom.Column{bom.TextColumn(ColumnPart), bom.TextColumn("what it is"), bom.TextColumn("line"), bom.CountColumn(ColumnTake), bom.LengthColumn(ColumnToLay),
 			bom.CountColumn(ColumnTaken).Asked(bom.Ask{Hint: "blank: not taken"}), bom.LengthColumn(ColumnLaid).Asked(bom.Ask{}),
 			bom.LengthColumn(ColumnLeft).Asked(bom.Ask{Hint: "measured, after the last cut"}), bom.TextColumn(ColumnNote).Asked(bom.Ask{})}}
 	for _, where := range p.Shelves() {

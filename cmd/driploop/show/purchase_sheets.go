@@ -46,6 +46,8 @@ const (
 	ColumnConfirmed = "confirmed price"
 	ColumnPromised  = "promised day"
 	ColumnNote      = "note"
+	ColumnNeeded    = "needed on"
+	ColumnFor       = "for"
 )
 
 // order is the order sheet of one vendor.
@@ -56,7 +58,7 @@ func (o *OrderBook) order(f *bom.Freight) bom.Sheet {
 		Notes: []string{"Prices " + o.inCurrency() + "net of tax. The tinted columns are yours: what was ordered, at what price, promised for when."},
 		Facts: o.orderFacts(v),
 		Columns: []bom.Column{bom.CountColumn("line"), bom.TextColumn("their code"), bom.TextColumn("our part"), bom.TextColumn("name"), bom.TextColumn("pack"), bom.CountColumn(ColumnPacks), bom.MoneyColumn(ColumnPrice), bom.MoneyColumn(ColumnTotal),
-			bom.DayColumn("needed on"), bom.TextColumn("for"),
+			bom.DayColumn(ColumnNeeded), bom.TextColumn(ColumnFor),
 			bom.CountColumn(ColumnOrdered).Asked(bom.Ask{Hint: "blank: as planned; 0: not ordered"}), bom.MoneyColumn(ColumnConfirmed).Asked(bom.Ask{}),
 			bom.DayColumn(ColumnPromised).Asked(bom.Ask{}), bom.TextColumn(ColumnNote).Asked(bom.Ask{})}}
 	for i, l := range o.LinesFor(v) {

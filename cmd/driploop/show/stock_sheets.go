@@ -106,21 +106,17 @@ func countFacts(shelf string) []bom.Fact {
 
 func (s *Stock) binSheet(shelf string, blind bool) bom.Sheet {
 	var bins []bom.Standing
-	var sizes []int
 	for _, r := range s.Standings() {
 		if r.Where == shelf && !s.cutStock(r.Part) {
 			bins = append(bins, r)
-			sizes = append(sizes, s.bags(r.Part)...)
 		}
 	}
-	slices.Sort(sizes)
-	sizes = slices.Compact(sizes)
-	slices.Reverse(sizes)
+	sizes := s.sizesOn([]string{shelf})
 	out := bom.Sheet{Key: CountKey(shelf), Name: "Count " + shelf, Title: "Count of " + shelf, Facts: countFacts(shelf),
 		Notes:   []string{"Blank: not counted. 0: none there. Count bags and loose pieces; the sheet adds them up."},
-		Columns: []bom.Column{bom.TextColumn("part"), bom.TextColumn("name")}}
+		Columns: []bom.Column{bom.TextColumn(ColumnPart), bom.TextColumn(ColumnName)}}
 	if !blind {
-		out.Columns = append(out.Columns, bom.CountColumn("by the book"))
+		out.Columns = append(out.Columns, bom.CountColumn(ColumnBook))
 	}
 	for _, n := range sizes {
 		out.Columns = append(out.Columns, bom.CountColumn(BagColumn(n)).Asked(bom.Ask{}))
@@ -162,9 +158,9 @@ func (s *Stock) bags(part string) []int {
 func (s *Stock) readingSheet(shelf string, blind bool) bom.Sheet {
 	out := bom.Sheet{Key: ReelsKey(shelf), Name: "Reels " + shelf, Title: "Reels on " + shelf, Facts: countFacts(shelf), Feet: s.Feet,
 		Notes:   []string{"Blank: not read. 0: nothing is left."},
-		Columns: []bom.Column{bom.TextColumn("tag"), bom.TextColumn("part"), bom.TextColumn("name")}}
+		Columns: []bom.Column{bom.TextColumn(ColumnTag), bom.TextColumn(ColumnPart), bom.TextColumn(ColumnName)}}
 	if !blind {
-		out.Columns = append(out.Columns, bom.LengthColumn("by the book"))
+		out.Columns = append(out.Columns, bom.LengthColumn(ColumnBook))
 	}
 	out.Columns = append(out.Columns, bom.LengthColumn(ColumnRead).Asked(bom.Ask{}), bom.TextColumn(ColumnHow).Asked(bom.Ask{Choice: []string{"marks", "tape", "label", "guess"}}),
 		bom.TextColumn(ColumnNote).Asked(bom.Ask{}))
