@@ -10,6 +10,8 @@ import (
 	"strings"
 
 	"driploop/bom"
+	"driploop/catalog"
+	"driploop/catalog/source"
 	"driploop/cmd/driploop/book"
 	"driploop/cmd/driploop/filled"
 	"driploop/rules"
@@ -95,6 +97,20 @@ type newSheet struct {
 	text []byte
 }
 
+// readable refuses a file that the workspace could not read again.
+func (s *newSheet) readable() error {
+	if len(s.text) > source.MaxFile {
+		return fmt.Errorf("%s: %w; take it in two halves, by two people or on two days", s.name, &source.TooBig{Path: "the sheet", Size: int64(len(s.text))})
+	}
+	file, problems := source.NewFile(s.name, s.text)
+	doc, more := source.Parse(file)
+	_, _, wrong := catalog.ReadStock(doc)
+	for _, p := range append(append(problems, more...), wrong...) {
+		return fmt.Errorf("%s could not be read again: %s; take it in smaller parts", s.name, p.Says)
+	}
+	return nil
+}
+
 // writeSheets writes files that are not there yet and that the workspace reads: all of
 // them, or none. Each is there whole or not at all even where the program is killed.
 func (c *Command) writeSheets(firm *rules.Firm, sheets []newSheet) error {
@@ -106,6 +122,9 @@ func (c *Command) writeSheets(firm *rules.Firm, sheets []newSheet) error {
 	for _, s := range sheets {
 		if !firm.ReadsStock(s.name) {
 			return fmt.Errorf("the workspace's stock files do not include %s; name it in [workspace] stock", s.name)
+		}
+		if err := s.readable(); err != nil {
+			return err
 		}
 		if _, err := root.Lstat(s.name); err == nil {
 			return taken(s.name)

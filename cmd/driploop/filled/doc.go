@@ -43,8 +43,12 @@ func (f Faults) Error() string {
 	return fmt.Sprintf("%s; and %d more", f[0], len(f)-1)
 }
 
+// full reports that more would not be said anyhow: looking for the nearest name among
+// thousands, ten thousand times, takes its time.
+func (f *Faults) full() bool { return len(*f) >= mostFaults }
+
 func (f *Faults) add(format string, args ...any) {
-	if len(*f) < mostFaults {
+	if !f.full() {
 		*f = append(*f, fmt.Sprintf(format, args...))
 	}
 }
@@ -108,6 +112,9 @@ func (g *Ground) part(f *Faults, where, id string) (p *catalog.Part, good bool) 
 	if slices.Contains(known, id) {
 		return nil, true
 	}
+	if f.full() {
+		return nil, false
+	}
 	for _, p := range g.Catalog.All() {
 		known = append(known, p.ID)
 	}
@@ -129,6 +136,9 @@ func (g *Ground) shelf(f *Faults, where, id string) bool {
 	if g.Premises.Shelf(id) != nil {
 		return true
 	}
+	if f.full() {
+		return false
+	}
 	f.add("%s", unknown(where, "shelf", id, g.Premises.ShelfNames()))
 	return false
 }
@@ -137,6 +147,9 @@ func (g *Ground) shelf(f *Faults, where, id string) bool {
 func (g *Ground) tag(f *Faults, where, id string) *catalog.Tag {
 	if t := g.Stock.Tag(id); t != nil {
 		return t
+	}
+	if f.full() {
+		return nil
 	}
 	var known []string
 	for i := range g.Stock.Tags {

@@ -3,7 +3,6 @@ package filled
 import (
 	"errors"
 	"fmt"
-	"slices"
 	"strings"
 
 	"driploop/bom"
@@ -92,7 +91,7 @@ func (t *taker) table(s *bom.FilledSheet) error {
 			switch {
 			case err != nil:
 			case what == wordCut:
-				t.cut(at, thing, where, note, l)
+				t.cut(at, thing, where, "", note, l)
 			default:
 				t.left(at, thing, where, note, l)
 			}
@@ -131,8 +130,8 @@ func (t *taker) sheet(s *bom.FilledSheet, feet bool) error {
 			if err == nil {
 				t.bin(at, key[2], key[1], note, n)
 			}
-		case len(key) == 3 && key[0] == "cut":
-			t.laid(at, r, key[1], key[2], note, feet)
+		case len(key) >= 3 && key[0] == "cut":
+			t.laid(at, r, key[1], key[2], strings.Join(key[3:], " "), note, feet)
 		default:
 			t.added(at, r, note)
 		}
@@ -141,7 +140,7 @@ func (t *taker) sheet(s *bom.FilledSheet, feet bool) error {
 }
 
 // laid reads the row of a cut.
-func (t *taker) laid(at string, r *bom.FilledRow, tag, line, note string, feet bool) {
+func (t *taker) laid(at string, r *bom.FilledRow, tag, line, number, note string, feet bool) {
 	read := func(title string) (unit.MM, bool) {
 		l, err := r.Entry(title).Length(feet)
 		t.faults.err(err)
@@ -156,7 +155,7 @@ func (t *taker) laid(at string, r *bom.FilledRow, tag, line, note string, feet b
 		case cut < bare:
 			t.faults.add("%s: the list has more to lay than to cut", at)
 		case laid > 0:
-			t.cut(at, tag, line, note, laid+cut-bare)
+			t.cut(at, tag, line, number, note, laid+cut-bare)
 		}
 	}
 	if left, ok := read(show.ColumnLeft); ok {
@@ -227,7 +226,9 @@ func (t *taker) only(part string) string {
 	return out[0]
 }
 
-func (t *taker) cut(at, id, line, note string, l unit.MM) {
+// cut books a piece. Of pieces that are alike, as extras may be, the list numbers the
+// further ones.
+func (t *taker) cut(at, id, line, number, note string, l unit.MM) {
 	tag := t.tag(&t.faults, at, id)
 	if tag == nil || l == 0 {
 		return
@@ -238,24 +239,30 @@ func (t *taker) cut(at, id, line, note string, l unit.MM) {
 			return
 		}
 	}
-	var lines []string
-	planned := ""
+	planned, known := t.planned(line, tag.Part)
+	if planned == "" {
+		t.faults.add("%s", unknown(at, "line of "+t.demand.Job, line, known))
+		return
+	}
+	if t.once(at, strings.TrimSpace("the cut for "+line+" from "+id+" "+number)) {
+		t.out.Cuts = append(t.out.Cuts, show.TakenCut{Tag: id, Line: line, Note: note, Part: tag.Part, Planned: planned, Length: l})
+	}
+}
+
+// planned is the part that the job takes for a line; what it takes as an extra is of
+// any part. known are its lines.
+func (t *taker) planned(line, part string) (planned string, known []string) {
 	for i := range t.demand.Needs {
 		n := &t.demand.Needs[i]
 		for _, p := range n.Pieces {
-			if lines = append(lines, p.Line); p.Line == line && line != bom.ExtraLine {
+			switch known = append(known, p.Line); {
+			case p.Line != line:
+			case planned == "" || n.Part.ID == part:
 				planned = n.Part.ID
 			}
 		}
 	}
-	if planned == "" {
-		lines = slices.DeleteFunc(lines, func(s string) bool { return s == bom.ExtraLine })
-		t.faults.add("%s", unknown(at, "line of "+t.demand.Job, line, lines))
-		return
-	}
-	if t.once(at, "the cut for "+line+" from "+id) {
-		t.out.Cuts = append(t.out.Cuts, show.TakenCut{Tag: id, Line: line, Note: note, Part: tag.Part, Planned: planned, Length: l})
-	}
+	return planned, known
 }
 
 // onlyLine is the one line that the list cuts from a reel, or "".

@@ -1,6 +1,7 @@
 package show
 
 import (
+	"fmt"
 	"strings"
 
 	"driploop/bom"
@@ -74,9 +75,19 @@ func (p *Pick) reelRows(s *bom.Sheet, r bom.PickReel) {
 		if i == len(r.Cuts)-1 {
 			left = bom.Cell{}
 		}
-		s.Row("cut "+r.Tag.ID+" "+c.Line, bom.WordsCell(r.Part.ID), bom.WordsCell(what), bom.WordsCell(c.Line), bom.LengthCell(c.Length), bom.LengthCell(c.Bare),
+		s.Row(cutKey(s, r.Tag.ID, c.Line), bom.WordsCell(r.Part.ID), bom.WordsCell(what), bom.WordsCell(c.Line), bom.LengthCell(c.Length), bom.LengthCell(c.Bare),
 			bom.ShutCell(), bom.Cell{}, left)
 	}
+}
+
+// cutKey is the key of a cut. Of pieces that are alike, as extras may be, the further
+// ones have their number.
+func cutKey(s *bom.Sheet, tag, line string) string {
+	key := "cut " + tag + " " + line
+	for n := 2; s.RowOf(key) >= 0; n++ {
+		key = fmt.Sprintf("cut %s %s %d", tag, line, n)
+	}
+	return key
 }
 
 // remarks say what the crew needs, what is not all there and what is still to come.

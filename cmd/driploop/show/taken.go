@@ -113,34 +113,39 @@ func (t *Taken) binsDiffer() []string {
 	return out
 }
 
+// cutsDiffer does the same for cuts.
 func (t *Taken) cutsDiffer() []string {
 	var out []string
-	find := func(tag, line string) *bom.Piece {
-		for _, r := range t.Reels {
-			for i := range r.Cuts {
-				if r.Tag.ID == tag && r.Cuts[i].Line == line {
-					return &r.Cuts[i]
-				}
+	listed := t.listed()
+	for _, x := range t.Cuts {
+		alike := func(l TakenCut) bool { return l.Tag == x.Tag && l.Line == x.Line }
+		i := slices.IndexFunc(listed, func(l TakenCut) bool { return alike(l) && l.Length == x.Length })
+		if i < 0 {
+			if i = slices.IndexFunc(listed, alike); i < 0 {
+				out = append(out, fmt.Sprintf("%s for %s from %s, which the list does not have", x.Length, x.Line, x.Tag))
+			} else {
+				out = append(out, fmt.Sprintf("%s for %s from %s; the list has %s", x.Length, x.Line, x.Tag, listed[i].Length))
 			}
 		}
-		return nil
+		if i >= 0 {
+			listed = slices.Delete(listed, i, i+1)
+		}
+		if x.Planned != x.Part {
+			out = append(out, fmt.Sprintf("%s is %s in the plan, and on %s is %s", x.Line, x.Planned, x.Tag, x.Part))
+		}
 	}
+	for _, l := range listed {
+		out = append(out, fmt.Sprintf("%s was not cut from %s; the list has %s", l.Line, l.Tag, l.Length))
+	}
+	return out
+}
+
+// listed are the cuts of the pick list.
+func (t *Taken) listed() []TakenCut {
+	var out []TakenCut
 	for _, r := range t.Reels {
 		for _, c := range r.Cuts {
-			if !slices.ContainsFunc(t.Cuts, func(x TakenCut) bool { return x.Tag == r.Tag.ID && x.Line == c.Line }) {
-				out = append(out, fmt.Sprintf("%s was not cut from %s; the list has %s", c.Line, r.Tag.ID, c.Length))
-			}
-		}
-	}
-	for _, x := range t.Cuts {
-		switch planned := find(x.Tag, x.Line); {
-		case planned == nil:
-			out = append(out, fmt.Sprintf("%s for %s from %s, which the list does not have", x.Length, x.Line, x.Tag))
-		case planned.Length != x.Length:
-			out = append(out, fmt.Sprintf("%s for %s from %s; the list has %s", x.Length, x.Line, x.Tag, planned.Length))
-		}
-		if x.Planned != "" && x.Planned != x.Part {
-			out = append(out, fmt.Sprintf("%s is %s in the plan, and on %s is %s", x.Line, x.Planned, x.Tag, x.Part))
+			out = append(out, TakenCut{Tag: r.Tag.ID, Line: c.Line, Length: c.Length})
 		}
 	}
 	return out
