@@ -431,3 +431,29 @@ func TestCountAtOnce(t *testing.T) {
 		t.Errorf("files left: %v %v", left, err)
 	}
 }
+
+// Where one of several sheets cannot be written, none is.
+func TestSheetsAllOrNone(t *testing.T) {
+	dir := demoCopy(t)
+	c := &Command{Stderr: io.Discard, Now: time.Now, shared: shared{root: dir, today: "2026-12-01"}}
+	firm, done, err := c.workspace(t.Context())
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer done()
+	text := []byte("[sheet]\non = 2026-12-01\nwhere = \"shop\"\n")
+	b := newSheet{"stock/counts/b.toml", text}
+	err = c.writeSheets(firm, []newSheet{{"stock/counts/a.toml", text}, b, b})
+	if err == nil || !strings.Contains(err.Error(), "b.toml is there already") {
+		t.Error(err)
+	}
+	sameButIssue(t, dir)
+	if left, _ := filepath.Glob(filepath.Join(dir, "stock/counts/?.toml")); left != nil {
+		t.Errorf("it left %v", left)
+	}
+	err = c.writeSheets(firm, []newSheet{b, {"stock/counts/c.toml", []byte("[[count]]\nqty = 1\n")}})
+	if err == nil || !strings.Contains(err.Error(), "c.toml could not be read again") {
+		t.Error(err)
+	}
+	sameButIssue(t, dir)
+}
