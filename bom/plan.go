@@ -142,7 +142,7 @@ func (j *Job) keys(k *source.Keys) {
 	source.Opt(k, &j.Setting, "setting", settings, "absent: building")
 	source.Opt(k, &j.Use, "use", users, "who uses it")
 	source.Opt(k, &j.Crew, "crew", source.Name, "crew of the workspace")
-	source.Opt(k, &j.Bands, "bands", bandNames, "bands the install is for")
+	source.Some(k, &j.Bands, "bands", bandNames, "bands the install is for")
 	cancelled := source.Holds("stage", "cancelled")
 	k.Demand(source.Condition{When: &cancelled, Any: []source.State{source.Given("because")}})
 	if j.Stage.V == "cancelled" && !k.Has("because") {

@@ -144,12 +144,7 @@ var bothEnds = source.Map(source.Exactly(2, source.ListOf(end)), func(v []source
 // mostPlaces bounds a way, which every line through it passes.
 const mostPlaces = 100
 
-var way = source.Map(source.Shaped(source.ListOf(stretch), source.Form{Most: mostPlaces}), func(v []source.Val[Stretch]) ([]source.Val[Stretch], error) {
-	if len(v) > mostPlaces {
-		return nil, fmt.Errorf("%d places were read, %d are the most", len(v), mostPlaces)
-	}
-	return v, nil
-})
+var way = source.AtMost(mostPlaces, source.ListOf(stretch), "places")
 
 var copyAt = source.Map(point, func(p Point) (Copy, error) {
 	return Copy{Point: source.Val[Point]{V: p, Set: true}}, nil
@@ -213,8 +208,8 @@ func (c *CableRow) keys(k *source.Keys) {
 	source.Opt(k, &c.From, "from", ref, "where end 1 goes")
 	source.Opt(k, &c.To, "to", ref, "where end 2 goes")
 	source.Opt(k, &c.Ends, "ends", bothEnds, "from end, to end: a face or the connector part")
-	source.Opt(k, &c.Through, "through", nameList, "adapters at the to end, from cable to port")
-	source.Opt(k, &c.Way, "way", way, "places it passes; absent: straight from place to place")
+	source.Some(k, &c.Through, "through", nameList, "adapters at the to end, from cable to port")
+	source.Some(k, &c.Way, "way", way, "places it passes; absent: straight from place to place")
 	source.Opt(k, &c.LeastBend, "least_bend", source.Length, "tightest bend on its way")
 	source.Opt(k, &c.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &c.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
@@ -228,7 +223,7 @@ func (j *JointRow) keys(k *source.Keys) {
 	j.At = k.At()
 	source.Need(k, &j.A, "a", ref, "one port")
 	source.Need(k, &j.B, "b", ref, "the other")
-	source.Opt(k, &j.Way, "way", way, "places, where it crosses")
+	source.Some(k, &j.Way, "way", way, "places, where it crosses")
 }
 
 func (d *DataRow) keys(k *source.Keys) {
@@ -237,7 +232,7 @@ func (d *DataRow) keys(k *source.Keys) {
 	source.Opt(k, &d.Length, "length", source.Length, "installed length")
 	source.Opt(k, &d.From, "from", ref, "one port")
 	source.Opt(k, &d.To, "to", ref, "the other")
-	source.Opt(k, &d.Way, "way", way, "places it passes")
+	source.Some(k, &d.Way, "way", way, "places it passes")
 	source.Opt(k, &d.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &d.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
 }
@@ -251,7 +246,7 @@ func (w *WireRow) keys(k *source.Keys) {
 	source.Opt(k, &w.Fuse, "fuse", source.Name, "fuse in it")
 	source.Opt(k, &w.FuseFromSource, "fuse_from_source", source.Length, "distance of the fuse from the source")
 	source.Opt(k, &w.Switched, "switched", source.Text, "what switches it")
-	source.Opt(k, &w.Way, "way", way, "places it passes")
+	source.Some(k, &w.Way, "way", way, "places it passes")
 	source.Opt(k, &w.Existing, "existing", source.Flag, "already there")
 	source.Opt(k, &w.SuppliedBy, "supplied_by", source.Text, "who brings it, if not the firm")
 }

@@ -165,14 +165,14 @@ func (t *Through) keys(k *source.Keys) {
 func (a *Area) keys(k *source.Keys) {
 	a.At = k.At()
 	source.Need(k, &a.Name, "name", source.Text, "what it is called")
-	source.Opt(k, &a.ServedBy, "served_by", nameList, "server antennas, or the router's own")
+	source.Some(k, &a.ServedBy, "served_by", nameList, "server antennas, or the router's own")
 	source.Opt(k, &a.Distance, "distance", source.Length, "to the nearest of them")
-	source.Opt(k, &a.Walls, "walls", walls, "walls on the way; absent: an indoor model stands for them")
+	source.Some(k, &a.Walls, "walls", walls, "walls on the way; absent: an indoor model stands for them")
 	source.Opt(k, &a.Floors, "floors", floors, "floors on the way")
 	source.Opt(k, &a.Environment, "environment", environments, "for the indoor model; absent: office")
-	source.Opt(k, &a.Operators, "operators", nameList, "wanted there; absent: all of the plan's")
+	source.Some(k, &a.Operators, "operators", nameList, "wanted there; absent: all of the plan's")
 	source.Opt(k, &a.Target, "target_rsrp_dbm", level, "what is promised")
-	source.Opt(k, &a.Before, "before", befores, "what was received without the install")
+	source.Some(k, &a.Before, "before", befores, "what was received without the install")
 }
 
 func (w *Wall) keys(k *source.Keys) {

@@ -105,7 +105,9 @@ func (c *Case) wanted(a *bom.Area) []string {
 	var out []string
 	if a.Operators.Set {
 		for _, o := range a.Operators.V {
-			out = append(out, o.V)
+			if o.Set {
+				out = append(out, o.V)
+			}
 		}
 		return out
 	}
@@ -141,7 +143,7 @@ func servedBy(a *bom.Area, d *bom.Device) bool {
 
 func before(a *bom.Area, s *bom.Signal) source.Val[float64] {
 	for _, b := range a.Before.V {
-		if b.V.Operator.V == s.Operator.V && b.V.Band.V == s.Band.V {
+		if b.Set && b.V.Operator.V == s.Operator.V && b.V.Band.V == s.Band.V {
 			return b.V.RSRP
 		}
 	}

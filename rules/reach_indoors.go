@@ -2,6 +2,7 @@ package rules
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -25,9 +26,12 @@ func noPath(at source.Place, what string) indoors { return indoors{lacks: []Lack
 // indoors is the path loss from server antenna to phone: with walls, free space
 // and the walls; without, the indoor model, which holds the walls already.
 func (c *Case) indoors(a *bom.Area, f unit.MHz) indoors {
+	unread := slices.IndexFunc(a.Walls.V, func(w source.Val[bom.Wall]) bool { return !w.Set })
 	switch {
 	case !a.Distance.Set:
 		return noPath(a.At, "distance of the area "+a.Name.V)
+	case unread >= 0:
+		return noPath(a.Walls.V[unread].At, "a wall of the area "+a.Name.V+" that can be read")
 	case a.Walls.Set && a.Floors.V > 0:
 		return noPath(a.Floors.At, "loss_db of the floors of the area "+a.Name.V+" among its walls: floors belong to the indoor model, which takes no walls")
 	case a.Walls.Set:

@@ -157,7 +157,30 @@ func Opt[T any](k *Keys, to *Val[T], name string, t Type[T], doc string) {
 	}
 }
 
+// Some reads a list that may be left out, and of one with faults what is good: items
+// that could not be read stay in their places, not set. The list counts as given where
+// one of its items is good.
+func Some[T any](k *Keys, to *Val[[]Val[T]], name string, t Type[[]Val[T]], doc string) {
+	n := k.take(KeyDoc{Name: name, Type: t.Shape, Doc: doc})
+	if n == nil {
+		return
+	}
+	if v, ok := parse(k, n, t); ok {
+		*to = Val[[]Val[T]]{v, n.Value.At, true}
+	} else if v != nil {
+		*to = Val[[]Val[T]]{v, n.Value.At, slices.ContainsFunc(v, func(i Val[T]) bool { return i.Set })}
+	}
+}
+
 func accept[T any](k *Keys, to *Val[T], n *KeyNode, t Type[T]) {
+	if v, ok := parse(k, n, t); ok {
+		*to = Val[T]{v, n.Value.At, true}
+	}
+}
+
+// parse reads the value of a key and reports what is wrong with it; not ok where
+// anything is.
+func parse[T any](k *Keys, n *KeyNode, t Type[T]) (T, bool) {
 	if k.read.layout != nil && t.spell != nil {
 		t.spell(n.Value, k.read.layout)
 	}
@@ -168,9 +191,7 @@ func accept[T any](k *Keys, to *Val[T], n *KeyNode, t Type[T]) {
 		}
 		k.read.add(Problem{b.kind, b.at, n.Name + ": " + b.says, b.do, b.also})
 	}
-	if len(bad) == 0 {
-		*to = Val[T]{v, n.Value.At, true}
-	}
+	return v, len(bad) == 0
 }
 
 // One reads a sub-table that may be left out, and reports whether it is there.

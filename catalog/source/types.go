@@ -111,6 +111,20 @@ func Exactly[T any](n int, t Type[[]Val[T]]) Type[[]Val[T]] {
 	return Shaped(t, Form{Least: n, Most: n})
 }
 
+// AtMost is a list of no more than n items; what says what they are, as in "places". A
+// longer one is none.
+func AtMost[T any](n int, t Type[[]Val[T]], what string) Type[[]Val[T]] {
+	t.Shape.Form = &Form{Most: n}
+	list := t.parse
+	t.parse = func(node *Node) ([]Val[T], []bad) {
+		if len(node.Items) > n {
+			return nil, refuse(node.At, fmt.Sprintf("%d %s were read, %d are the most", len(node.Items), what, n), "leave some out")
+		}
+		return list(node)
+	}
+	return t
+}
+
 func article(noun string) string {
 	if strings.ContainsRune("aeiou", rune(noun[0])) {
 		return "an"
