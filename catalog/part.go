@@ -212,6 +212,7 @@ const (
 
 func (p *Part) ports(k *source.Keys) {
 	source.Named(k, &p.Ports, "port", (*Port).keys, "its connections")
+	k.Bound("port", mostPorts)
 	if n := len(p.Ports); n > mostPorts {
 		k.Fault(p.Ports[mostPorts].At, fmt.Sprintf("the part has %d ports, more than the %d that are read", n, mostPorts), "describe it as several parts")
 		p.Ports = p.Ports[:mostPorts]
@@ -220,6 +221,7 @@ func (p *Part) ports(k *source.Keys) {
 
 func (p *Part) paths(k *source.Keys) {
 	source.Rows(k, &p.Paths, "path", (*Path).keys, "ways through it, each in both directions")
+	k.Bound("path", mostPaths)
 	if n := len(p.Paths); n > mostPaths {
 		k.Fault(p.Paths[mostPaths].At, fmt.Sprintf("the part has %d paths, more than the %d that are read", n, mostPaths), "name several ports in to, or describe it as several parts")
 		p.Paths = p.Paths[:mostPaths]

@@ -18,6 +18,7 @@ type KeyDoc struct {
 	Doc      string
 	Shape    Shape
 	Sub      *Record // what the tables below hold
+	Most     int     // so many tables below at most; 0: no bound
 }
 
 // TypeDoc documents what a value is. Bounds are nil where there is none.
@@ -121,6 +122,14 @@ func OneOfTwo(a, b string) []Condition {
 func (k *Keys) Demand(conditions ...Condition) {
 	if k.rec != nil {
 		k.rec.Conditions = append(k.rec.Conditions, conditions...)
+	}
+}
+
+// Bound documents that there are no more than so many tables under a key; the bind
+// function holds the file to it.
+func (k *Keys) Bound(key string, most int) {
+	if k.rec != nil {
+		k.rec.Key(key).Most = most
 	}
 }
 

@@ -149,9 +149,15 @@ func (w *schemaWriter) key(k *source.KeyDoc) object {
 		out = w.shared("table-"+k.Name, w.table(k.Sub))
 	case source.RowTables:
 		out = object{"type": "array", "items": w.shared("table-"+k.Name, w.table(k.Sub))}
+		if k.Most > 0 {
+			out["maxItems"] = k.Most
+		}
 	case source.NamedTables:
 		out = object{"type": "object", "propertyNames": object{"pattern": source.NamePattern},
 			"additionalProperties": w.shared("table-"+k.Name, w.table(k.Sub))}
+		if k.Most > 0 {
+			out["maxProperties"] = k.Most
+		}
 	default:
 		out = w.value(&k.Type)
 	}
