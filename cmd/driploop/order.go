@@ -54,10 +54,10 @@ func (c *Command) orderRead(cmd *cobra.Command, args []string, until, file strin
 	}
 	if wrong == nil || held {
 		text, err := show.OrderedText(page, orders, moved)
-		if err == nil {
-			err = c.emit(text)
-		}
 		if err != nil {
+			return failure{err}
+		}
+		if err := c.emit(text); err != nil {
 			return err
 		}
 	}

@@ -3,6 +3,7 @@ package filled
 import (
 	"errors"
 	"fmt"
+	"math"
 	"slices"
 	"strconv"
 	"strings"
@@ -162,6 +163,10 @@ func (o *orderer) row(out *show.Ordered, r *bom.FilledRow, at string) {
 		o.faults.add("%s: %s is before the order was sent, on %s", r.Entry(show.ColumnPromised).Where, l.Due, out.Sent)
 	}
 	if !o.amount(&l, r, at) {
+		return
+	}
+	if l.Pack.Length > 0 && int64(l.Price) > math.MaxInt64/2/int64(l.Pack.Length) {
+		o.faults.add("%s: %s for %s is no price", at, l.Price, l.Pack)
 		return
 	}
 	if l.Packs == 0 {
