@@ -193,10 +193,14 @@ func in(dir string, args ...string) []string {
 }
 
 // A count sheet that goes out, is filled in with what the book has, and comes back
-// changes no finding but those on old counts, whichever form it has.
+// changes no finding, whichever form it has and whatever its lengths are in.
 func TestCountRoundTrip(t *testing.T) {
-	for _, form := range []string{"csv", "xlsx"} {
+	for _, form := range []string{"csv", "xlsx", "csv in ft", "xlsx in ft"} {
 		dir := demoCopy(t)
+		form, feet := strings.CutSuffix(form, " in ft")
+		if feet {
+			inFeet(t, dir)
+		}
 		file := filepath.Join(t.TempDir(), "count."+form)
 		before := ok(t, in(dir, "inspect")...)
 		ok(t, in(dir, "stock", "--sheet", file)...)
@@ -233,6 +237,18 @@ func TestCountRoundTrip(t *testing.T) {
 	}
 }
 
+// inFeet makes a workspace show lengths in feet.
+func inFeet(t *testing.T, dir string) {
+	t.Helper()
+	text := bytes.Replace(read(t, dir, "driploop.toml"), []byte("lengths  = \"m\""), []byte("lengths  = \"ft\""), 1)
+	if !bytes.Contains(text, []byte("\"ft\"")) {
+		t.Fatal("the workspace is in metres all the same")
+	}
+	if err := os.WriteFile(filepath.Join(dir, "driploop.toml"), text, 0o666); err != nil {
+		t.Fatal(err)
+	}
+}
+
 // copyBook fills a table in with what the book has.
 func copyBook(t *testing.T, file string) {
 	t.Helper()
@@ -244,13 +260,20 @@ func copyBook(t *testing.T, file string) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	out := "where;part;tag;loose;left m;how\n"
+	left := "left m"
+	if s.Has(left) != nil {
+		left = "left ft"
+	}
+	out := "where;part;tag;loose;" + left + ";how\n"
 	for i := range s.Rows {
 		r := &s.Rows[i]
 		is := r.Entry("by the book").Text
 		cells := []string{r.Entry("where").Text, r.Entry("part").Text, r.Entry("tag").Text, is, "", ""}
 		if cells[2] != "" {
-			cells[3], cells[4], cells[5] = "", strings.ReplaceAll(is, ".", ","), "tape"
+			cells[3], cells[4], cells[5] = "", is, "tape"
+			if left == "left m" { // in feet it has three decimals, and behind a comma these may be thousands
+				cells[4] = strings.ReplaceAll(is, ".", ",")
+			}
 		}
 		out += strings.Join(cells, ";") + "\r\n"
 	}
