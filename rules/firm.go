@@ -27,7 +27,9 @@ type Firm struct {
 	Skipped   []source.Entry // files that a pattern names and that are not read
 
 	noShelf  bool
-	progress Progress // or nil
+	progress Progress   // or nil
+	docs     *docs      // shared with another revision of the workspace, or nil
+	books    stockFiles // that Stock was added up from
 	origin   Origin
 	weights  map[string]*Override
 	fits     sync.Map // *catalog.Part to its fitted curve
@@ -49,6 +51,8 @@ type Options struct {
 	LimitsFrom source.Tree // or nil: whose profiles, codes, house figures, weights and defaults hold
 	StockFrom  source.Tree // or nil: whose stock sheets and orders are the shelf
 	Progress   Progress    // or nil
+
+	docs *docs // what several revisions share, or nil
 }
 
 // ErrNoWorkspace is returned where a tree has no driploop.toml.
@@ -57,7 +61,7 @@ var ErrNoWorkspace = errors.New("there is no " + WorkspaceFile + " here; a works
 // Load reads a workspace. What is wrong with its files is in Problems; an error
 // means that a tree cannot be read or is no workspace.
 func Load(t source.Tree, o Options) (*Firm, error) {
-	f := &Firm{Tree: t, Today: o.Today, noShelf: o.NoShelf, progress: o.Progress, Offers: &catalog.Offers{},
+	f := &Firm{Tree: t, Today: o.Today, noShelf: o.NoShelf, progress: o.Progress, docs: o.docs, Offers: &catalog.Offers{},
 		origin: Origin{At: t.Name(), LimitsFrom: t.Name(), StockFrom: t.Name()}}
 	own, err := f.open(t, "")
 	if err != nil {
@@ -86,6 +90,7 @@ func Load(t source.Tree, o Options) (*Firm, error) {
 		w := &f.Workspace.Weights[i]
 		f.weights[w.Rule] = w
 	}
+	f.books = stock
 	f.Stock = catalog.Book(&f.Workspace.Premises, stock.sheets, stock.orders, f.Catalog.Look, f.Today)
 	return f, nil
 }

@@ -99,7 +99,7 @@ func (l *loader) read(entries []source.Entry) []*source.Doc {
 	docs := make([]*source.Doc, len(entries))
 	problems := make([][]source.Problem, len(entries))
 	eachSideBySide(context.Background(), len(entries), func(i int) {
-		docs[i], problems[i] = readDoc(l.tree, entries[i])
+		docs[i], problems[i] = l.firm.docs.read(l.tree, entries[i])
 	})
 	var out []*source.Doc
 	for i := range docs {

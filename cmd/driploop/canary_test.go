@@ -149,6 +149,11 @@ func (s *strange) reads(root string, revisions ...string) (all string) {
 	if status > statusHeld {
 		s.t.Errorf("inspect --staged: %s", messages)
 	}
+	all += out + messages
+	out, messages, status = s.soon([]string{"redline", "--root", root, "HEAD", "--as", "markdown"})
+	if status > statusHeld {
+		s.t.Errorf("redline HEAD: %s", messages)
+	}
 	return all + out + messages
 }
 

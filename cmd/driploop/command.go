@@ -134,7 +134,7 @@ be used. 3: the tool failed.`,
 	f.BoolVar(&c.shared.quiet, "quiet", false, "no messages, and of findings only holds")
 	root.AddCommand(
 		c.start(), c.inspect(), c.budget(), c.takeoff(),
-		c.cuts(), c.purchase(), c.pick(), c.stock(),
+		c.cuts(), c.purchase(), c.pick(), c.stock(), c.redline(),
 		c.basis(), c.parts(),
 		c.dress(), c.hook(),
 		c.completion(),

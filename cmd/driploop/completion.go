@@ -64,6 +64,7 @@ var forms = map[string][]string{
 	"parts":    {"text", "json", "toml"},
 	"pick":     {"text", "json", "xlsx", "html"},
 	"purchase": {"text", "json", "csv", "xlsx"},
+	"redline":  {"text", "json", "markdown"},
 	"stock":    {"text", "json", "csv", "xlsx"},
 	"takeoff":  {"text", "json", "csv", "markdown", "xlsx"},
 }

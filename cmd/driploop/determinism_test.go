@@ -18,6 +18,7 @@ func TestSameBytes(t *testing.T) {
 		"purchase": {{}},
 		"cuts":     {{}},
 		"pick":     {{"quay-lane"}},
+		"redline":  {{"HEAD"}},
 		"stock":    {{}},
 		"basis":    {{}, {"us-fixed-wideband"}},
 		"parts":    {{"AMP-W-65"}},

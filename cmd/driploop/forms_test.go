@@ -140,7 +140,11 @@ var plainFigure = regexp.MustCompile(`^-?\d+(\.\d+)?$`)
 // a file.
 var ownHTML = regexp.MustCompile(`^(<details>\n<summary>[A-Za-z0-9 ,]+</summary>|</details>)\n?$`)
 
+// ownMark is the mark by which a comment is found again; it ends the page.
+var ownMark = regexp.MustCompile(`\n<!-- driploop-redline [0-9a-f]{24} -->\n$`)
+
 func inMarkdown(page string) string {
+	page = ownMark.ReplaceAllString(page, "")
 	src := []byte(page)
 	found := ""
 	doc := goldmark.New(goldmark.WithExtensions(extension.GFM, extension.Footnote)).Parser().Parse(text.NewReader(src))

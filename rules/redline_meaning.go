@@ -1,0 +1,326 @@
+package rules
+
+import (
+	"fmt"
+	"slices"
+	"strings"
+
+	"driploop/bom"
+	"driploop/catalog"
+	"driploop/catalog/source"
+	"driploop/catalog/unit"
+)
+
+// meaning compares values of two files by what they mean: "60 ft" is "18.288 m", 10
+// is 10.0, and a name that was changed is the name that it has now.
+type meaning struct {
+	renames bom.Renames
+	refs    bool // strings may be references: the value stands under a key that takes them
+}
+
+// refKeys are the keys of a plan whose strings name devices and lines.
+var refKeys = map[string]bool{"from": true, "to": true, "on": true, "a": true, "b": true, "served_by": true, "like": true, "cable": true}
+
+func (m meaning) same(a, b *source.Node) bool {
+	switch {
+	case a == nil || b == nil:
+		return a == b
+	case isNumber(a) && isNumber(b):
+		return numberOf(a) == numberOf(b)
+	case a.Kind != b.Kind || a.Kind == source.Refused:
+		return false
+	}
+	switch a.Kind {
+	case source.String:
+		return a.Str == b.Str || m.refs && m.nameNow(a.Str) == b.Str || sameQuantity(a.Str, b.Str)
+	case source.Array:
+		return slices.EqualFunc(a.Items, b.Items, m.same)
+	case source.Table:
+		if len(a.Keys) != len(b.Keys) {
+			return false
+		}
+		for _, k := range a.Keys {
+			if other := b.Get(k.Name); other == nil || !m.under(k.Name).same(k.Value, other.Value) {
+				return false
+			}
+		}
+		return true
+	}
+	return source.Same(a, b)
+}
+
+// under is the comparison of what stands under a key.
+func (m meaning) under(key string) meaning {
+	m.refs = len(m.renames) > 0 && refKeys[key]
+	return m
+}
+
+// nameNow is a reference under the names of the head: "donor.rf", or "cable.C1" of a
+// waiver.
+func (m meaning) nameNow(s string) string {
+	name, rest, dotted := strings.Cut(s, ".")
+	if now := m.renames.Of(name); now != name {
+		if dotted {
+			return now + "." + rest
+		}
+		return now
+	}
+	return m.renames.On(s)
+}
+
+func isNumber(n *source.Node) bool { return n.Kind == source.Integer || n.Kind == source.Float }
+
+func numberOf(n *source.Node) float64 {
+	if n.Kind == source.Integer {
+		return float64(n.Int)
+	}
+	return n.Float
+}
+
+// sameQuantity reports two spellings of one quantity, connector or amount of money.
+func sameQuantity(a, b string) bool {
+	return both(a, b, unit.ParseLength) || both(a, b, unit.ParseTemperature) || both(a, b, unit.ParseSpeed) || both(a, b, unit.ParseMoney) ||
+		both(a, b, func(s string) (float64, error) { g, err := unit.ParseGauge(s); return g.MM2, err }) || both(a, b, catalog.ParseFace)
+}
+
+func both[T comparable](a, b string, parse func(string) (T, error)) bool {
+	x, err := parse(a)
+	if err != nil {
+		return false
+	}
+	y, err := parse(b)
+	return err == nil && x == y
+}
+
+// mostValue is how long a value is shown, in characters.
+const mostValue = 120
+
+// valueText writes a value as a file would, on one line.
+func valueText(n *source.Node) string {
+	var b strings.Builder
+	writeValue(&b, n)
+	s := []rune(b.String())
+	if len(s) > mostValue {
+		return string(s[:mostValue-1]) + "…"
+	}
+	return string(s)
+}
+
+func writeValue(b *strings.Builder, n *source.Node) {
+	if b.Len() > 4*mostValue {
+		return
+	}
+	switch n.Kind {
+	case source.Table:
+		b.WriteString("{ ")
+		for i, k := range n.Keys {
+			if i > 0 {
+				b.WriteString(", ")
+			}
+			b.WriteString(k.Name + " = ")
+			if private[k.Name] {
+				b.WriteString("…")
+			} else {
+				writeValue(b, k.Value)
+			}
+		}
+		b.WriteString(" }")
+	case source.Array:
+		b.WriteString("[")
+		for i, x := range n.Items {
+			if i > 0 {
+				b.WriteString(", ")
+			}
+			writeValue(b, x)
+		}
+		b.WriteString("]")
+	case source.String:
+		b.WriteString(n.Str)
+	default:
+		b.WriteString(n.At.Text())
+	}
+}
+
+// private are the keys whose values are nobody's business but the firm's.
+var private = map[string]bool{"serial": true, "serials": true, "address": true, "account": true, "contact": true}
+
+// priceKeys tell what something costs.
+var priceKeys = map[string]bool{"price": true, "breaks": true, "freight": true, "free_over": true, "least_order": true}
+
+// differ collects the changes of one file.
+type differ struct {
+	meaning
+	file   string
+	charge func(table, key string) Charge
+	out    []Change
+}
+
+func (d *differ) add(c Change) {
+	if c.File == "" {
+		c.File = d.file
+	}
+	c.Price = priceKeys[c.Key]
+	if private[c.Key] {
+		if c.Was != "" {
+			c.Was = "…"
+		}
+		if c.Now != "" {
+			c.Now = "…"
+		}
+	}
+	d.out = append(d.out, c)
+}
+
+// table compares the keys of two tables that are one thing.
+func (d *differ) table(table, on string, a, b *source.Node) {
+	var names []string
+	for _, n := range []*source.Node{b, a} {
+		if n == nil {
+			continue
+		}
+		for _, k := range n.Keys {
+			if !slices.Contains(names, k.Name) {
+				names = append(names, k.Name)
+			}
+		}
+	}
+	for _, name := range names {
+		x, y := a.Get(name), b.Get(name)
+		c := Change{Charge: d.charge(table, name), On: on, Key: name, How: "changed"}
+		switch {
+		case x == nil:
+			c.How, c.Now, c.Line = "added", valueText(y.Value), y.At.Line()
+		case y == nil:
+			c.How, c.Was, c.Line = "gone", valueText(x.Value), x.At.Line()
+		case d.under(name).same(x.Value, y.Value):
+			continue
+		default:
+			c.Was, c.Now, c.Line = valueText(x.Value), valueText(y.Value), y.At.Line()
+		}
+		d.add(c)
+	}
+}
+
+// named compares tables whose keys are IDs.
+func (d *differ) named(table string, a, b *source.KeyNode) {
+	x, y := tableOf(a), tableOf(b)
+	seen := map[string]bool{}
+	for _, k := range keysIn(x) {
+		now := d.renames.Of(k.Name)
+		other := y.Get(now)
+		if other == nil {
+			d.add(Change{Charge: d.charge(table, ""), On: table + "." + k.Name, How: "gone", Was: valueText(k.Value), Line: k.At.Line()})
+			continue
+		}
+		seen[now] = true
+		if now != k.Name {
+			d.add(Change{Charge: d.charge(table, ""), On: table + "." + now, How: "renamed", Was: k.Name, Now: now, Line: other.At.Line()})
+		}
+		d.table(table, table+"."+now, k.Value, other.Value)
+	}
+	for _, k := range keysIn(y) {
+		if !seen[k.Name] && x.Get(k.Name) == nil {
+			d.add(Change{Charge: d.charge(table, ""), On: table + "." + k.Name, How: "added", Now: valueText(k.Value), Line: k.At.Line()})
+		}
+	}
+}
+
+func tableOf(k *source.KeyNode) *source.Node {
+	if k == nil {
+		return nil
+	}
+	return k.Value
+}
+
+func keysIn(n *source.Node) []*source.KeyNode {
+	if n == nil || n.Kind != source.Table {
+		return nil
+	}
+	return n.Keys
+}
+
+func itemsIn(k *source.KeyNode) []*source.Node {
+	if k == nil || k.Value.Kind != source.Array {
+		return nil
+	}
+	return k.Value.Items
+}
+
+// rowPair is a row as it was and as it is, with its number in the file; one of the two
+// may be missing.
+type rowPair struct {
+	was, now *source.Node
+	n        int // from 1, in the head, or in the base where it is gone
+}
+
+// rowsOf pairs the rows of two lists that are not the same: by what names them, then
+// what is left over is gone or added.
+func (d *differ) rowsOf(a, b []*source.Node, by ...string) []rowPair {
+	usedA, usedB := make([]bool, len(a)), make([]bool, len(b))
+	match := func(same func(x, y *source.Node) bool, note func(i, j int)) {
+		for i, x := range a {
+			for j := range b {
+				if !usedA[i] && !usedB[j] && same(x, b[j]) {
+					usedA[i], usedB[j] = true, true
+					note(i, j)
+				}
+			}
+		}
+	}
+	var out []rowPair
+	match(d.same, func(i, j int) {})
+	match(func(x, y *source.Node) bool { return d.sameName(x, y, by) }, func(i, j int) { out = append(out, rowPair{a[i], b[j], j + 1}) })
+	for i := range a {
+		if !usedA[i] {
+			out = append(out, rowPair{was: a[i], n: i + 1})
+		}
+	}
+	for j := range b {
+		if !usedB[j] {
+			out = append(out, rowPair{now: b[j], n: j + 1})
+		}
+	}
+	return out
+}
+
+func (d *differ) sameName(x, y *source.Node, by []string) bool {
+	for _, k := range by {
+		if !d.under(k).same(tableOf(x.Get(k)), tableOf(y.Get(k))) {
+			return false
+		}
+	}
+	return len(by) > 0
+}
+
+// rows compares lists of rows.
+func (d *differ) rows(table string, a, b *source.KeyNode, by ...string) {
+	for _, p := range d.rowsOf(itemsIn(a), itemsIn(b), by...) {
+		on := fmt.Sprintf("%s.%d", table, p.n)
+		if name := rowName(p, by); name != "" {
+			on = table + " " + name
+		}
+		switch {
+		case p.was == nil:
+			d.add(Change{Charge: d.charge(table, ""), On: on, How: "added", Now: valueText(p.now), Line: p.now.At.Line()})
+		case p.now == nil:
+			d.add(Change{Charge: d.charge(table, ""), On: on, How: "gone", Was: valueText(p.was), Line: p.was.At.Line()})
+		default:
+			d.table(table, on, p.was, p.now)
+		}
+	}
+}
+
+// rowName puts what names a row into words: "northbank B12".
+func rowName(p rowPair, by []string) string {
+	n := p.now
+	if n == nil {
+		n = p.was
+	}
+	var out []string
+	for _, k := range by {
+		if v := n.Get(k); v != nil {
+			out = append(out, valueText(v.Value))
+		}
+	}
+	return strings.Join(out, " ")
+}
