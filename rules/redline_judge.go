@@ -187,6 +187,10 @@ var farOff = unit.Date{Year: 9999, Month: 12, Day: 31}
 // buyNodes is how far the search for the least purchase goes.
 const buyNodes = 20000
 
+// leastPrivate is how long a number or address must be to be looked for: shorter ones
+// would take figures away.
+const leastPrivate = 4
+
 // valueAt is what a takeoff is worth at the cheapest offers of a firm, and the parts
 // that have none.
 func valueAt(f *Firm, t *bom.Takeoff) (sum unit.Money, none []string) {
@@ -234,5 +238,5 @@ func (c *comparison) private() {
 	delete(all, "")
 	c.out.Private = slices.Sorted(maps.Keys(all))
 	slices.SortStableFunc(c.out.Private, func(a, b string) int { return cmp.Compare(len(b), len(a)) }) // the longest first, for one may hold another
-	c.out.Private = slices.DeleteFunc(c.out.Private, func(s string) bool { return len(strings.TrimSpace(s)) < 3 })
+	c.out.Private = slices.DeleteFunc(c.out.Private, func(s string) bool { return len(strings.TrimSpace(s)) < leastPrivate })
 }

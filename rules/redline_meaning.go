@@ -118,7 +118,7 @@ func writeValue(b *strings.Builder, n *source.Node) {
 				b.WriteString(", ")
 			}
 			b.WriteString(k.Name + " = ")
-			if private[k.Name] {
+			if private[k.Name] || priceKeys[k.Name] { // a row as a whole is shown to everybody
 				b.WriteString("…")
 			} else {
 				writeValue(b, k.Value)

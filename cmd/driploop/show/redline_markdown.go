@@ -20,7 +20,7 @@ const (
 // the end.
 func (p *RedlinePage) Markdown(mark string) []byte {
 	m := &inspectMD{room: MostMarkdown - redEnd - len(p.Seen)*2}
-	m.add("**" + string(Prose(clip(p.Verdict, mostText))) + "**\n")
+	m.add("## " + string(Prose(clip(p.Verdict, mostText))) + "\n")
 	for _, l := range p.Lead {
 		line := "\n" + string(Prose(clip(l, mostText))) + "\n"
 		if MostMarkdown-m.room+len(line) > mostLead+redEnd {
