@@ -1,6 +1,10 @@
 package bom
 
-import "driploop/catalog/source"
+import (
+	"iter"
+
+	"driploop/catalog/source"
+)
 
 // Crossing is where a line goes between outdoors and indoors.
 type Crossing struct {
@@ -24,18 +28,34 @@ type station struct {
 // Crossings lists where a line crosses, in its direction. An entry is the
 // boundary itself and belongs to neither side.
 func (l *Line) Crossings() []Crossing {
-	var out []Crossing
-	var last station
-	for _, s := range l.stations() {
-		if !s.place.Outdoors() && !s.place.Indoors() {
-			continue
-		}
-		if last.place != nil && last.place.Outdoors() != s.place.Outdoors() {
-			out = append(out, l.crossing(last, s))
-		}
-		last = s
+	n := 0
+	for range l.crossed() {
+		n++
+	}
+	if n == 0 {
+		return nil
+	}
+	out := make([]Crossing, 0, n)
+	for from, to := range l.crossed() {
+		out = append(out, l.crossing(from, to))
 	}
 	return out
+}
+
+// crossed yields the stations on either side of each crossing.
+func (l *Line) crossed() iter.Seq2[station, station] {
+	return func(yield func(from, to station) bool) {
+		var last station
+		for s := range l.stations {
+			if !s.place.Outdoors() && !s.place.Indoors() {
+				continue
+			}
+			if last.place != nil && last.place.Outdoors() != s.place.Outdoors() && !yield(last, s) {
+				return
+			}
+			last = s
+		}
+	}
 }
 
 func (l *Line) crossing(from, to station) Crossing {
@@ -43,7 +63,6 @@ func (l *Line) crossing(from, to station) Crossing {
 	if from.place.Indoors() {
 		c.Out, c.In, c.Outer, c.Inner, c.In1st = to.place, from.place, to.step, from.step, true
 	}
-	c.On, c.At = l.On(), l.At()
 	for i := from.step; i <= to.step && i < len(l.Steps); i++ {
 		switch s := l.Steps[i]; {
 		case s.Cable != nil:
@@ -52,6 +71,9 @@ func (l *Line) crossing(from, to station) Crossing {
 		case s.Mate != nil && s.Mate.Joint != nil && s.Contact != nil:
 			c.On, c.At, c.There = s.Mate.On(), s.Mate.At, s.Mate.existing()
 		}
+	}
+	if c.On == "" {
+		c.On, c.At = l.On(), l.At()
 	}
 	return c
 }
@@ -75,44 +97,34 @@ func (m *Mate) On() string {
 	return m.A.On()
 }
 
-// stations lists the places that the line passes, its ends included.
-func (l *Line) stations() []station {
-	var out []station
-	add := func(p *Place, step int) {
-		if p != nil {
-			out = append(out, station{p, step})
-		}
-	}
-	if l.From.Device != nil {
-		add(l.From.Device.Place, 0)
+// stations yields the places that the line passes, its ends included.
+func (l *Line) stations(yield func(station) bool) {
+	at := func(p *Place, step int) bool { return p == nil || yield(station{p, step}) }
+	if l.From.Device != nil && !at(l.From.Device.Place, 0) {
+		return
 	}
 	for i, s := range l.Steps {
+		var way []Section
 		switch {
 		case s.Cable != nil:
-			for _, leg := range turnWay(s.Cable.Way, s.Reverse) {
-				add(leg.Place, i)
-			}
+			way = s.Cable.Way
 		case s.Mate != nil && len(s.Mate.Way) > 0:
-			for _, leg := range turnWay(s.Mate.Way, s.Reverse) {
-				add(leg.Place, i)
-			}
+			way = s.Mate.Way
 		case s.Pass != nil && s.Pass.Device != nil:
-			add(s.Pass.Device.Place, i)
+			if !at(s.Pass.Device.Place, i) {
+				return
+			}
+		}
+		for k := range way {
+			if s.Reverse {
+				k = len(way) - 1 - k
+			}
+			if !at(way[k].Place, i) {
+				return
+			}
 		}
 	}
 	if l.To.Device != nil {
-		add(l.To.Device.Place, len(l.Steps))
+		at(l.To.Device.Place, len(l.Steps))
 	}
-	return out
-}
-
-func turnWay(way []Section, back bool) []Section {
-	if !back {
-		return way
-	}
-	out := make([]Section, len(way))
-	for i, leg := range way {
-		out[len(way)-1-i] = leg
-	}
-	return out
 }

@@ -111,3 +111,24 @@ func TestPlacesInsideAndOut(t *testing.T) {
 		t.Error("no place is on neither side")
 	}
 }
+
+// However often a line goes in and out, the list of its crossings is made in one piece,
+// in either direction of the way.
+func TestCrossingsInOnePiece(t *testing.T) {
+	way := strings.TrimSuffix(strings.Repeat(`"p","q",`, 50), ",")
+	for _, ends := range []string{`from="amp.server",to="y.rf"`, `from="y.rf",to="amp.server"`} {
+		g := lay(t, "place.p.kind=\"outdoor\"\nplace.q.kind=\"indoor\"\ndevice.amp.part=\"AMP\"\ndevice.y.part=\"YAGI\"\n"+
+			"cable.w={part=\"J-NN\","+ends+",way=["+way+"]}\n")
+		for _, l := range g.Lines().All {
+			if l.To.Device == nil || l.From.Device == nil {
+				continue
+			}
+			if n := len(l.Crossings()); n != 99 {
+				t.Errorf("%s: %d crossings", ends, n)
+			}
+			if n := testing.AllocsPerRun(20, func() { l.Crossings() }); n > 4 {
+				t.Errorf("%s: %v pieces of memory", ends, n)
+			}
+		}
+	}
+}

@@ -13,11 +13,18 @@ func Nearest(got string, known []string) string {
 	if len(got) > 128 {
 		return ""
 	}
-	sorted := append([]string(nil), known...)
-	sort.Strings(sorted)
+	x := []rune(strings.ToLower(got))
 	best, name := allowedDistance(got)+1, ""
-	for _, k := range sorted {
-		if d := distance(strings.ToLower(got), strings.ToLower(k), best); d < best {
+	var c comparison
+	for _, k := range known {
+		limit := best // what is as near as the best goes before it in the alphabet or is of no use
+		if name != "" && k < name {
+			limit++
+		}
+		if n := utf8.RuneCountInString(k); abs(len(x)-n) >= limit {
+			continue
+		}
+		if d := c.distance(x, []rune(strings.ToLower(k)), limit); d < limit {
 			best, name = d, k
 		}
 	}
@@ -35,19 +42,26 @@ func allowedDistance(s string) int {
 	}
 }
 
+// comparison is the room that comparing names takes, used again for each.
+type comparison struct{ prev2, prev, cur []int }
+
 // distance counts insertions, deletions, replacements and swaps of neighbours
 // (optimal string alignment); it gives up with limit once that is reached.
-func distance(a, b string, limit int) int {
-	x, y := []rune(a), []rune(b)
+func (c *comparison) distance(x, y []rune, limit int) int {
 	if abs(len(x)-len(y)) >= limit {
 		return limit
 	}
-	prev2, prev, cur := make([]int, len(y)+1), make([]int, len(y)+1), make([]int, len(y)+1)
-	for j := range prev {
+	if len(c.cur) <= len(y) {
+		c.prev2, c.prev, c.cur = make([]int, 2*len(y)+1), make([]int, 2*len(y)+1), make([]int, 2*len(y)+1)
+	}
+	prev2, prev, cur := c.prev2, c.prev, c.cur
+	for j := range len(y) + 1 {
 		prev[j] = j
 	}
+	before := 0 // the least of the row before
 	for i := 1; i <= len(x); i++ {
 		cur[0] = i
+		least := i
 		for j := 1; j <= len(y); j++ {
 			same := 1
 			if x[i-1] == y[j-1] {
@@ -57,7 +71,12 @@ func distance(a, b string, limit int) int {
 			if i > 1 && j > 1 && x[i-1] == y[j-2] && x[i-2] == y[j-1] {
 				cur[j] = min(cur[j], prev2[j-2]+1)
 			}
+			least = min(least, cur[j])
 		}
+		if least >= limit && before >= limit {
+			return limit // a row follows from the two before it and is never less
+		}
+		before = least
 		prev2, prev, cur = prev, cur, prev2
 	}
 	return min(prev[len(y)], limit)
