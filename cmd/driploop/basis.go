@@ -39,11 +39,7 @@ it: inspect stays the judge.
 			if schema {
 				return c.schema(args)
 			}
-			form, err := c.form("text", "json", "markdown")
-			if err != nil {
-				return err
-			}
-			page, err := c.page()
+			form, page, err := c.layout("text", "json", "markdown")
 			if err != nil {
 				return err
 			}

@@ -20,11 +20,7 @@ arrives there. --terms shows every addend.`,
 		Example: "  driploop budget quay-lane --terms",
 		Args:    cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "csv", "markdown")
-			if err != nil {
-				return err
-			}
-			page, err := c.page()
+			form, page, err := c.layout("text", "json", "csv", "markdown")
 			if err != nil {
 				return err
 			}

@@ -170,6 +170,14 @@ func (c *Command) form(forms ...string) (string, error) {
 	return "", fmt.Errorf("--as %s: this command has %s", c.shared.as, joinWords(forms))
 }
 
+// layout is the form asked for and the page it is laid out on.
+func (c *Command) layout(forms ...string) (form string, page show.Page, err error) {
+	if form, err = c.form(forms...); err == nil {
+		page, err = c.page()
+	}
+	return form, page, err
+}
+
 func joinWords(words []string) string {
 	out := ""
 	for i, w := range words {

@@ -21,11 +21,7 @@ The status is 1 where a hold stands. In sarif and annotations the names of files
 relative to the top of the repository that holds the workspace.`,
 		Example: "  driploop inspect quay-lane\n  driploop inspect --at HEAD --as json",
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "sarif", "markdown", "annotations", "junit")
-			if err != nil {
-				return err
-			}
-			page, err := c.page()
+			form, page, err := c.layout("text", "json", "sarif", "markdown", "annotations", "junit")
 			if err != nil {
 				return err
 			}

@@ -22,11 +22,7 @@ With --as toml and the ID of one part it prints a block to paste into a plan. It
 works in any folder; what is on hand is only known inside a workspace.`,
 		Example: "  driploop parts N female B12\n  driploop parts GEN-CX-10 --as toml",
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "toml")
-			if err != nil {
-				return err
-			}
-			page, err := c.page()
+			form, page, err := c.layout("text", "json", "toml")
 			if err != nil {
 				return err
 			}

@@ -29,11 +29,7 @@ where, waste included) or left (what is on the reel after it).`,
 		Example: "  driploop pick quay-lane",
 		Args:    cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "xlsx", "html")
-			if err != nil {
-				return err
-			}
-			page, err := c.page()
+			form, page, err := c.layout("text", "json", "xlsx", "html")
 			if err != nil {
 				return err
 			}

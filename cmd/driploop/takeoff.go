@@ -19,11 +19,7 @@ fuses, conductors, consumables and extras. What exists, or somebody else brings,
 is left out; so are cancelled jobs.`,
 		Example: "  driploop takeoff quay-lane eel-van --as csv",
 		RunE: func(cmd *cobra.Command, args []string) error {
-			form, err := c.form("text", "json", "csv", "markdown", "xlsx")
-			if err != nil {
-				return err
-			}
-			page, err := c.page()
+			form, page, err := c.layout("text", "json", "csv", "markdown", "xlsx")
 			if err != nil {
 				return err
 			}
