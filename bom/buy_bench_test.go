@@ -69,6 +69,33 @@ func TestBuyLarge(t *testing.T) {
 	}
 }
 
+// Where many vendors sell a lot, and many pieces are cut, it ends, and what it says of
+// the price is true.
+func TestBuyOfMany(t *testing.T) {
+	var text strings.Builder
+	for i := range 40 {
+		fmt.Fprintf(&text, ":v%d %d\n", i, 5+i*7%11)
+		for j := range 5 {
+			fmt.Fprintf(&text, "v%d CX*%dm %d.00 3d\nv%d NC*%d %d.00 3d\n", i, 50+(i*j)%9*25, 60+(i*13+j*29)%17*20, i, 1+(i+j)%25, 2+(i*5+j)%40)
+		}
+	}
+	lengths := make([]float64, 500)
+	for i := range lengths {
+		lengths[i] = float64(30+i*37%400) / 10
+	}
+	job := jobOf("a", "review", "south", "2026-12-22", 300, lengths...)
+	stock := &catalog.Stock{Today: date("2026-12-01")}
+	a, offers := bom.Allocate([]*bom.Demand{job}, stock, yard(), &bom.House{}), market(text.String())
+	p := bom.Buy(a, offers, partOf, bom.Terms{})
+	if err := checkBuy(p, a, offers, 0); err != nil {
+		t.Fatal(err)
+	}
+	if p.Proved {
+		t.Error("proved, so it was no hard case")
+	}
+	t.Logf("%d lines, %s, at least %s", len(p.Rows), p.Total, p.Bound)
+}
+
 func benchmarkBuy(b *testing.B, parts, pieces int) {
 	a, offers, look := largeRun(1, parts, pieces)
 	for b.Loop() {

@@ -17,6 +17,10 @@ type floor struct {
 // cases goes through the cases of the gates from at on.
 func (s *search) cases(at int, closed uint64, floors []floor, fee unit.Money) {
 	picks, least := s.all(closed)
+	if picks == nil && s.gaveUp {
+		_, least = s.all(0)
+		s.open = min(s.open, fee+least)
+	}
 	if picks == nil || fee+least >= s.cost {
 		return
 	}

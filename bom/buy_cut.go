@@ -245,9 +245,16 @@ func (w *cutWant) name() string {
 
 // stocks lists the stocks that a piece may be cut from.
 func (w *cutWant) stocks(from []cutStock) []int {
+	here, sold := map[int]bool{}, map[*good]bool{}
+	for _, at := range w.on {
+		here[at] = true
+	}
+	for _, g := range w.from {
+		sold[g] = true
+	}
 	on := []int{}
 	for i, s := range from {
-		if s.supply >= 0 && slices.Contains(w.on, s.supply) || s.supply < 0 && slices.Contains(w.from, s.good) {
+		if s.supply >= 0 && here[s.supply] || s.supply < 0 && sold[s.good] {
 			on = append(on, i)
 		}
 	}

@@ -23,10 +23,13 @@ type search struct {
 	cost   unit.Money
 	open   unit.Money   // the least that what was not decided may cost
 	most   int          // nodes in all; one case has a part of them
-	nodes  int          // left
+	nodes  int          // left; to buy a lot with other vendors takes some for each offer
 	limits []unit.Money // by lot, while they are looked for: up to which price its ways matter
 	lists  [][]*pick    // by lot: dearer ways to buy it
 	whole  []unit.Money // by lot: below this price its list is complete
+
+	planned int  // of cuts, with vendors left out
+	gaveUp  bool // some were not planned for it
 }
 
 // nothing is above every cost of a purchase.
@@ -71,10 +74,13 @@ func (s *search) cheapest(l *lot, closed uint64) chosen {
 		i := slices.Index(s.gates, g.vendor)
 		return i >= 0 && closed>>i&1 == 1
 	}
+	s.nodes -= 4 * len(l.goods)
 	var c chosen
-	if l.cut != nil {
+	switch {
+	case l.cut != nil && closed != 0 && s.tired(l.cut):
+	case l.cut != nil:
 		c = s.b.cheapestCut(l.cut, l, shut)
-	} else {
+	default:
 		byGood := make([]bool, len(l.goods))
 		for i, g := range l.goods {
 			byGood[i] = shut(g)
@@ -86,6 +92,18 @@ func (s *search) cheapest(l *lot, closed uint64) chosen {
 	}
 	l.known[closed] = c
 	return c
+}
+
+// mostCutWork is how much is planned to cut with vendors left out, in pieces times what
+// they may be cut from.
+const mostCutWork = 1 << 24
+
+// tired reports that too much was planned already for one more plan of the cuts. The
+// vendors are then taken as not to be left out, and the purchase is not proved.
+func (s *search) tired(c *cutting) bool {
+	s.planned += len(c.pieces) * (len(c.supplies) + len(c.goods))
+	s.gaveUp = s.gaveUp || s.planned > mostCutWork
+	return s.planned > mostCutWork
 }
 
 // all is the cheapest way to buy each lot, and what they cost at least; nil where

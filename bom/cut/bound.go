@@ -122,6 +122,7 @@ type shop struct {
 	lo, hi  int64
 	found   []purchase
 	steps   int
+	tests   int // steps that it takes to test a purchase
 }
 
 func (p *problem) newShop() *shop {
@@ -134,6 +135,10 @@ func (p *problem) newShop() *shop {
 			s.now.copies[i] = p.copies(i)
 		}
 	}
+	for _, c := range s.classes {
+		s.tests += (1 + len(c.kinds)) * len(p.stocks)
+	}
+	s.tests /= 256
 	// Long stocks first: fewer of them, so the tree is narrow at the top.
 	slices.Reverse(s.choices)
 	for _, c := range s.classes {
@@ -220,7 +225,9 @@ func (s *shop) rest(at int) (int64, bool) {
 // then the longest; false where there are too many.
 func (s *shop) window(lo, hi int64) ([]purchase, bool) {
 	s.lo, s.hi, s.found, s.steps = lo, hi, nil, maxWalk
-	if !s.walk(0) {
+	ok := s.walk(0)
+	s.p.nodes -= maxWalk - s.steps
+	if !ok {
 		return nil, false
 	}
 	slices.SortStableFunc(s.found, s.p.order)
@@ -231,10 +238,11 @@ const (
 	maxClasses = 64 // leaving some out weakens the bound and keeps it true
 	maxWalk    = 400_000
 	maxFound   = 20_000
+	maxCopies  = 4 << 20 // numbers of copies in all that is found
 )
 
 func (s *shop) walk(at int) bool {
-	if s.steps--; s.steps < 0 || len(s.found) > maxFound {
+	if s.steps--; s.steps < 0 || len(s.found) > min(maxFound, maxCopies/max(1, len(s.now.copies))) {
 		return false
 	}
 	rest, ok := s.rest(at)
@@ -242,6 +250,7 @@ func (s *shop) walk(at int) bool {
 		return true
 	}
 	if at == len(s.choices) {
+		s.steps -= s.tests
 		if s.now.price >= s.lo && !s.p.refuted(s.classes, s.now.copies) {
 			s.found = append(s.found, purchase{slices.Clone(s.now.copies), s.now.price})
 		}

@@ -169,7 +169,7 @@ func (p *problem) complete(counts, bins []int) ([]load, outcome) {
 		return nil, infeasible
 	}
 	c.pieces = pieces
-	c.steps = min(p.each, p.nodes)
+	c.steps = max(0, min(p.each, p.nodes))
 	start := c.steps
 	done := c.bin(0, slack)
 	p.nodes -= start - max(c.steps, 0)

@@ -30,7 +30,8 @@ func (b purchase) bins() []int {
 
 // shortages takes out, the first in priority kept where possible, the pieces that what
 // is there once cannot hold; what can be bought any number of times never runs
-// short. It is not sure where the exact search ran out of steps.
+// short. It is not sure where the exact search ran out of steps; where the quick passes
+// have taken as many again, a piece that finds no room as things lie is short.
 func (p *problem) shortages() (short []int, sure bool) {
 	type tied struct{ piece, kind int }
 	var all []tied
@@ -61,7 +62,11 @@ func (p *problem) shortages() (short []int, sure bool) {
 			p.base[at].add(x.kind, p.kinds[x.kind].need)
 			continue
 		}
-		loads, how := p.pack(counts, bins)
+		var loads []load
+		how := limit
+		if p.nodes > -p.all {
+			loads, how = p.pack(counts, bins)
+		}
 		if how == feasible {
 			p.base = loads
 			continue
@@ -104,6 +109,12 @@ func (p *problem) search() (loads []load, bound int64, proved bool) {
 	bound = -1 // the price of the first purchase that was not decided
 	width := max(1, (best-lo)/16)
 	for lo <= best {
+		if p.nodes <= 0 {
+			if bound < 0 {
+				bound = lo
+			}
+			return loads, bound, bound == best
+		}
 		hi := min(best, lo+width)
 		found, ok := s.window(lo, hi)
 		if !ok && width > 1 {
@@ -143,6 +154,15 @@ func (p *problem) search() (loads []load, bound int64, proved bool) {
 	return loads, bound, bound == best
 }
 
+// pieces is how many pieces there are to cut.
+func (p *problem) pieces() int {
+	n := 0
+	for _, k := range p.kinds {
+		n += len(k.pieces)
+	}
+	return n
+}
+
 func (p *problem) price(loads []load) int64 {
 	n := make([]int, len(p.stocks))
 	var sum int64
@@ -158,14 +178,17 @@ func (p *problem) price(loads []load) int64 {
 }
 
 // greedy is the cheapest of a plan for each size that can be bought: what is on hand
-// first, then that size wherever it fits.
+// first, then that size wherever it fits. Of very many sizes for very many pieces only
+// the first are tried.
 func (p *problem) greedy() []load {
 	var best []load
-	for prefer := -1; prefer < len(p.stocks); prefer++ {
+	left := p.all
+	for prefer := -1; prefer < len(p.stocks) && left > 0; prefer++ {
 		if prefer >= 0 && !p.stocks[prefer].Many {
 			continue
 		}
 		loads := p.fill(prefer)
+		left -= 1 + p.pieces()*len(loads)/16
 		if best == nil || p.price(loads) < p.price(best) {
 			best = loads
 		}

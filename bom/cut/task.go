@@ -118,7 +118,8 @@ type problem struct {
 	tryA, tryB []int // of the changes that are tried
 
 	base  []load // of the pieces that nothing bought can hold
-	nodes int    // steps left of the exact search
+	all   int    // steps of the exact search
+	nodes int    // those that are left; below zero, what quick passes took beyond
 	each  int    // steps for one purchase
 }
 
@@ -132,7 +133,7 @@ func newProblem(t Task) (*problem, []int) {
 	if p.nodes <= 0 {
 		p.nodes = defaultNodes
 	}
-	p.each = max(1, p.nodes/16)
+	p.all, p.each = p.nodes, max(1, p.nodes/16)
 	for i, s := range t.Stocks {
 		if i < maxStocks && s.Length > 0 && s.Length <= maxLength && s.Price >= 0 && s.Price <= maxPrice && s.Least <= maxLeast {
 			p.stocks = append(p.stocks, supply{s, i})
@@ -174,9 +175,15 @@ func (p *problem) kindOf(t Task, i int, piece Piece) (kind, bool) {
 		return kind{}, false
 	}
 	k := kind{need: piece.Length + t.Allowance, fits: make([]bool, len(p.stocks))}
+	on := make([]bool, len(t.Stocks))
+	for _, at := range piece.On {
+		if at >= 0 && at < len(on) {
+			on[at] = true
+		}
+	}
 	some := false
 	for j, s := range p.stocks {
-		k.fits[j] = s.Length >= k.need && (piece.On == nil || slices.Contains(piece.On, s.index))
+		k.fits[j] = s.Length >= k.need && (piece.On == nil || on[s.index])
 		some = some || k.fits[j]
 	}
 	return k, some
