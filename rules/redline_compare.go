@@ -192,7 +192,7 @@ func (c *comparison) findConcerned() error {
 	head := c.firms[atHead]
 	kept := make([]shelfPlan, len(c.same))
 	concerned := make([]bool, len(c.same))
-	err := eachSideBySide(c.ctx, len(c.same), func(i int) {
+	err := head.eachPlan(c.ctx, len(c.same), func(i int) {
 		if c.all {
 			concerned[i] = true
 			return
@@ -243,7 +243,7 @@ func (c *comparison) concerns(x *Case) bool {
 // lookAtPairs compares each plan that is concerned. What is seen is kept; the plans'
 // text is let go.
 func (c *comparison) lookAtPairs() error {
-	err := eachSideBySide(c.ctx, len(c.pairs), func(i int) { c.comparePlans(c.pairs[i]) })
+	err := c.firms[atHead].eachPlan(c.ctx, len(c.pairs), func(i int) { c.comparePlans(c.pairs[i]) })
 	if err != nil {
 		return err
 	}

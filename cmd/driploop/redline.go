@@ -86,7 +86,7 @@ func (c *Command) compare(ctx context.Context, args []string) (*rules.Redline, e
 	if err != nil {
 		return nil, err
 	}
-	o := rules.Options{Today: today}
+	o := rules.Options{Today: today, Progress: c.progress()}
 	if c.shared.stockFrom != "" {
 		if o.StockFrom, err = r.At(ctx, c.shared.stockFrom); err != nil {
 			return nil, fmt.Errorf("--stock-from: %w", err)

@@ -121,7 +121,8 @@ func TestRedlineKeepsPrivate(t *testing.T) {
 
 // The mark is another for another name, and the same for the same one.
 func TestRedlineMarker(t *testing.T) {
-	if RedlineMarker("7") == RedlineMarker("8") || RedlineMarker("7") != RedlineMarker("7") {
+	seven, again := RedlineMarker("7"), RedlineMarker("7")
+	if seven == RedlineMarker("8") || seven != again {
 		t.Error("marks do not tell names apart")
 	}
 	if strings.Contains(RedlineMarker("--><b>"), "<b>") {
