@@ -57,6 +57,13 @@ func (c *Case) checkNames() {
 			Says: "the file's name is the job's ID, and " + source.Quote(c.Plan.ID) + " cannot be referred to",
 			Do:   "rename the file: letters, digits, - and _, starting with a letter or digit"})
 	}
+	for _, other := range c.Firm.plansOf(c.Plan.ID) {
+		if other != c.Plan.File.Path {
+			c.Problems = append(c.Problems, source.Problem{Kind: source.Value, At: c.Plan.File.Start(),
+				Says: "the file's name is the job's ID, and " + source.Quote(other) + " is the same job: both claim goods, and what is issued to it cannot be told apart",
+				Do:   "rename one of the two, or take it away; names that differ in case alone are the same"})
+		}
+	}
 	var crews []string
 	for _, crew := range c.Firm.Workspace.Premises.Crews {
 		crews = append(crews, crew.ID)

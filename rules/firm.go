@@ -7,6 +7,7 @@ import (
 	"strings"
 	"sync"
 
+	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/source"
 	"driploop/catalog/unit"
@@ -34,6 +35,8 @@ type Firm struct {
 	weights  map[string]*Override
 	fits     sync.Map // *catalog.Part to its fitted curve
 	texts    sync.Map // of cautions to themselves
+	jobsOnce sync.Once
+	jobs     map[string][]string // the plan files of a job, by its ID in lower case
 }
 
 // FileProblem is a problem of one of the workspace's own files, with the part in
@@ -147,6 +150,19 @@ func unknownName(v source.Val[string], what string, known []string) (source.Prob
 		do = "did you mean " + near + "?"
 	}
 	return source.Problem{Kind: source.Value, At: v.At, Says: "there is no " + what + " " + source.Quote(v.V), Do: do}, true
+}
+
+// plansOf lists the plan files that are one job: names that differ in case alone are
+// one on some disks.
+func (f *Firm) plansOf(job string) []string {
+	f.jobsOnce.Do(func() {
+		f.jobs = map[string][]string{}
+		for _, e := range f.PlanFiles {
+			id := strings.ToLower(bom.JobOf(e.Path))
+			f.jobs[id] = append(f.jobs[id], e.Path)
+		}
+	})
+	return f.jobs[strings.ToLower(job)]
 }
 
 // ReadsStock reports whether a file of that path would be read as a stock sheet.

@@ -84,7 +84,10 @@ func (s *Stock) shortages() Block {
 		}
 		b.Items = append(b.Items, Item{c.Part().ID, s.shortage(c)})
 	}
-	if b.Items == nil {
+	switch {
+	case len(s.claims()) == 0:
+		return Block{Text: []string{"No open job claims anything."}}
+	case b.Items == nil:
 		return Block{Text: []string{"Every open job has what it takes, on a shelf or on order in time."}}
 	}
 	return b
