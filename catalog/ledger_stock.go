@@ -96,6 +96,12 @@ type IssueRow struct {
 	tag  string
 }
 
+// Day is the day of the row.
+func (r *IssueRow) Day() unit.Date {
+	day := int(r.when / (wholeDay + 1))
+	return unit.Date{Year: day / 32 / 16, Month: day / 32 % 16, Day: day % 32}
+}
+
 // Piece is a length that was cut for a line of a job.
 type Piece struct {
 	Job, Cable string

@@ -7,11 +7,12 @@ import (
 )
 
 var stockUnknown = &Rule{
-	Name:   "stock/unknown",
-	Title:  "Every part, shelf, order, tag and job of a stock row exists",
-	Why:    "goods on a shelf that nobody knows, or given to a job that is not there, are lost to all plans",
-	Basis:  []Basis{ledger},
-	Weight: Hold,
+	Name:    "stock/unknown",
+	Title:   "Every part, shelf, order, tag and job of a stock row exists",
+	Why:     "goods on a shelf that nobody knows, or given to a job that is not there, are lost to all plans",
+	Basis:   []Basis{ledger},
+	Weight:  Hold,
+	Lighter: "a plan that seems to be a job under a new name is a punch",
 	CheckShelf: func(s *Shelf, r *Report) {
 		for _, n := range s.notes("the other row", catalog.NoteUnknown) {
 			s.stand(n.row, func(at source.Place, on string) *Finding {
@@ -19,6 +20,7 @@ var stockUnknown = &Rule{
 			})
 		}
 		s.unknownJobs(r)
+		s.renamedJobs(r)
 	},
 }
 
