@@ -58,7 +58,7 @@ other, and writes only with --yes.`,
 	}
 	cmd.Flags().StringVar(&read, "read", "", "take the filled workbook `FILE` back as orders")
 	cmd.Flags().BoolVar(&yes, "yes", false, "with --read: write though the workspace has changed since")
-	cmd.Flags().StringVar(&until, "until", "", "buy for jobs that are needed until this day (default: buy_ahead_days from now)")
+	cmd.Flags().StringVar(&until, "until", "", "buy for jobs that are needed until `DAY` (default: buy_ahead_days from now)")
 	return cmd
 }
 
@@ -89,7 +89,7 @@ reels are shown.`,
 			})
 		},
 	}
-	cmd.Flags().StringVar(&until, "until", "", "plan for jobs that are needed until this day (default: buy_ahead_days from now)")
+	cmd.Flags().StringVar(&until, "until", "", "plan for jobs that are needed until `DAY` (default: buy_ahead_days from now)")
 	return cmd
 }
 

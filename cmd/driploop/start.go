@@ -61,7 +61,7 @@ Nothing is written over, and a file is there whole or not at all.`,
 			return c.startWorkspace(dir)
 		},
 	}
-	cmd.Flags().StringVar(&like, "like", "", "what the plan is of: "+joinWords(starter.Likes()))
+	cmd.Flags().StringVar(&like, "like", "", "`SHAPE` of the plan, one of "+joinWords(starter.Likes()))
 	return cmd
 }
 
