@@ -29,6 +29,9 @@ func Compare(ctx context.Context, base, head source.Tree, o Options) (*Redline, 
 		c.firms[side] = f
 	}
 	c.out.Feet = c.firms[atHead].Workspace.Lengths.V == "ft"
+	for _, e := range c.firms[atHead].Skipped {
+		c.out.Notices = append(c.out.Notices, fmt.Sprintf("%s is not read in the head: it %s", e.Path, e.Skip))
+	}
 	c.pairUp()
 	if err := c.ownFiles(); err != nil {
 		return nil, err
@@ -85,6 +88,7 @@ type pair struct {
 	faults  sideOf[[]source.Problem]
 	broken  sideOf[bool]
 	renames bom.Renames
+	numbers map[string]string // of rows that have no name, "signal.3" to "signal.4"
 	moved   moves
 	changes []Change
 	seen    map[mix]*seen

@@ -51,23 +51,23 @@ func press(f *Finding) int {
 // thing that a finding stands on was there before.
 type found struct {
 	at  [4][]*Finding
-	on  func(string) string // names of the base, in those of the head
+	on  func(step int, on string) string // names of a step, in those of the head; nil: as they are
 	had func(on string) bool
 }
 
 // compare lists what moved and counts what stands as it did.
 func (x *found) compare() (moved []MovedFound, stands Counts) {
-	same := func(s string) string { return s }
-	if x.on == nil {
-		x.on = same
+	named := func(step int) func(string) string {
+		return func(on string) string {
+			if x.on == nil || step == 3 {
+				return on
+			}
+			return x.on(step, on)
+		}
 	}
 	var in [4]map[foundKey][]*Finding
 	for s := range x.at {
-		on := x.on
-		if s == 3 {
-			on = same
-		}
-		in[s] = foundIn(x.at[s], on)
+		in[s] = foundIn(x.at[s], named(s))
 	}
 	partner := x.partners(in)
 	for _, f := range x.at[3] {
@@ -76,7 +76,7 @@ func (x *found) compare() (moved []MovedFound, stands Counts) {
 			stands.count(f)
 			continue
 		}
-		m.Charge = charged(keyOf(f, same), in)
+		m.Charge = charged(keyOf(f, named(3)), in)
 		moved = append(moved, m)
 	}
 	for _, f := range x.at[0] {
@@ -87,7 +87,7 @@ func (x *found) compare() (moved []MovedFound, stands Counts) {
 		if f.Outcome == Unknown {
 			how = Assessed
 		}
-		moved = append(moved, MovedFound{Finding: f, How: how, Was: asItStands(f), Charge: charged(keyOf(f, x.on), in)})
+		moved = append(moved, MovedFound{Finding: f, How: how, Was: asItStands(f), Charge: charged(keyOf(f, named(0)), in)})
 	}
 	slices.SortStableFunc(moved, func(a, b MovedFound) int {
 		return cmp.Or(cmp.Compare(a.turn(), b.turn()), cmp.Compare(press(b.Finding), press(a.Finding)))
@@ -176,7 +176,12 @@ func charged(k foundKey, in [4]map[foundKey][]*Finding) Charge {
 
 // compareFound compares what rules of scope plan say of a plan.
 func (c *comparison) compareFound(p *pair) {
-	x := &found{}
+	x := &found{on: func(step int, on string) string {
+		if now, moved := p.numbers[on]; moved && steps[step].mix.facts == atBase {
+			return now
+		}
+		return on
+	}}
 	for s, st := range steps {
 		if at := c.at(p, st.mix); at != nil {
 			x.at[s] = at.findings

@@ -80,7 +80,16 @@ func numberOf(n *source.Node) float64 {
 // sameQuantity reports two spellings of one quantity, connector or amount of money.
 func sameQuantity(a, b string) bool {
 	return both(a, b, unit.ParseLength) || both(a, b, unit.ParseTemperature) || both(a, b, unit.ParseSpeed) || both(a, b, unit.ParseMoney) ||
-		both(a, b, func(s string) (float64, error) { g, err := unit.ParseGauge(s); return g.MM2, err }) || both(a, b, catalog.ParseFace)
+		both(a, b, func(s string) (float64, error) { g, err := unit.ParseGauge(s); return g.MM2, err }) || sameFace(a, b)
+}
+
+func sameFace(a, b string) bool {
+	x, err := catalog.ParseFace(a)
+	if err != nil {
+		return false
+	}
+	y, err := catalog.ParseFace(b)
+	return err == nil && catalog.SameFace(x, y)
 }
 
 func both[T comparable](a, b string, parse func(string) (T, error)) bool {
@@ -153,6 +162,9 @@ type differ struct {
 	file   string
 	charge func(table, key string) Charge
 	out    []Change
+
+	list    string            // of rows at hand
+	numbers map[string]string // "signal.3" of the base, "signal.4" of the head
 }
 
 func (d *differ) add(c Change) {
@@ -268,8 +280,11 @@ func (d *differ) rowsOf(a, b []*source.Node, by ...string) []rowPair {
 		}
 	}
 	var out []rowPair
-	match(d.same, func(i, j int) {})
-	match(func(x, y *source.Node) bool { return d.sameName(x, y, by) }, func(i, j int) { out = append(out, rowPair{a[i], b[j], j + 1}) })
+	match(d.same, d.number)
+	match(func(x, y *source.Node) bool { return d.sameName(x, y, by) }, func(i, j int) {
+		d.number(i, j)
+		out = append(out, rowPair{a[i], b[j], j + 1})
+	})
 	for i := range a {
 		if !usedA[i] {
 			out = append(out, rowPair{was: a[i], n: i + 1})
@@ -283,6 +298,13 @@ func (d *differ) rowsOf(a, b []*source.Node, by ...string) []rowPair {
 	return out
 }
 
+// number notes that a row has another number than it had.
+func (d *differ) number(i, j int) {
+	if i != j && d.numbers != nil {
+		d.numbers[fmt.Sprintf("%s.%d", d.list, i+1)] = fmt.Sprintf("%s.%d", d.list, j+1)
+	}
+}
+
 func (d *differ) sameName(x, y *source.Node, by []string) bool {
 	for _, k := range by {
 		if !d.under(k).same(tableOf(x.Get(k)), tableOf(y.Get(k))) {
@@ -294,6 +316,7 @@ func (d *differ) sameName(x, y *source.Node, by []string) bool {
 
 // rows compares lists of rows.
 func (d *differ) rows(table string, a, b *source.KeyNode, by ...string) {
+	d.list = table
 	for _, p := range d.rowsOf(itemsIn(a), itemsIn(b), by...) {
 		on := fmt.Sprintf("%s.%d", table, p.n)
 		if name := rowName(p, by); name != "" {

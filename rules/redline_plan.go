@@ -62,7 +62,7 @@ func (c *comparison) planChanges(p *pair) {
 		p.moved = moves{work: true, facts: true, rulers: true}
 		return
 	}
-	d := &differ{meaning: meaning{renames: p.renames}, charge: planCharge}
+	d := &differ{meaning: meaning{renames: p.renames}, charge: planCharge, numbers: map[string]string{}}
 	for _, t := range planTables {
 		d.table(t, t, tableOf(a.Root.Get(t)), tableOf(b.Root.Get(t)))
 	}
@@ -78,5 +78,5 @@ func (c *comparison) planChanges(p *pair) {
 		d.out[i].File = p.path()
 		p.moved.note(d.out[i].Charge)
 	}
-	p.changes = d.out
+	p.changes, p.numbers = d.out, d.numbers
 }

@@ -36,11 +36,11 @@ func (c *comparison) shelfIn(x mix) *shelfState {
 	slices.SortStableFunc(s.Demands, func(d, e *bom.Demand) int { return compareText(d.Path, e.Path) })
 	s.Allocation = bom.Allocate(s.Demands, f.Stock, &f.Workspace.Premises, &f.Workspace.House.House)
 	s.index()
-	out := &shelfState{Shelf: s, found: map[string][]*Finding{}}
 	paths := map[string]bool{}
 	for _, d := range s.Demands {
 		paths[d.Path] = true
 	}
+	said := map[string][]*Report{}
 	for _, rule := range Rules {
 		if rule.CheckShelf == nil {
 			continue
@@ -48,16 +48,12 @@ func (c *comparison) shelfIn(x mix) *shelfState {
 		all := &Report{rule: rule}
 		rule.CheckShelf(s, all)
 		for path, one := range all.byFile(paths) {
-			stage := ""
-			if p, ok := byPath[path]; ok {
-				stage = p.demand.Stage
-			}
-			out.found[path] = append(out.found[path], f.weigh(one, stage)...)
+			said[path] = append(said[path], one)
 		}
 	}
-	for path, list := range out.found {
-		sortFindings(list)
-		settle(byPath[path].waivers, list, f.Today)
+	out := &shelfState{Shelf: s, found: map[string][]*Finding{"": f.onPlan(said[""], nil, "")}}
+	for path, p := range byPath {
+		out.found[path] = f.onPlan(said[path], p.waivers, p.demand.Stage)
 	}
 	return out
 }
@@ -124,7 +120,7 @@ func (o *OtherJob) worst() int {
 
 // shelfOf adds what the shelf says to a job whose plan is concerned.
 func (c *comparison) shelfOf(p *pair, at [4]*shelfState) {
-	x := &found{on: p.renames.On}
+	x := &found{on: func(_ int, on string) string { return p.renames.On(on) }}
 	job := func(s int) string {
 		if e := p.entry[steps[s].mix.work]; e != nil {
 			return e.Path

@@ -178,17 +178,23 @@ func (r *Report) byFile(plans map[string]bool) map[string]*Report {
 // join adds what rules of scope firm found on a plan to its findings, after its
 // waivers of such rules were applied.
 func (p *PlanResult) join(f *Firm, found []*Report, waivers []bom.Waiver) {
+	p.Findings = append(p.Findings, f.onPlan(found, waivers, p.Stage)...)
+	sortFindings(p.Findings)
+}
+
+// onPlan are the findings of rules of scope firm on a plan at a stage, with what is to
+// be said of its waivers of such rules.
+func (f *Firm) onPlan(found []*Report, waivers []bom.Waiver, stage string) []*Finding {
 	var out []*Finding
 	for _, one := range found {
-		out = append(out, f.weigh(one, p.Stage)...)
+		out = append(out, f.weigh(one, stage)...)
 	}
 	sortFindings(out)
 	r := &Report{rule: paperWaiver}
 	for _, w := range settle(waivers, out, f.Today) {
-		if p.Stage != "cancelled" {
+		if stage != "cancelled" {
 			checkWaiver(w, r)
 		}
 	}
-	p.Findings = append(append(p.Findings, out...), f.weigh(r, p.Stage)...)
-	sortFindings(p.Findings)
+	return append(out, f.weigh(r, stage)...)
 }

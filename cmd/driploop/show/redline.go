@@ -121,9 +121,9 @@ func (w *redWords) verdict() string {
 	if s := w.nothing(); s != "" {
 		return s
 	}
-	out := []string{w.held()}
+	out := []string{w.held(2)}
 	if s := w.taken(); s != "" {
-		out = append(out, s)
+		out = []string{w.held(1), s} // both fit the preview
 	}
 	if len(r.Past) > 0 {
 		out = append(out, "The past of the stock was rewritten: "+words(len(r.Past), "row", "rows")+".")
@@ -153,8 +153,8 @@ func (w *redWords) nothing() string {
 	return "No change in meaning."
 }
 
-// held is whether work is held up, and where.
-func (w *redWords) held() string {
+// held is whether work is held up, and where; at most so many jobs are named.
+func (w *redWords) held(most int) string {
 	g := w.r.Gate
 	var own, base []string
 	for _, j := range w.r.Jobs {
@@ -172,15 +172,15 @@ func (w *redWords) held() string {
 	}
 	switch {
 	case g.UnderHead > 0:
-		return "Held: " + words(g.UnderHead, "hold", "holds") + someOf(" on ", own) + "."
+		return "Held: " + words(g.UnderHead, "hold", "holds") + someOf(" on ", own, most) + "."
 	case g.UnderBase > 0 && len(base) > 0:
-		return "Held by the base's rulers: " + words(g.UnderBase, "hold", "holds") + someOf(" on ", base) + " that the head's own rulers let pass."
+		return "Held by the base's rulers: " + words(g.UnderBase, "hold", "holds") + someOf(" on ", base, most) + " that the head's own rulers let pass."
 	case g.UnderBase > 0:
 		return "Held by the base's rulers: " + words(g.UnderBase, "hold", "holds") + "."
 	case len(w.names()) == 0:
 		return "No plan comes to anything else."
 	}
-	return "Nothing holds work" + someOf(" on ", w.names()) + "."
+	return "Nothing holds work" + someOf(" on ", w.names(), most) + "."
 }
 
 // names are the jobs that something is said of.
@@ -201,13 +201,13 @@ func moved(j *rules.JobChange) bool {
 }
 
 // short is a name that fits a preview.
-func short(s string) string { return clip(s, 32) }
+func short(s string) string { return clip(s, 24) }
 
-func someOf(lead string, names []string) string {
+// someOf names the first of a list and counts the rest.
+func someOf(lead string, names []string, most int) string {
 	if len(names) == 0 {
 		return ""
 	}
-	const most = 2
 	out := strings.Join(names[:min(most, len(names))], ", ")
 	if more := len(names) - most; more > 0 {
 		out += fmt.Sprintf(" and %d more", more)
@@ -229,9 +229,9 @@ func (w *redWords) taken() string {
 		}
 	}
 	if len(newly) > 0 {
-		return sentenceIf("Newly short because of it", someOf(": ", newly))
+		return sentenceIf("Newly short because of it", someOf(": ", newly, 2))
 	}
-	return sentenceIf("Short of more because of it", someOf(": ", more))
+	return sentenceIf("Short of more because of it", someOf(": ", more, 2))
 }
 
 func sentenceIf(lead, rest string) string {
@@ -247,7 +247,7 @@ func whenAndWho(on unit.Date, crew string) string {
 		out = append(out, on.String())
 	}
 	if crew != "" {
-		out = append(out, "crew "+short(crew))
+		out = append(out, "crew "+clip(crew, 12))
 	}
 	if len(out) == 0 {
 		return ""
