@@ -85,6 +85,9 @@ func NewRedlinePage(r *rules.Redline, t RedlineTerms) *RedlinePage {
 	return p
 }
 
+// leastCut is how much of a private text may be left where it was cut.
+const leastCut = 3
+
 // scrub takes what is nobody's business out of all that the page says.
 func (p *RedlinePage) scrub(private []string) {
 	if len(private) == 0 {
@@ -93,6 +96,11 @@ func (p *RedlinePage) scrub(private []string) {
 	var pairs []string
 	for _, s := range private {
 		pairs = append(pairs, s, "…")
+	}
+	for _, s := range private { // what is left of one where a long text was cut
+		for r := []rune(s); len(r) > leastCut; r = r[:len(r)-1] {
+			pairs = append(pairs, string(r[:len(r)-1])+"…", "…")
+		}
 	}
 	out := strings.NewReplacer(pairs...)
 	p.Verdict, p.Seen = out.Replace(p.Verdict), out.Replace(p.Seen)
