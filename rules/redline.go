@@ -80,6 +80,7 @@ type JobChange struct {
 	Takeoff      []MovedPart
 	Wasted       []Wasted
 	Short        []MovedShort
+	Tools        []ToolLack    // that the crew lacks for parts that are new in the plan
 	Value        [2]unit.Money // of its takeoff at the cheapest offers, base and head
 	ValueByFacts unit.Money    // of the difference, what prices make
 	Unpriced     []string      // parts without an offer
@@ -109,6 +110,9 @@ type MovedShort struct {
 	Day      unit.Date
 	Charge   Charge
 }
+
+// ToolLack is a tool that a part asks for, newly taken, and that the crew has not.
+type ToolLack struct{ Part, Tool, Crew string }
 
 // Newly reports a shortage that was not there.
 func (m *MovedShort) Newly() bool { return m.Was.IsZero() && !m.Now.IsZero() }

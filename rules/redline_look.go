@@ -100,6 +100,7 @@ func (c *comparison) comparePlans(p *pair) {
 		j.Figures, j.Largest = movedFigures(at)
 	}
 	j.Takeoff = movedParts(takeoffOf(base), takeoffOf(head))
+	j.Tools = c.toolLacks(j)
 	j.Waivers = c.movedWaivers(p)
 	c.at(p, underBase)
 	for _, s := range p.seen {

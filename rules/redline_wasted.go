@@ -108,3 +108,26 @@ func (w *waste) orders() {
 			Says: fmt.Sprintf("%s is on its way with %s for the job, which takes %s less", amountOf(o.Left, o.Part), o.Order.ID, q)})
 	}
 }
+
+// toolLacks lists the tools that parts new in the plan ask for and its crew has not. A
+// job without a crew asks for none.
+func (c *comparison) toolLacks(j *JobChange) []ToolLack {
+	head := c.firms[atHead]
+	crew := head.Workspace.Premises.Crew(j.Crew)
+	if crew == nil {
+		return nil
+	}
+	var out []ToolLack
+	for _, m := range j.Takeoff {
+		p := head.Catalog.Look(m.Part)
+		if p == nil || !m.Was.IsZero() || m.Now.IsZero() {
+			continue
+		}
+		for _, tool := range p.Tools.V {
+			if !catalog.Has(crew.Tools, tool.V) {
+				out = append(out, ToolLack{m.Part, tool.V, j.Crew})
+			}
+		}
+	}
+	return out
+}

@@ -2,6 +2,7 @@ package show
 
 import (
 	"fmt"
+	"slices"
 
 	"driploop/rules"
 )
@@ -20,14 +21,23 @@ func (w *redWords) others() *redBlock {
 		for _, g := range groupFound(o.Findings) {
 			m := g.worst
 			switch {
-			case m.How.Worse():
+			case m.How.Worse() && !said(o, m):
 				b.add("new", "%s: %s, by %s: %s%s.", name, m.Now, m.Charge, m.Says, g.also())
+			case m.How.Worse():
+				b.hide("new", "%s: %s, by %s: %s%s.", name, m.Now, m.Charge, m.Says, g.also())
 			default:
 				b.hide("cleared", "%s: %s, %s: %s%s.", name, m.Was, byWhat(m.Charge), m.Says, g.also())
 			}
 		}
 	}
 	return b
+}
+
+// said reports a finding of another job that needs no line in the open: a note, or a
+// shortage that has its line.
+func said(o rules.OtherJob, m rules.MovedFound) bool {
+	short := m.Rule.Name == "stock/short" || m.Rule.Name == "stock/late"
+	return m.Weight == rules.Note || short && slices.ContainsFunc(o.Short, func(s rules.MovedShort) bool { return m.On == "part."+s.Part })
 }
 
 // past names the rows of stock history that are not as they were.

@@ -40,6 +40,10 @@ func (w *redWords) job(j *rules.JobChange) *redBlock {
 	}
 	w.changes(b, j.Changes)
 	w.figures(b, j)
+	for _, t := range j.Tools {
+		b.worse = true
+		b.add("tool", "%s asks for %s; crew %s has none.", clip(t.Part, mostName), clip(t.Tool, mostName), clip(t.Crew, mostName))
+	}
 	for _, m := range j.Short {
 		b.worse = b.worse || !m.Now.IsZero() && m.Was.Less(m.Now)
 		b.add("shelf", "%s", shortWords(m))

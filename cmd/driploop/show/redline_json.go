@@ -112,6 +112,7 @@ type jobJSON struct {
 	Takeoff   []movedPartJSON    `json:"takeoff"`
 	Short     []movedShortJSON   `json:"short"`
 	Wasted    []wastedJSON       `json:"wasted"`
+	Tools     []toolJSON         `json:"tools"`
 	Value     *valueJSON         `json:"value"`
 	Holds     int                `json:"holds"`
 	HoldsBase int                `json:"holds_under_base"`
@@ -121,7 +122,7 @@ type jobJSON struct {
 func (w *redWords) jobJSON(j *rules.JobChange) jobJSON {
 	x := jobJSON{Job: j.Job, WasJob: j.WasJob, Plan: j.Path, Title: j.Title, Stage: j.Stage, Crew: j.Crew, How: j.How, Same: j.SaysSame, Broken: j.Broken,
 		Charges: []string{}, Changes: w.changesJSON(j.Changes), Figures: []movedFigureJSON{}, Findings: movedJSON(j.Findings), Standing: countsOf(j.Standing),
-		Waivers: []movedWaiverJSON{}, Takeoff: []movedPartJSON{}, Short: movedShortsJSON(j.Short), Wasted: []wastedJSON{},
+		Waivers: []movedWaiverJSON{}, Takeoff: []movedPartJSON{}, Short: movedShortsJSON(j.Short), Wasted: []wastedJSON{}, Tools: []toolJSON{},
 		Holds: j.Holds, HoldsBase: j.HoldsBase, BaseHolds: findingsJSON(j.BaseHolds)}
 	if !j.On.IsZero() {
 		x.On = j.On.String()
@@ -143,6 +144,9 @@ func (w *redWords) jobJSON(j *rules.JobChange) jobJSON {
 		p := movedPartJSON{Part: m.Part}
 		p.Was, p.Now, p.Unit = amounts(m.Was, m.Now)
 		x.Takeoff = append(x.Takeoff, p)
+	}
+	for _, t := range j.Tools {
+		x.Tools = append(x.Tools, toolJSON(t))
 	}
 	for _, m := range j.Wasted {
 		p := wastedJSON{How: m.How, Part: m.Part, Line: m.Line, From: m.From, Says: m.Says, File: m.At.Path(), At: m.At.Line()}
@@ -302,6 +306,12 @@ type wastedJSON struct {
 	Says string  `json:"says"`
 	File string  `json:"file"`
 	At   int     `json:"line"`
+}
+
+type toolJSON struct {
+	Part string `json:"part"`
+	Tool string `json:"tool"`
+	Crew string `json:"crew"`
 }
 
 type valueJSON struct {
