@@ -108,7 +108,7 @@ func TestHostileFileNames(t *testing.T) {
 	dir := t.TempDir()
 	for _, name := range []string{"::error::x", "=1+1", "a\nb", "\n::error::x", "`x`|y", "<b>x", "@someone", "#12", "\x1b[31m", "\u202ex", "-x", "a\xffb", "##[error]x", "a b", "[x](http:h.example)", "--help"} {
 		for _, file := range []struct{ like, as string }{{"plans/lane.toml", "plans/" + name}, {"plans/torn.toml", "plans/torn/" + name},
-			{"catalog/faults.toml", "catalog/" + name}, {"stock/counts/own.toml", "stock/counts/" + name}, {"stock/orders/own.toml", "stock/orders/" + name}, {"profiles/own.toml", "profiles/" + name}} {
+			{"catalog/faults.toml", "catalog/" + name}, {"stock/counts/own.toml", "stock/counts/" + name}, {"stock/orders/own.toml", "stock/orders/" + name}, {"stock/counts/void.toml", "stock/in/" + name}, {"offers/own.toml", "offers/" + name}, {"profiles/own.toml", "profiles/" + name}} {
 			copyFile(t, filepath.Join(hostile, file.like), filepath.Join(dir, file.as+".toml"))
 		}
 	}
