@@ -202,9 +202,12 @@ func (c *counter) extras() {
 		x := &c.g.Plan.Extras[i]
 		p := c.g.Catalog.Look(x.Part.V)
 		switch {
-		case !x.Part.Set || !x.Qty.Set:
+		case !x.Part.Set:
+			c.gap("job", "an extra names no part that can be counted", x.At)
 		case p == nil:
 			c.gap("job", "the extra part "+source.Quote(x.Part.V)+" is not known", x.At)
+		case !x.Qty.Set:
+			c.gap("job", "the extra "+p.ID+" has no qty that can be counted", x.At)
 		case p.CutStock() != (x.Qty.V.Length > 0):
 			c.gap("job", "the extra "+p.ID+" is "+measured(p)+", its qty is not", x.At)
 		case p.CutStock():

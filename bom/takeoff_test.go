@@ -363,3 +363,14 @@ reel_doubt = "40 cm"
 		t.Errorf("the house is read as %s, want %s", got, want)
 	}
 }
+
+// An extra that cannot be read is not counted, and that is said.
+func TestTakeoffUnreadExtra(t *testing.T) {
+	f, _ := source.NewFile("plans/case.toml", []byte("extra = [{ part = \"GEN-PS-12-5\", qty = 99999999999 }, { part = \"GEN-PS-12-5\" }, { qty = 2 }, { part = \"GEN-PS-12-5\", qty = 2 }]\n"))
+	d, _ := source.Parse(f)
+	p, _ := bom.ReadPlan(d)
+	q := bom.Resolve(p, catalog.New(nil)).Takeoff(&bom.House{})
+	if len(q.Gaps) != 3 || len(q.Rows) != 1 || q.Rows[0].Each != 2 {
+		t.Errorf("gaps %v, rows %v; want three gaps and two supplies", q.Gaps, q.Rows)
+	}
+}
