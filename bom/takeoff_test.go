@@ -7,6 +7,7 @@ import (
 	"testing"
 
 	"driploop/bom"
+	"driploop/catalog"
 	"driploop/catalog/source"
 	"driploop/catalog/unit"
 )
