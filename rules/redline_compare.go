@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"slices"
+	"strings"
 	"sync"
 
 	"driploop/bom"
@@ -146,7 +147,7 @@ func (c *comparison) followJobs(gone, fresh []*pair) {
 		}
 	}
 	c.pairs = append(c.pairs, fresh...)
-	slices.SortStableFunc(c.pairs, func(p, q *pair) int { return compareText(p.path(), q.path()) })
+	slices.SortStableFunc(c.pairs, func(p, q *pair) int { return strings.Compare(p.path(), q.path()) })
 }
 
 // sameJob reports two plans of one content: the same meaning, or nothing but the
@@ -228,7 +229,7 @@ func (c *comparison) findConcerned() error {
 		p.job = &JobChange{How: "concerned"}
 		c.pairs = append(c.pairs, p)
 	}
-	slices.SortStableFunc(c.pairs, func(p, q *pair) int { return compareText(p.path(), q.path()) })
+	slices.SortStableFunc(c.pairs, func(p, q *pair) int { return strings.Compare(p.path(), q.path()) })
 	c.out.Untouched = len(c.others)
 	return nil
 }

@@ -3,6 +3,7 @@ package rules
 import (
 	"cmp"
 	"slices"
+	"strings"
 )
 
 // foundKey is what makes a finding the same one in two states.
@@ -12,7 +13,7 @@ func keyOf(f *Finding, on func(string) string) foundKey {
 	return foundKey{f.Rule.Name, on(f.On), f.Band}
 }
 
-// foundIn indexes findings; of several of one key the first is the heaviest.
+// foundIn indexes findings by what makes them the same ones.
 func foundIn(list []*Finding, on func(string) string) map[foundKey][]*Finding {
 	out := map[foundKey][]*Finding{}
 	for _, f := range list {
@@ -238,5 +239,5 @@ func (p *pair) hadBefore(on string) bool {
 			return true
 		}
 	}
-	return on == "job" || on == "site" || hasPrefixWord(on, "operator") || hasPrefixWord(on, "signal")
+	return on == "job" || on == "site" || strings.HasPrefix(on, "operator.") || strings.HasPrefix(on, "signal.")
 }

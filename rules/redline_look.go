@@ -1,16 +1,12 @@
 package rules
 
 import (
-	"cmp"
 	"maps"
 	"slices"
-	"strings"
 
 	"driploop/bom"
 	"driploop/catalog/source"
 )
-
-func compareText(a, b string) int { return cmp.Compare(a, b) }
 
 // seen is what a plan comes to in one mix.
 type seen struct {
@@ -188,5 +184,3 @@ func letGoPair(p *pair) {
 		p.doc[side] = nil
 	}
 }
-
-func hasPrefixWord(s, word string) bool { return s == word || strings.HasPrefix(s, word+".") }

@@ -4,6 +4,7 @@ import (
 	"cmp"
 	"slices"
 
+	"driploop/bom"
 	"driploop/catalog"
 	"driploop/catalog/source"
 )
@@ -91,9 +92,9 @@ func (c *comparison) orderChanges(d *differ, f *ownFile) {
 		c.out.Past = append(c.out.Past, PastRow{File: f.path, Line: a.At.Line(), Row: "order", How: map[bool]string{true: "deleted", false: "edited"}[b == nil],
 			Was: valueText(a), Now: textOrNone(b)})
 	}
-	d.table("order", "order "+catalogName(f.path), a, b)
+	d.table("order", "order "+bom.JobOf(f.path), a, b)
 	for _, p := range d.rowsOf(itemsIn(f.key(atBase, "line")), itemsIn(f.key(atHead, "line")), "part", "code") {
-		name := "order " + catalogName(f.path) + " " + rowName(p, []string{"part"})
+		name := "order " + bom.JobOf(f.path) + " " + rowName(p, []string{"part"})
 		switch {
 		case p.was == nil:
 			c.out.NewRows++
@@ -123,23 +124,6 @@ func textOrNone(n *source.Node) string {
 		return ""
 	}
 	return valueText(n)
-}
-
-// catalogName is the name of an order: its file's, without folder and ending.
-func catalogName(path string) string {
-	from := 0
-	for i := range path {
-		if path[i] == '/' {
-			from = i + 1
-		}
-	}
-	name := path[from:]
-	for i := range name {
-		if name[i] == '.' {
-			return name[:i]
-		}
-	}
-	return name
 }
 
 // movedBins lists what lies where otherwise than it did.

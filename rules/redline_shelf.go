@@ -3,6 +3,7 @@ package rules
 import (
 	"cmp"
 	"slices"
+	"strings"
 
 	"driploop/bom"
 	"driploop/catalog"
@@ -33,7 +34,7 @@ func (c *comparison) shelfIn(x mix) *shelfState {
 			byPath[p.demand.Path] = p
 		}
 	}
-	slices.SortStableFunc(s.Demands, func(d, e *bom.Demand) int { return compareText(d.Path, e.Path) })
+	slices.SortStableFunc(s.Demands, func(d, e *bom.Demand) int { return strings.Compare(d.Path, e.Path) })
 	s.Allocation = bom.Allocate(s.Demands, f.Stock, &f.Workspace.Premises, &f.Workspace.House.House)
 	s.index()
 	paths := map[string]bool{}
@@ -95,7 +96,7 @@ func (c *comparison) compareShelf() {
 		}
 	}
 	slices.SortStableFunc(c.out.Others, func(a, b OtherJob) int {
-		return cmp.Or(cmp.Compare(b.worst(), a.worst()), compareText(a.On.String(), b.On.String()), compareText(a.Job, b.Job))
+		return cmp.Or(cmp.Compare(b.worst(), a.worst()), strings.Compare(a.On.String(), b.On.String()), strings.Compare(a.Job, b.Job))
 	})
 	c.shelfFiles(at)
 	if all.rulers {

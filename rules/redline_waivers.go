@@ -20,6 +20,8 @@ type MovedWaiver struct {
 	Covers          int
 	Line            int
 	Weight          string // of the finding it covers, "" where none
+
+	worse int // +1: greater figures of the finding are worse, −1: smaller ones, 0: not known
 }
 
 // movedWaivers compares the waivers of a plan. Those that are as they were and do
@@ -77,7 +79,7 @@ func waiverIn(w *bom.Waiver, findings []*Finding, today unit.Date) MovedWaiver {
 		n := s.Covers
 		s.wouldCover(f)
 		if (s.Covers > n || s.Beyond == f) && len(f.Figures) > 0 && f.worse != 0 && (!m.Figure.OK || f.beyond(m.Figure.V)) {
-			m.Figure = known(f.Figures[0].Value)
+			m.Figure, m.worse = known(f.Figures[0].Value), f.worse
 		}
 		if s.Covers > n && (m.Weight == "" || f.Weight > WeightNamed(m.Weight)) {
 			m.Weight = f.Weight.String()
@@ -130,20 +132,10 @@ func widened(was, now *MovedWaiver) []string {
 }
 
 // reaches reports a figure accepted that is worse than the one before. Which way is
-// worse the rule's findings say; without any, greater is.
+// worse the findings say that the waiver covers, or covered; without any, greater is.
 func (m *MovedWaiver) reaches(was *MovedWaiver) bool {
-	if m.worse() < 0 {
+	if m.worse < 0 || m.worse == 0 && was.worse < 0 {
 		return m.UpTo.V < was.UpTo.V
 	}
 	return m.UpTo.V > was.UpTo.V
-}
-
-// worse is the way in which the figures of the rule are worse: smaller ones where it
-// holds something against a least figure.
-func (m *MovedWaiver) worse() int {
-	switch m.Rule {
-	case "gain/isolation", "reach/downlink", "reach/uplink", "mimo/xpd", "build/clearance", "exposure/distance", "reach/benefit":
-		return -1
-	}
-	return +1
 }

@@ -41,7 +41,7 @@ func changed(s string, jobs int) *rules.Redline {
 			Broken: s, Changes: changes, Findings: moved, Short: short, Unpriced: []string{s}, Holds: 1, BaseHolds: []*rules.Finding{finding()},
 			Figures: []rules.MovedFigure{{Name: "feed loss", On: s, Band: s, Unit: "dB", Was: one(1), Now: one(9), LimitWas: one(6), LimitNow: one(6), MarginWas: one(5), MarginNow: one(-3), Beyond: true, Charge: rules.ToWork}},
 			Waivers: []rules.MovedWaiver{{Rule: s, On: s, Band: s, How: []string{"new"}, By: s, Because: s, Until: day, Weight: "hold", Covers: 1}},
-			Tools: []rules.ToolLack{{Part: s, Tool: s, Crew: s}}, Takeoff: []rules.MovedPart{{Part: s, Now: catalog.Quantity{Each: 2}}}, Wasted: []rules.Wasted{{How: "cut", Part: s, Says: s, At: file.Start()}},
+			Tools:   []rules.ToolLack{{Part: s, Tool: s, Crew: s}}, Takeoff: []rules.MovedPart{{Part: s, Now: catalog.Quantity{Each: 2}}}, Wasted: []rules.Wasted{{How: "cut", Part: s, Says: s, At: file.Start()}},
 			Value: [2]unit.Money{10000, 20000}}
 		r.Jobs = append(r.Jobs, j)
 	}
