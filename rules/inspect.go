@@ -61,7 +61,8 @@ type Counts struct {
 	Unknown                     int // of all, how many are not assessed
 }
 
-func (n *Counts) count(f *Finding) {
+// Count adds a finding.
+func (n *Counts) Count(f *Finding) {
 	if f.Outcome == Unknown {
 		n.Unknown++
 	}
@@ -132,11 +133,11 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 		r.Notices = append(r.Notices, fmt.Sprintf("%s is not read: it %s", e.Path, e.Skip))
 	}
 	for _, w := range r.Workspace {
-		r.Counts.count(w)
+		r.Counts.Count(w)
 	}
 	for _, p := range r.Plans {
 		for _, x := range p.Findings {
-			p.count(x)
+			p.Count(x)
 		}
 		r.Counts.add(p.Counts)
 	}

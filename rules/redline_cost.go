@@ -16,6 +16,9 @@ func (c *comparison) costs() {
 		return
 	}
 	for _, p := range c.pairs {
+		if p.broken[atBase] || p.broken[atHead] {
+			continue
+		}
 		base, now := takeoffOf(c.at(p, steps[0].mix)), takeoffOf(c.at(p, steps[3].mix))
 		j := p.job
 		j.Value[atBase], _ = valueAt(c.firms[atBase], base)

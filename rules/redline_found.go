@@ -74,7 +74,7 @@ func (x *found) compare() (moved []MovedFound, stands Counts) {
 	for _, f := range x.at[3] {
 		m, as := x.movedTo(f, partner[f])
 		if as {
-			stands.count(f)
+			stands.Count(f)
 			continue
 		}
 		m.Charge = charged(keyOf(f, named(3)), in)
@@ -190,6 +190,13 @@ func (c *comparison) compareFound(p *pair) {
 	}
 	x.had = func(on string) bool { return p.hadBefore(on) }
 	p.job.Findings, p.job.Standing = x.compare()
+	if p.broken[atHead] {
+		for i := range p.job.Findings {
+			if m := &p.job.Findings[i]; m.How == Cleared || m.How == Assessed {
+				m.How = Lost // nobody looked
+			}
+		}
+	}
 	if p.isNew() || p.isGone() {
 		for i := range p.job.Findings {
 			p.job.Findings[i].Charge = ToWork

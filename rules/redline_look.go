@@ -95,7 +95,9 @@ func (c *comparison) comparePlans(p *pair) {
 		}
 		j.Figures, j.Largest = movedFigures(at)
 	}
-	j.Takeoff = movedParts(takeoffOf(base), takeoffOf(head))
+	if !p.broken[atBase] && !p.broken[atHead] { // what cannot be read takes nobody knows what
+		j.Takeoff = movedParts(takeoffOf(base), takeoffOf(head))
+	}
 	j.Tools = c.toolLacks(j)
 	j.Waivers = c.movedWaivers(p)
 	c.at(p, underBase)

@@ -13,7 +13,7 @@ import (
 // pieces that were cut, goods that were issued, orders that were sent.
 func (c *comparison) wasted(p *pair, at [4]*shelfState) []Wasted {
 	base, head := c.at(p, steps[0].mix), c.at(p, steps[3].mix)
-	if base == nil || base.shelf.demand == nil {
+	if base == nil || base.shelf.demand == nil || p.broken[atHead] {
 		return nil
 	}
 	was, now := base.shelf.demand, &bom.Demand{}

@@ -21,12 +21,15 @@ func (w *redWords) job(j *rules.JobChange) *redBlock {
 	case j.How == "new":
 		b.add("plan", "It is new; nothing of it was assessed before.")
 	case j.How == "gone":
-		b.add("plan", "It is taken out, and with it all that is claimed for it.")
+		w.gone(b, j)
+		return b
 	}
+	found := j.Findings
 	if j.Broken != "" {
 		b.add("only", "%s; nothing but its file was looked at.", j.Broken)
+		found = w.unseen(b, found)
 	}
-	w.found(b, j.Findings)
+	w.found(b, found)
 	w.baseHolds(b, j)
 	for _, m := range j.Waivers {
 		b.worse = true
@@ -60,6 +63,41 @@ func (w *redWords) job(j *rules.JobChange) *redBlock {
 		b.add("stands", "As before: %s.", tally(n))
 	}
 	return b
+}
+
+// gone says what goes with a plan that is taken out: nobody put right what was found on
+// it, so that is counted and not called cleared.
+func (w *redWords) gone(b *redBlock, j *rules.JobChange) {
+	n := rules.Counts{}
+	for _, m := range j.Findings {
+		n.Count(m.Finding)
+	}
+	b.worse = n.Holds > 0
+	b.add("plan", "It is taken out, with all that was claimed for it and all that was found on it: %s.", tally(n))
+	for _, x := range j.Wasted {
+		b.worse = true
+		b.add("done", "Of no use any more: %s (%s).", x.Says, placeWords(x.At.Path(), x.At.Line()))
+	}
+	for _, m := range j.Takeoff {
+		b.hide("takes", "%s: %s", clip(m.Part, mostName), wasNow(m.Was, m.Now, w.r.Feet))
+	}
+}
+
+// unseen counts what was found on a plan of which only the file is looked at now, and
+// returns what else there is to say.
+func (w *redWords) unseen(b *redBlock, moved []rules.MovedFound) (rest []rules.MovedFound) {
+	n := rules.Counts{}
+	for _, m := range moved {
+		if m.Now == "" {
+			n.Count(m.Finding)
+		} else {
+			rest = append(rest, m)
+		}
+	}
+	if len(rest) < len(moved) {
+		b.add("lost", "What was found on it before is not looked at any more: %s.", tally(n))
+	}
+	return rest
 }
 
 // baseHolds lists the holds that only the base's rulers see, those left out that are

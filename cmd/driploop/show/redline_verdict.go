@@ -156,6 +156,7 @@ func (w *redWords) ask() string {
 	for _, j := range w.r.Jobs {
 		for _, m := range j.Findings {
 			switch {
+			case j.How == "gone":
 			case m.How == rules.Lost:
 				lost++
 			case m.How.Worse():
