@@ -55,6 +55,9 @@ type rulerRow struct {
 // clause that the old row stood on.
 func (c *comparison) rulerRows(sort, was, now string, a, b []rulerRow) {
 	on := sort + "." + now
+	if was != now && was != "" {
+		on = sort + "." + was + " to " + now
+	}
 	moved := false
 	add := func(x Change) {
 		x.Charge, x.On = ToRulers, on

@@ -66,11 +66,12 @@ func (w *redWords) gate() string {
 	if !g.Differs {
 		return ""
 	}
-	verdict := "The gate of this run follows the base's: "
-	if g.Held {
-		verdict += "held."
-	} else {
-		verdict += "open."
+	verdict := "The gate of this run follows the base's: open."
+	switch {
+	case g.UnderBase > 0:
+		verdict = "The gate of this run follows the base's: held."
+	case g.Held:
+		verdict = "The base's would let it pass; its own hold it."
 	}
 	return fmt.Sprintf("The rulers moved. Under the base's this head has %s, under its own %d. %s", words(g.UnderBase, "hold", "holds"), g.UnderHead, verdict)
 }
