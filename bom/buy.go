@@ -25,6 +25,7 @@ type Purchase struct {
 	Unsourced    []Unsourced
 	Later        []Later
 	Waiting      []Waiting
+	Moves        []LevelMove
 	Swaps        []Swap // substitutes that the purchase goes by: changes of plans, to be made by hand
 }
 

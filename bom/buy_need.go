@@ -111,37 +111,6 @@ func addServes(list []Serves, c *Claim, qty catalog.Quantity) []Serves {
 	return append(list, Serves{c.Job(), qty, c.Needed})
 }
 
-// wantLevel wants what fills a shelf up where it holds less than its level: what
-// lies there and is on its way there, less what is kept for jobs.
-func (b *buyer) wantLevel(k *catalog.Keep) {
-	p := b.parts(k.Part.V)
-	if p == nil || !k.Least.Set || !k.Fill.Set || (k.Fill.V.Length > 0) != p.CutStock() && !k.Fill.V.IsZero() {
-		return
-	}
-	level := b.a.Level(k)
-	if !level.Less(k.Least.V) {
-		return
-	}
-	lacking := k.Fill.V.Minus(level)
-	if p.CutStock() {
-		b.cutting(p).keep(b, lacking.Length)
-	} else {
-		b.want(&want{keep: k, part: p, each: int(lacking.Each)})
-	}
-}
-
-// Level is what counts toward a reorder level: what its shelf holds and what is on
-// order for it, less what is kept for jobs.
-func (a *Allocation) Level(k *catalog.Keep) catalog.Quantity {
-	var level catalog.Quantity
-	for _, s := range a.byPart[k.Part.V] {
-		if s.Where == k.Shelf.V {
-			level = level.Plus(s.Free)
-		}
-	}
-	return level
-}
-
 // split makes lots of the wants: what boxes bring together is bought together, all
 // else part by part.
 func (b *buyer) split() {

@@ -192,7 +192,11 @@ func (b *Buying) rest() []Block {
 	for _, g := range b.Gaps {
 		gaps.Items = append(gaps.Items, Item{g.Job, fmt.Sprintf("%s: %s.", strings.Replace(g.On, ".", " ", 1), g.Says)})
 	}
-	return slices.DeleteFunc([]Block{waiting, unsourced, later, gaps}, func(x Block) bool { return x.Items == nil })
+	moves := Block{Head: "TO MOVE, NOT TO BUY"}
+	for _, m := range b.Moves {
+		moves.Items = append(moves.Items, Item{m.Part.ID, fmt.Sprintf("%d from %s to %s, for its reorder level.", m.Each, m.From.Name(), m.Keep.Shelf.V)})
+	}
+	return slices.DeleteFunc([]Block{moves, waiting, unsourced, later, gaps}, func(x Block) bool { return x.Items == nil })
 }
 
 func (b *Buying) unsourced(u bom.Unsourced) string {

@@ -22,6 +22,7 @@ type purchaseJSON struct {
 	Unsourced  []unsourcedJSON   `json:"unsourced"`
 	Later      []laterJSON       `json:"later"`
 	Waiting    []waitingJSON     `json:"waiting"`
+	Moves      []levelMoveJSON   `json:"moves"`
 	Swaps      []swapJSON        `json:"swaps"`
 	Gaps       []gapJSON         `json:"not_counted"`
 	Broken     []string          `json:"broken"`
@@ -112,7 +113,7 @@ func gapsJSON(gaps []JobGap) []gapJSON {
 func (b *Buying) JSON() ([]byte, error) {
 	out := purchaseJSON{At: b.At, LimitsFrom: b.LimitsFrom, StockFrom: b.StockFrom, Today: b.Today.String(), Until: b.Until.String(), Rows: []buyJSON{}, Freight: map[string]string{},
 		Total: b.Total.String(), Bound: b.Bound.String(), Proved: b.Proved, Unsourced: unsourcedsJSON(b.Unsourced), Later: latersJSON(b.Later),
-		Waiting: waitingsJSON(b.Waiting), Swaps: []swapJSON{}, Gaps: gapsJSON(b.Gaps), Broken: append([]string{}, b.Broken...)}
+		Waiting: waitingsJSON(b.Waiting), Moves: movesJSON(b.Moves), Swaps: []swapJSON{}, Gaps: gapsJSON(b.Gaps), Broken: append([]string{}, b.Broken...)}
 	for _, r := range b.Rows {
 		out.Rows = append(out.Rows, rowJSON(r))
 	}
@@ -169,6 +170,22 @@ func latersJSON(list []bom.Later) []laterJSON {
 	out := []laterJSON{}
 	for _, l := range list {
 		out = append(out, laterJSON{l.Part.ID, l.Job, quantityNumber(l.Qty), l.Needed.String()})
+	}
+	return out
+}
+
+// levelMoveJSON is what fills a reorder level without being bought.
+type levelMoveJSON struct {
+	Part string `json:"part"`
+	From string `json:"from"`
+	To   string `json:"to"`
+	Qty  int    `json:"qty"`
+}
+
+func movesJSON(list []bom.LevelMove) []levelMoveJSON {
+	out := []levelMoveJSON{}
+	for _, m := range list {
+		out = append(out, levelMoveJSON{m.Part.ID, m.From.Name(), m.Keep.Shelf.V, m.Each})
 	}
 	return out
 }

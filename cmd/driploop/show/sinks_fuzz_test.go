@@ -48,7 +48,7 @@ func FuzzIssueTOML(f *testing.F) {
 	}
 	f.Fuzz(func(t *testing.T, s string) {
 		if strings.ToValidUTF8(s, "") != s {
-			t.Skip("files of a workspace and arguments that are no UTF-8 are refused before")
+			return // files of a workspace and arguments that are no UTF-8 are refused before
 		}
 		b := (&Issue{Pick: pickOf(s), On: "2026-12-01", By: s}).TOML()
 		if bad := harmlessText(string(b)); bad != "" {
