@@ -114,13 +114,21 @@ func someOf(lead string, names []string, most int) string {
 // more.
 func (w *redWords) taken() string {
 	var newly, more []string
-	for _, o := range w.r.Others {
-		name := short(o.Job) + whenAndWho(o.On, o.Crew)
+	note := func(job string, on unit.Date, crew string, moved []rules.MovedShort) {
+		name := short(job) + whenAndWho(on, crew)
 		switch {
-		case slices.ContainsFunc(o.Short, func(m rules.MovedShort) bool { return m.Newly() }):
+		case slices.ContainsFunc(moved, func(m rules.MovedShort) bool { return m.Newly() }):
 			newly = append(newly, name)
-		case slices.ContainsFunc(o.Short, func(m rules.MovedShort) bool { return m.Was.Less(m.Now) }):
+		case slices.ContainsFunc(moved, func(m rules.MovedShort) bool { return m.Was.Less(m.Now) }):
 			more = append(more, name)
+		}
+	}
+	for _, o := range w.r.Others {
+		note(o.Job, o.On, o.Crew, o.Short)
+	}
+	for _, j := range w.r.Jobs {
+		if j.How == "concerned" { // its own plan asks for no more than before
+			note(j.Job, j.On, j.Crew, j.Short)
 		}
 	}
 	if len(newly) > 0 {
