@@ -37,6 +37,9 @@ func (b *Buying) Text(page Page) ([]byte, error) {
 	for _, f := range b.Freight {
 		d.Blocks = append(d.Blocks, b.order(f))
 	}
+	if moves := b.moves(); moves.Items != nil {
+		d.Blocks = append(d.Blocks, moves)
+	}
 	d.Blocks = append(d.Blocks, b.rest()...)
 	return d.Text(page)
 }
@@ -174,6 +177,15 @@ func (b *Buying) quantity(q catalog.Quantity) string {
 	return q.String()
 }
 
+// moves is what fills reorder levels without being bought.
+func (b *Buying) moves() Block {
+	out := Block{Head: "TO MOVE, NOT TO BUY"}
+	for _, m := range b.Moves {
+		out.Items = append(out.Items, Item{m.Part.ID, fmt.Sprintf("%d from %s to %s, for its reorder level.", m.Each, m.From.Name(), m.Keep.Shelf.V)})
+	}
+	return out
+}
+
 // rest is what is not in the orders.
 func (b *Buying) rest() []Block {
 	waiting := Block{Head: "ON ORDER, AND TOO LATE: NOTHING COMES SOONER"}
@@ -192,11 +204,7 @@ func (b *Buying) rest() []Block {
 	for _, g := range b.Gaps {
 		gaps.Items = append(gaps.Items, Item{g.Job, fmt.Sprintf("%s: %s.", strings.Replace(g.On, ".", " ", 1), g.Says)})
 	}
-	moves := Block{Head: "TO MOVE, NOT TO BUY"}
-	for _, m := range b.Moves {
-		moves.Items = append(moves.Items, Item{m.Part.ID, fmt.Sprintf("%d from %s to %s, for its reorder level.", m.Each, m.From.Name(), m.Keep.Shelf.V)})
-	}
-	return slices.DeleteFunc([]Block{moves, waiting, unsourced, later, gaps}, func(x Block) bool { return x.Items == nil })
+	return slices.DeleteFunc([]Block{waiting, unsourced, later, gaps}, func(x Block) bool { return x.Items == nil })
 }
 
 func (b *Buying) unsourced(u bom.Unsourced) string {
