@@ -24,6 +24,9 @@ type issuing struct {
 	by, read string
 }
 
+// mostInitials keeps a sheet one that can be read again: lines of files have a limit.
+const mostInitials = 64
+
 // refuse says which flags do not go together.
 func (i *issuing) refuse(s *shared) error {
 	switch {
@@ -39,6 +42,8 @@ func (i *issuing) refuse(s *shared) error {
 		return fmt.Errorf("%s writes a sheet of its own; --as and --out do not go with it", i.name())
 	case i.do && i.by == "":
 		return errors.New("who takes the goods? --by has the initials")
+	case len(i.by) > mostInitials:
+		return fmt.Errorf("--by has %d bytes; initials have at most %d", len(i.by), mostInitials)
 	}
 	return nil
 }
