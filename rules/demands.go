@@ -45,17 +45,25 @@ func (f *Firm) demandsOf(ctx context.Context, plans []source.Entry) ([]shelfPlan
 }
 
 // otherDemands is what the plans that are not being inspected take: the shelf is
-// shared out over all.
-func (f *Firm) otherDemands(ctx context.Context, plans []source.Entry) ([]shelfPlan, error) {
+// shared out over all. Of those that cannot be read whole nobody knows what they take.
+func (f *Firm) otherDemands(ctx context.Context, plans []source.Entry) (kept []shelfPlan, unread []string, err error) {
 	if f.noShelf || len(plans) == len(f.PlanFiles) {
-		return nil, nil
+		return nil, nil, nil
 	}
 	at := map[string]bool{}
 	for _, e := range plans {
 		at[e.Path] = true
 	}
 	rest := slices.DeleteFunc(slices.Clone(f.PlanFiles), func(e source.Entry) bool { return at[e.Path] })
-	return f.demandsOf(ctx, rest)
+	if kept, err = f.demandsOf(ctx, rest); err != nil {
+		return nil, nil, err
+	}
+	for i, k := range kept {
+		if k.demand == nil {
+			unread = append(unread, rest[i].Path)
+		}
+	}
+	return kept, unread, nil
 }
 
 // Allocate shares the stock out over the demands.

@@ -121,11 +121,14 @@ func (f *Firm) Inspect(ctx context.Context, plans []source.Entry, changed ...str
 		return nil, err
 	}
 	r.Workspace = f.inspectFiles()
-	others, err := f.otherDemands(ctx, plans)
+	others, unread, err := f.otherDemands(ctx, plans)
 	if err != nil {
 		return nil, err
 	}
 	f.inspectShelf(r, kept, others)
+	for _, path := range unread {
+		r.Notices = append(r.Notices, path+" cannot be read whole; what it claims of the shelf is not known and not kept for it")
+	}
 	if !whole {
 		r.keepTouched(changed)
 	}
